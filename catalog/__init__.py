@@ -1,0 +1,1 @@
+"""What is published: materials, rolled sections, limits and worked jobs, with their sources."""

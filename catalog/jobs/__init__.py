@@ -1,0 +1,1 @@
+"""Worked jobs that ship with the package."""

@@ -1,0 +1,1 @@
+"""Job files, commands, tables and files for people."""

@@ -1,0 +1,1 @@
+"""The member along x: description, profile, response, checks."""

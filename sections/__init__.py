@@ -1,0 +1,1 @@
+"""One cross-section: outlines, composition, stiffness, stress."""
