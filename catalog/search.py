@@ -1,0 +1,175 @@
+"""Find anything in the catalogue by any word, with values, units and source."""
+
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
+
+from fishbelly.catalog.k_def import SERVICE_CLASSES
+from fishbelly.catalog.limits import PublishedLimit, limits
+from fishbelly.catalog.materials import CatalogMaterial, materials
+from fishbelly.catalog.rolled import RolledSection, rolled_sections
+from fishbelly.catalog.tables import read_table
+
+Value = tuple[str, float, str]
+"""Label, number, SI unit (empty for a ratio)."""
+
+
+@dataclass(frozen=True)
+class Entry:
+    """One thing found.
+
+    Attributes
+    ----------
+    group : str
+        ``"material"``, ``"rolled section"``, ``"limit"`` or ``"creep of timber"``.
+    name : str
+        Under which a job or the lookup functions know it.
+    kind : str
+        Closer description: the sort of material or section, the loads of a limit.
+    values : tuple of (str, float, str)
+        Label, number, SI unit.
+    source : str
+        Where it is published.
+    note : str
+        What to know before use; may be empty.
+    """
+
+    group: str
+    name: str
+    kind: str
+    values: tuple[Value, ...]
+    source: str
+    note: str
+
+
+_MATERIAL_UNITS = {
+    "E": "Pa",
+    "G": "Pa",
+    "poisson": "",
+    "density": "kg/m3",
+    "expansion": "1/K",
+    "creep": "",
+    "E_05": "Pa",
+    "cracking": "Pa",
+    "yield_strength": "Pa",
+}
+
+
+_SECTION_KINDS = {
+    "I": "I-section",
+    "tube": "tube, circular hollow section",
+    "box": "box, square or rectangular hollow section",
+    "rectangle": "rectangle, sawn lumber",
+}
+
+
+def material_entry(material: CatalogMaterial) -> Entry:
+    """Entry of a material; values that its source does not give are left out."""
+    values = [
+        (label, float(getattr(material, label)), unit)
+        for label, unit in _MATERIAL_UNITS.items()
+        if getattr(material, label) is not None
+    ]
+    if material.band is not None:
+        values += [("E lowest", material.band[0], "Pa"), ("E highest", material.band[1], "Pa")]
+    if material.k_def is not None:
+        values += [(f"k_def, service class {label}", k, "") for label, k in material.k_def.items()]
+    return Entry("material", material.name, material.kind, tuple(values), material.source, material.note)
+
+
+def section_entry(section: RolledSection) -> Entry:
+    """Entry of a rolled section: its dimensions."""
+    values = tuple(
+        (label, value, "" if label == "slope" else "m") for label, value in section.dimensions.items()
+    )
+    kind = _SECTION_KINDS.get(section.kind, section.kind)
+    return Entry("rolled section", section.designation, kind, values, section.source, "")
+
+
+def limit_entry(limit: PublishedLimit) -> Entry:
+    """Entry of a published limit."""
+    fields = (
+        ("span over", limit.span_over, ""),
+        ("absolute", limit.absolute, "m"),
+        ("cantilever over", limit.cantilever_over, ""),
+    )
+    values = tuple((label, value, unit) for label, value, unit in fields if value is not None)
+    return Entry("limit", limit.name, limit.loads, values, limit.source, limit.note)
+
+
+def k_def_entries() -> list[Entry]:
+    """Entries of the table of k_def, one a product."""
+    return [
+        Entry(
+            "creep of timber",
+            row["product"],
+            row["standard"],
+            tuple(
+                (f"k_def, service class {label}", float(row[label]), "")
+                for label in SERVICE_CLASSES
+                if row[label]
+            ),
+            row["source"],
+            row["note"],
+        )
+        for row in read_table("k_def.csv")
+    ]
+
+
+_GROUPS: tuple[Callable[[], Iterable[Entry]], ...] = (
+    lambda: map(material_entry, materials()),
+    lambda: map(section_entry, rolled_sections()),
+    lambda: map(limit_entry, limits()),
+    k_def_entries,
+)
+
+
+def everything() -> list[Entry]:
+    """All entries: materials, rolled sections, limits, creep of timber."""
+    return [entry for group in _GROUPS for entry in group()]
+
+
+def _squeezed(text: str) -> str:
+    return "".join(text.split()).casefold().replace("×", "x")
+
+
+def _rank(entry: Entry, wanted: str) -> int:
+    """0 for the name itself, 1 for its beginning, 2 inside it, 3 elsewhere."""
+    name = _squeezed(entry.name)
+    if name == wanted:
+        return 0
+    if name.startswith(wanted):
+        return 1
+    if wanted in name:
+        return 2
+    return 3
+
+
+def search(word: str) -> list[Entry]:
+    """Everything in which all the given words occur, in any case.
+
+    Names, groups, kinds, sources and notes are looked at. What has the words as its name comes first, then
+    names that begin with them, then names in which they occur, then the rest, each in catalogue order.
+
+    Parameters
+    ----------
+    word : str
+        One word or several; empty finds everything.
+
+    Returns
+    -------
+    list of Entry
+        Empty when nothing is found.
+
+    Examples
+    --------
+    >>> [entry.name for entry in search("ipe 300")][:2]
+    ['IPE 300', 'IPE A 300']
+    """
+    words = word.casefold().replace("×", "x").split()
+    wanted = _squeezed(word)
+    found = []
+    for entry in everything():
+        text = " ".join((entry.group, entry.name, entry.kind, entry.source, entry.note)).casefold()
+        if all(part in text for part in words) or wanted in _squeezed(entry.name):
+            found.append(entry)
+    return sorted(found, key=lambda entry: _rank(entry, wanted))

@@ -1,0 +1,93 @@
+"""The grid along the member: panels between breaks, Chebyshev points in each."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.sections.chebyshev import Rule, rule
+
+Array = NDArray[np.float64]
+
+POINTS = 17
+"""Chebyshev points in a panel."""
+
+
+@dataclass(frozen=True, eq=False)
+class Panels:
+    """Panels from one end of the member to the other, K of them.
+
+    A panel may be *anchored* at one end, where the section changes like a root: x - a = (b - a) u² then takes
+    the root away, with u from 0 to 1.
+
+    Parameters
+    ----------
+    a, b : ndarray, shape (K,)
+        Ends [m].
+    anchor : ndarray of int, shape (K,)
+        -1 anchored at a, +1 at b, 0 not.
+    """
+
+    a: Array
+    b: Array
+    anchor: NDArray[np.int_]
+
+    @property
+    def count(self) -> int:
+        """Number of panels."""
+        return int(self.a.size)
+
+    @property
+    def rule(self) -> Rule:
+        """Chebyshev rule used in every panel."""
+        return rule(POINTS)
+
+    @cached_property
+    def x(self) -> Array:
+        """Places of the points [m], shape (K, n)."""
+        return self.place(np.arange(self.count)[:, None], self.rule.points[None, :])
+
+    @cached_property
+    def stretch(self) -> Array:
+        """dx/ds at the points [m], shape (K, n)."""
+        u = 0.5 * (1.0 + self.rule.points)
+        length = (self.b - self.a)[:, None]
+        left, right = self.anchor[:, None] < 0, self.anchor[:, None] > 0
+        return np.asarray(length * np.where(left, u, np.where(right, 1.0 - u, 0.5)))
+
+    def place(self, panel: NDArray[np.intp], s: Array) -> Array:
+        """Return x [m] of local coordinates s (-1 to 1) in panels."""
+        u = 0.5 * (1.0 + s)
+        a, b, anchor = self.a[panel], self.b[panel], self.anchor[panel]
+        h = b - a
+        plain = np.where(u < 0.5, a + h * u, b - h * (1.0 - u))
+        return np.asarray(np.where(anchor < 0, a + h * u * u, np.where(anchor > 0, b - h * (1.0 - u) ** 2, plain)))
+
+    def local(self, panel: NDArray[np.intp], x: Array) -> Array:
+        """Return local coordinates s of places x [m] in panels."""
+        a, b, anchor = self.a[panel], self.b[panel], self.anchor[panel]
+        t = np.clip((x - a) / (b - a), 0.0, 1.0)
+        u = np.where(anchor < 0, np.sqrt(t), np.where(anchor > 0, 1.0 - np.sqrt(1.0 - t), t))
+        return np.asarray(2.0 * u - 1.0)
+
+    def find(self, x: Array, side: str = "right") -> NDArray[np.intp]:
+        """Return the panels in which places lie; at a border the one on the given side."""
+        panel = np.searchsorted(self.b, x, side="right" if side == "right" else "left")
+        return np.asarray(np.clip(panel, 0, self.count - 1))
+
+    def border(self, x: float) -> int:
+        """Return the number of the border nearest to x: k is the left end of panel k, K the far end."""
+        borders = np.concatenate((self.a, self.b[-1:]))
+        return int(np.argmin(np.abs(borders - x)))
+
+    def integrate(self, values: Array) -> tuple[Array, Array]:
+        """Integrals from the left end of each panel to its points, and over it, of values (..., K, n)."""
+        density = values * self.stretch
+        return density @ self.rule.integrate.T, density @ self.rule.weights
+
+    def ends(self, values: Array) -> tuple[Array, Array]:
+        """Values just inside the left and right end of each panel, shape (..., K), of values (..., K, n)."""
+        return values @ self.rule.left, values @ self.rule.right

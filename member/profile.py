@@ -1,0 +1,187 @@
+"""What each part gives at every point of the grid: geometry sampled once, stiffness for any set of moduli.
+
+Panels in which nothing varies are sampled at one place; the others at Chebyshev points, halved until what
+the deflection needs is resolved to round-off. Places with the same parts present are evaluated together.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.breakpoints import part_laws
+from fishbelly.member.description import Member
+from fishbelly.member.faults import NoStiffness
+from fishbelly.member.geometry import Geometry, PlacedParts
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.openings import half_length, notch_span
+from fishbelly.member.panels import Panels
+from fishbelly.sections.composition import Composition
+from fishbelly.sections.shear_stiffness import ShearStiffness, shear_stiffness
+from fishbelly.sections.stiffness import SectionStiffness, section_stiffness
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Group:
+    """Sampled places at which the same parts are present: `rows` of the profile, S of them."""
+
+    rows: NDArray[np.intp]
+    placed: PlacedParts
+    composition: Composition
+    over_opening: bool
+
+    def modulus(self, values: Array) -> Array:
+        """Moduli of the parts of this group at its stations, run-in counted, shape (P, S)."""
+        return np.asarray(values[list(self.placed.index)][:, None] * self.placed.run_in)
+
+    def stiffness(self, moduli: Moduli) -> SectionStiffness:
+        """Section stiffness for a set of moduli, fields of shape (S,)."""
+        return section_stiffness(self.composition.moments, self.modulus(moduli.E))
+
+    def shear(self, moduli: Moduli, across: bool = False) -> ShearStiffness:
+        """Shear stiffness along z, or along y."""
+        stiffness = self.stiffness(moduli)
+        section = self.composition
+        if across:
+            section = self._turned
+            s = stiffness
+            stiffness = SectionStiffness(s.EA, -s.z_c, s.y_c, s.EI_z, s.EI_y, -s.EI_yz)
+        E, G = self.modulus(moduli.E), self.modulus(moduli.G)
+        return shear_stiffness(section.levels, E, G, stiffness, self.over_opening)
+
+    @cached_property
+    def _turned(self) -> Composition:
+        return self.composition.turned()
+
+
+@dataclass(frozen=True, eq=False)
+class Profile:
+    """The member sampled along x.
+
+    Parameters
+    ----------
+    geometry : Geometry
+        Places parts.
+    panels : Panels
+        The grid.
+    row : ndarray of int, shape (K, n)
+        Which sampled place speaks for each grid point.
+    groups : tuple of Group
+        Sampled places by the parts present.
+    rows : int
+        How many places were sampled.
+    """
+
+    geometry: Geometry
+    panels: Panels
+    row: NDArray[np.intp]
+    groups: tuple[Group, ...]
+    rows: int
+    _cache: dict[tuple[str, int], object] = field(default_factory=dict, repr=False)
+
+    @property
+    def member(self) -> Member:
+        """The member."""
+        return self.geometry.member
+
+    def stiffness(self, moduli: Moduli) -> SectionStiffness:
+        """Section stiffness at every sampled place, fields of shape (R,)."""
+
+        def build() -> SectionStiffness:
+            columns = np.full((6, self.rows), np.nan)
+            for g in self.groups:
+                s = g.stiffness(moduli)
+                columns[:, g.rows] = (s.EA, s.y_c, s.z_c, s.EI_y, s.EI_z, s.EI_yz)
+            return SectionStiffness(*columns)
+
+        return self._once("stiffness", moduli, build)
+
+    def shear_stiffness(self, moduli: Moduli, across: bool = False) -> Array:
+        """GA along z, or along y, at every sampled place [N], shape (R,)."""
+
+        def build() -> Array:
+            column = np.full(self.rows, np.nan)
+            for g in self.groups:
+                column[g.rows] = g.shear(moduli, across).GA
+            return column
+
+        return self._once("across" if across else "down", moduli, build)
+
+    def mass(self, density: Array) -> tuple[Array, Array, Array]:
+        """Mass per length [kg/m] and its centroid y, z [m] at every sampled place, each shape (R,)."""
+        columns = np.zeros((3, self.rows))
+        for g in self.groups:
+            total = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total()
+            columns[:, g.rows] = (total.area, total.y, total.z)
+        return columns[0], columns[1], columns[2]
+
+    def _once(self, what: str, moduli: Moduli, build: Callable[[], object]) -> object:  # type: ignore[misc]
+        key = (what, id(moduli))
+        if key not in self._cache:
+            self._cache[key] = build()
+            self._cache[("kept " + what, id(moduli))] = moduli
+        return self._cache[key]
+
+
+def varies(member: Member, a: Array, b: Array) -> NDArray[np.bool_]:
+    """Whether anything of the cross-section varies within panels a to b, each shape (K,)."""
+    middle = 0.5 * (a + b)
+    result = np.zeros(a.size, dtype=bool)
+    for part in member.parts:
+        inside = (middle > part.start) & (middle < part.end)
+        for law in part_laws(part):
+            if not law.is_constant:
+                piece = np.searchsorted(law.knots, middle)
+                result |= inside & np.any(law.coefficients[piece, 1:] != 0.0, axis=1)
+        left, right = part.run_in
+        result |= inside & ((middle < part.start + left) | (middle > part.end - right))
+    for haunch in member.haunches:
+        result |= (middle > haunch.at - haunch.reach[0]) & (middle < haunch.at + haunch.reach[1])
+    for notch in member.notches:
+        part = member.part(notch.of)
+        start, end = notch_span(notch, part.start, part.end, True)
+        if not notch.depth.is_constant:
+            result |= (middle > start) & (middle < end)
+    for opening in member.openings:
+        if opening.diameter is not None or opening.radius:
+            result |= np.abs(middle - opening.at) < half_length(opening)
+    return result
+
+
+def group_places(
+    geometry: Geometry, x: Array, middles: Array, first_row: int, side: str = "right"
+) -> list[Group]:
+    """Evaluate places, those with the same parts present together.
+
+    Parameters
+    ----------
+    geometry : Geometry
+        Places parts.
+    x : ndarray, shape (K, n)
+        Places, a row for each panel [m].
+    middles : ndarray, shape (K,)
+        A place inside each panel, which tells what is present [m].
+    first_row : int
+        Number of the first place.
+    side : {"right", "left"}
+        Which side speaks where a place is a break.
+    """
+    by_presence: dict[tuple[tuple[int, ...], ...], list[int]] = {}
+    for k, middle in enumerate(middles):
+        by_presence.setdefault(geometry.present(float(middle), side), []).append(k)
+    groups = []
+    for there, panels in by_presence.items():
+        if not any(not geometry.member.parts[i].cuts for i in there[0]):
+            raise NoStiffness(float(middles[panels[0]]), "no part is there")
+        places = x[panels]
+        rows = first_row + np.add.outer(np.array(panels) * x.shape[1], np.arange(x.shape[1]))
+        placed = geometry.place(places.ravel(), side, there)
+        cuts = tuple((c.outline, c.targets, c.mass) for c in placed.cuts)
+        groups.append(Group(rows.ravel(), placed, Composition(placed.outlines, cuts), bool(there[2])))
+    return groups

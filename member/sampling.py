@@ -1,0 +1,188 @@
+"""Choose the grid: halve panels until the section's stiffness is resolved, refine towards an apex."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.breakpoints import breakpoints, merged
+from fishbelly.member.description import Member
+from fishbelly.member.faults import CannotCompute
+from fishbelly.member.geometry import Geometry
+from fishbelly.member.moduli import Moduli, moduli
+from fishbelly.member.openings import opening_round_ends
+from fishbelly.member.panels import POINTS, Panels
+from fishbelly.member.profile import Group, Profile, group_places, varies
+from fishbelly.member.topology import crossing_places
+from fishbelly.sections.chebyshev import rule, tail
+
+Array = NDArray[np.float64]
+
+RESOLVED = 1e-13
+"""Last Chebyshev coefficients against the largest value: stiffness is resolved."""
+SHEAR_RESOLVED = 1e-10
+"""The same for 1/GA, whose share of a deflection is small and whose level cuts are good to about this."""
+MOST_ROUNDS = 44
+MOST_PANELS = 20_000
+APEX = 1e-6
+"""Where stiffness extrapolated to a panel's end falls below this share of its largest, it may be an apex."""
+
+
+@dataclass(frozen=True, eq=False)
+class _Batch:
+    """Panels waiting to be sampled: ends, anchors, whether they vary and how often they were halved."""
+
+    a: Array
+    b: Array
+    anchor: NDArray[np.int_]
+    varying: NDArray[np.bool_]
+    halved: NDArray[np.int_]
+
+    def at(self, index: NDArray[np.generic]) -> _Batch:
+        return _Batch(*(v[index] for v in (self.a, self.b, self.anchor, self.varying, self.halved)))
+
+
+def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | None = None) -> Profile:
+    """Sample a member so that its deflection is resolved to round-off.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    more : tuple of float
+        Further places that shall be borders of panels [m].
+    shear : bool, optional
+        Whether shear stiffness has to be resolved too; default as the member says.
+
+    Returns
+    -------
+    Profile
+
+    Raises
+    ------
+    NoStiffness
+        When a stretch has no part.
+    CannotCompute
+        When the section cannot be resolved.
+    """
+    geometry = Geometry(member)
+    short = moduli(member)
+    with_shear = member.shear if shear is None else shear
+    batch = _start(member, geometry, breakpoints(member, more))
+    kept: list[tuple[_Batch, Array]] = []
+    groups: list[Group] = []
+    rows = panels = 0
+    most = MOST_PANELS + batch.a.size
+    for _ in range(MOST_ROUNDS):
+        if not batch.a.size:
+            break
+        grid = Panels(batch.a, batch.b, batch.anchor)
+        done = np.ones(batch.a.size, dtype=bool)
+        row = np.zeros((batch.a.size, POINTS), dtype=np.intp)
+        worst: dict[str, Array] = {}
+        for varying in (False, True):
+            which = np.flatnonzero(batch.varying == varying)
+            if not which.size:
+                continue
+            x = grid.x[which] if varying else grid.x[which][:, POINTS // 2 : POINTS // 2 + 1]
+            new = group_places(geometry, x, 0.5 * (batch.a + batch.b)[which], rows)
+            row[which] = rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
+            if varying:
+                worst = _tails(new, short, rows, which.size, with_shear, batch.at(which))
+                done[which] = worst["done"].astype(bool)
+            groups += new
+            rows += x.size
+        kept.append((batch.at(done), row[done]))
+        panels += int(done.sum())
+        batch = _halved(batch, done, worst)
+        if panels + batch.a.size > most:
+            break
+    if batch.a.size:
+        raise CannotCompute(f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved")
+    return _assembled(geometry, kept, groups, rows)
+
+
+def _start(member: Member, geometry: Geometry, breaks: Array) -> _Batch:
+    batch = _first(member, breaks)
+    if batch.varying.any():
+        moving = batch.at(batch.varying)
+        extra = crossing_places(geometry, Panels(moving.a, moving.b, moving.anchor))
+        if extra:
+            batch = _first(member, merged([*breaks.tolist(), *extra], member.length))
+    return batch
+
+
+def _first(member: Member, breaks: Array) -> _Batch:
+    """One panel between any two breaks, anchored where the outline of an opening begins like a root."""
+    a, b = breaks[:-1], breaks[1:]
+    varying = varies(member, a, b)
+    anchor = np.zeros(a.size, dtype=np.int_)
+    close = 1e-9 * member.length
+    for place in (x for o in member.openings for x in opening_round_ends(o)):
+        anchor[varying & (np.abs(a - place) < close)] = -1
+        anchor[varying & (np.abs(b - place) < close)] = 1
+    return _Batch(a, b, anchor, varying, np.zeros(a.size, dtype=np.int_))
+
+
+def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch) -> dict[str, Array]:
+    """What is resolved, and which panels end in an apex (-1 at a, +1 at b)."""
+    columns = np.zeros((8, count * POINTS))
+    for g in new:
+        s = g.stiffness(short)
+        size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
+        cross = s.EI_yz / np.sqrt(s.EI_y * s.EI_z)
+        ga = g.shear(short).GA if shear else np.ones(g.rows.size)
+        columns[:, g.rows - first] = (1.0 / s.EA, 1.0 / s.EI_y, 1.0 / s.EI_z, s.z_c, s.y_c, cross, 1.0 / ga, size)
+    v = columns.reshape(8, count, POINTS)
+    if not np.all(np.isfinite(v)):
+        k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
+        raise CannotCompute(f"no stiffness between x = {batch.a[k]:.6g} m and {batch.b[k]:.6g} m")
+    inverse = tail(v[:3], POINTS).max(axis=0)
+    largest = np.maximum(v[7].max(axis=-1), 1e-300)
+    offset = tail(np.stack((v[3], v[4])), POINTS) * np.abs(v[3:5]).max(axis=-1) / largest
+    crossed = tail(v[5], POINTS) * np.abs(v[5]).max(axis=-1)
+    done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
+    if shear:
+        done &= tail(v[6], POINTS) < SHEAR_RESOLVED
+    width = (batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a))
+    done |= width < 1e-12
+    EI = 1.0 / v[1]
+    r = rule(POINTS)
+    lowest = APEX * EI.max(axis=-1)
+    apex = np.where(EI @ r.left < lowest, -1, np.where(EI @ r.right < lowest, 1, 0))
+    at_zero = (batch.anchor < 0) & (batch.a == 0.0)
+    done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 12))
+    return {"done": done.astype(float), "apex": apex.astype(float)}
+
+
+def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> _Batch:
+    """Split panels that are not resolved; those that turn out to end in an apex are anchored there first."""
+    left = np.flatnonzero(~done)
+    if not left.size:
+        return batch.at(left)
+    apex_of = np.zeros(batch.a.size)
+    apex_of[np.flatnonzero(batch.varying)] = worst["apex"]
+    rest = batch.at(left)
+    grid = Panels(rest.a, rest.b, rest.anchor)
+    middle = grid.place(np.arange(left.size), np.zeros(left.size))
+    apex = apex_of[left].astype(np.int_)
+    anchor = np.where(rest.anchor != 0, rest.anchor, apex)
+    return _Batch(
+        np.concatenate((rest.a, middle)),
+        np.concatenate((middle, rest.b)),
+        np.concatenate((np.where(anchor < 0, anchor, 0), np.where(anchor > 0, anchor, 0))),
+        np.concatenate((rest.varying, rest.varying)),
+        np.concatenate((rest.halved + 1, rest.halved + 1)),
+    )
+
+
+def _assembled(geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int) -> Profile:
+    a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
+    anchor = np.concatenate([k.anchor for k, _ in kept])
+    row = np.concatenate([r for _, r in kept]).astype(np.intp)
+    order = np.argsort(a, kind="stable")
+    a, b = a[order], b[order]
+    b[:-1] = a[1:]
+    return Profile(geometry, Panels(a, b, anchor[order]), row[order], tuple(groups), rows)

@@ -1,0 +1,193 @@
+"""All parts present in a cross-section, taken together: what each of them really contributes.
+
+Parts come in the order in which later ones displace earlier ones; cuts take material from their targets.
+Moments of parts that lie apart, or wholly inside one another, are sums of exact outline moments; where
+outlines cross, level cuts decide.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.sections.area_moments import AreaMoments, area_moments
+from fishbelly.sections.chebyshev import rule
+from fishbelly.sections.level_cuts import Pieces, Widths, events, pieces, widths
+from fishbelly.sections.outlines import Outline
+from fishbelly.sections.overlap import relation
+from fishbelly.sections.placing import Bounds
+
+Array = NDArray[np.float64]
+
+_CURVED_POINTS, _STRAIGHT_POINTS = 16, 6
+
+
+@dataclass(frozen=True, eq=False)
+class Levels:
+    """Level cuts of a section between its events.
+
+    Parameters
+    ----------
+    edges : ndarray, shape (S, K + 1)
+        Levels of the events [m].
+    z : ndarray, shape (S, K, n)
+        Levels of the cuts, n Chebyshev points to a slab [m].
+    stretch : ndarray, shape (S, K, n)
+        dz / ds, with s from -1 to 1 over the slab [m].
+    widths : Widths
+        What the cuts meet; arrays of shape (P, S, K, n).
+    """
+
+    edges: Array
+    z: Array
+    stretch: Array
+    widths: Widths
+
+
+@dataclass(frozen=True, eq=False)
+class Composition:
+    """Parts and cuts at S stations.
+
+    Parameters
+    ----------
+    outlines : tuple of Outline
+        The P parts.
+    cuts : tuple of (Outline, tuple of int, bool)
+        Outline, parts it is taken from, and whether their mass is taken too.
+    """
+
+    outlines: tuple[Outline, ...]
+    cuts: tuple[tuple[Outline, tuple[int, ...], bool], ...] = ()
+
+    @cached_property
+    def boxes(self) -> tuple[Bounds, ...]:
+        """Bounding boxes of the parts, cuts not taken off."""
+        return tuple(Bounds.of(o) for o in self.outlines)
+
+    @cached_property
+    def relations(self) -> dict[tuple[int, int], str]:
+        """How later outlines lie to earlier parts, pairs that are apart left out.
+
+        Keys are (part, remover); removers from P on are the cuts.
+        """
+        n = len(self.outlines)
+        found = {}
+        for i in range(n):
+            for j in range(i + 1, n):
+                found[i, j] = relation(self.outlines[i], self.outlines[j])
+            for c, (outline, targets, _) in enumerate(self.cuts):
+                if i in targets:
+                    found[i, n + c] = relation(self.outlines[i], outline)
+        return {pair: how for pair, how in found.items() if how != "apart"}
+
+    @cached_property
+    def crossing(self) -> bool:
+        """Whether any two outlines cross, or more than two lie within each other."""
+        if "mixed" in self.relations.values():
+            return True
+        for i in range(len(self.outlines)):
+            removers = [j for (k, j) in self.relations if k == i]
+            if len(removers) > 1 and not self._apart(removers):
+                return True
+        return False
+
+    def _apart(self, removers: list[int]) -> bool:
+        shapes = [self._outline(j) for j in removers]
+        return all(relation(a, b) == "apart" for k, a in enumerate(shapes) for b in shapes[:k])
+
+    def _outline(self, j: int) -> Outline:
+        n = len(self.outlines)
+        return self.outlines[j] if j < n else self.cuts[j - n][0]
+
+    @cached_property
+    def gross(self) -> AreaMoments:
+        """Moments of the parts as drawn, nothing taken off, shape (P, S)."""
+        return _stacked([area_moments(o) for o in self.outlines])
+
+    @cached_property
+    def moments(self) -> AreaMoments:
+        """Moments of what works of each part, shape (P, S)."""
+        if self.crossing:
+            return _integrated(self.levels)
+        return self._subtracted(self.relations)
+
+    @cached_property
+    def mass_moments(self) -> AreaMoments:
+        """Moments of what is really there of each part, shape (P, S): cuts for stiffness alone left out."""
+        if all(mass for _, _, mass in self.cuts):
+            return self.moments
+        return Composition(self.outlines, tuple(c for c in self.cuts if c[2])).moments
+
+    def _subtracted(self, relations: dict[tuple[int, int], str]) -> AreaMoments:
+        removed: dict[int, list[AreaMoments]] = {}
+        for i, j in relations:
+            removed.setdefault(i, []).append(area_moments(self._outline(j)).times(-1.0))
+        rows = []
+        for i in range(len(self.outlines)):
+            own = self.gross.at(i)
+            rows.append(_stacked([own, *removed[i]]).total() if i in removed else own)
+        return _stacked(rows)
+
+    @cached_property
+    def pieces(self) -> Pieces:
+        """Boundary pieces of parts and cuts."""
+        return pieces([*self.outlines, *(c[0] for c in self.cuts)])
+
+    @cached_property
+    def levels(self) -> Levels:
+        """Level cuts of the whole section."""
+        return level_cuts(self.pieces, len(self.outlines), [c[1] for c in self.cuts], self.crossing)
+
+    @cached_property
+    def extent(self) -> tuple[Array, Array]:
+        """Lowest and highest level of what works of each part, each shape (P, S) [m]; NaN where nothing is left."""
+        if not self.cuts:
+            return np.array([b.bottom for b in self.boxes]), np.array([b.top for b in self.boxes])
+        there = self.levels.widths.width.max(axis=3) > 1e-12 * np.abs(self.levels.edges).max()
+        low = np.where(there, self.levels.edges[:, :-1], np.inf).min(axis=2)
+        high = np.where(there, self.levels.edges[:, 1:], -np.inf).max(axis=2)
+        return np.where(np.isfinite(low), low, np.nan), np.where(np.isfinite(high), high, np.nan)
+
+    def turned(self) -> Composition:
+        """Return the section turned by a quarter, so that level cuts run upright: y becomes z, z becomes -y."""
+        cuts = tuple((o.turned(0.5 * np.pi), t, m) for o, t, m in self.cuts)
+        return Composition(tuple(o.turned(0.5 * np.pi) for o in self.outlines), cuts)
+
+
+def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing: bool) -> Levels:
+    """Cut the section between its events: Chebyshev levels, crowded to the events where edges are curved."""
+    edges = events(p, crossing)
+    curved = bool(np.any(p.branch))
+    r = rule(_CURVED_POINTS if curved else _STRAIGHT_POINTS)
+    half = 0.5 * np.diff(edges, axis=1)[..., None]
+    # a level z = middle + half sin(pi s / 2) takes the square root out of the ends of an arc
+    angle = 0.5 * np.pi * r.points
+    shape, slope = (np.sin(angle), 0.5 * np.pi * np.cos(angle)) if curved else (r.points, np.ones(r.points.size))
+    z = 0.5 * (edges[:, 1:] + edges[:, :-1])[..., None] + half * shape
+    flat = widths(p, z.reshape(z.shape[0], -1), parts, targets)
+    cut = Widths(*(getattr(flat, f).reshape(parts, *z.shape) for f in ("width", "first", "second", "left", "right")))
+    return Levels(edges, z, half * slope, cut)
+
+
+def _stacked(rows: Sequence[AreaMoments]) -> AreaMoments:
+    return AreaMoments(*(np.stack([getattr(m, f) for m in rows]) for f in ("area", "y", "z", "zz", "yy", "yz")))
+
+
+def _integrated(levels: Levels) -> AreaMoments:
+    weight = levels.stretch * rule(levels.z.shape[-1]).weights
+    z0 = 0.5 * (levels.edges[:, 0] + levels.edges[:, -1])
+    z = levels.z - z0[:, None, None]
+    w, first, second = levels.widths.width, levels.widths.first, levels.widths.second
+    area = (w * weight).sum(axis=(2, 3))
+    total = np.where(area == 0.0, 1.0, area)
+    y_c = (first * weight).sum(axis=(2, 3)) / total
+    z_c = (w * z * weight).sum(axis=(2, 3)) / total
+    dz = z - z_c[:, :, None, None]
+    moment_y = first - y_c[:, :, None, None] * w
+    zz = (w * dz**2 * weight).sum(axis=(2, 3))
+    yy = ((second - y_c[:, :, None, None] * (first + moment_y)) * weight).sum(axis=(2, 3))
+    return AreaMoments(area, y_c, z0 + z_c, zz, yy, (moment_y * dz * weight).sum(axis=(2, 3)))
