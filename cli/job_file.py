@@ -146,7 +146,7 @@ def _top_level(report: Report) -> JobTable | None:
     for key in tables:
         _unknown_table(key, report)
     top = read_table(JobTable, {k: v for k, v in rest.items() if k not in tables}, (), report)
-    if top is None and not report.faulty(("length",)):
+    if top is None and "length" in rest and not report.faulty(("length",)):
         # the rest of the job can be checked all the same; what needs G is left alone
         top = JobTable(length=rest["length"], shear=False)
     return top

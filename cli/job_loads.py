@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from fishbelly.cli.faults import as_written, nearest
-from fishbelly.cli.job_models import (
+from fishbelly.cli.job_load_models import (
     LOADS,
     AxialTable,
     CoupleTable,

@@ -4,17 +4,12 @@ One model a kind of table. A table is read with the model that its `kind` or `sh
 speaks of the keys of that kind only. Models are built when first used.
 """
 
-from functools import cache
 from typing import Annotated, Any
 
-from pydantic import BaseModel, ConfigDict, Field, create_model
+from pydantic import BaseModel, ConfigDict, Field
 
 from fishbelly.cli.job_laws import (
     LawOf,
-    MaybeLaw,
-    MaybePair,
-    MaybeRadius,
-    MaybeSize,
     Size,
     read_stations,
 )
@@ -33,14 +28,12 @@ from fishbelly.cli.job_types import (
     Reader,
     TableOf,
     Text,
-    ValueFault,
     Word,
     WordOr,
     Yes,
     ill,
-    of_quantity,
 )
-from fishbelly.cli.quantities import Kind, QuantityError, parse_quantity
+from fishbelly.cli.quantities import Kind
 
 NOT_BUILT: dict[str, frozenset[str]] = {
     "": frozenset({"tension_stiffening", "cracks", "inclined", "stage", "travel", "mass"}),
@@ -53,22 +46,14 @@ NOT_BUILT: dict[str, frozenset[str]] = {
 """Keys of the contract, by table, that this version refuses by name."""
 
 SIDES = ("bottom", "top", "left", "right")
-DIRECTIONS = ("down", "up", "across")
-CORNERS = tuple(f"{level} {side}" for level in ("top", "bottom") for side in ("left", "right"))
-ANCHORS = ("middle", "top", "bottom", "left", "right", *CORNERS)
-RELATIONS = ("under", "over", "left_of", "right_of", "centred_on")
 
-Direction = Annotated[str, Word(*DIRECTIONS)]
-Per = Annotated[str | None, Word("plan", "slope")]
 Level = Annotated[str | float, WordOr(Quantity(Kind.LENGTH), "centroid", "top", "bottom", "datum")]
 MaybeStiffness = Annotated[float | None, Quantity(Kind.STIFFNESS, "zero or more")]
 MaybeRotational = Annotated[float | None, Quantity(Kind.ROTATIONAL_STIFFNESS, "zero or more")]
 Held = Annotated[str | float | None, WordOr(Quantity(Kind.STIFFNESS, "zero or more"), "held", "free")]
 MaybeModulus = Annotated[float | None, Quantity(Kind.MODULUS, "above zero")]
 MaybeStress = Annotated[float | None, Quantity(Kind.STRESS, "above zero")]
-MaybeStrain = Annotated[float | None, Factor("a strain, a bare number")]
 MaybeCreep = Annotated[float | None, Factor("a creep factor", at_least=0.0)]
-Rise = Annotated[float | None, Quantity(Kind.TEMPERATURE)]
 
 
 class Table(BaseModel):
@@ -153,95 +138,6 @@ class MaterialTable(Table):
     cracking: MaybeStress = None
 
 
-class PartTable(Table):
-    """``[[part]]``, without `size` or `shape` and dimensions."""
-
-    name: Name
-    material: MaybeName = None
-    from_: MaybeLength = Field(None, alias="from")
-    to: MaybeLength = None
-    run_in: Annotated[
-        tuple[float, ...] | None,
-        Many(Quantity(Kind.LENGTH, "zero or more"), "a length, or a pair [start, end]", one=True),
-    ] = None
-    cut: Yes = False
-    of: MaybeNames = None
-    pair: Yes = False
-    turn: Annotated[float, Quantity(Kind.ANGLE)] = 0.0
-    mirror: Yes = False
-    under: MaybeName = None
-    over: MaybeName = None
-    left_of: MaybeName = None
-    right_of: MaybeName = None
-    centred_on: MaybeName = None
-    position: MaybePair = None
-    anchor: Annotated[str | None, Word(*ANCHORS)] = None
-    flush: Annotated[str | None, Word("top", "middle", "bottom", "left", "right")] = None
-    gap: MaybeLaw = None
-    shift: MaybePair = None
-
-
-class Points(Reader):
-    """Corner points [[y, z], …]."""
-
-    words = "at least three points [[y, z], …]"
-    schema = LawOf(Kind.LENGTH).schema["anyOf"][1]
-
-    def read(self, value: Any) -> tuple[tuple[float, float], ...]:
-        """Read the points."""
-        if not isinstance(value, list) or len(value) < 3:
-            raise ill(self.words, value)
-        pairs = Many(Many(Quantity(Kind.LENGTH), "a pair [y, z]", count=2), self.words).read(value)
-        return tuple((y, z) for y, z in pairs)
-
-
-_OUTLINES: dict[str, dict[str, Any]] = {
-    "rectangle": {"width": Size, "depth": Size},
-    "circle": {"diameter": Size},
-    "tube": {"diameter": Size, "wall": Size},
-    "box": {"width": Size, "depth": Size}
-    | dict.fromkeys(("wall", "web", "flange"), MaybeSize)
-    | dict.fromkeys(("radius", "inner_radius"), MaybeRadius),
-    "I": {"depth": Size, "web": Size}
-    | dict.fromkeys(
-        ("width", "flange", "top_width", "top_flange", "bottom_width", "bottom_flange"), MaybeSize
-    )
-    | {"radius": MaybeRadius},
-    "tee": {"depth": Size, "width": Size, "web": Size, "flange": Size, "radius": MaybeRadius},
-    "channel": {"depth": Size, "width": Size, "web": Size, "flange": Size}
-    | {"radius": MaybeRadius, "toe_radius": MaybeRadius}
-    | {"slope": Annotated[float | None, Factor("a slope, a ratio", at_least=0.0, below=1.0)]},
-    "angle": {"depth": Size, "width": Size}
-    | dict.fromkeys(("thickness", "web", "flange"), MaybeSize)
-    | {"radius": MaybeRadius, "toe_radius": MaybeRadius},
-    "trapezoid": {"top_width": MaybeRadius, "bottom_width": MaybeRadius, "depth": Size},
-    "regular polygon": {"sides": Annotated[int, Count(3)], "across_flats": Size, "wall": MaybeSize},
-    "polygon": {
-        "points": Annotated[Any, Points()],
-        "holes": Annotated[Any, Many(Points(), "a list of holes, each [[y, z], …]")],
-    },
-    "bars": {"count": Annotated[int, Count(1)], "diameter": Size, "spacing": MaybeSize, "width": MaybeSize},
-}
-_REQUIRED = {"polygon": {"points"}, "trapezoid": {"top_width", "bottom_width", "depth"}}
-SHAPES = tuple(_OUTLINES)
-DIMENSIONS = frozenset(key for keys in _OUTLINES.values() for key in keys)
-
-
-@cache
-def part_model(shape: str | None) -> type[PartTable]:
-    """Return the model of a part of one shape; None: of a part with `size`."""
-    fields: dict[str, Any] = {}
-    if shape is None:
-        fields["size"] = (Annotated[str, Text("a designation")], ...)
-        return create_model("SizedPart", __base__=PartTable, **fields)
-    fields["shape"] = (Annotated[str, Word(shape)], ...)
-    required = _REQUIRED.get(shape)
-    for key, kind in _OUTLINES[shape].items():
-        must = key in required if required is not None else kind in (Size,) or "int" in str(kind)
-        fields[key] = (kind, ... if must else None)
-    return create_model(f"{shape.title().replace(' ', '')}Part", __base__=PartTable, **fields)
-
-
 class NotchTable(Table):
     """``[[notch]]``."""
 
@@ -306,145 +202,6 @@ class HingeTable(Table):
 
     at: Length
     name: MaybeName = None
-
-
-class LoadTable(Table):
-    """What every load has."""
-
-    kind: Name
-    case: Name = "load"
-
-
-class SelfWeightTable(LoadTable):
-    """Self weight."""
-
-    factor: Annotated[float, Factor("a factor")] = 1.0
-    parts: MaybeNames = None
-
-
-class LineLoad(Reader):
-    """A force per length, or a force per area; read as a value and its kind."""
-
-    words = 'a force per length such as "4.2 kN/m", or a force per area with `spacing`'
-    schema = {"type": "string", "examples": ["4.2 kN/m", "2.5 kN/m2"]}
-
-    def read(self, value: Any) -> tuple[float, Kind]:
-        """Read the value."""
-        try:
-            return parse_quantity(value, Kind.FORCE_PER_LENGTH), Kind.FORCE_PER_LENGTH
-        except QuantityError as error:
-            try:
-                return parse_quantity(value, Kind.FORCE_PER_AREA), Kind.FORCE_PER_AREA
-            except QuantityError:
-                raise of_quantity(error) from None
-
-
-class LoadStations(Reader):
-    """Stations [[x, value], …] of a line load; read as x, values and their kind."""
-
-    words = "at least two stations [[x, value], …]"
-    schema = LawOf(Kind.FORCE_PER_LENGTH).schema["anyOf"][1]
-
-    def read(self, value: Any) -> tuple[list[float], list[float], Kind]:
-        """Read the stations; the first value tells the kind."""
-        kind = Kind.FORCE_PER_LENGTH
-        if isinstance(value, list) and value and isinstance(value[0], list) and len(value[0]) == 2:
-            try:
-                kind = LineLoad().read(value[0][1])[1]
-            except ValueFault:
-                kind = Kind.FORCE_PER_LENGTH
-        xs, values = read_stations(value, kind)
-        return xs, values, kind
-
-
-class UniformTable(LoadTable):
-    """A uniform load."""
-
-    value: Annotated[tuple[float, Kind], LineLoad()]
-    spacing: MaybePositiveLength = None
-    from_: MaybeLength = Field(None, alias="from")
-    to: MaybeLength = None
-    direction: Direction = "down"
-    per: Per = None
-    pattern: Yes = False
-
-
-class VaryingTable(LoadTable):
-    """A load that varies along x."""
-
-    stations: Annotated[tuple[list[float], list[float], Kind], LoadStations()]
-    spacing: MaybePositiveLength = None
-    direction: Direction = "down"
-    per: Per = None
-    pattern: Yes = False
-
-
-class PointTable(LoadTable):
-    """A point load."""
-
-    value: Annotated[float, Quantity(Kind.FORCE)]
-    at: Length
-    direction: Direction = "down"
-    per: Per = None
-    pattern: Yes = False
-
-
-class CoupleTable(LoadTable):
-    """A couple."""
-
-    value: Annotated[float, Quantity(Kind.MOMENT)]
-    at: Length
-
-
-class AxialTable(LoadTable):
-    """A force along the member."""
-
-    value: Annotated[float, Quantity(Kind.FORCE)]
-    at: Length
-    level: Level = "centroid"
-
-
-class TemperatureTable(LoadTable):
-    """A temperature rise."""
-
-    top: Rise = None
-    bottom: Rise = None
-    parts: Annotated[
-        dict[str, float] | None, TableOf(Quantity(Kind.TEMPERATURE), 'a table such as { beam = "20 K" }')
-    ] = None
-    from_: MaybeLength = Field(None, alias="from")
-    to: MaybeLength = None
-
-
-class ShrinkageTable(LoadTable):
-    """Shrinkage of a part."""
-
-    part: Name
-    strain: Annotated[float, Factor("a strain, a bare number")]
-    creep: MaybeCreep = None
-    from_: MaybeLength = Field(None, alias="from")
-    to: MaybeLength = None
-
-
-class PrestressTable(LoadTable):
-    """Prestress of a part."""
-
-    part: Name
-    force: Annotated[float | None, Quantity(Kind.FORCE)] = None
-    strain: MaybeStrain = None
-
-
-LOADS: dict[str, type[LoadTable]] = {
-    "self weight": SelfWeightTable,
-    "uniform": UniformTable,
-    "varying": VaryingTable,
-    "point": PointTable,
-    "couple": CoupleTable,
-    "axial": AxialTable,
-    "temperature": TemperatureTable,
-    "shrinkage": ShrinkageTable,
-    "prestress": PrestressTable,
-}
 
 
 class StationTable(Table):

@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 
 from fishbelly.cli.job_laws import Columns, Steps, finish, minus
-from fishbelly.cli.job_models import DIMENSIONS, PartTable
+from fishbelly.cli.job_part_models import DIMENSIONS, PartTable
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_types import Path, ValueFault
 from fishbelly.member.description import Shape

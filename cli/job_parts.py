@@ -6,8 +6,9 @@ from typing import Any
 
 from fishbelly.catalog.rolled import UnknownDesignation, find_rolled
 from fishbelly.cli.faults import as_written, nearest
-from fishbelly.cli.job_models import DIMENSIONS, RELATIONS, SHAPES, JobTable, PartTable, part_model
+from fishbelly.cli.job_models import JobTable
 from fishbelly.cli.job_outlines import finished, rolled_shape, written_shape
+from fishbelly.cli.job_part_models import DIMENSIONS, RELATIONS, SHAPES, PartTable, part_model
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_tables import either, read_table
 from fishbelly.cli.job_types import Path
@@ -106,7 +107,8 @@ def _table(raw: Any, path: Path, report: Report) -> tuple[str | None, PartTable 
 
 def cut_names(report: Report) -> tuple[list[str], list[str]]:
     """Names of the parts that add material, and of those that take it away."""
-    adding, cutting = [], []
+    adding: list[str] = []
+    cutting: list[str] = []
     for raw in report.data.get("part", []):
         if isinstance(raw, dict) and isinstance(raw.get("name"), str):
             (cutting if raw.get("cut") is True else adding).append(raw["name"])

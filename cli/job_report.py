@@ -131,7 +131,7 @@ class Report:
 
     def where(self, path: Path) -> str:
         """Words for the table that a path leads through: ``part "arm"``, ``load 2``."""
-        if len(path) < 2 or path[0] not in self.data and path[0] != "material":
+        if len(path) < 2 or (path[0] not in self.data and path[0] != "material"):
             return ""
         kind, which = str(path[0]), path[1]
         if not isinstance(which, int):

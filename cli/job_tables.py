@@ -1,4 +1,4 @@
-"""Tables of a job held against their models: unknown, unready and missing keys, and values that cannot be read."""
+"""Tables of a job held against their models: keys unknown, not built or missing, values not readable."""
 
 from __future__ import annotations
 
@@ -7,7 +7,8 @@ from typing import Any, TypeVar
 from pydantic import BaseModel, ValidationError
 
 from fishbelly.cli.faults import as_written, nearest, suggest
-from fishbelly.cli.job_models import DIMENSIONS, NOT_BUILT, SHAPES, JobTable, Table, part_model
+from fishbelly.cli.job_models import NOT_BUILT, JobTable, Table
+from fishbelly.cli.job_part_models import DIMENSIONS, SHAPES, part_model
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_types import Path, Reader, ValueFault
 

@@ -7,6 +7,7 @@ lines and lines that begin with ``#`` are passed over. The first line left is th
 from __future__ import annotations
 
 import csv
+from itertools import pairwise
 from pathlib import Path
 
 from fishbelly.cli.faults import as_written, suggest
@@ -157,7 +158,7 @@ def _cell(
 def _order(path: Path, found: list[tuple[int, float | None, float | None]]) -> list[Ill]:
     ills = []
     known = [(line, x) for line, x, _ in found if x is not None]
-    for (_, before), (line, x) in zip(known, known[1:], strict=False):
+    for (_, before), (line, x) in pairwise(known):
         if x == before:
             ills.append(
                 Ill((), "each station once", f"the station at {x:.6g} m again", file=path.name, line=line)

@@ -72,6 +72,9 @@ def breakpoints(member: Member, more: Iterable[float] = ()) -> Array:
     """
     places = geometry_breaks(member) + load_breaks(member)
     places += [s.at for s in member.supports] + [h.at for h in member.hinges] + [s.at for s in member.stations]
+    places += [x for limit in member.limits for x in (limit.start, limit.end) if x is not None]
+    if isinstance(member.camber, Law):
+        places += member.camber.knots.tolist()
     return merged([*places, *more], member.length)
 
 

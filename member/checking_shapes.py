@@ -208,6 +208,8 @@ def _rules(part: Part, path: Path) -> Iterator[Problem]:
             if x[worst] in (part.start, part.end) and strict and spare[worst] == 0.0 and key == "top_width":
                 continue  # a trapezoid that tapers to a point
             value = values[key][worst]
+            if value == 0.0 and key in _MAY_BE_ZERO:
+                continue  # no radius, no fault of the radius
             along = (
                 ""
                 if all(law.is_constant for law in part.shape.dimensions.values())

@@ -170,8 +170,10 @@ def _references(member: Member) -> Iterator[Reference]:
         yield from (Reference(("part", i, "of"), "part", name) for name in p.cuts)
         if p.place.host:
             yield Reference(("part", i, p.place.relation), "part", p.place.host)
-    for kind, cuts in (("notch", member.notches), ("haunch", member.haunches)):
-        yield from (Reference((kind, i, "of"), "part", c.of) for i, c in enumerate(cuts))
+    for i, notch in enumerate(member.notches):
+        yield Reference(("notch", i, "of"), "part", notch.of)
+    for i, haunch in enumerate(member.haunches):
+        yield Reference(("haunch", i, "of"), "part", haunch.of)
     for i, o in enumerate(member.openings):
         yield from (Reference(("opening", i, "of"), "part", name) for name in o.of)
     for i, load in enumerate(member.loads):
@@ -216,7 +218,7 @@ def repeated_names(draft: Draft) -> Iterator[Problem]:
 
 def infinite_numbers(draft: Draft) -> Iterator[Problem]:
     """Find numbers that are not finite, where they have to be."""
-    things = [((kind, i), t) for kind, many in draft.listed.items() for i, t in enumerate(many)]
+    things: list[tuple[Path, Any]] = [((kind, i), t) for kind, many in draft.listed.items() for i, t in enumerate(many)]
     things += [(("material", m.name), m) for m in draft.materials]
     for path, thing in things:
         if thing is not None:

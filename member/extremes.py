@@ -1,0 +1,101 @@
+"""Largest values along the member, from roots of the derivative, and values at any place."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.panels import Panels
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Extreme:
+    """A largest value, where it is [m], and which pattern loads are on there (shape (J,))."""
+
+    value: float
+    at: float
+    on: NDArray[np.bool_]
+
+
+def values_at(panels: Panels, field: Array, x: Array, side: str = "right") -> Array:
+    """Values of a field (..., K, n) at places x [m], shape (..., X); at a border those of one side."""
+    panel = panels.find(x, side)
+    basis = panels.rule.basis(panels.local(panel, x))
+    return np.asarray(np.einsum("xn,...xn->...x", basis, field[..., panel, :]))
+
+
+def largest(panels: Panels, field: Array, first: int = 0, stop: int | None = None) -> Extreme:
+    """Largest value of a field over panels first to stop.
+
+    Parameters
+    ----------
+    panels : Panels
+        The grid.
+    field : ndarray, shape (J + 1, K, n) or (K, n)
+        The field; with J more fields of loads that may be on or off, the largest over every arrangement.
+    first, stop : int
+        Panels to look at, one past the last.
+
+    Returns
+    -------
+    Extreme
+        The leftmost of equal ones.
+    """
+    stop = panels.count if stop is None else stop
+    stack = field[None] if field.ndim == 2 else field
+    here = stack[:, first:stop]
+    left, right = panels.ends(here)
+    points = np.concatenate((left[..., None], here, right[..., None]), axis=-1)
+    # the end where a panel runs out to a point is not a place to look at: values there are extrapolated
+    points[:, panels.anchor[first:stop] < 0, 0] = points[:, panels.anchor[first:stop] < 0, 1]
+    points[:, panels.anchor[first:stop] > 0, -1] = points[:, panels.anchor[first:stop] > 0, -2]
+    envelope = points[0] + np.maximum(points[1:], 0.0).sum(axis=0)
+    top = envelope.max(axis=1)
+    reach = top + 0.03 * np.ptp(envelope, axis=1)
+    best: Extreme | None = None
+    for k in np.flatnonzero(reach >= top.max()):
+        found = _in_panel(panels, stack, first + int(k), envelope[k], points[:, k])
+        if best is None or found.value > best.value + 1e-13 * abs(best.value):
+            best = found
+    assert best is not None
+    return best
+
+
+def _in_panel(panels: Panels, stack: Array, k: int, envelope: Array, points: Array) -> Extreme:
+    j = int(np.argmax(envelope))
+    on = points[1:, j] > 0.0
+    s = float(np.concatenate(([-1.0], panels.rule.points, [1.0]))[j])
+    value = float(envelope[j])
+    for _ in range(6):
+        values = stack[0, k] + stack[1:, k][on].sum(axis=0)
+        s, value = _peak(panels, values, s, value)
+        there = panels.rule.basis(np.array([s]))[0] @ stack[1:, k].T
+        now = there > 0.0
+        if np.array_equal(now, on):
+            break
+        on = now
+    return Extreme(value, float(panels.place(np.array(k), np.array(s))), on)
+
+
+def _peak(panels: Panels, values: Array, s0: float, value0: float) -> tuple[float, float]:
+    """Largest value of one panel's interpolant, from the roots of its derivative."""
+    from numpy.polynomial import chebyshev
+
+    c = panels.rule.to_coefficients @ values
+    size = np.abs(c).max()
+    keep = np.flatnonzero(np.abs(c) > 1e-15 * size)
+    c = c[: keep[-1] + 1] if keep.size else c[:1]
+    candidates = [s0]
+    if c.size > 2:
+        roots = chebyshev.chebroots(chebyshev.chebder(c))
+        real = roots[np.abs(roots.imag) < 1e-7].real
+        candidates += real[(real > -1.0) & (real < 1.0)].tolist()
+    tried = chebyshev.chebval(np.array(candidates), c)
+    best = int(np.argmax(tried))
+    if tried[best] <= value0 * (1.0 + 1e-15 * np.sign(value0)):
+        return s0, value0
+    return candidates[best], float(tried[best])

@@ -1,0 +1,49 @@
+"""How steeply the faces of parts run along the member."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis
+
+Array = NDArray[np.float64]
+
+THIN = ("I", "tee", "channel", "box")
+"""Outlines whose flanges count along their slope; plates are rectangles that follow another part's outline."""
+
+
+def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
+    """Steepest lower or upper face of each part that has one above half a degree.
+
+    Returns
+    -------
+    list of (name, x, angle, counts)
+        Part, place [m], angle to the member's axis [rad], and whether a flange or plate of constant thickness
+        runs there, which a vertical cut overstates.
+    """
+    profile = analysis.profile
+    panels = profile.panels
+    if not any(np.ptp(profile.row[k]) for k in range(panels.count)):
+        return []
+    found = []
+    for index, part in enumerate(analysis.member.parts):
+        if part.cuts:
+            continue
+        best = (0.0, 0.0)
+        for face in ("bottom", "top"):
+            level = np.full(profile.rows, np.nan)
+            for g in profile.groups:
+                if index in g.placed.index:
+                    level[g.rows] = getattr(g.composition.boxes[g.placed.index.index(index)], face)
+            slope = (level[profile.row] @ panels.rule.differentiate.T) / panels.stretch
+            slope = np.where(np.isnan(slope), 0.0, np.abs(slope))
+            slope[panels.anchor != 0] = 0.0
+            k = np.unravel_index(int(np.argmax(slope)), slope.shape)
+            if slope[k] > best[0]:
+                best = (float(slope[k]), float(panels.x[k]))
+        angle = float(np.arctan(best[0]))
+        follows = part.shape.kind == "rectangle" and part.place.relation in ("under", "over")
+        if angle > np.radians(0.5):
+            found.append((part.name, best[1], angle, part.shape.kind in THIN or follows))
+    return found

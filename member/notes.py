@@ -1,0 +1,247 @@
+"""Notes the member raises by itself: short sentences with the place and the number. They change no result."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Sequence
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, ModuliKey
+from fishbelly.member.inclination import steepest_faces
+from fishbelly.member.note import Note
+from fishbelly.member.shortcuts import shortcuts
+from fishbelly.member.spans import spans
+from fishbelly.sections.touching import touching_groups
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
+    """All notes of a solved member, in the order of `NOTES`."""
+    found: list[Note] = []
+    for make in NOTES:
+        found += [n for n in make(analysis, combinations) if n not in found]
+    return found
+
+
+def _cases(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    member = analysis.member
+    if len(member.combinations) == 1 and member.combinations[0].name == "all" and len(member.cases) > 1:
+        yield Note(f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1")
+    used = {case for c in member.combinations for case, f in c.factors.items() if f}
+    unused = [c for c in member.cases if c not in used]
+    if unused:
+        yield Note(f"no combination uses case {', '.join(unused)}")
+
+
+def _overlaps(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    parts = analysis.member.parts
+    for group in analysis.profile.groups:
+        for i, j in group.composition.relations:
+            if j >= len(group.composition.outlines):
+                continue
+            a, b = (parts[group.placed.index[k]] for k in (i, j))
+            if group.composition.relations[i, j] == "inside" or _overlap_area(group.composition, i, j):
+                yield Note(f"{b.name} displaces {a.name} where they overlap")
+
+
+def _overlap_area(section: Any, i: int, j: int) -> bool:
+    """Whether two outlines share area at some station, or only come close."""
+    from fishbelly.sections.composition import Composition
+
+    pair = Composition((section.outlines[i], section.outlines[j]))
+    lost = pair.gross.area[0] - pair.moments.area[0]
+    return bool(np.any(lost > 1e-9 * pair.gross.area[0]))
+
+
+def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    """Parts that touch without a joint, or do not touch, act together: EI with nothing joined beside it."""
+    worst: tuple[float, float, float, tuple[str, ...], bool] | None = None
+    short = analysis.moduli(ModuliKey())
+    for group in analysis.profile.groups:
+        section = group.composition
+        if len(section.outlines) < 2:
+            continue
+        names = tuple(analysis.member.parts[i].name for i in group.placed.index)
+        together = group.stiffness(short).EI_y
+        own = (group.modulus(short.E) * section.moments.zz).sum(axis=0)
+        k = int(np.argmax(together / np.where(own > 0.0, own, np.inf)))
+        joined = len(touching_groups(section.outlines, k)) == 1
+        if worst is None or together[k] / own[k] > worst[1] / worst[2]:
+            worst = (float(group.placed.x[k]), float(together[k]), float(own[k]), names, joined)
+    if worst is not None and worst[1] > worst[2] * (1.0 + 1e-9):
+        at, together_k, own_k, names, joined = worst
+        how = "are taken to act together, rigidly joined" if joined else "do not all touch, yet are taken to act together"
+        yield Note(
+            f"{_listed(names)} {how}: EI {{EI}} at x = {{at}}, {{own}} with nothing joined",
+            {"EI": (together_k, "bending stiffness"), "own": (own_k, "bending stiffness"), "at": (at, "position")},
+        )
+
+
+def _listed(names: Sequence[str]) -> str:
+    shown = list(names) if len(names) <= 4 else [*names[:3], f"{len(names) - 3} more parts"]
+    return ", ".join(shown[:-1]) + " and " + shown[-1]
+
+
+def _moduli_apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    used = {p.material for p in analysis.member.parts if p.material}
+    stiff = sorted((analysis.member.material(n).E, n) for n in used)
+    if stiff and stiff[-1][0] > 25.0 * stiff[0][0]:
+        ratio = stiff[-1][0] / stiff[0][0]
+        yield Note(f"E of {stiff[-1][1]} is {ratio:.0f} times that of {stiff[0][1]}: full composite action wants stiff joints")
+
+
+def _lasting(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    member = analysis.member
+    if any(share for c in member.combinations for share in c.sustained.values()):
+        return
+    for name in dict.fromkeys(p.material for p in member.parts if p.material):
+        material = member.material(name)
+        if material.creep:
+            yield Note(f"{name} creeps, and is used with its short-term modulus alone (no combination has a sustained share)")
+
+
+def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    """Fibres over yield, and concrete in tension above its cracking stress."""
+    member = analysis.member
+    for c in combinations:
+        for s in c["stress"]:
+            material = member.material(member.part(s["part"]).material or "")
+            peaks = [p for p in (s["max"], s["min"]) if p is not None]
+            if material.yield_strength is not None and peaks:
+                p = max(peaks, key=lambda p: abs(p["value"]))
+                if abs(p["value"]) > material.yield_strength:
+                    yield Note(
+                        f"{s['part']}: stress {{found}} at x = {{at}} is over yield {{limit}} in {c['name']}: "
+                        "the elastic result no longer holds there",
+                        {
+                            "found": (p["value"], "stress"),
+                            "at": (p["at"], "position"),
+                            "limit": (material.yield_strength, "stress"),
+                        },
+                    )
+            top = s["max"]
+            if material.cracking is not None and top is not None and top["value"] > material.cracking:
+                yield Note(
+                    f"{s['part']}: tension {{found}} at x = {{at}} is above the cracking stress {{limit}} in {c['name']}, "
+                    "and is counted as uncracked",
+                    {
+                        "found": (top["value"], "stress"),
+                        "at": (top["at"], "position"),
+                        "limit": (material.cracking, "stress"),
+                    },
+                )
+
+
+def _inclined(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    for name, at, angle, counts in steepest_faces(analysis):
+        if counts:
+            over = 1.0 / np.cos(angle) ** 3 - 1.0
+            if over > 5e-4:
+                yield Note(
+                    f"{name} is inclined by {{angle}} at x = {{at}} and counts as a vertical cut shows it, "
+                    f"which overstates what it carries by {100 * over:.1f} %",
+                    {"angle": (angle, "angle"), "at": (at, "position")},
+                )
+        if angle > np.radians(12.5):
+            yield Note(
+                f"{name} tapers by {{angle}} at x = {{at}}: beam theory is an estimate above about 10 to 15 degrees",
+                {"angle": (angle, "angle"), "at": (at, "position")},
+            )
+
+
+def _deep(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    member = analysis.member
+    depth = 0.0
+    for group in analysis.profile.groups:
+        low, high = group.composition.extent
+        depth = max(depth, float(np.nanmax(np.nanmax(high, axis=0) - np.nanmin(low, axis=0))))
+    shortest = min((s.length * (2.0 if s.overhang else 1.0) for s in spans(member)), default=member.length)
+    if depth > 0.1 * shortest:
+        shear = "shear deformation is included" if member.shear else "shear deformation is left out"
+        yield Note(
+            f"depth {{depth}} is more than a tenth of the shortest span {{span}}: beam theory is an estimate there; {shear}",
+            {"depth": (depth, "length"), "span": (shortest, "length")},
+        )
+
+
+def _thrust(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    holding = [s for s in analysis.member.supports if s.along > 0.0]
+    if len(holding) < 2:
+        return
+    for c in combinations:
+        top = max((s for s in c["supports"]), key=lambda s: abs(s["along"]))
+        if abs(top["along"]) > 0.0:
+            yield Note(
+                f"held along at {len(holding)} places: thrust is included, {{force}} at {top['name']} in {c['name']}",
+                {"force": (abs(top["along"]), "force")},
+            )
+
+
+def _cantilevers(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    if not any(s.overhang for s in spans(analysis.member)):
+        return
+    for limit in analysis.member.limits:
+        if limit.span_over is None:
+            continue
+        if limit.spans is not None and not any(isinstance(s, str) for s in limit.spans):
+            continue
+        if limit.cantilever_over is not None:
+            yield Note(f"limit {limit.name}: an overhang may sag its own length over {limit.cantilever_over:g}")
+        else:
+            yield Note(f"limit {limit.name}: an overhang counts with twice its length, 2L/{limit.span_over:g}")
+
+
+def _openings(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    if any(g.over_opening for g in analysis.profile.groups):
+        yield Note(
+            "over an opening the pieces above and below act together in bending and share the shear angle; "
+            "bending of the pieces over the opening's length is not included"
+        )
+
+
+def _large(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    for c in combinations:
+        slopes = [abs(s["slope"]) for s in c["stations"] if s["slope"] is not None]
+        if slopes and max(slopes) > 0.1:
+            yield Note(
+                f"slope {{slope}} in {c['name']} is large for small-deflection theory (above about 0.1)",
+                {"slope": (max(slopes), "slope")},
+            )
+
+
+def _lifted(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    for c in combinations:
+        for name in c.get("lifted", ()):
+            yield Note(f"{name} lifts off in {c['name']}")
+
+
+def _verdict(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    differences = [c["cross_check"]["difference"] for c in combinations if c["cross_check"] is not None]
+    if differences:
+        yield Note(f"second method: largest difference {max(differences):.1e} of the largest deflection")
+    residuals = [c["cross_check"]["equilibrium"] for c in combinations if c["cross_check"] is not None]
+    if residuals:
+        yield Note(f"reactions against loads: residual {max(residuals):.1e} of the loads")
+
+
+NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
+    _cases,
+    _overlaps,
+    _apart,
+    _moduli_apart,
+    _lasting,
+    _stressed,
+    _inclined,
+    _deep,
+    _thrust,
+    _cantilevers,
+    _openings,
+    _large,
+    _lifted,
+    shortcuts,
+    _verdict,
+)
+"""What may be said, in order; a new note is one function and one line here."""

@@ -1,0 +1,396 @@
+"""Results of a member as data: what programs read and tables show, in SI units."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.apex import Apexes, judge
+from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
+from fishbelly.member.cross_check import cross_check
+from fishbelly.member.description import Member
+from fishbelly.member.extremes import Extreme, largest, values_at
+from fishbelly.member.moduli import has_band
+from fishbelly.member.places import default_places, force_jumps, two_sided
+from fishbelly.member.spans import spans
+from fishbelly.member.stresses import Loading, PartStress, loadings, part_stresses
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+NEGLIGIBLE = 1e-9
+"""A largest value below this share of the largest of its kind does not exist."""
+
+
+@dataclass(frozen=True, eq=False)
+class Pieces:
+    """Fields of a combination by piece: everything but the patterns first, then each pattern; (J + 1, K, n).
+
+    `M`: moment about the centroid; `M_datum`: about the datum line; `rotation` and `deflection` have a leading
+    axis of planes.
+    """
+
+    N: Array
+    V: Array
+    M: Array
+    M_datum: Array
+    rotation: Array
+    shear: Array
+    deflection: Array
+    reactions: Array
+
+
+def pieces(analysis: Analysis, loading: Sequence[Loading]) -> Pieces:
+    """Sum the shares of a combination, piece by piece."""
+    frame = analysis.frame
+
+    def total(name: str) -> Array:
+        return np.asarray(sum(getattr(share.response, name) for share in loading))
+
+    N, V, M = total("N"), total("V"), total("M")
+    return Pieces(
+        N,
+        V[0],
+        M[0] + N * frame.centre[0],
+        M[0] - N * frame.line[0],
+        total("rotation"),
+        total("shear"),
+        total("deflection"),
+        total("reactions"),
+    )
+
+
+def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
+    """Everything `fishbelly deflect` tells.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    at : iterable of float, optional
+        Places to list instead of the default ones [m].
+
+    Returns
+    -------
+    dict
+        As the contract of results has it, SI units.
+
+    Raises
+    ------
+    CannotCompute
+        When the numbers cannot be had.
+    """
+    wanted = None if at is None else [float(x) for x in at]
+    analysis = Analysis.of(member, wanted or ())
+    combinations = [_combination(analysis, c, wanted) for c in map(analysis.combine, member.combinations)]
+    from fishbelly.member.notes import notes
+
+    return {
+        "title": member.title,
+        "units": "SI: m, N, Pa, rad, kg",
+        "length": member.length,
+        "notes": notes(analysis, combinations),
+        "combinations": combinations,
+        "stages": [
+            {
+                "name": "all",
+                "cases": list(member.cases),
+                "combinations": [
+                    {key: c[key] for key in ("name", "deflection", "stress")} for c in combinations
+                ],
+            }
+        ],
+    }
+
+
+def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | None) -> Data:
+    loading = loadings(analysis, combined)
+    p = pieces(analysis, loading)
+    apexes = judge(analysis.profile.panels, combined.total)
+    stresses = part_stresses(analysis, loading)
+    checks = _checks(analysis, combined, p, stresses)
+    data: Data = {
+        "name": combined.combination.name,
+        "for": combined.combination.purpose,
+        "deflection": deflections(analysis, combined, p),
+        "moment": _moments(analysis, p),
+        "shear": _shears(analysis, p),
+        "supports": _supports(analysis, combined, p),
+        "ends": _ends(analysis, p, apexes),
+        "spans": _spans(analysis, p),
+        "checks": [_check(c) for c in checks],
+        "stress": [_stress(s) for s in stresses],
+        "joints": [],
+    }
+    data["cross_check"] = cross_check(analysis, combined, data["deflection"])
+    stations = _stations(analysis, p, apexes, wanted)
+    data["stations"] = stations
+    if combined.patterns:
+        data["envelope"] = _envelope(analysis, p, stations)
+    if combined.lifted:
+        data["lifted"] = sorted(combined.lifted)
+    if has_band(analysis.member):
+        _add_band(analysis, combined, data)
+    return data
+
+
+def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
+    """Largest deflections down, up and across."""
+    panels = analysis.profile.panels
+    down, up = largest(panels, p.deflection[0]), largest(panels, -p.deflection[0])
+    aside = [largest(panels, s * p.deflection[1]) for s in (1.0, -1.0)]
+    across = max(aside, key=lambda e: e.value)
+    sign = 1.0 if across is aside[0] else -1.0
+    size = max(abs(down.value), abs(up.value), abs(across.value))
+    return {
+        "down": _shear_part(analysis, combined, down) if down.value > NEGLIGIBLE * size else None,
+        "up": {"value": up.value, "at": up.at} if up.value > NEGLIGIBLE * size else None,
+        "across": {"value": sign * across.value, "at": across.at} if across.value > NEGLIGIBLE * size else None,
+    }
+
+
+def _shear_part(analysis: Analysis, combined: Combined, e: Extreme) -> Data:
+    """Largest deflection down with the part that shear deformation has in it."""
+    if not analysis.member.shear:
+        return {"value": e.value, "at": e.at, "shear_part": 0.0}
+    off = np.zeros(len(analysis.atoms), dtype=bool)
+    for mask, on in zip(combined.patterns, e.on, strict=True):
+        if not on:
+            off |= mask
+    stiff = analysis.superposed(combined.shares, combined.lifted, shear=False, off=off)
+    side = "left" if e.at >= analysis.member.length else "right"
+    bent = values_at(analysis.profile.panels, stiff.deflection[0], np.array([e.at]), side)
+    return {"value": e.value, "at": e.at, "shear_part": e.value - float(bent[0])}
+
+
+def _both(panels: Any, field: Array) -> tuple[Extreme, Extreme, float]:
+    high, low = largest(panels, field), largest(panels, -field)
+    return high, low, max(abs(high.value), abs(low.value))
+
+
+def _moments(analysis: Analysis, p: Pieces) -> Data:
+    high, low, size = _both(analysis.profile.panels, p.M)
+    return {
+        "sagging": {"value": high.value, "at": high.at} if high.value > NEGLIGIBLE * size else None,
+        "hogging": {"value": -low.value, "at": low.at} if low.value > NEGLIGIBLE * size else None,
+    }
+
+
+def _shears(analysis: Analysis, p: Pieces) -> Data:
+    high, low, _ = _both(analysis.profile.panels, p.V)
+    return {"max": {"value": high.value, "at": high.at}, "min": {"value": -low.value, "at": low.at}}
+
+
+def _supports(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
+    reactions = p.reactions.sum(axis=0)
+    order = sorted(range(len(analysis.member.supports)), key=lambda k: analysis.member.supports[k].at)
+    rows = []
+    for k in order:
+        s = analysis.member.supports[k]
+        down, along, couple, across, aside = (float(v) + 0.0 for v in reactions[k])
+        rows.append(
+            {
+                "name": s.name,
+                "at": s.at,
+                "vertical": -down + 0.0,
+                "along": along,
+                "moment": couple,
+                "across": across,
+                "moment_across": aside,
+                "lifted": s.name in combined.lifted,
+            }
+        )
+    return rows
+
+
+def _ends(analysis: Analysis, p: Pieces, apexes: Apexes) -> Data:
+    panels = analysis.profile.panels
+    result = {}
+    for name, x, side, none in (
+        ("left", 0.0, "right", 0 in apexes.right_of),
+        ("right", analysis.member.length, "left", panels.count in apexes.left_of),
+    ):
+        at = np.array([x])
+        w, rotation, angle = (
+            float(values_at(panels, f[0].sum(axis=0), at, side)[0]) for f in (p.deflection, p.rotation, p.shear)
+        )
+        turned = None if none else rotation
+        result[name] = {
+            "deflection": w,
+            "slope": None if none else rotation + angle,
+            "rotation": turned,
+        }
+    return result
+
+
+def _spans(analysis: Analysis, p: Pieces) -> list[Data]:
+    panels = analysis.profile.panels
+    rows = []
+    for span in spans(analysis.member):
+        field = relative(analysis, p.deflection[0], span)
+        first, stop = panels.border(span.start), panels.border(span.end)
+        both = [(s, largest(panels, s * field, first, stop)) for s in (1.0, -1.0)]
+        sign, found = max(both, key=lambda b: b[1].value)
+        value = sign * found.value
+        rows.append(
+            {
+                "from": span.start,
+                "to": span.end,
+                "span": span.label,
+                "deflection": value + 0.0,
+                "at": found.at,
+                "ratio": span.length / abs(value) if found.value > 1e-15 * span.length else None,
+            }
+        )
+    return rows
+
+
+def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequence[PartStress]) -> list[Check]:
+    fields = Fields(p.deflection, p.rotation[0:2])
+    found = []
+    for limit in analysis.member.limits:
+        if applies(limit, combined.combination):
+            check = check_limit(analysis, limit, fields)
+            if check is not None:
+                found.append(check)
+    strong = any(c.purpose == "strength" for c in analysis.member.combinations)
+    if not strong or combined.combination.purpose == "strength":
+        found += check_strengths(analysis, stresses)
+    return found
+
+
+def _check(c: Check) -> Data:
+    data: Data = {
+        "limit": c.limit,
+        "span": c.span,
+        "allowed": c.allowed,
+        "found": c.found,
+        "used": c.used,
+        "ok": c.ok,
+        "at": c.at,
+        "kind": c.kind,
+    }
+    if c.part is not None:
+        data |= {"part": c.part, "z": c.z}
+    return data
+
+
+def _stress(s: PartStress) -> Data:
+    data: Data = {"part": s.part}
+    for name, peak in (("max", s.highest), ("min", s.lowest)):
+        data[name] = None if peak is None else {"value": peak.value, "at": peak.at, "z": peak.z}
+    if s.shear is not None:
+        data["shear"] = {"value": s.shear[0], "at": s.shear[1]}
+    return data
+
+
+def _stations(analysis: Analysis, p: Pieces, apexes: Apexes, wanted: list[float] | None) -> list[Data]:
+    member, panels = analysis.member, analysis.profile.panels
+    named = {s.at: s.name for s in member.stations}
+    base = default_places(member) if wanted is None else np.array([*wanted, *(s.at for s in member.stations)])
+    x, sides = two_sided(np.unique(base), [*force_jumps(member), *_jumps(analysis, p)], member.length)
+    columns = _columns(analysis, p, x, sides)
+    tiny = 1e-9 * member.length
+    rows = []
+    for k, place in enumerate(x):
+        border = panels.border(float(place))
+        infinite = border in (apexes.right_of if sides[k] == "right" else apexes.left_of)
+        infinite &= abs(float(place) - _border_at(panels, border)) < tiny
+        row: Data = {"x": float(place), "name": next((n for at, n in named.items() if abs(at - place) < tiny), None)}
+        row |= {key: float(v[k]) + 0.0 for key, v in columns.items()}
+        if infinite:
+            row["slope"] = row["rotation"] = None
+        rows.append(row)
+    return rows
+
+
+def _border_at(panels: Any, border: int) -> float:
+    return float(panels.a[border] if border < panels.count else panels.b[-1])
+
+
+def _columns(analysis: Analysis, p: Pieces, x: Array, sides: Sequence[str]) -> dict[str, Array]:
+    panels = analysis.profile.panels
+    fields = {
+        "M": p.M.sum(axis=0),
+        "M_datum": p.M_datum.sum(axis=0),
+        "V": p.V.sum(axis=0),
+        "N": p.N.sum(axis=0),
+        "slope": (p.rotation[0] + p.shear[0]).sum(axis=0),
+        "rotation": p.rotation[0].sum(axis=0),
+        "deflection": p.deflection[0].sum(axis=0),
+        "across": p.deflection[1].sum(axis=0),
+    }
+    stack = np.stack(list(fields.values()))
+    left, right = (values_at(panels, stack, x, side) for side in ("left", "right"))
+    chosen = np.where(np.array(sides) == "left", left, right)
+    return dict(zip(fields, chosen, strict=True))
+
+
+def _jumps(analysis: Analysis, p: Pieces) -> list[float]:
+    """Borders at which any listed value jumps [m]."""
+    panels = analysis.profile.panels
+    found: set[int] = set()
+    fields = (p.M, p.M_datum, p.V, p.N, p.rotation[0] + p.shear[0], p.rotation[0], p.deflection[0])
+    for field in fields:
+        total = field.sum(axis=0)
+        left, right = panels.ends(total)
+        size = np.abs(total).max()
+        found.update(np.flatnonzero(np.abs(left[1:] - right[:-1]) > 1e-9 * size) + 1)
+    return [float(panels.a[k]) for k in sorted(found)]
+
+
+def _envelope(analysis: Analysis, p: Pieces, stations: Sequence[Data]) -> Data:
+    """Smallest and largest value at every station and support over all arrangements of pattern loads."""
+    x = np.array([s["x"] for s in stations])
+    sides = ["left" if k + 1 < x.size and x[k + 1] == x[k] else "right" for k in range(x.size)]
+    sides[-1] = "left"
+    panels = analysis.profile.panels
+    stack = {
+        "M": p.M,
+        "V": p.V,
+        "N": p.N,
+        "deflection": p.deflection[0],
+        "across": p.deflection[1],
+        "rotation": p.rotation[0],
+    }
+    columns = {}
+    for name, field in stack.items():
+        left, right = (values_at(panels, field, x, side) for side in ("left", "right"))
+        v = np.where(np.array(sides) == "left", left, right)
+        columns[name] = (v[0] + np.minimum(v[1:], 0.0).sum(axis=0), v[0] + np.maximum(v[1:], 0.0).sum(axis=0))
+    rows = [
+        {"x": float(x[k]), **{n: {"min": float(lo[k]), "max": float(hi[k])} for n, (lo, hi) in columns.items()}}
+        for k in range(x.size)
+    ]
+    order = sorted(range(len(analysis.member.supports)), key=lambda k: analysis.member.supports[k].at)
+    supports = []
+    for k in order:
+        row: Data = {"name": analysis.member.supports[k].name, "at": analysis.member.supports[k].at}
+        for name, column, sign in (("vertical", 0, -1.0), ("along", 1, 1.0), ("moment", 2, 1.0), ("across", 3, 1.0)):
+            v = sign * p.reactions[:, k, column]
+            row[name] = {
+                "min": float(v[0] + np.minimum(v[1:], 0.0).sum()),
+                "max": float(v[0] + np.maximum(v[1:], 0.0).sum()),
+            }
+        supports.append(row)
+    return {"stations": rows, "supports": supports}
+
+
+def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
+    """Add what the low and the high end of every material's band of E give, all low or all high together."""
+    bands = {}
+    for band in ("low", "high"):
+        other = analysis.combine(combined.combination, band)
+        loading = loadings(analysis, other)
+        p = pieces(analysis, loading)
+        bands[band] = (deflections(analysis, other, p), _checks(analysis, other, p, part_stresses(analysis, loading)))
+    for name, entry in data["deflection"].items():
+        if entry is not None:
+            entry["band"] = {b: (v[0][name] or {}).get("value") for b, v in bands.items()}
+    for k, entry in enumerate(data["checks"]):
+        entry["band"] = {b: v[1][k].found for b, v in bands.items()}

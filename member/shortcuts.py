@@ -1,0 +1,52 @@
+"""What common shortcuts would have given: one line, once."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from typing import Any
+
+import numpy as np
+
+from fishbelly.member.analysis import Analysis, ModuliKey
+from fishbelly.member.note import Note
+from fishbelly.member.nodes import layout
+from fishbelly.member.response import respond
+from fishbelly.member.section_law import ElasticLaw
+
+
+def shortcuts(analysis: Analysis, combinations: Sequence[dict[str, Any]]) -> Iterator[Any]:
+    """Deflection down of the first combination with the softest, the stiffest and the mean section throughout."""
+    stiffness = analysis.profile.stiffness(analysis.moduli(ModuliKey()))
+    row, panels = analysis.profile.row, analysis.profile.panels
+    EI = stiffness.EI_y[row]
+    exact = combinations[0]["deflection"]["down"]
+    if exact is None or EI.max() < EI.min() * (1.0 + 1e-9):
+        return
+    length = float((panels.stretch @ panels.rule.weights).sum())
+    mean = float(((EI * panels.stretch) @ panels.rule.weights).sum()) / length
+    found = []
+    for name, value in (("softest", float(EI.min())), ("mean", mean), ("stiffest", float(EI.max()))):
+        w = _prismatic(analysis, value)
+        if w is not None:
+            found.append((name, w))
+    if found:
+        parts = ", ".join(f"{{{name}}} with the {name} EI throughout" for name, _ in found)
+        yield Note(
+            f"common shortcuts, bending alone, {combinations[0]['name']}: {parts}; found here {{exact}}",
+            {**{n: (w, "deflection") for n, w in found}, "exact": (exact["value"], "deflection")},
+        )
+
+
+def _prismatic(analysis: Analysis, EI: float) -> float | None:
+    """Largest deflection down with one EI throughout; None where it cannot be had."""
+    shape = analysis.profile.row.shape
+    full = np.full(shape, EI)
+    straight = np.zeros((2, *shape))
+    law = ElasticLaw(np.full(shape, EI * 1e3), straight, np.stack((1.0 / full, 1.0 / full, 0.0 * full)), straight)
+    shares = analysis.shares(analysis.member.combinations[0])
+    free = [(np.zeros(shape), np.zeros((2, *shape)))] * len(analysis.atoms)
+    r = respond(analysis.frame, layout(analysis.frame), law, analysis.atoms, analysis.loads, free, 1)
+    total = r.combined(np.asarray(sum(s.factors for s in shares)))
+    w = float(total.deflection[0].max())
+    return w if np.isfinite(w) and w > 0.0 else None
+

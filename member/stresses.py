@@ -1,0 +1,243 @@
+"""Stress in every part at its extreme fibres along the member, and the force a part carries."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.extremes import largest
+from fishbelly.member.free_strain import FreePlane, free_plane
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.profile import Group
+from fishbelly.member.response import Response
+from fishbelly.sections.fibres import arc_data, fibres
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Loading:
+    """One share of a combination: its response, with an axis of pieces (base, then patterns), and its moduli."""
+
+    response: Response
+    moduli: Moduli
+    factors: Array
+
+
+@dataclass(frozen=True)
+class StressPeak:
+    """A largest or smallest stress [Pa], where along the member [m] and at which height [m]."""
+
+    value: float
+    at: float
+    z: float
+    y: float
+
+
+@dataclass(frozen=True)
+class PartStress:
+    """Stress of one part over the member; None where the part has no stress of that sign to speak of.
+
+    `highest`: largest stress, tension positive; `lowest`: smallest; `shear`: largest shear stress by level
+    cuts, a value without sign and its place [Pa], [m].
+    """
+
+    part: str
+    highest: StressPeak | None
+    lowest: StressPeak | None
+    shear: tuple[float, float] | None = None
+
+
+def loadings(analysis: Analysis, combined: Combined) -> tuple[Loading, ...]:
+    """Responses of a combination by share; pieces are everything but the patterns, then each pattern."""
+    patterned = np.zeros(len(analysis.atoms), dtype=bool)
+    for mask in combined.patterns:
+        patterned |= mask
+    masks = [~patterned, *combined.patterns]
+    found = []
+    for share in combined.shares:
+        r = analysis.responses(share.key, combined.lifted)
+        factors = np.array([np.where(m, share.factors, 0.0) for m in masks])
+        pieces = [r.combined(f) for f in factors]
+        single = ("N", "axial", "reactions")
+        stacked = Response(
+            *(
+                np.stack([getattr(p, f) for p in pieces], axis=0 if f in single else 1)
+                for f in Response.__dataclass_fields__
+            )
+        )
+        found.append(Loading(stacked, analysis.moduli(share.key), factors))
+    return tuple(found)
+
+
+def part_stresses(analysis: Analysis, loading: Sequence[Loading]) -> tuple[PartStress, ...]:
+    """Extreme stresses of every part that adds material.
+
+    Parameters
+    ----------
+    analysis : Analysis
+        The member.
+    loading : sequence of Loading
+        Shares of a combination.
+
+    Returns
+    -------
+    tuple of PartStress
+        In the member's order of parts.
+    """
+    member = analysis.member
+    found = []
+    with_shear = member.shear
+    for index, part in enumerate(member.parts):
+        if part.cuts or part.material is None:
+            continue
+        stress, y, z = _fields(analysis, loading, index)
+        if stress is None:
+            found.append(PartStress(part.name, None, None))
+            continue
+        high = _peak(analysis, stress, y, z, 1.0)
+        low = _peak(analysis, stress, y, z, -1.0)
+        shear = _shear_peak(analysis, loading, index) if with_shear else None
+        found.append(PartStress(part.name, high, low, shear))
+    return tuple(found)
+
+
+def _fields(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple[Array | None, Array, Array]:
+    """Stress of a part at its candidate fibres: (J+1, C, K, n), NaN where it is not; and y, z (C, K, n)."""
+    profile = analysis.profile
+    groups = [g for g in profile.groups if index in g.placed.index]
+    if not groups:
+        return None, np.empty(0), np.empty(0)
+    planar = analysis.planes == 1
+    points = {id(g): fibres(g.composition, g.placed.index.index(index), planar) for g in groups}
+    count = max(p[0].shape[0] for p in points.values())
+    y, z = np.full((count, profile.rows), np.nan), np.full((count, profile.rows), np.nan)
+    for g in groups:
+        py, pz = points[id(g)]
+        y[: py.shape[0], g.rows], z[: pz.shape[0], g.rows] = py, pz
+    fy, fz = y[:, profile.row], z[:, profile.row]
+    if not planar:
+        ty, tz = _tangent_points(analysis, loading, index, groups)
+        fy, fz = np.concatenate((fy, ty)), np.concatenate((fz, tz))
+    return _stress_at(analysis, loading, index, groups, fy, fz), fy, fz
+
+
+def _tangent_points(
+    analysis: Analysis, loading: Sequence[Loading], index: int, groups: list[Group]
+) -> tuple[Array, Array]:
+    """Points of a part's arcs where the strain plane of the whole combination is steepest, (2 E, K, n)."""
+    profile = analysis.profile
+    data = [arc_data(g.composition, g.placed.index.index(index)) for g in groups]
+    count = max(d.shape[1] for d in data)
+    arcs = np.full((5, count, profile.rows), np.nan)
+    for g, d in zip(groups, data, strict=True):
+        arcs[:, : d.shape[1], g.rows] = d
+    y_c, z_c, r, start, turn = arcs[:, :, profile.row]
+    up = np.zeros(profile.row.shape)
+    right = np.zeros(profile.row.shape)
+    for share in loading:
+        up = up - share.response.curvature[0].sum(axis=0)
+        right = right + share.response.curvature[1].sum(axis=0)
+        free = _free_strain(analysis, share.factors.sum(axis=0), index, groups)
+        if free is not None:
+            up, right = up - free[1, profile.row], right - free[2, profile.row]
+    y, z = [], []
+    for sign in (1.0, -1.0):
+        angle = np.arctan2(sign * up, sign * right)
+        passed = np.mod(angle - start, 2.0 * np.pi)
+        angle = np.where(passed <= turn, angle, start)
+        y.append(y_c + r * np.cos(angle))
+        z.append(z_c + r * np.sin(angle))
+    return np.concatenate(y), np.concatenate(z)
+
+
+def _stress_at(
+    analysis: Analysis, loading: Sequence[Loading], index: int, groups: list[Group], fy: Array, fz: Array
+) -> Array:
+    """Stress of a part at fibres (C, K, n), for every piece: shape (J+1, C, K, n)."""
+    profile, planar = analysis.profile, analysis.planes == 1
+    pieces = loading[0].factors.shape[0]
+    total = np.zeros((pieces, *fy.shape))
+    line = analysis.frame.line
+    for share in loading:
+        E = np.full(profile.rows, np.nan)
+        for g in groups:
+            E[g.rows] = g.modulus(share.moduli.E)[g.placed.index.index(index)]
+        r = share.response
+        for piece in range(pieces):
+            strain = r.axial[piece] - r.curvature[0, piece] * (fz - line[0])
+            if not planar:
+                strain = strain - r.curvature[1, piece] * (-fy - line[1])
+            free = _free_strain(analysis, share.factors[piece], index, groups)
+            if free is not None:
+                e, a, b = free[:, profile.row]
+                strain = strain - (e + a * fz + b * fy)
+            total[piece] += E[profile.row] * strain
+    return total
+
+
+def _free_strain(analysis: Analysis, factors: Array, index: int, groups: list[Group]) -> Array | None:
+    """Free strain plane of one part at the sampled places, shape (3, R), or None."""
+    profile = analysis.profile
+    total: Array | None = None
+    for factor, actions in zip(factors, analysis.loads, strict=True):
+        if factor == 0.0:
+            continue
+        for load in actions.free:
+            for g in groups:
+                plane: FreePlane | None = free_plane(profile, load, g, g.placed.x, analysis.frame.short)
+                if plane is None:
+                    continue
+                if total is None:
+                    total = np.zeros((3, profile.rows))
+                k = g.placed.index.index(index)
+                total[:, g.rows] += factor * np.stack((plane.e[k], plane.a[k], plane.b[k]))
+    return total
+
+
+def _peak(analysis: Analysis, stress: Array, y: Array, z: Array, sign: float) -> StressPeak | None:
+    """Largest of sign times stress over fibres and places."""
+    panels = analysis.profile.panels
+    there = ~np.isnan(stress[0, :, :, 0])
+    best: StressPeak | None = None
+    rough = np.where(np.isnan(stress), -np.inf, sign * stress)
+    tops = rough[0].max(axis=-1) + np.where(np.isfinite(rough[1:]), np.maximum(rough[1:], 0.0), 0.0).max(axis=-1).sum(axis=0)
+    span = np.nanmax(np.abs(stress)) if np.any(there) else 0.0
+    for c in range(stress.shape[1]):
+        if not there[c].any() or tops[c].max() < tops.max() - 0.05 * span - 1e-300:
+            continue
+        field = np.where(np.isnan(stress[:, c]), 0.0, sign * stress[:, c])
+        for first, stop in _runs(there[c]):
+            found = largest(panels, field, first, stop)
+            if best is None or found.value > sign * best.value * (1.0 + 1e-13 * np.sign(sign * best.value)):
+                k = int(np.clip(panels.find(np.array([found.at]))[0], first, stop - 1))
+                basis = panels.rule.basis(panels.local(np.array([k]), np.array([found.at])))[0]
+                best = StressPeak(sign * found.value, found.at, float(basis @ z[c, k]), float(basis @ y[c, k]))
+    return best
+
+
+def _runs(there: NDArray[np.bool_]) -> list[tuple[int, int]]:
+    edges = np.flatnonzero(np.diff(np.concatenate(([0], there.astype(int), [0]))))
+    return [(int(a), int(b)) for a, b in zip(edges[::2], edges[1::2], strict=True)]
+
+
+def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple[float, float] | None:
+    """Largest shear stress of a part by level cuts, vertical plane."""
+    profile = analysis.profile
+    groups = [g for g in profile.groups if index in g.placed.index]
+    total = None
+    for share in loading:
+        peak = np.zeros(profile.rows)
+        for g in groups:
+            peak[g.rows] = g.shear(share.moduli).peak[g.placed.index.index(index)]
+        field = share.response.V[0] * peak[profile.row]
+        total = field if total is None else total + field
+    if total is None:
+        return None
+    both = [largest(profile.panels, s * total) for s in (1.0, -1.0)]
+    top = max(both, key=lambda e: e.value)
+    return top.value, top.at
