@@ -1,0 +1,313 @@
+"""The command line: reads what was typed, calls, prints, and turns every error into words and a status.
+
+Statuses: 0 done and every limit met; 1 done and a limit is not met; 2 the command line or the job is wrong; 3 the
+numbers cannot be had. Everything heavy is imported inside the commands.
+"""
+
+from __future__ import annotations
+
+import os
+import sys
+from collections.abc import Callable, Sequence
+from typing import Any
+
+import click
+
+DONE, NOT_MET, WRONG, CANNOT = 0, 1, 2, 3
+
+NOT_BUILT = {
+    "steps": "the fewest prismatic pieces that stand for the member in a frame model",
+    "constants": "fixed-end moments, stiffnesses and carry-over factors",
+    "travel": "influence lines and envelopes of travelling loads",
+    "buckle": "critical load factors",
+    "vibrate": "natural frequencies",
+    "proportion": "the value of a number of the job that just meets the limits",
+    "schedule": "one job over a list of members",
+    "compare": "several jobs side by side",
+    "sheet": "the calculation sheet",
+    "catalog": "materials, rolled sections and limits with their sources",
+}
+"""Commands that are not built yet; each is refused by its name."""
+
+
+class _Group(click.Group):
+    """The group of commands: names those that are not built yet, suggests the nearest one otherwise."""
+
+    def resolve_command(self, ctx: click.Context, args: list[str]) -> Any:
+        name = args[0] if args else ""
+        if name in NOT_BUILT:
+            raise click.UsageError(f'command "{name}" ({NOT_BUILT[name]}) is not built yet in this version')
+        if name and self.get_command(ctx, name) is None and not name.startswith("-"):
+            from fishbelly.cli.faults import suggest
+
+            hint = suggest(name, [*self.commands, *NOT_BUILT])
+            raise click.UsageError(f'unknown command "{name}"' + (f"; {hint}" if hint else ""))
+        return super().resolve_command(ctx, args)
+
+
+def _cautions(ctx: click.Context, _: click.Parameter, value: bool) -> None:
+    if value and not ctx.resilient_parsing:
+        from fishbelly.cli.cautions import FULL
+
+        click.echo(FULL)
+        ctx.exit()
+
+
+def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
+    if value and not ctx.resilient_parsing:
+        from fishbelly import __version__
+
+        click.echo(f"fishbelly {__version__}")
+        ctx.exit()
+
+
+@click.group(cls=_Group, context_settings={"help_option_names": ["-h", "--help"]})
+@click.option("--cautions", is_flag=True, is_eager=True, expose_value=False, callback=_cautions, help="What results do not cover.")
+@click.option("--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version.")
+def cli() -> None:
+    """Bending stiffness EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
+
+    A job is one TOML file: parts with shape, material and place, supports, loads, limits. Begin with
+    `fishbelly start`, which lists worked jobs, then
+
+        fishbelly start flitch-beam > my-beam.toml
+        fishbelly deflect my-beam.toml
+    """
+
+
+def _refused(option: str) -> Callable[[click.Context, click.Parameter, Any], None]:
+    def refuse(ctx: click.Context, param: click.Parameter, value: Any) -> None:
+        if value:
+            raise click.UsageError(f'option "{option}" is not built yet in this version')
+
+    return refuse
+
+
+def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
+    """Options that every command with results shares."""
+    options = (
+        click.option("--json", "as_json", is_flag=True, help="Print one JSON object in SI units instead of the table."),
+        click.option("-o", "--output", "outputs", multiple=True, metavar="FILE", help="Also write FILE: .csv, .json or .xlsx (repeatable)."),
+        click.option("--force", is_flag=True, help="Overwrite an existing file."),
+        click.option("--stage", expose_value=False, hidden=True, callback=_refused("--stage")),
+    )
+    for option in reversed(options):
+        command = option(command)
+    return command
+
+
+@cli.command()
+@click.argument("name", required=False)
+def start(name: str | None) -> None:
+    """List the worked jobs, or print one to edit.
+
+    Example: fishbelly start flitch-beam > my-beam.toml
+    """
+    from fishbelly.catalog.worked_jobs import worked_jobs
+
+    jobs = {j.name: j for j in worked_jobs()}
+    if name is None:
+        width = max(map(len, jobs))
+        click.echo("Worked jobs; `fishbelly start NAME` prints one to edit:\n")
+        for job in jobs.values():
+            click.echo(_wrapped(f"  {job.name:<{width}}  ", job.shows))
+        return
+    if name not in jobs:
+        from fishbelly.cli.faults import suggest
+
+        hint = suggest(name, list(jobs))
+        raise click.UsageError(f'no worked job "{name}"' + (f"; {hint}" if hint else ""))
+    click.echo(jobs[name].text, nl=False)
+
+
+def _wrapped(head: str, text: str) -> str:
+    import textwrap
+
+    return textwrap.fill(text, 80, initial_indent=head, subsequent_indent=" " * len(head))
+
+
+@cli.command()
+@click.argument("job")
+@click.option("--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".')
+@click.option("--side", type=click.Choice(["left", "right"]), default="right", show_default=True, help="Side of a break.")
+@click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
+@_outputs
+def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+    """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
+
+    Example: fishbelly section my-beam.toml --at "1.2 m"
+    """
+    read, places = _read(job, [at], outputs, force)
+    from fishbelly.member.section_results import section_at
+
+    if to is not None and to not in [m.name for m in read.member.materials]:
+        from fishbelly.cli.faults import suggest
+
+        hint = suggest(to, [m.name for m in read.member.materials])
+        raise click.UsageError(f'--to: no part is of material "{to}"' + (f"; {hint}" if hint else ""))
+    data = section_at(read.member, places[0], side, to)
+    return _finish("section", data, read, as_json, outputs, force, listed=True)
+
+
+@cli.command()
+@click.argument("job")
+@click.option("--at", "at", multiple=True, metavar="X", help='Place to list instead of the default ones, such as "1.2 m" (repeatable).')
+@_outputs
+def stiffness(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+    """Show the EI(x) table: stiffness, centroid and mass along the member, every break shown.
+
+    Example: fishbelly stiffness my-beam.toml -o ei.csv
+    """
+    read, places = _read(job, at, outputs, force)
+    from fishbelly.member.section_results import stiffness as table
+
+    data = table(read.member, places or None)
+    return _finish("stiffness", data, read, as_json, outputs, force, listed=bool(places))
+
+
+@cli.command()
+@click.argument("job")
+@click.option("--at", "at", multiple=True, metavar="X", help='Place to list instead of the default ones, such as "1.2 m" (repeatable).')
+@click.option("--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order"))
+@_outputs
+def deflect(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+    """Show reactions, moments, deflections, stresses and limits.
+
+    Exit status 1 when a limit is not met. Example: fishbelly deflect my-beam.toml -o result.xlsx
+    """
+    read, places = _read(job, at, outputs, force)
+    from fishbelly.cli.format_quantity import format_value
+    from fishbelly.member.results import deflect as solve
+
+    data = solve(read.member, places or None)
+    said = [note.say(lambda value, what: format_value(value, what, read.style)) for note in data["notes"]]
+    data["notes"] = [*read.warnings, *said]
+    status = _finish("deflect", data, read, as_json, outputs, force, listed=bool(places))
+    met = all(check["ok"] for c in data["combinations"] for check in c["checks"])
+    return status if met else NOT_MET
+
+
+def _read(job: str, at: Sequence[str], outputs: Sequence[str], force: bool) -> tuple[Any, list[float]]:
+    """Read the job and the places, and see that every file can be written, before anything is computed."""
+    from fishbelly.cli.job_file import read_job
+
+    if outputs:
+        from fishbelly.cli.files import check_targets
+
+        check_targets(outputs, force)
+    read = read_job(job)
+    return read, [_place(text, read.member.length) for text in at]
+
+
+def _place(text: str, length: float) -> float:
+    from fishbelly.cli.format_quantity import format_value
+    from fishbelly.cli.quantities import Kind, QuantityError, parse_quantity
+
+    try:
+        x = parse_quantity(text, Kind.LENGTH)
+    except QuantityError as error:
+        raise click.UsageError(f"--at: {error}") from None
+    if not -1e-9 * length <= x <= length * (1.0 + 1e-9):
+        limit = format_value(length, "length", "metric")
+        raise click.UsageError(f'--at: expected a place on the member, 0 to {limit}, got "{text}"')
+    return min(max(x, 0.0), length)
+
+
+def _finish(
+    command: str, data: dict[str, Any], job: Any, as_json: bool, outputs: Sequence[str], force: bool, listed: bool
+) -> int:
+    """Print the table or the JSON object, say the notes, write the files."""
+    if outputs:
+        from fishbelly.cli import files
+
+        for path in outputs:
+            files.write(path, command, data, job, force)
+    if as_json:
+        import json
+
+        click.echo(json.dumps(data, allow_nan=False, ensure_ascii=False))
+    else:
+        from fishbelly.cli import tables
+
+        show = {"section": tables.section_table, "stiffness": tables.stiffness_table}
+        text = show[command](data, job.style) if command == "section" else _table(command, data, job.style, listed)
+        click.echo(text.rstrip("\n"))
+    if not (sys.stdout.isatty() and sys.stderr.isatty() and not as_json):
+        for note in data.get("notes", ()):
+            click.echo(f"note: {note}", err=True)
+    return DONE
+
+
+def _table(command: str, data: dict[str, Any], style: str, listed: bool) -> str:
+    from fishbelly.cli import tables
+
+    show = tables.stiffness_table if command == "stiffness" else tables.deflect_table
+    return show(data, style, listed)
+
+
+def main(arguments: Sequence[str] | None = None) -> None:
+    """Run the command line and leave with its status."""
+    sys.exit(run(arguments))
+
+
+def run(arguments: Sequence[str] | None = None) -> int:
+    """Run the command line; every error becomes words on stderr and a status.
+
+    Parameters
+    ----------
+    arguments : sequence of str, optional
+        Default what was typed.
+
+    Returns
+    -------
+    int
+        Exit status.
+    """
+    try:
+        status = cli.main(args=None if arguments is None else list(arguments), prog_name="fishbelly", standalone_mode=False)
+        sys.stdout.flush()
+        return int(status or DONE)
+    except click.exceptions.Exit as error:
+        return int(error.exit_code)
+    except click.ClickException as error:
+        context = getattr(error, "ctx", None)
+        click.echo(f"fishbelly: {error.format_message()}", err=True)
+        if context is not None:
+            click.echo(f"see `{context.command_path} --help`", err=True)
+        return WRONG
+    except (click.Abort, KeyboardInterrupt):
+        click.echo("fishbelly: stopped", err=True)
+        return 130
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return DONE
+    except Exception as error:
+        return _caught(error)
+
+
+def _caught(error: Exception) -> int:
+    """Turn what the rooms raise into words; whatever is left falls into the last net."""
+    from fishbelly.cli.faults import JobFaults
+    from fishbelly.cli.files import FileFault
+    from fishbelly.member.faults import CannotCompute
+
+    if isinstance(error, JobFaults):
+        click.echo(str(error), err=True)
+        return WRONG
+    if isinstance(error, FileFault):
+        click.echo(f"fishbelly: {error}", err=True)
+        return WRONG
+    if isinstance(error, CannotCompute):
+        click.echo(f"fishbelly: {error}", err=True)
+        return CANNOT
+    if os.environ.get("FISHBELLY_TRACE"):
+        import traceback
+
+        traceback.print_exc()
+    click.echo(
+        f"fishbelly: stopped on something it did not expect ({type(error).__name__}: {error}).\n"
+        "Nothing was written. Please report this with the job file and the command; setting\n"
+        "FISHBELLY_TRACE=1 shows where it happened.",
+        err=True,
+    )
+    return CANNOT

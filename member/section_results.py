@@ -1,0 +1,191 @@
+"""The cross-section at one place, and the stiffness along the member, as data in SI units."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.description import Material, Member
+from fishbelly.member.geometry import Geometry
+from fishbelly.member.moduli import Moduli, moduli
+from fishbelly.member.places import default_places, two_sided
+from fishbelly.member.profile import Group, group_places
+from fishbelly.sections.stiffness import SectionStiffness, principal_axes
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+COLUMNS = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass")
+
+
+def section_at(member: Member, x: float, side: str = "right", to: str | None = None) -> Data:
+    """Everything `fishbelly section` tells about the cross-section at x.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    x : float
+        Place [m].
+    side : {"right", "left"}
+        Which side of a break.
+    to : str, optional
+        Material to which the section is transformed; default that of the first part there.
+
+    Returns
+    -------
+    dict
+        As the contract of results has it, SI units; moments and axes about the E-weighted centroid.
+    """
+    if x >= member.length * (1.0 - 1e-12):
+        side = "left"
+    elif x <= member.length * 1e-12:
+        side = "right"
+    group = group_places(Geometry(member), np.array([[x]]), np.array([x]), 0, side)[0]
+    short = moduli(member)
+    s = group.stiffness(short)
+    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "x": x, "side": side, "stage": "all"}
+    data |= {k: _number(getattr(s, k)[0]) for k in ("EA", "EI_y", "EI_z", "EI_yz")}
+    data |= {"GA_y": _shear(member, group, short, True), "GA_z": _shear(member, group, short, False)}
+    data |= {"y_c": _number(s.y_c[0]), "z_c": _number(s.z_c[0]), "mass": _mass(member, group)}
+    big, small, angle = principal_axes(s)
+    data["principal"] = {"EI_1": _number(big[0]), "EI_2": _number(small[0]), "angle": _number(angle[0])}
+    data["parts"] = _parts(member, group, s, short)
+    data["transformed"] = _transformed(member, group, s, to)
+    return data
+
+
+def _number(value: float) -> float | None:
+    return float(value) + 0.0 if np.isfinite(value) else None
+
+
+def _has_shear(member: Member, group: Group) -> bool:
+    parts = [member.parts[i] for i in group.placed.index]
+    return all(member.material(p.material or "").shear_modulus is not None for p in parts)
+
+
+def _shear(member: Member, group: Group, short: Moduli, across: bool) -> float | None:
+    return _number(group.shear(short, across).GA[0]) if _has_shear(member, group) else None
+
+
+def _densities(member: Member) -> Array | None:
+    materials = [member.material(p.material) if p.material else None for p in member.parts]
+    if any(m is not None and m.density is None for m in materials):
+        return None
+    return np.array([m.density if m is not None else 0.0 for m in materials], dtype=float)
+
+
+def _mass(member: Member, group: Group) -> float | None:
+    density = _densities(member)
+    if density is None:
+        return None
+    total = group.composition.mass_moments.times(density[list(group.placed.index)][:, None]).total()
+    return _number(total.area[0])
+
+
+def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli) -> list[Data]:
+    """Area, modulus, levels and stress coefficients of every part there."""
+    m = group.composition.moments
+    E = group.modulus(short.E)
+    low, high = group.composition.extent
+    rows = []
+    for k, i in enumerate(group.placed.index):
+        part = member.parts[i]
+        bottom, top = float(low[k, 0]), float(high[k, 0])
+        per_moment = [_number(-E[k, 0] * (z - s.z_c[0]) / s.EI_y[0]) for z in (top, bottom)]
+        rows.append(
+            {
+                "name": part.name,
+                "material": part.material,
+                "area": float(m.area[k, 0]),
+                "E": float(E[k, 0]),
+                "y": _number(m.y[k, 0]),
+                "z": _number(m.z[k, 0]),
+                "I_y": float(m.zz[k, 0]),
+                "I_z": float(m.yy[k, 0]),
+                "z_top": _number(top),
+                "z_bottom": _number(bottom),
+                "stress_per_moment": {"top": per_moment[0], "bottom": per_moment[1]},
+                "stress_per_force": _number(E[k, 0] / s.EA[0]),
+            }
+        )
+    return rows
+
+
+def _transformed(member: Member, group: Group, s: SectionStiffness, to: str | None) -> Data:
+    material: Material = member.material(to or member.parts[group.placed.index[0]].material or "")
+    low, high = group.composition.extent
+    top, bottom = float(np.nanmax(high)), float(np.nanmin(low))
+    I_y = s.EI_y[0] / material.E
+    ratios = {}
+    for i in group.placed.index:
+        name = member.parts[i].material or ""
+        ratios[name] = member.material(name).E / material.E
+    return {
+        "to": material.name,
+        "E": material.E,
+        "A": _number(s.EA[0] / material.E),
+        "I_y": _number(I_y),
+        "I_z": _number(s.EI_z[0] / material.E),
+        "W_top": _number(I_y / (top - s.z_c[0])),
+        "W_bottom": _number(I_y / (s.z_c[0] - bottom)),
+        "n": ratios,
+        "top": top,
+        "bottom": bottom,
+    }
+
+
+def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
+    """Stiffness along the member, as `fishbelly stiffness` lists it.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    at : iterable of float, optional
+        Places to list instead of an even 101 and every break [m].
+
+    Returns
+    -------
+    dict
+        Stations with values in SI units; two where anything jumps, the left one first.
+    """
+    places = default_places(member) if at is None else np.unique(np.fromiter(at, dtype=float))
+    every, sides = two_sided(places, places, member.length)
+    table = profile_at(member, every, sides)
+    keep = np.ones(every.size, dtype=bool)
+    for k in range(every.size - 1):
+        if every[k] == every[k + 1] and not _jumps(table[:, k], table[:, k + 1], table):
+            keep[k] = False
+    rows = [
+        {"x": float(every[k])} | {name: _number(v) for name, v in zip(COLUMNS, table[:, k], strict=True)}
+        for k in np.flatnonzero(keep)
+    ]
+    return {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all", "stations": rows}
+
+
+def _jumps(left: Array, right: Array, table: Array) -> bool:
+    size = np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1)
+    gap = np.abs(left - right)
+    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size) or np.any(np.isnan(left) != np.isnan(right)))
+
+
+def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
+    """Columns of `COLUMNS` at places, each seen from one side, shape (8, X); NaN where there is none."""
+    geometry, short, density = Geometry(member), moduli(member), _densities(member)
+    table = np.full((len(COLUMNS), x.size), np.nan)
+    for side in ("left", "right"):
+        which = np.flatnonzero(np.array(sides) == side)
+        if not which.size:
+            continue
+        for g in group_places(geometry, x[which][:, None], x[which], 0, side):
+            s = g.stiffness(short)
+            ga = g.shear(short).GA if _has_shear(member, g) else np.full(g.rows.size, np.nan)
+            mass = np.full(g.rows.size, np.nan)
+            if density is not None:
+                mass = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total().area
+            table[:, which[g.rows]] = (s.EA, s.EI_y, s.EI_z, s.EI_yz, ga, s.z_c, s.y_c, mass)
+    return table
