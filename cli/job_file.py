@@ -98,6 +98,7 @@ def _content(path: str) -> bytes:
 
 
 def _job(report: Report, text: str) -> Job:
+    report.data.update({kind: list_of_tables(kind, report) for kind in TABLES if kind in report.data})
     top = _top_level(report)
     length = None if top is None else top.length
     materials, material_names = read_materials(report)

@@ -119,6 +119,8 @@ class LawOf(Reader):
 
 
 def _flat_at(value: dict[str, Any], xs: list[float], values: list[float]) -> list[float]:
+    if xs[-1] == xs[0]:
+        raise ill("stations at more than one x", value["stations"], path=("stations",))
     given = value.get("flat_at", [])
     given = given if isinstance(given, list) else [given]
     try:

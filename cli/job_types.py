@@ -7,6 +7,7 @@ faults of one value with their places in it.
 from __future__ import annotations
 
 from collections.abc import Callable
+from copy import deepcopy
 from dataclasses import dataclass, replace
 from typing import Annotated, Any
 
@@ -98,7 +99,7 @@ class Reader:
         return core_schema.no_info_plain_validator_function(self.read)
 
     def __get_pydantic_json_schema__(self, schema: Any, handler: Any) -> dict[str, Any]:
-        return self.schema
+        return deepcopy(self.schema)  # pydantic adds defaults to what it gets
 
 
 def quantity(value: Any, kind: Kind, sign: Sign = "any") -> float:
@@ -138,19 +139,22 @@ class Factor(Reader):
 
 
 class Count(Reader):
-    """A whole number."""
+    """A whole number; the most there may be keeps a slip from filling the memory."""
 
-    def __init__(self, at_least: int = 1) -> None:
-        self.at_least = at_least
+    def __init__(self, at_least: int = 1, at_most: int = 10_000) -> None:
+        self.at_least, self.at_most = at_least, at_most
         self.words = f"a whole number of at least {at_least}"
-        self.schema = {"type": "integer", "minimum": at_least}
+        self.schema = {"type": "integer", "minimum": at_least, "maximum": at_most}
 
     def read(self, value: Any) -> int:
         """Read the number."""
         try:
-            return parse_count(value, at_least=self.at_least)
+            count = parse_count(value, at_least=self.at_least)
         except QuantityError as error:
             raise of_quantity(error) from None
+        if count > self.at_most:
+            raise ill(f"a whole number of at most {self.at_most}", value)
+        return count
 
 
 class Text(Reader):

@@ -39,7 +39,7 @@ def _support(draft: Draft, support: Support, path: Path) -> Iterator[Problem]:
     held = False
     for name in ("down", "rotation", "along", "across", "rotation_across"):
         stiffness = getattr(support, name)
-        held |= stiffness > 0.0
+        held |= stiffness != 0.0
         if math.isnan(stiffness) or stiffness < 0.0:
             yield Problem((*path, KEYS.get(name, name)), "a stiffness of 0 or more", f"{stiffness:g}")
     if not held:

@@ -1,5 +1,7 @@
 """A job file becomes the description it stands for, in SI units."""
 
+# ruff: noqa: E501 (a job and its message stand side by side, unbroken, as they are written)
+
 import math
 import time
 
@@ -27,7 +29,9 @@ density = "7850 kg/m3"
 expansion = "12e-6 /K"
 creep = 0.0
 """
-BEAM = '\n[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
+BEAM = (
+    '\n[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
+)
 
 
 def job(text, head='length = "6 m"\n', materials=STEEL):
@@ -70,7 +74,8 @@ def test_camber_ordinates():
 
 def test_reads_a_file_and_its_survey(tmp_path):
     (tmp_path / "s.csv").write_text(
-        "\ufeff# survey of June\n\nstation (m);remaining depth [mm]\n0;200\n\n3,0;150,5\n6;200\n", encoding="utf-8"
+        "\ufeff# survey of June\n\nstation (m);remaining depth [mm]\n0;200\n\n3,0;150,5\n6;200\n",
+        encoding="utf-8",
     )
     depth = '{ file = "s.csv", x = "station", value = "remaining depth" }'
     path = tmp_path / "j.toml"
@@ -83,14 +88,22 @@ def test_reads_a_file_and_its_survey(tmp_path):
     ("text", "x", "values"),
     [
         ('[["0 m", "900 mm"], ["1.8 m", "450 mm"]]', [0.0, 0.9, 5.0], [0.9, 0.675, 0.45]),
-        ('{ steps = [["1 m", "45 mm"], ["2 m", "55 mm"], ["6 m", "34 mm"]] }', [0.5, 1.5, 5.0], [0.045, 0.055, 0.034]),
+        (
+            '{ steps = [["1 m", "45 mm"], ["2 m", "55 mm"], ["6 m", "34 mm"]] }',
+            [0.5, 1.5, 5.0],
+            [0.045, 0.055, 0.034],
+        ),
         (
             '{ law = "parabola", stations = [["0 m", "900 mm"], ["2 m", "500 mm"]], flat_at = "2 m" }',
             [0.0, 1.0, 2.0],
             [0.9, 0.6, 0.5],
         ),
         ('{ law = "straight", stations = [["0 m", "100 mm"], ["2 m", "200 mm"]] }', [1.0], [0.15]),
-        ('[["0 m", "1 ft"], ["3 m", "1 ft"], ["3 m", "6 in"], ["4 m", "6 in"]]', [2.9, 3.0], [0.3048, 0.1524]),
+        (
+            '[["0 m", "1 ft"], ["3 m", "1 ft"], ["3 m", "6 in"], ["4 m", "6 in"]]',
+            [2.9, 3.0],
+            [0.3048, 0.1524],
+        ),
     ],
 )
 def test_laws(text, x, values):
@@ -99,10 +112,22 @@ def test_laws(text, x, values):
 
 
 def test_outline_dimensions():
-    assert dims('shape = "tube"\ndiameter = "10 in"\nwall = "0.25 in"') == {"diameter": 0.254, "wall": 0.00635}
+    assert dims('shape = "tube"\ndiameter = "10 in"\nwall = "0.25 in"') == {
+        "diameter": 0.254,
+        "wall": 0.00635,
+    }
     box = dims('shape = "box"\nwidth = "100 mm"\ndepth = "200 mm"\nwall = "8 mm"\nradius = "16 mm"')
-    assert box == {"width": 0.1, "depth": 0.2, "radius": 0.016, "web": 0.008, "flange": 0.008, "inner_radius": 0.008}
-    i = dims('shape = "I"\ndepth = "300 mm"\nweb = "7 mm"\nwidth = "150 mm"\nflange = "10 mm"\nbottom_width = "200 mm"')
+    assert box == {
+        "width": 0.1,
+        "depth": 0.2,
+        "radius": 0.016,
+        "web": 0.008,
+        "flange": 0.008,
+        "inner_radius": 0.008,
+    }
+    i = dims(
+        'shape = "I"\ndepth = "300 mm"\nweb = "7 mm"\nwidth = "150 mm"\nflange = "10 mm"\nbottom_width = "200 mm"'
+    )
     assert (i["top_width"], i["bottom_width"], i["top_flange"], i["bottom_flange"]) == (0.15, 0.2, 0.01, 0.01)
     assert i["radius"] == 0.0
     assert "width" not in i and "flange" not in i
@@ -171,9 +196,17 @@ E = "10 GPa"
 G = "1 GPa"
 strength = { tension = "20 N/mm2", shear = "2 N/mm2" }
 """
-    m = member('\n[[part]]\nname = "a"\nmaterial = "C24"\nshape = "circle"\ndiameter = "1 in"\n', materials=text)
+    m = member(
+        '\n[[part]]\nname = "a"\nmaterial = "C24"\nshape = "circle"\ndiameter = "1 in"\n', materials=text
+    )
     mine, other, timber = m.materials
-    assert (mine.E, mine.G, mine.poisson, mine.density, mine.yield_strength) == (205e9, None, 0.25, 7850.0, 255e6)
+    assert (mine.E, mine.G, mine.poisson, mine.density, mine.yield_strength) == (
+        205e9,
+        None,
+        0.25,
+        7850.0,
+        255e6,
+    )
     assert (mine.strength.tension, mine.strength.compression, mine.strength.shear) == (160e6, 160e6, None)
     assert mine.band == (200e9, 210e9)
     assert (other.G, other.density, other.strength.compression) == (1e9, None, None)
@@ -229,15 +262,26 @@ flush = "top"
     _, plate, sides, bar, groove = m.parts
     assert (plate.place.relation, plate.place.host, plate.place.flush) == ("under", "beam", "left")
     assert (plate.start, plate.end, plate.run_in) == (1.0, 5.0, (0.1, 0.2))
-    assert (plate.place.gap.value, plate.place.shift[0].value, float(plate.place.shift[1](3.0))) == (0.002, 0.005, 0.003)
+    assert (plate.place.gap.value, plate.place.shift[0].value, float(plate.place.shift[1](3.0))) == (
+        0.002,
+        0.005,
+        0.003,
+    )
     assert (plate.turn, plate.mirror) == (math.radians(90), True)
     assert (sides.pair, sides.place.flush, sides.run_in) == (True, "middle", (0.05, 0.05))
-    assert (bar.place.relation, bar.place.anchor, bar.place.position[1].value) == ("position", "top left", -0.05)
+    assert (bar.place.relation, bar.place.anchor, bar.place.position[1].value) == (
+        "position",
+        "top left",
+        -0.05,
+    )
     assert (groove.material, groove.cuts) == (None, ("beam",))
 
 
 def test_cut_of_the_only_other_part():
-    text = BEAM + '\n[[part]]\nname = "g"\nshape = "circle"\ndiameter = "10 mm"\ncut = true\ncentred_on = "beam"\n'
+    text = (
+        BEAM
+        + '\n[[part]]\nname = "g"\nshape = "circle"\ndiameter = "10 mm"\ncut = true\ncentred_on = "beam"\n'
+    )
     assert member(text).parts[1].cuts == ("beam",)
 
 
@@ -475,10 +519,19 @@ to = "2 m"
     )
     assert m.cases == ("dead", "settlement")
     final, strong = m.combinations
-    assert (final.factors, final.sustained, final.purpose) == ({"dead": 1.0, "settlement": 1.0}, {"dead": 0.3}, "deflection")
+    assert (final.factors, final.sustained, final.purpose) == (
+        {"dead": 1.0, "settlement": 1.0},
+        {"dead": 0.3},
+        "deflection",
+    )
     assert strong.purpose == "strength"
     spans, seal, turn = m.limits
-    assert (spans.span_over, spans.spans, spans.cantilever_over, spans.net) == (360.0, (1, "right"), 180.0, True)
+    assert (spans.span_over, spans.spans, spans.cantilever_over, spans.net) == (
+        360.0,
+        (1, "right"),
+        180.0,
+        True,
+    )
     assert (seal.absolute, seal.at, seal.combination, seal.of) == (0.02, "seal", "final", "resultant")
     assert (turn.slope, turn.start, turn.end) == (0.001, 1.0, 2.0)
 
