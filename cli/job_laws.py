@@ -177,9 +177,16 @@ def read_stations(
         return quantity(item[0], Kind.LENGTH), quantity(item[1], kind, sign)
 
     pairs = gather(value, pair)
+    ills = _out_of_order([p[0] for p in pairs], value, increasing)
+    if ills:
+        raise ValueFault(*ills)
+    return [p[0] for p in pairs], [p[1] for p in pairs]
+
+
+def _out_of_order(xs: list[float], value: list[Any], increasing: bool) -> list[Ill]:
     ills = []
-    for k in range(1, len(pairs)):
-        x, before = pairs[k][0], pairs[k - 1][0]
+    for k in range(1, len(xs)):
+        x, before = xs[k], xs[k - 1]
         if x < before or (increasing and x == before):
             words = "an x beyond" if increasing else "an x not before"
             ills.append(
@@ -189,11 +196,9 @@ def read_stations(
                     as_written(value[k][0]),
                 )
             )
-        elif k > 1 and x == before == pairs[k - 2][0]:
+        elif k > 1 and x == before == xs[k - 2]:
             ills.append(Ill((k,), "at most two values at one x", as_written(value[k][0])))
-    if ills:
-        raise ValueFault(*ills)
-    return [p[0] for p in pairs], [p[1] for p in pairs]
+    return ills
 
 
 def finish(written: WrittenLaw, folder: FilePath, end: float | None) -> Law:

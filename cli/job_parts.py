@@ -48,8 +48,7 @@ def read_part(
         None where it cannot be had.
     """
     path: Path = ("part", i)
-    raw = report.data["part"][i]
-    kind, table = _table(raw, path, report)
+    kind, table = _table(report.data["part"][i], path, report)
     if table is None:
         return None
     faults = len(report.faults)
@@ -60,9 +59,7 @@ def read_part(
     end = snapped(top.length if table.to is None else table.to, top.length)
     place = _placing(i, table, top, end, path, report)
     shape = _shape(kind, table, end, path, sizes, report)
-    run_in = table.run_in or (0.0,)
-    if len(run_in) > 2:
-        report.add((*path, "run_in"), "a length, or a pair [start, end]", as_written(raw["run_in"]))
+    run_in = _run_in(table, path, report)
     if len(report.faults) > faults or shape is None or place is None or cuts is None:
         return None
     if table.pair and _in_one_place(place):
@@ -74,12 +71,21 @@ def read_part(
         start=start,
         end=end,
         place=place,
-        run_in=(run_in[0], run_in[-1]),
+        run_in=run_in,
         cuts=cuts,
         pair=table.pair,
         turn=table.turn,
         mirror=table.mirror,
     )
+
+
+def _run_in(table: PartTable, path: Path, report: Report) -> tuple[float, float]:
+    """Lengths at the two ends; one given is for both."""
+    given = table.run_in or (0.0,)
+    if len(given) > 2:
+        found = as_written(report.value((*path, "run_in")))
+        report.add((*path, "run_in"), "a length, or a pair [start, end]", found)
+    return given[0], given[-1]
 
 
 def _table(raw: Any, path: Path, report: Report) -> tuple[str | None, PartTable | None]:

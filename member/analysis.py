@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Actions, Atom, Frame, actions, atoms
 from fishbelly.member.description import Combination, Member
 from fishbelly.member.faults import CannotCompute
-from fishbelly.member.moduli import Moduli, moduli
+from fishbelly.member.moduli import Moduli, has_band, moduli
 from fishbelly.member.nodes import layout
 from fishbelly.member.profile import Profile
 from fishbelly.member.response import Response, free_of, respond
@@ -115,7 +115,8 @@ class Analysis:
     @cached_property
     def planes(self) -> int:
         """2 where the member also bends sideways, else 1."""
-        keys = {s.key for c in self.member.combinations for s in self.shares(c)} | {ModuliKey()}
+        bands = ("nominal", "low", "high") if has_band(self.member) else ("nominal",)
+        keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {ModuliKey()}
         if any(np.any(v) for a in self.loads for v in (a.q[1], a.P[1])):
             return 2
         pushed = any(np.any(a.n) or np.any(a.F) for a in self.loads)

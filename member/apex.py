@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 from fishbelly.member.faults import NoStiffness
 from fishbelly.member.panels import Panels
 from fishbelly.member.response import Response
+from fishbelly.member.section_law import run_out
 
 Array = NDArray[np.float64]
 
@@ -29,16 +30,8 @@ class Apexes:
     right_of: frozenset[int]
 
 
-def exponent(distance: Array, values: Array) -> float | None:
-    """Power of the distance that values follow, from the three points nearest the end; None where all vanish."""
-    size = np.abs(values)
-    if not size[0] or not size[2] or size.max() == 0.0:
-        return None
-    return float(np.log(size[2] / size[0]) / np.log(distance[2] / distance[0]))
-
-
 def judge(panels: Panels, r: Response) -> Apexes:
-    """Look at every anchored panel end.
+    """Look at every point in which the member ends.
 
     Raises
     ------
@@ -46,22 +39,26 @@ def judge(panels: Panels, r: Response) -> Apexes:
         When the deflection is infinite there.
     """
     left_of, right_of = set(), set()
-    size_k = np.abs(r.curvature).max(axis=(1, 2))
-    size_s = np.abs(r.shear).max(axis=(1, 2))
-    for k in np.flatnonzero(panels.anchor):
+    for apex in panels.apexes:
+        k, other, _ = apex
         at_a = panels.anchor[k] < 0
-        end = panels.a[k] if at_a else panels.b[k]
-        order = slice(None) if at_a else slice(None, None, -1)
-        distance = np.abs(panels.x[k] - end)[order]
-        if distance[0] <= 0.0:
-            continue
         steep = False
         for p in (0, 1):
-            bent = exponent(distance, r.curvature[p, k][order]) if size_k[p] else None
-            slid = exponent(distance, r.shear[p, k][order]) if size_s[p] else None
-            if (bent is not None and bent < -2.0 + _ROUND) or (slid is not None and slid < -1.0 + _ROUND):
-                raise NoStiffness(float(end), "the member runs out to a point there and still has to carry load")
-            steep |= (bent is not None and bent < -1.0 + _ROUND) or (slid is not None and slid < -_ROUND)
+            bent, slid = _power(r.curvature[p], apex), _power(r.shear[p], apex)
+            if bent < -2.0 + _ROUND or slid < -1.0 + _ROUND:
+                end = float(panels.a[k] if at_a else panels.b[k])
+                raise NoStiffness(end, "the member runs out to a point there and still has to carry load")
+            steep |= bent < -1.0 + _ROUND or slid < -_ROUND
         if steep:
-            (right_of if at_a else left_of).add(int(k) if at_a else int(k) + 1)
+            (right_of if at_a else left_of).add(k if at_a else k + 1)
     return Apexes(frozenset(left_of), frozenset(right_of))
+
+
+def _power(field: Array, apex: tuple[int, int, Array]) -> float:
+    """Power of the distance that strains follow; infinite where they vanish there or are round-off."""
+    size = np.abs(field).max()
+    near = np.abs(field[apex[1]])
+    if near.min() <= 1e-12 * size:
+        return np.inf
+    power = float(run_out(field.copy(), apex))
+    return power if np.isfinite(power) else np.inf

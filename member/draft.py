@@ -193,7 +193,7 @@ def _references(member: Member) -> Iterator[Reference]:
 
 def unknown_names(draft: Draft) -> Iterator[Problem]:
     """Find places that name something that is not there."""
-    words = {"case": "a load case", "station": "a named station", "combination": "a combination"}
+    words = {"case": "a load case", "station": "a station", "combination": "a combination"}
     for ref in draft.references:
         known = tuple(draft.names.get(ref.kind, ()))
         if ref.name not in known:

@@ -82,20 +82,26 @@ def _in_panel(panels: Panels, stack: Array, k: int, envelope: Array, points: Arr
 
 
 def _peak(panels: Panels, values: Array, s0: float, value0: float) -> tuple[float, float]:
-    """Largest value of one panel's interpolant, from the roots of its derivative."""
-    from numpy.polynomial import chebyshev
-
-    c = panels.rule.to_coefficients @ values
-    size = np.abs(c).max()
-    keep = np.flatnonzero(np.abs(c) > 1e-15 * size)
-    c = c[: keep[-1] + 1] if keep.size else c[:1]
-    candidates = [s0]
-    if c.size > 2:
-        roots = chebyshev.chebroots(chebyshev.chebder(c))
-        real = roots[np.abs(roots.imag) < 1e-7].real
-        candidates += real[(real > -1.0) & (real < 1.0)].tolist()
-    tried = chebyshev.chebval(np.array(candidates), c)
-    best = int(np.argmax(tried))
-    if tried[best] <= value0 * (1.0 + 1e-15 * np.sign(value0)):
+    """Largest value of one panel's interpolant: roots of its derivative, from its sign changes by Newton's method."""
+    r = panels.rule
+    first = r.differentiate @ values
+    second = r.differentiate @ first
+    places = np.concatenate(([-1.0], r.points, [1.0]))
+    slopes = np.concatenate(([r.left @ first], first, [r.right @ first]))
+    falling = np.flatnonzero((slopes[:-1] > 0.0) & (slopes[1:] <= 0.0))
+    if not falling.size:
         return s0, value0
-    return candidates[best], float(tried[best])
+    low, high = places[falling], places[falling + 1]
+    s = low + (high - low) * slopes[falling] / (slopes[falling] - slopes[falling + 1])
+    for _ in range(8):
+        basis = r.basis(s)
+        slope, bend = basis @ first, basis @ second
+        low, high = np.where(slope > 0.0, s, low), np.where(slope > 0.0, high, s)
+        step = s - slope / np.where(bend == 0.0, 1.0, bend)
+        s = np.where((step > low) & (step < high), step, 0.5 * (low + high))
+    tops = r.basis(s) @ values
+    best = int(np.argmax(tops))
+    # no better than the point it started from, up to round-off: that point stays
+    if tops[best] <= value0 + 1e-15 * abs(value0):
+        return s0, value0
+    return float(s[best]), float(tops[best])

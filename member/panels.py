@@ -28,7 +28,7 @@ class Panels:
     a, b : ndarray, shape (K,)
         Ends [m].
     anchor : ndarray of int, shape (K,)
-        -1 anchored at a, +1 at b, 0 not.
+        Below 0 anchored at a, above 0 at b, 0 not; -2 and 2 where the member runs out to a point there.
     """
 
     a: Array
@@ -39,6 +39,26 @@ class Panels:
     def count(self) -> int:
         """Number of panels."""
         return int(self.a.size)
+
+    @cached_property
+    def apexes(self) -> tuple[tuple[int, int, Array], ...]:
+        """Panels that run out to a point: number, number of the neighbour away from it, distances, shape (3, n).
+
+        Distances [m] from the point: of the panel's points, of the neighbour's points, both from the point
+        outwards; the third row holds the order (as numbers) in which the points lie so.
+        """
+        found = []
+        for k in np.flatnonzero(np.abs(self.anchor) == 2):
+            left = self.anchor[k] < 0
+            other = int(k) + 1 if left else int(k) - 1
+            if not 0 <= other < self.count:
+                continue
+            order = np.arange(POINTS) if left else np.arange(POINTS)[::-1]
+            u = 0.5 * (1.0 + self.rule.points)
+            own = (self.b[k] - self.a[k]) * u * u
+            end = self.a[k] if left else self.b[k]
+            found.append((int(k), other, np.stack((own, np.abs(self.x[other][order] - end), order.astype(float)))))
+        return tuple(found)
 
     @property
     def rule(self) -> Rule:

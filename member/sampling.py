@@ -127,7 +127,7 @@ def _first(member: Member, breaks: Array) -> _Batch:
 
 
 def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch) -> dict[str, Array]:
-    """What is resolved, and which panels end in an apex (-1 at a, +1 at b)."""
+    """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
     columns = np.zeros((8, count * POINTS))
     for g in new:
         s = g.stiffness(short)
@@ -139,22 +139,31 @@ def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool,
     if not np.all(np.isfinite(v)):
         k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
         raise CannotCompute(f"no stiffness between x = {batch.a[k]:.6g} m and {batch.b[k]:.6g} m")
-    inverse = tail(v[:3], POINTS).max(axis=0)
+    unresolved = tail(v[:7], POINTS) - _noise(v[:7], batch)
+    inverse = unresolved[:3].max(axis=0)
     largest = np.maximum(v[7].max(axis=-1), 1e-300)
-    offset = tail(np.stack((v[3], v[4])), POINTS) * np.abs(v[3:5]).max(axis=-1) / largest
-    crossed = tail(v[5], POINTS) * np.abs(v[5]).max(axis=-1)
+    offset = unresolved[3:5] * np.abs(v[3:5]).max(axis=-1) / largest
+    crossed = unresolved[5] * np.abs(v[5]).max(axis=-1)
     done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
     if shear:
-        done &= tail(v[6], POINTS) < SHEAR_RESOLVED
+        done &= unresolved[6] < SHEAR_RESOLVED
     width = (batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a))
     done |= width < 1e-12
     EI = 1.0 / v[1]
     r = rule(POINTS)
     lowest = APEX * EI.max(axis=-1)
-    apex = np.where(EI @ r.left < lowest, -1, np.where(EI @ r.right < lowest, 1, 0))
+    apex = np.where(EI @ r.left < lowest, -2, np.where(EI @ r.right < lowest, 2, 0))
     at_zero = (batch.anchor < 0) & (batch.a == 0.0)
-    done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 12))
+    done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 14))
     return {"done": done.astype(float), "apex": apex.astype(float)}
+
+
+def _noise(v: Array, batch: _Batch) -> Array:
+    """Share of values that round-off in x alone makes uncertain: steep ones cannot be resolved any further."""
+    grid = Panels(batch.a, batch.b, batch.anchor)
+    steep = np.abs(v @ rule(POINTS).differentiate.T / grid.stretch).max(axis=-1)
+    size = np.abs(v).max(axis=-1)
+    return np.asarray(8.0 * np.finfo(float).eps * np.abs(batch.b) * steep / np.where(size > 0.0, size, 1.0))
 
 
 def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> _Batch:

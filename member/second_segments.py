@@ -7,6 +7,7 @@ its left end and in the right half from its right end, so that they stay exact w
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -145,52 +146,47 @@ def load_fields(cut: Cut, p: Pushes) -> tuple[Fields, Array]:
 
 
 def _ahead(cut: Cut, p: Pushes, s: Stretch, out: Fields) -> Array:
-    """Sum loads from the left end of a segment to its split."""
+    """Sum loads from the left end of a segment to its split; the value there."""
     if s.split == s.first:
         return np.zeros(5)
     part = slice(s.first, s.split)
-    jumps = p.jumps[:, s.first + 1 : s.split]
     stretch = cut.intervals.stretch[part]
 
     def summed(density: Array, jump: Array) -> tuple[Array, Array]:
-        whole = (density * stretch) @ RULE.weights
-        steps = whole.copy()
-        steps[..., 1:] += jump
-        start = np.cumsum(steps, axis=-1) - whole
-        return start[..., None] + (density * stretch) @ RULE.running.T, start[..., -1] + whole[..., -1]
+        steps = (density * stretch) @ RULE.weights
+        last = steps[..., -1]
+        before = np.zeros_like(steps)
+        before[..., 1:] = np.cumsum(steps[..., :-1] + jump, axis=-1)
+        return before[..., None] + (density * stretch) @ RULE.running.T, before[..., -1] + last
 
-    out.N[part], n_end = summed(-p.n[part], jumps[0])
-    out.V[:, part], v_end = summed(-p.q[:, part], jumps[1:3])
-    out.M[:, part], m_end = summed(out.V[:, part] + p.m[:, part], jumps[3:])
-    return np.concatenate(([n_end], v_end, m_end))
+    return _all(p, part, p.jumps[:, s.first + 1 : s.split], out, summed)
 
 
 def _behind(cut: Cut, p: Pushes, s: Stretch, out: Fields) -> Array:
-    """Sum loads from the right end of a segment back to its split."""
+    """Sum loads from the right end of a segment back to its split; the value there."""
     if s.split == s.stop:
         return np.zeros(5)
     part = slice(s.split, s.stop)
-    jumps = p.jumps[:, s.split + 1 : s.stop]
     stretch = cut.intervals.stretch[part]
+    backwards = RULE.running[::-1, ::-1].T
 
     def summed(density: Array, jump: Array) -> tuple[Array, Array]:
-        whole = (density * stretch) @ RULE.weights
-        steps = whole.copy()
-        steps[..., :-1] += jump
-        start = -np.cumsum(steps[..., ::-1], axis=-1)[..., ::-1]
-        # the value just right of the left end of each interval
-        start[..., :-1] += jump
-        return _inner(start, whole, density * stretch), start[..., 0]
+        steps = (density * stretch) @ RULE.weights
+        first = steps[..., 0]
+        after = np.zeros_like(steps)
+        after[..., :-1] = -np.cumsum((steps[..., 1:] + jump)[..., ::-1], axis=-1)[..., ::-1]
+        return after[..., None] - (density * stretch) @ backwards, after[..., 0] - first
 
-    out.N[part], n_end = summed(-p.n[part], jumps[0])
-    out.V[:, part], v_end = summed(-p.q[:, part], jumps[1:3])
-    out.M[:, part], m_end = summed(out.V[:, part] + p.m[:, part], jumps[3:])
-    return np.concatenate(([n_end], v_end, m_end))
+    return _all(p, part, p.jumps[:, s.split + 1 : s.stop], out, summed)
 
 
-def _inner(start: Array, whole: Array, density: Array) -> Array:
-    """Values at the points of intervals, counted back from their right ends."""
-    return np.asarray((start + whole)[..., None] - density @ RULE.running[::-1, ::-1].T)
+def _all(
+    p: Pushes, part: slice, jumps: Array, out: Fields, summed: Callable[[Array, Array], tuple[Array, Array]]
+) -> Array:
+    out.N[part], n = summed(-p.n[part], jumps[0])
+    out.V[:, part], v = summed(-p.q[:, part], jumps[1:3])
+    out.M[:, part], m = summed(out.V[:, part] + p.m[:, part], jumps[3:])
+    return np.concatenate((np.atleast_1d(n), v, m))
 
 
 def strains(f: Flexibility, line: Array, fields: Fields) -> Strain:

@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Frame
 from fishbelly.member.equilibrium import Forces
 from fishbelly.member.moduli import Moduli
+from fishbelly.member.panels import Panels
 
 Array = NDArray[np.float64]
 
@@ -43,6 +44,8 @@ class ElasticLaw:
 
     Parameters
     ----------
+    panels : Panels
+        The grid.
     EA : ndarray, shape (K, n)
         Axial stiffness [N].
     c : ndarray, shape (2, K, n)
@@ -53,6 +56,7 @@ class ElasticLaw:
         Shear angle by shear force, zero where shear is left out [1/N].
     """
 
+    panels: Panels
     EA: Array
     c: Array
     bend: Array
@@ -76,11 +80,11 @@ class ElasticLaw:
                 slide[1] = 1.0 / profile.shear_stiffness(moduli, across=True)
         c = np.stack((s.z_c, -s.y_c)) - frame.line[:, None]
         row = profile.row
-        return cls(s.EA[row], c[:, row], bend[:, row], slide[:, row])
+        return cls(profile.panels, s.EA[row], c[:, row], bend[:, row], slide[:, row])
 
     def without_shear(self) -> ElasticLaw:
         """Return the same law, rigid in shear."""
-        return ElasticLaw(self.EA, self.c, self.bend, np.zeros_like(self.slide))
+        return ElasticLaw(self.panels, self.EA, self.c, self.bend, np.zeros_like(self.slide))
 
     def strains(self, forces: Forces) -> Strains:
         """Return strains under forces; fields may have further axes in front of (K, n) (after the plane)."""
@@ -90,4 +94,37 @@ class ElasticLaw:
         k1 = self.bend[2] * first + self.bend[1] * second
         axial = N / self.EA + k0 * self.c[0] + k1 * self.c[1]
         shear = np.stack((V[0] * self.slide[0], V[1] * self.slide[1]))
-        return Strains(axial, np.stack((k0, k1)), shear)
+        strains = Strains(axial, np.stack((k0, k1)), shear)
+        for panel in self.panels.apexes:
+            for field in (strains.axial, strains.curvature, strains.shear):
+                run_out(field, panel)
+        return strains
+
+
+def run_out(field: Array, apex: tuple[int, int, Array]) -> Array:
+    """Continue strains to the point in which the member ends, as a power of the distance from it.
+
+    There forces and stiffness both vanish and their quotient has no digits left; the panel is so short that
+    what it adds to a deflection is below round-off.
+
+    Parameters
+    ----------
+    field : ndarray, shape (..., K, n)
+        Strains; the panel at the point is overwritten.
+    apex : tuple
+        Panel, neighbour, distances, as `Panels.apexes` gives them.
+
+    Returns
+    -------
+    ndarray, shape (...)
+        The power; NaN where strains vanish or change their sign.
+    """
+    panel, other, (own, beyond, order) = apex
+    index = order.astype(np.intp)
+    near, far = field[..., other, index[0]], field[..., other, index[-1]]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        power = np.log(far / near) / np.log(beyond[-1] / beyond[0])
+    usable = np.isfinite(power)
+    share = (own / beyond[0]) ** np.clip(np.where(usable, power, 0.0), -3.0, 9.0)[..., None]
+    field[..., panel, index] = near[..., None] * share
+    return np.asarray(power)

@@ -42,7 +42,8 @@ def _prismatic(analysis: Analysis, EI: float) -> float | None:
     shape = analysis.profile.row.shape
     full = np.full(shape, EI)
     straight = np.zeros((2, *shape))
-    law = ElasticLaw(np.full(shape, EI * 1e3), straight, np.stack((1.0 / full, 1.0 / full, 0.0 * full)), straight)
+    bend = np.stack((1.0 / full, 1.0 / full, 0.0 * full))
+    law = ElasticLaw(analysis.profile.panels, np.full(shape, EI * 1e3), straight, bend, straight)
     shares = analysis.shares(analysis.member.combinations[0])
     free = [(np.zeros(shape), np.zeros((2, *shape)))] * len(analysis.atoms)
     r = respond(analysis.frame, layout(analysis.frame), law, analysis.atoms, analysis.loads, free, 1)

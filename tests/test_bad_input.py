@@ -476,7 +476,7 @@ BAD = {
     ),
     "unknown station": (
         BASE + PINS + '[[limit]]\nname = "a"\nabsolute = "1 mm"\nat = "s"\n',
-        ':20: limit "a", at: expected the name of a named station, got "s"',
+        ':20: limit "a", at: expected the name of a station, got "s"',
     ),
     "unknown combination": (
         BASE + PINS + '[[limit]]\nname = "a"\nspan_over = 360\ncombination = "al"\n',

@@ -82,7 +82,7 @@ def test_all_problems_at_once():
         ({"loads": (Point(1.0, 1.0, direction="left"),)}, 'load[0].direction: expected one of "down", "up", "across", got "left"'),
         ({"combinations": (Combination("a", {"wind": 1.0}),)}, 'combination[0].factors.wind: expected the name of a load case, got "wind"'),
         ({"loads": (Point(1.0, 1.0),), "combinations": (Combination("a", {"load": 1.0}, {"load": 1.0}),)}, 'material.steel.creep: expected a creep factor, because combination "a" has a sustained share, but it is missing'),
-        ({"limits": (Limit("a", absolute=0.1, at="s"),)}, 'limit[0].at: expected the name of a named station, got "s"'),
+        ({"limits": (Limit("a", absolute=0.1, at="s"),)}, 'limit[0].at: expected the name of a station, got "s"'),
         ({"limits": (Limit("a", span_over=300.0),)}, "limit[0]: expected supports that hold down, for a limit on spans, got none"),
     ],
 )  # fmt: skip

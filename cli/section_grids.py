@@ -1,0 +1,157 @@
+"""Results of `fishbelly section` and `fishbelly stiffness` as tables in SI units."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+from fishbelly.cli.grid import TEXT, Column, Grid, column
+
+Row = Mapping[str, Any]
+Line = tuple[str, str, str, float | None]
+"""Symbol, meaning in words, quantity, value in SI units."""
+
+NOISE = 1e-10
+"""Stiffnesses below this share of the larger of EI_y and EI_z are noise."""
+
+
+def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
+    """List the single values of a cross-section by heading."""
+    principal, to = data.get("principal") or {}, data["transformed"]
+    top, bottom = to.get("top"), to.get("bottom")
+    depth = None if top is None or bottom is None else top - bottom
+    EI = max(abs(data[k] or 0.0) for k in ("EI_y", "EI_z"))
+    coupled = data["EI_yz"]
+    if coupled is not None and abs(coupled) <= NOISE * EI:
+        coupled = 0.0
+    angle = principal.get("angle")
+    if angle is not None and abs(angle) < NOISE:
+        angle = 0.0
+    stiffness: list[Line] = [
+        ("EA", "axial", "axial stiffness", data["EA"]),
+        ("EI_y", "bending in the vertical plane", "bending stiffness", data["EI_y"]),
+        ("EI_z", "bending sideways", "bending stiffness", data["EI_z"]),
+        ("EI_yz", "coupling of the two", "bending stiffness", coupled),
+        ("GA_z", "shear, vertical plane", "shear stiffness", data["GA_z"]),
+        ("GA_y", "shear, sideways", "shear stiffness", data["GA_y"]),
+    ]
+    axes: list[Line] = [
+        ("EI_1", "largest", "bending stiffness", principal.get("EI_1")),
+        ("EI_2", "smallest", "bending stiffness", principal.get("EI_2")),
+        ("angle", "from y to the axis of EI_1, anticlockwise", "angle", angle),
+    ]
+    place: list[Line] = [
+        ("z_c", "centroid above the datum line (below: negative)", "length", _whole(data["z_c"], depth)),
+        ("y_c", "centroid to the right of it", "length", _whole(data["y_c"], depth)),
+        ("z_top", "top of the section", "length", _whole(top, depth)),
+        ("z_bottom", "bottom of the section", "length", _whole(bottom, depth)),
+        ("depth", "overall", "length", depth),
+        ("mass", "per length", "mass per length", data["mass"]),
+    ]
+    transformed: list[Line] = [
+        ("E", "modulus transformed to", "modulus", to["E"]),
+        ("A", "area", "area", to["A"]),
+        ("I_y", "second moment of area, vertical plane", "second moment", to["I_y"]),
+        ("I_z", "second moment of area, sideways", "second moment", to["I_z"]),
+        ("W_top", "section modulus, elastic, top", "section modulus", to["W_top"]),
+        ("W_bottom", "section modulus, elastic, bottom", "section modulus", to["W_bottom"]),
+    ]
+    return [
+        ("Stiffness", stiffness),
+        ("Place and mass", place),
+        (f"Transformed to {to['to']}", transformed),
+        ("Principal axes of bending", axes),
+    ]
+
+
+def _whole(value: float | None, depth: float | None) -> float | None:
+    """Set a level that is noise beside the depth to 0."""
+    return 0.0 if value is not None and depth and abs(value) < NOISE * depth else value
+
+
+def ratios(data: Row) -> Grid:
+    """Write n = E / E of what is transformed to, of every material."""
+    rows = [{"material": k, "n": v} for k, v in (data["transformed"].get("n") or {}).items()]
+    return Grid(
+        "Materials", (column(rows, "material", TEXT), column(rows, "n", "factor", own=True)), "n times the area counts"
+    )
+
+
+def section_parts(data: Row) -> Grid:
+    """Write what every part at the section is."""
+    rows = data["parts"]
+    return Grid(
+        "Parts",
+        (
+            column(rows, "part", TEXT, "name"),
+            column(rows, "material", TEXT),
+            column(rows, "area", "area", own=True),
+            column(rows, "E", "modulus", own=True),
+            column(rows, "I_y own", "second moment", "I_y", own=True),
+            *_levels(rows),
+        ),
+        "net of cuts and of what displaces them; levels from the datum line",
+    )
+
+
+def _levels(rows: Sequence[Row]) -> list[Column]:
+    keys = (("z", "z"), ("z top", "z_top"), ("z bottom", "z_bottom"))
+    top = max((abs(r[k]) for r in rows for _, k in keys if r.get(k) is not None), default=0.0)
+    return [column(rows, title, "length", key, scale=top) for title, key in keys]
+
+
+def section_stresses(data: Row) -> Grid:
+    """Write the stress in every part per unit moment and per unit axial force."""
+    rows = data["parts"]
+
+    def per_moment(edge: str) -> Any:
+        return lambda row: (row.get("stress_per_moment") or {}).get(edge)
+
+    edges = [[per_moment(e)(r) for r in rows] for e in ("top", "bottom")]
+    top = max((abs(v) for e in edges for v in e if v is not None), default=0.0)
+    return Grid(
+        "Stress coefficients",
+        (
+            column(rows, "part", TEXT, "name"),
+            column(rows, "at its top", "stress per moment", per_moment("top"), own=True, scale=top),
+            column(rows, "at its bottom", "stress per moment", per_moment("bottom"), own=True, scale=top),
+            column(rows, "by axial force", "stress per force", "stress_per_force", own=True),
+        ),
+        "per unit of sagging moment, and of tension at the centroid; tension positive",
+    )
+
+
+def stiffness_grid(data: Row, marks: Sequence[str]) -> Grid:
+    """Write the stiffness along the member.
+
+    Parameters
+    ----------
+    data : mapping
+        Results of `fishbelly stiffness`.
+    marks : sequence of str
+        What there is at every station, in words.
+    """
+    rows = data["stations"]
+    first = next((r["EI_y"] for r in rows if r["EI_y"]), None)
+    EI = max((abs(r[k]) for r in rows for k in ("EI_y", "EI_z") if r[k] is not None), default=0.0)
+    levels = max((abs(r[k]) for r in rows for k in ("z_c", "y_c") if r[k] is not None), default=0.0)
+
+    def relative(row: Row) -> Any:
+        return None if row["EI_y"] is None or first is None else row["EI_y"] / first
+
+    return Grid(
+        "Stiffness along the member",
+        (
+            column(rows, "x", "position"),
+            column(rows, "EI_y", "bending stiffness"),
+            column(rows, "EI_y/first", "factor", relative),
+            column(rows, "z_c", "length", scale=levels),
+            column(rows, "EA", "axial stiffness"),
+            column(rows, "GA_z", "shear stiffness"),
+            column(rows, "mass", "mass per length"),
+            column(rows, "EI_z", "bending stiffness"),
+            column(rows, "EI_yz", "bending stiffness", optional=True, noise=NOISE * EI),
+            column(rows, "y_c", "length", optional=True, scale=levels),
+            Column("", TEXT, tuple(marks), optional=True),
+        ),
+    )
