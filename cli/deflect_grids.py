@@ -80,7 +80,8 @@ def overall(combination: Row) -> str:
     if not checks:
         return "no checks"
     missed = sum(not c["ok"] for c in checks)
-    return "OK" if not missed else f"NOT OK ({missed} of {len(checks)})"
+    near = any("judgement" in verdict(c) for c in checks)
+    return ("OK" if not missed else f"{missed} NOT OK") + (", judgement" if near else "")
 
 
 def summary(data: Row) -> Grid:
@@ -184,8 +185,8 @@ def supports(combination: Row, noise: Noise) -> Grid:
 
     force = [
         column(rows, "vertical", "force", noise=noise.force),
-        column(rows, "least", "force", lambda r: bound(r, "min"), optional=True, noise=noise.force),
-        column(rows, "most", "force", lambda r: bound(r, "max"), optional=True, noise=noise.force),
+        column(rows, "vert. least", "force", lambda r: bound(r, "min"), optional=True, noise=noise.force),
+        column(rows, "vert. most", "force", lambda r: bound(r, "max"), optional=True, noise=noise.force),
         column(rows, "along", "force", optional=True, noise=noise.force),
         column(rows, "across", "force", optional=True, noise=noise.force),
     ]
@@ -253,19 +254,22 @@ def stress(combination: Row, noise: Noise) -> Grid:
     def peak(which: str, key: str) -> Any:
         return lambda row: None if row[which] is None else row[which][key]
 
-    values = [column(rows, which, "stress", peak(which, "value"), noise=noise.stress) for which in ("max", "min")]
+    values = [
+        column(rows, which, "stress", peak(which, "value"), noise=noise.stress, own=True) for which in ("max", "min")
+    ]
+    levels = [column(rows, "z", "length", peak(which, "z")) for which in ("max", "min")]
     sheared = column(rows, "shear", "stress", lambda r: (r.get("shear") or {}).get("value"), optional=True)
-    high, low = _alike(values)
+    (high, low), (above, below) = _alike(values), _alike(levels)
     return Grid(
         "Stress",
         (
             column(rows, "part", TEXT),
             high,
             column(rows, "at x", "position", peak("max", "at")),
-            column(rows, "z", "length", peak("max", "z")),
+            above,
             low,
             column(rows, "at x", "position", peak("min", "at")),
-            column(rows, "z", "length", peak("min", "z")),
+            below,
             Column(sheared.title, sheared.what, sheared.values, True, noise.stress, True),
             column(rows, "at x", "position", lambda r: (r.get("shear") or {}).get("at"), optional=True),
         ),

@@ -18,6 +18,8 @@ NOISE = 1e-10
 """Values below this share of the largest beside them are shown as 0."""
 _OWN_RANGE = 1e-3
 """With figures of its own, a value shows no finer than one of this share of the column's largest would."""
+_SURE_DIGITS = 12
+"""Figures that a value is cut to before it is rounded, so that equal values are rounded alike."""
 
 _QUOTIENTS = {"stress per moment": ("stress", "moment"), "stress per force": ("stress", "force")}
 
@@ -107,7 +109,8 @@ class Column:
         if value == 0.0 and (self.own or top <= self.noise):
             return "0"
         scale = max(abs(value), _OWN_RANGE * top) if self.own else top
-        return format_number(value / size, "factor", style_of(style), digits, scale / size)  # type: ignore[arg-type]
+        number = float(f"{value / size:.{_SURE_DIGITS}g}")
+        return format_number(number, "factor", style_of(style), digits, scale / size)  # type: ignore[arg-type]
 
 
 @dataclass(frozen=True)

@@ -62,8 +62,17 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
 
 
 @click.group(cls=_Group, context_settings={"help_option_names": ["-h", "--help"]})
-@click.option("--cautions", is_flag=True, is_eager=True, expose_value=False, callback=_cautions, help="What results do not cover.")
-@click.option("--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version.")
+@click.option(
+    "--cautions",
+    is_flag=True,
+    is_eager=True,
+    expose_value=False,
+    callback=_cautions,
+    help="What results do not cover.",
+)
+@click.option(
+    "--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version."
+)
 def cli() -> None:
     """Bending stiffness EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
 
@@ -86,8 +95,17 @@ def _refused(option: str) -> Callable[[click.Context, click.Parameter, Any], Non
 def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
     """Options that every command with results shares."""
     options = (
-        click.option("--json", "as_json", is_flag=True, help="Print one JSON object in SI units instead of the table."),
-        click.option("-o", "--output", "outputs", multiple=True, metavar="FILE", help="Also write FILE: .csv, .json or .xlsx (repeatable)."),
+        click.option(
+            "--json", "as_json", is_flag=True, help="Print one JSON object in SI units instead of the table."
+        ),
+        click.option(
+            "-o",
+            "--output",
+            "outputs",
+            multiple=True,
+            metavar="FILE",
+            help="Also write FILE: .csv, .json or .xlsx (repeatable).",
+        ),
         click.option("--force", is_flag=True, help="Overwrite an existing file."),
         click.option("--stage", expose_value=False, hidden=True, callback=_refused("--stage")),
     )
@@ -128,11 +146,23 @@ def _wrapped(head: str, text: str) -> str:
 
 @cli.command()
 @click.argument("job")
-@click.option("--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".')
-@click.option("--side", type=click.Choice(["left", "right"]), default="right", show_default=True, help="Side of a break.")
-@click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
+@click.option(
+    "--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".'
+)
+@click.option(
+    "--side",
+    type=click.Choice(["left", "right"]),
+    default="right",
+    show_default=True,
+    help="Side of a break.",
+)
+@click.option(
+    "--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's]."
+)
 @_outputs
-def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+def section(
+    job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool
+) -> int:
     """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
 
     Example: fishbelly section my-beam.toml --at "1.2 m"
@@ -151,7 +181,13 @@ def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs
 
 @cli.command()
 @click.argument("job")
-@click.option("--at", "at", multiple=True, metavar="X", help='Place to list instead of the default ones, such as "1.2 m" (repeatable).')
+@click.option(
+    "--at",
+    "at",
+    multiple=True,
+    metavar="X",
+    help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
+)
 @_outputs
 def stiffness(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
     """Show the EI(x) table: stiffness, centroid and mass along the member, every break shown.
@@ -167,8 +203,16 @@ def stiffness(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, 
 
 @cli.command()
 @click.argument("job")
-@click.option("--at", "at", multiple=True, metavar="X", help='Place to list instead of the default ones, such as "1.2 m" (repeatable).')
-@click.option("--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order"))
+@click.option(
+    "--at",
+    "at",
+    multiple=True,
+    metavar="X",
+    help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
+)
+@click.option(
+    "--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order")
+)
 @_outputs
 def deflect(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
     """Show reactions, moments, deflections, stresses and limits.
@@ -214,7 +258,13 @@ def _place(text: str, length: float) -> float:
 
 
 def _finish(
-    command: str, data: dict[str, Any], job: Any, as_json: bool, outputs: Sequence[str], force: bool, listed: bool
+    command: str,
+    data: dict[str, Any],
+    job: Any,
+    as_json: bool,
+    outputs: Sequence[str],
+    force: bool,
+    listed: bool,
 ) -> int:
     """Print the table or the JSON object, say the notes, write the files."""
     if outputs:
@@ -230,7 +280,11 @@ def _finish(
         from fishbelly.cli import tables
 
         show = {"section": tables.section_table, "stiffness": tables.stiffness_table}
-        text = show[command](data, job.style) if command == "section" else _table(command, data, job.style, listed)
+        text = (
+            show[command](data, job.style)
+            if command == "section"
+            else _table(command, data, job.style, listed)
+        )
         click.echo(text.rstrip("\n"))
     if not (sys.stdout.isatty() and sys.stderr.isatty() and not as_json):
         for note in data.get("notes", ()):
@@ -264,7 +318,9 @@ def run(arguments: Sequence[str] | None = None) -> int:
         Exit status.
     """
     try:
-        status = cli.main(args=None if arguments is None else list(arguments), prog_name="fishbelly", standalone_mode=False)
+        status = cli.main(
+            args=None if arguments is None else list(arguments), prog_name="fishbelly", standalone_mode=False
+        )
         sys.stdout.flush()
         return int(status or DONE)
     except click.exceptions.Exit as error:

@@ -49,7 +49,7 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
         ("mass", "per length", "mass per length", data["mass"]),
     ]
     transformed: list[Line] = [
-        ("E", "modulus transformed to", "modulus", to["E"]),
+        ("E", "modulus of elasticity that counts", "modulus", to["E"]),
         ("A", "area", "area", to["A"]),
         ("I_y", "second moment of area, vertical plane", "second moment", to["I_y"]),
         ("I_z", "second moment of area, sideways", "second moment", to["I_z"]),

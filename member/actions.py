@@ -251,7 +251,10 @@ def _self_weight(frame: Frame, a: Actions, load: SelfWeight) -> None:
     member, profile = frame.profile.member, frame.profile
     wanted = [p.material is not None and (load.parts is None or p.name in load.parts) for p in member.parts]
     density = np.array(
-        [member.material(p.material).density or 0.0 if w and p.material else 0.0 for p, w in zip(member.parts, wanted, strict=True)]
+        [
+            member.material(p.material).density or 0.0 if w and p.material else 0.0
+            for p, w in zip(member.parts, wanted, strict=True)
+        ]
     )
     mass, y, z = (v[profile.row] for v in profile.mass(density))
     weight = load.factor * GRAVITY * mass

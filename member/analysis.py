@@ -116,7 +116,9 @@ class Analysis:
     def planes(self) -> int:
         """2 where the member also bends sideways, else 1."""
         bands = ("nominal", "low", "high") if has_band(self.member) else ("nominal",)
-        keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {ModuliKey()}
+        keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {
+            ModuliKey()
+        }
         if any(np.any(v) for a in self.loads for v in (a.q[1], a.P[1])):
             return 2
         pushed = any(np.any(a.n) or np.any(a.F) for a in self.loads)
@@ -129,12 +131,18 @@ class Analysis:
                 return 2
             free = free_of(self.frame, self.loads, self.moduli(key))
             turned = any(
-                np.any(np.abs(m[1] + n * (-s.y_c[self.profile.row] - self.frame.line[1])) > 1e-11 * (np.abs(n) * size[self.profile.row] + np.abs(m[0])))
+                np.any(
+                    np.abs(m[1] + n * (-s.y_c[self.profile.row] - self.frame.line[1]))
+                    > 1e-11 * (np.abs(n) * size[self.profile.row] + np.abs(m[0]))
+                )
                 for n, m in free
             )
             if turned or (np.any(aside) and (pushed or len(self._holding) > 1)):
                 return 2
-            if any(np.any(np.abs(a.m[1]) > 1e-11 * np.abs(a.n) * size.max()) or np.any(a.C[1]) for a in self.loads):
+            if any(
+                np.any(np.abs(a.m[1]) > 1e-11 * np.abs(a.n) * size.max()) or np.any(a.C[1])
+                for a in self.loads
+            ):
                 return 2
         return 1
 
@@ -142,7 +150,9 @@ class Analysis:
     def _holding(self) -> list[str]:
         return [s.name for s in self.member.supports if s.along > 0.0]
 
-    def responses(self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None) -> Response:
+    def responses(
+        self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None
+    ) -> Response:
         """Responses to every atom on one set of moduli."""
         with_shear = self.member.shear if shear is None else shear
         name = (key, lifted, with_shear)
@@ -166,7 +176,9 @@ class Analysis:
         for creep in own:
             mine = np.array([a.own_creep == creep for a in self.atoms]) & (lasting != 0.0)
             if mine.any():
-                found.append(Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0)))
+                found.append(
+                    Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0))
+                )
         return tuple(found)
 
     def combine(self, combination: Combination, band: str = "nominal") -> Combined:
@@ -180,7 +192,11 @@ class Analysis:
         return Combined(combination, shares, lifted, patterns, self.superposed(shares, lifted))
 
     def superposed(
-        self, shares: Sequence[Share], lifted: frozenset[str], shear: bool | None = None, off: NDArray[np.bool_] | None = None
+        self,
+        shares: Sequence[Share],
+        lifted: frozenset[str],
+        shear: bool | None = None,
+        off: NDArray[np.bool_] | None = None,
     ) -> Response:
         """Sum of shares; atoms in `off` left out."""
         parts = []
@@ -215,7 +231,9 @@ class Analysis:
                 for k, s in enumerate(supports)
                 if s.only_up and s.name not in lifted and r.reactions[k, 0] > 1e-9 * size
             }
-            presses = {s.name: g for s in supports if s.name in lifted and (g := self._gap(r, shares, s.name)) > 0.0}
+            presses = {
+                s.name: g for s in supports if s.name in lifted and (g := self._gap(r, shares, s.name)) > 0.0
+            }
             if not pulls and not presses:
                 return lifted
             if pulls:
@@ -235,6 +253,9 @@ class Analysis:
         w = r.deflection[0]
         here = float(w[k] @ panels.rule.left if k < panels.count else w[-1] @ panels.rule.right)
         factor = sum(
-            float(f) for s in shares for f, a in zip(s.factors, self.atoms, strict=True) if a.case == support.case and a.span is None
+            float(f)
+            for s in shares
+            for f, a in zip(s.factors, self.atoms, strict=True)
+            if a.case == support.case and a.span is None
         )
         return here - support.sinks * factor - 1e-9 * float(np.abs(w).max())

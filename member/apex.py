@@ -40,7 +40,7 @@ def judge(panels: Panels, r: Response) -> Apexes:
     """
     left_of, right_of = set(), set()
     for apex in panels.apexes:
-        k, other, _ = apex
+        k, _other, _ = apex
         at_a = panels.anchor[k] < 0
         steep = False
         for p in (0, 1):

@@ -14,44 +14,21 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Frame
-from fishbelly.member.equilibrium import Determinate, Forces, couple_at, determinate, turns_freely
+from fishbelly.member.equilibrium import Determinate, Forces, couple_at, determinate
 from fishbelly.member.faults import Mechanism
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.section_law import ElasticLaw, Strains
+from fishbelly.member.unknowns import (
+    HELD_BY,
+    MOVES,
+    Dof,
+    State,
+    deformations,
+    movements,
+    unit_states,
+)
 
 Array = NDArray[np.float64]
-
-Dof = tuple[int, str]
-"""A movement: node and "along", "down", "turn left", "turn right", "across" or "turn across"."""
-
-HELD_BY = {
-    "along": "along",
-    "down": "down",
-    "turn left": "rotation",
-    "turn right": "rotation",
-    "across": "across",
-    "turn across": "rotation_across",
-}
-MOVES = {
-    "along": "move along the member",
-    "down": "move up and down",
-    "turn left": "turn",
-    "turn right": "turn",
-    "across": "move sideways",
-    "turn across": "turn sideways",
-}
-SUSPICIOUS = 300
-"""Up to this many free movements a mechanism is looked for by singular values beforehand."""
-
-
-@dataclass(frozen=True, eq=False)
-class State:
-    """A unit end force of a segment: its forces at the segment's points, and how its ends' movements strain it."""
-
-    segment: int
-    name: str
-    movements: tuple[tuple[Dof, float], ...]
-
 
 @dataclass(frozen=True, eq=False)
 class Redundants:
@@ -112,13 +89,15 @@ def redundants(frame: Frame, layout: Layout, law: ElasticLaw, planes: int) -> Re
     """
     if not layout.nodes:
         raise Mechanism("there is no support")
-    movable = _movements(layout, planes)
-    states = _states(layout, planes)
+    movable = movements(layout, planes)
+    states = unit_states(layout, planes)
     rigid = {d for d in movable if layout.nodes[d[0]].held(HELD_BY[d[1]])[1]}
     free = [d for d in movable if d not in rigid]
-    B_all = _deformations(states, movable)
+    B_all = deformations(states, movable)
     springs = np.array([layout.nodes[d[0]].held(HELD_BY[d[1]])[0] for d in free])
-    loose = _loose(layout, free, B_all[:, [movable.index(d) for d in free]] if free else B_all[:, :0], springs)
+    loose = _loose(
+        layout, free, B_all[:, [movable.index(d) for d in free]] if free else B_all[:, :0], springs
+    )
     free = [d for d in free if d not in loose]
     known = [d for d in movable if d in rigid or d in loose]
     units = _unit_forces(frame, layout, states)
@@ -136,86 +115,6 @@ def redundants(frame: Frame, layout: Layout, law: ElasticLaw, planes: int) -> Re
         np.diag([layout.nodes[d[0]].held(HELD_BY[d[1]])[0] for d in free]),
         units,
     )
-
-
-def _movements(layout: Layout, planes: int) -> list[Dof]:
-    found: list[Dof] = []
-    for k, node in enumerate(layout.nodes):
-        if len(layout.holds_along) > 1:
-            found.append((k, "along"))
-        found.append((k, "down"))
-        if not turns_freely(layout, k, 0):
-            found.append((k, "turn left"))
-            if node.hinge:
-                found.append((k, "turn right"))
-        if planes > 1:
-            found.append((k, "across"))
-            if not turns_freely(layout, k, 1):
-                found.append((k, "turn across"))
-    return found
-
-
-def _states(layout: Layout, planes: int) -> list[State]:
-    states = []
-    several = len(layout.holds_along) > 1
-    for number, seg in enumerate(layout.segments):
-        if seg.left is None or seg.right is None:
-            continue
-        i, j = seg.left, seg.right
-        length = layout.nodes[j].at - layout.nodes[i].at
-        if several:
-            lean = (layout.nodes[j].level - layout.nodes[i].level) / length
-            moves = [((j, "along"), 1.0), ((i, "along"), -1.0)]
-            for p, way in enumerate(("down", "across")[:planes]):
-                moves += [((j, way), -lean[p]), ((i, way), lean[p])]
-            states.append(State(number, "N", tuple(moves)))
-        for p, way in enumerate(("down", "across")[:planes]):
-            turn_i = "turn across" if p else ("turn right" if layout.nodes[i].hinge else "turn left")
-            turn_j = "turn across" if p else "turn left"
-            chord = (((i, way), 1.0 / length), ((j, way), -1.0 / length))
-            if not turns_freely(layout, i, p):
-                states.append(State(number, f"left {p}", (((i, turn_i), 1.0), *chord)))
-            if not turns_freely(layout, j, p):
-                back = tuple((d, -v) for d, v in chord)
-                states.append(State(number, f"right {p}", (((j, turn_j), -1.0), *back)))
-    return states
-
-
-def _deformations(states: list[State], movable: list[Dof]) -> Array:
-    columns = {d: k for k, d in enumerate(movable)}
-    B = np.zeros((len(states), len(movable)))
-    for row, state in enumerate(states):
-        for dof, value in state.movements:
-            B[row, columns[dof]] += value
-    return B
-
-
-def _loose(layout: Layout, free: list[Dof], B: Array, springs: Array) -> list[Dof]:
-    """Movements that nothing resists and that may stay so (sideways, along); others are a mechanism."""
-    if not free or len(free) > SUSPICIOUS:
-        return []
-    length = max(layout.nodes[-1].at - layout.nodes[0].at, 1e-3)
-    scale = np.array([1.0 if d[1] in ("along", "down", "across") else 1.0 / length for d in free])
-    # what the end forces and springs feel of each movement, made free of units
-    strained = B * scale / np.maximum(np.abs(B * scale).max(axis=1, initial=0.0), 1e-300)[:, None]
-    felt = np.vstack((strained, np.diag((springs > 0.0).astype(float))))
-    vertical = np.array([d[1] in ("down", "turn left", "turn right") for d in free])
-    loose: list[Dof] = []
-    active = np.arange(len(free))
-    while active.size:
-        _, values, modes = np.linalg.svd(felt[:, active])
-        full = np.concatenate((values, np.zeros(active.size - values.size)))
-        if full[-1] > 1e-10 * max(full[0], 1e-300):
-            break
-        mode = np.abs(modes[-1])
-        upright = np.where(vertical[active], mode, 0.0)
-        if upright.max() > 1e-6:
-            node, way = free[active[int(np.argmax(upright))]]
-            raise Mechanism(f"the member can {MOVES[way]} at x = {layout.nodes[node].at:.6g} m")
-        worst = active[int(np.argmax(mode))]
-        loose.append(free[worst])
-        active = active[active != worst]
-    return loose
 
 
 def _unit_forces(frame: Frame, layout: Layout, states: list[State]) -> Forces:
@@ -281,7 +180,13 @@ def _flexibility(frame: Frame, layout: Layout, law: ElasticLaw, states: list[Sta
 
 
 def solve(
-    frame: Frame, r: Redundants, law: ElasticLaw, loads: list[Actions], free: list[tuple[Array, Array]], sinks: list[dict[Dof, Array]], planes: int
+    frame: Frame,
+    r: Redundants,
+    law: ElasticLaw,
+    loads: list[Actions],
+    free: list[tuple[Array, Array]],
+    sinks: list[dict[Dof, Array]],
+    planes: int,
 ) -> list[Solution]:
     """Close the gaps under several atoms at once.
 
@@ -304,8 +209,15 @@ def solve(
     """
     released = [determinate(frame, r.layout, a, planes) for a in loads]
     gaps = np.array([_gaps(frame, r, law, d.forces, f) for d, f in zip(released, free, strict=True)])
-    known = np.array([[s.get(d, np.zeros(2))[1] for d in r.known] for s in sinks]).reshape(len(loads), len(r.known))
-    pushed = np.array([[_out_of_balance(r.layout, d, a, dof) for dof in r.free] for d, a in zip(released, loads, strict=True)])
+    known = np.array([[s.get(d, np.zeros(2))[1] for d in r.known] for s in sinks]).reshape(
+        len(loads), len(r.known)
+    )
+    pushed = np.array(
+        [
+            [_out_of_balance(r.layout, d, a, dof) for dof in r.free]
+            for d, a in zip(released, loads, strict=True)
+        ]
+    )
     pushed = pushed.reshape(len(loads), len(r.free))
     springs = np.array([[s.get(d, np.zeros(2))[0] for d in r.free] for s in sinks]).reshape(pushed.shape)
     right = np.hstack((gaps - known @ r.B_known.T, pushed + springs)).T
@@ -313,7 +225,8 @@ def solve(
     matrix = np.block([[-r.flexibility, r.B_free], [r.B_free.T, r.springs]])
     found = _solved(matrix, right) if matrix.size else right
     return [
-        _solution(r, released[k], loads[k], found[:u, k], found[u:, k], known[k], sinks[k]) for k in range(len(loads))
+        _solution(r, released[k], loads[k], found[:u, k], found[u:, k], known[k], sinks[k])
+        for k in range(len(loads))
     ]
 
 
@@ -385,7 +298,9 @@ def _solved(matrix: Array, right: Array) -> Array:
                 x = x + np.linalg.solve(scaled, (target - wide @ x.astype(np.longdouble)).astype(float))
     except np.linalg.LinAlgError:
         raise Mechanism("the member can move without straining") from None
-    if not np.all(np.isfinite(x)) or np.abs(x).max(initial=0.0) > 1e14 * max(np.abs(right * scale[:, None]).max(), 1e-300):
+    if not np.all(np.isfinite(x)) or np.abs(x).max(initial=0.0) > 1e14 * max(
+        np.abs(right * scale[:, None]).max(), 1e-300
+    ):
         raise Mechanism("the member can move without straining")
     return np.asarray(x * scale[:, None])
 
@@ -400,7 +315,9 @@ def _solution(
         forces.N[part] += value * r.units.N[slot, part]
         forces.V[:, part] += value * r.units.V[:, slot, part]
         forces.M[:, part] += value * r.units.M[:, slot, part]
-    movements = dict(zip(r.free, moved.tolist(), strict=True)) | dict(zip(r.known, known.tolist(), strict=True))
+    movements = dict(zip(r.free, moved.tolist(), strict=True)) | dict(
+        zip(r.known, known.tolist(), strict=True)
+    )
     carried = dict(zip(r.free, (r.B_free.T @ s).tolist(), strict=True)) | dict(
         zip(r.known, (r.B_known.T @ s).tolist(), strict=True)
     )
@@ -409,5 +326,7 @@ def _solution(
     for dof in r.loose:
         if abs(reactions[dof]) > 1e-7 * max(size, 1e-300) and abs(reactions[dof]) > 1e-9:
             node, way = dof
-            raise Mechanism(f"the member can {MOVES[way]} at x = {r.layout.nodes[node].at:.6g} m, and a load pushes it")
+            raise Mechanism(
+                f"the member can {MOVES[way]} at x = {r.layout.nodes[node].at:.6g} m, and a load pushes it"
+            )
     return Solution(forces, movements, reactions)

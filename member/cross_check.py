@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from typing import Any
 
-import numpy as np
-
 from fishbelly.member.analysis import Analysis, Combined
 
 

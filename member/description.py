@@ -13,6 +13,7 @@ from types import MappingProxyType
 from fishbelly.member.laws import Law, constant
 from fishbelly.member.loads import Load
 
+
 @dataclass(frozen=True)
 class Strength:
     """Allowable stresses [Pa], each positive; None where there is none."""

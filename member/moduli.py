@@ -22,7 +22,9 @@ class Moduli:
     G: Array
 
 
-def moduli(member: Member, band: str = "nominal", long_term: bool = False, own: Mapping[str, float] | None = None) -> Moduli:
+def moduli(
+    member: Member, band: str = "nominal", long_term: bool = False, own: Mapping[str, float] | None = None
+) -> Moduli:
     """Return a set of moduli.
 
     Parameters

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Collection
 from dataclasses import dataclass
 
@@ -92,7 +93,7 @@ def layout(frame: Frame, lifted: Collection[str] = ()) -> Layout:
         return Layout((), (Segment(0, panels.count, None, None),))
     if borders[0] > 0:
         segments.append(Segment(0, borders[0], None, 0))
-    segments += [Segment(a, b, k, k + 1) for k, (a, b) in enumerate(zip(borders, borders[1:], strict=False))]
+    segments += [Segment(a, b, k, k + 1) for k, (a, b) in enumerate(itertools.pairwise(borders))]
     if borders[-1] < panels.count:
         segments.append(Segment(borders[-1], panels.count, len(nodes) - 1, None))
     return Layout(nodes, tuple(segments))

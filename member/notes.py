@@ -18,6 +18,7 @@ from fishbelly.sections.touching import touching_groups
 Array = NDArray[np.float64]
 Data = dict[str, Any]
 
+
 def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
     """All notes of a solved member, in the order of `NOTES`."""
     found: list[Note] = []
@@ -29,7 +30,9 @@ def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
 def _cases(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     member = analysis.member
     if len(member.combinations) == 1 and member.combinations[0].name == "all" and len(member.cases) > 1:
-        yield Note(f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1")
+        yield Note(
+            f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1"
+        )
     used = {case for c in member.combinations for case, f in c.factors.items() if f}
     unused = [c for c in member.cases if c not in used]
     if unused:
@@ -73,10 +76,18 @@ def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
             worst = (float(group.placed.x[k]), float(together[k]), float(own[k]), names, joined)
     if worst is not None and worst[1] > worst[2] * (1.0 + 1e-9):
         at, together_k, own_k, names, joined = worst
-        how = "are taken to act together, rigidly joined" if joined else "do not all touch, yet are taken to act together"
+        how = (
+            "are taken to act together, rigidly joined"
+            if joined
+            else "do not all touch, yet are taken to act together"
+        )
         yield Note(
             f"{_listed(names)} {how}: EI {{EI}} at x = {{at}}, {{own}} with nothing joined",
-            {"EI": (together_k, "bending stiffness"), "own": (own_k, "bending stiffness"), "at": (at, "position")},
+            {
+                "EI": (together_k, "bending stiffness"),
+                "own": (own_k, "bending stiffness"),
+                "at": (at, "position"),
+            },
         )
 
 
@@ -90,7 +101,9 @@ def _moduli_apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     stiff = sorted((analysis.member.material(n).E, n) for n in used)
     if stiff and stiff[-1][0] > 25.0 * stiff[0][0]:
         ratio = stiff[-1][0] / stiff[0][0]
-        yield Note(f"E of {stiff[-1][1]} is {ratio:.0f} times that of {stiff[0][1]}: full composite action wants stiff joints")
+        yield Note(
+            f"E of {stiff[-1][1]} is {ratio:.0f} times that of {stiff[0][1]}: full composite action wants stiff joints"
+        )
 
 
 def _lasting(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
@@ -100,7 +113,9 @@ def _lasting(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     for name in dict.fromkeys(p.material for p in member.parts if p.material):
         material = member.material(name)
         if material.creep:
-            yield Note(f"{name} creeps, and is used with its short-term modulus alone (no combination has a sustained share)")
+            yield Note(
+                f"{name} creeps, and is used with its short-term modulus alone (no combination has a sustained share)"
+            )
 
 
 def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
@@ -189,9 +204,13 @@ def _cantilevers(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
         if limit.spans is not None and not any(isinstance(s, str) for s in limit.spans):
             continue
         if limit.cantilever_over is not None:
-            yield Note(f"limit {limit.name}: an overhang may sag its own length over {limit.cantilever_over:g}")
+            yield Note(
+                f"limit {limit.name}: an overhang may sag its own length over {limit.cantilever_over:g}"
+            )
         else:
-            yield Note(f"limit {limit.name}: an overhang counts with twice its length, 2L/{limit.span_over:g}")
+            yield Note(
+                f"limit {limit.name}: an overhang counts with twice its length, 2L/{limit.span_over:g}"
+            )
 
 
 def _openings(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:

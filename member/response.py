@@ -12,12 +12,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Atom, Frame, free_forces
-from fishbelly.member.compatibility import HELD_BY, Dof, Redundants, Solution, redundants, solve
+from fishbelly.member.compatibility import Redundants, Solution, redundants, solve
 from fishbelly.member.description import Support
 from fishbelly.member.equilibrium import Forces, axial_forces, panels_integral
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.panels import Panels
 from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.unknowns import HELD_BY, Dof
 
 Array = NDArray[np.float64]
 
@@ -79,7 +80,13 @@ class Response:
 
 
 def respond(
-    frame: Frame, layout: Layout, law: ElasticLaw, atoms: Sequence[Atom], loads: list[Actions], free: list[tuple[Array, Array]], planes: int
+    frame: Frame,
+    layout: Layout,
+    law: ElasticLaw,
+    atoms: Sequence[Atom],
+    loads: list[Actions],
+    free: list[tuple[Array, Array]],
+    planes: int,
 ) -> Response:
     """Response to every atom.
 
@@ -114,8 +121,12 @@ def respond(
     strains = law.strains(Forces(N + free_n, V, M + free_m))
     rotation, deflection = np.zeros_like(V), np.zeros_like(V)
     for p in range(planes):
-        rotation[p], deflection[p] = _deflected(frame.profile.panels, layout, found, strains.curvature[p], strains.shear[p], p)
-    reactions = np.array([_reactions(frame, r, s, atom, a) for s, atom, a in zip(found, atoms, loads, strict=True)])
+        rotation[p], deflection[p] = _deflected(
+            frame.profile.panels, layout, found, strains.curvature[p], strains.shear[p], p
+        )
+    reactions = np.array(
+        [_reactions(frame, r, s, atom, a) for s, atom, a in zip(found, atoms, loads, strict=True)]
+    )
     return Response(N, V, M, strains.axial, strains.curvature, strains.shear, rotation, deflection, reactions)
 
 

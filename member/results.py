@@ -150,7 +150,9 @@ def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
     return {
         "down": _shear_part(analysis, combined, down) if down.value > NEGLIGIBLE * size else None,
         "up": {"value": up.value, "at": up.at} if up.value > NEGLIGIBLE * size else None,
-        "across": {"value": sign * across.value, "at": across.at} if across.value > NEGLIGIBLE * size else None,
+        "across": {"value": sign * across.value, "at": across.at}
+        if across.value > NEGLIGIBLE * size
+        else None,
     }
 
 
@@ -217,7 +219,8 @@ def _ends(analysis: Analysis, p: Pieces, apexes: Apexes) -> Data:
     ):
         at = np.array([x])
         w, rotation, angle = (
-            float(values_at(panels, f[0].sum(axis=0), at, side)[0]) for f in (p.deflection, p.rotation, p.shear)
+            float(values_at(panels, f[0].sum(axis=0), at, side)[0])
+            for f in (p.deflection, p.rotation, p.shear)
         )
         turned = None if none else rotation
         result[name] = {
@@ -301,7 +304,10 @@ def _stations(analysis: Analysis, p: Pieces, apexes: Apexes, wanted: list[float]
         border = panels.border(float(place))
         infinite = border in (apexes.right_of if sides[k] == "right" else apexes.left_of)
         infinite &= abs(float(place) - _border_at(panels, border)) < tiny
-        row: Data = {"x": float(place), "name": next((n for at, n in named.items() if abs(at - place) < tiny), None)}
+        row: Data = {
+            "x": float(place),
+            "name": next((n for at, n in named.items() if abs(at - place) < tiny), None),
+        }
         row |= {key: float(v[k]) + 0.0 for key, v in columns.items()}
         if infinite:
             row["slope"] = row["rotation"] = None
@@ -364,14 +370,22 @@ def _envelope(analysis: Analysis, p: Pieces, stations: Sequence[Data]) -> Data:
         v = np.where(np.array(sides) == "left", left, right)
         columns[name] = (v[0] + np.minimum(v[1:], 0.0).sum(axis=0), v[0] + np.maximum(v[1:], 0.0).sum(axis=0))
     rows = [
-        {"x": float(x[k]), **{n: {"min": float(lo[k]), "max": float(hi[k])} for n, (lo, hi) in columns.items()}}
+        {
+            "x": float(x[k]),
+            **{n: {"min": float(lo[k]), "max": float(hi[k])} for n, (lo, hi) in columns.items()},
+        }
         for k in range(x.size)
     ]
     order = sorted(range(len(analysis.member.supports)), key=lambda k: analysis.member.supports[k].at)
     supports = []
     for k in order:
         row: Data = {"name": analysis.member.supports[k].name, "at": analysis.member.supports[k].at}
-        for name, column, sign in (("vertical", 0, -1.0), ("along", 1, 1.0), ("moment", 2, 1.0), ("across", 3, 1.0)):
+        for name, column, sign in (
+            ("vertical", 0, -1.0),
+            ("along", 1, 1.0),
+            ("moment", 2, 1.0),
+            ("across", 3, 1.0),
+        ):
             v = sign * p.reactions[:, k, column]
             row[name] = {
                 "min": float(v[0] + np.minimum(v[1:], 0.0).sum()),
@@ -388,7 +402,10 @@ def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
         other = analysis.combine(combined.combination, band)
         loading = loadings(analysis, other)
         p = pieces(analysis, loading)
-        bands[band] = (deflections(analysis, other, p), _checks(analysis, other, p, part_stresses(analysis, loading)))
+        bands[band] = (
+            deflections(analysis, other, p),
+            _checks(analysis, other, p, part_stresses(analysis, loading)),
+        )
     for name, entry in data["deflection"].items():
         if entry is not None:
             entry["band"] = {b: (v[0][name] or {}).get("value") for b, v in bands.items()}

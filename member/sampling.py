@@ -90,7 +90,7 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
             new = group_places(geometry, x, 0.5 * (batch.a + batch.b)[which], rows)
             row[which] = rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
             if varying:
-                worst = _tails(new, short, rows, which.size, with_shear, batch.at(which))
+                worst = _tails(geometry, new, short, rows, which.size, with_shear, batch.at(which))
                 done[which] = worst["done"].astype(bool)
             groups += new
             rows += x.size
@@ -100,7 +100,9 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
         if panels + batch.a.size > most:
             break
     if batch.a.size:
-        raise CannotCompute(f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved")
+        raise CannotCompute(
+            f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved"
+        )
     return _assembled(geometry, kept, groups, rows)
 
 
@@ -126,7 +128,9 @@ def _first(member: Member, breaks: Array) -> _Batch:
     return _Batch(a, b, anchor, varying, np.zeros(a.size, dtype=np.int_))
 
 
-def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch) -> dict[str, Array]:
+def _tails(
+    geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch
+) -> dict[str, Array]:
     """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
     columns = np.zeros((8, count * POINTS))
     for g in new:
@@ -134,7 +138,16 @@ def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool,
         size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
         cross = s.EI_yz / np.sqrt(s.EI_y * s.EI_z)
         ga = g.shear(short).GA if shear else np.ones(g.rows.size)
-        columns[:, g.rows - first] = (1.0 / s.EA, 1.0 / s.EI_y, 1.0 / s.EI_z, s.z_c, s.y_c, cross, 1.0 / ga, size)
+        columns[:, g.rows - first] = (
+            1.0 / s.EA,
+            1.0 / s.EI_y,
+            1.0 / s.EI_z,
+            s.z_c,
+            s.y_c,
+            cross,
+            1.0 / ga,
+            size,
+        )
     v = columns.reshape(8, count, POINTS)
     if not np.all(np.isfinite(v)):
         k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
@@ -153,9 +166,27 @@ def _tails(new: list[Group], short: Moduli, first: int, count: int, shear: bool,
     r = rule(POINTS)
     lowest = APEX * EI.max(axis=-1)
     apex = np.where(EI @ r.left < lowest, -2, np.where(EI @ r.right < lowest, 2, 0))
+    for k in np.flatnonzero((apex != 0) & (batch.anchor == 0) & ~done):
+        if not _vanishes(geometry, short, batch.a[k], batch.b[k], int(apex[k])):
+            apex[k] = 0
     at_zero = (batch.anchor < 0) & (batch.a == 0.0)
     done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 14))
     return {"done": done.astype(float), "apex": apex.astype(float)}
+
+
+def _vanishes(geometry: Geometry, short: Moduli, a: float, b: float, apex: int) -> bool:
+    """Whether the section at a panel's end is nothing, and not only thin."""
+    end, side = (a, "right") if apex < 0 else (b, "left")
+    with np.errstate(all="ignore"):
+        there, inside = (
+            float(
+                group_places(geometry, np.array([[x]]), np.array([0.5 * (a + b)]), 0, side)[0]
+                .stiffness(short)
+                .EA[0]
+            )
+            for x in (end, 0.5 * (a + b))
+        )
+    return not there > 1e-13 * inside
 
 
 def _noise(v: Array, batch: _Batch) -> Array:
@@ -187,7 +218,9 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
     )
 
 
-def _assembled(geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int) -> Profile:
+def _assembled(
+    geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int
+) -> Profile:
     a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
     anchor = np.concatenate([k.anchor for k, _ in kept])
     row = np.concatenate([r for _, r in kept]).astype(np.intp)

@@ -72,16 +72,18 @@ RULE = GaussRule.of(POINTS)
 class Intervals:
     """K intervals a to b [m]; `root` -1 or +1 where the section changes like a root at a or at b, else 0.
 
-    At such an end x - a = (b - a) u², with u from 0 to 1, takes the root away.
+    At such an end x - a = (b - a) u², with u from 0 to 1, takes the root away. `home`: middle of the interval
+    between breaks of which each is a piece, where it is certain what stands there.
     """
 
     a: Array
     b: Array
     root: NDArray[np.int_]
+    home: Array
 
     def at(self, index: NDArray[np.generic]) -> Intervals:
         """Return some of the intervals."""
-        return Intervals(self.a[index], self.b[index], self.root[index])
+        return Intervals(self.a[index], self.b[index], self.root[index], self.home[index])
 
     @cached_property
     def x(self) -> Array:
@@ -110,7 +112,8 @@ class Intervals:
         h = self.b - self.a
         middle = self.a + h * np.choose(self.root + 1, (0.25, 0.5, 0.75))
         root = np.concatenate((np.minimum(self.root, 0), np.maximum(self.root, 0)))
-        return Intervals(np.concatenate((self.a, middle)), np.concatenate((middle, self.b)), root)
+        home = np.concatenate((self.home, self.home))
+        return Intervals(np.concatenate((self.a, middle)), np.concatenate((middle, self.b)), root, home)
 
     def graded(self, k: int, end: int, smallest: float) -> Intervals:
         """Interval k as several, each a third of the next, towards its end a (-1) or b (+1)."""
@@ -121,12 +124,13 @@ class Intervals:
             borders = np.concatenate((self.a[k : k + 1], self.a[k] + reach[:0:-1], self.b[k : k + 1]))
         else:
             borders = np.concatenate((self.a[k : k + 1], self.b[k] - reach[1:], self.b[k : k + 1]))
-        return Intervals(borders[:-1], borders[1:], np.zeros(borders.size - 1, dtype=np.int_))
+        n = borders.size - 1
+        return Intervals(borders[:-1], borders[1:], np.zeros(n, dtype=np.int_), np.full(n, self.home[k]))
 
     @staticmethod
     def joined(several: list[Intervals]) -> Intervals:
         """Return several sets as one."""
-        return Intervals(*(np.concatenate([getattr(i, f) for i in several]) for f in ("a", "b", "root")))
+        return Intervals(*(np.concatenate([getattr(i, f) for i in several]) for f in ("a", "b", "root", "home")))
 
 
 def own_breaks(member: Member) -> Array:
@@ -182,4 +186,4 @@ def first_intervals(member: Member) -> Intervals:
     for place in root_ends(member):
         root[np.abs(a - place) < 1e-9 * member.length] = -1
         root[np.abs(b - place) < 1e-9 * member.length] = 1
-    return Intervals(a, b, root)
+    return Intervals(a, b, root, 0.5 * (a + b))

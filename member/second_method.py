@@ -16,9 +16,16 @@ from fishbelly.member.description import Member
 from fishbelly.member.second_grid import RULE
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, pushes
 from fishbelly.member.second_sections import POINTS, Flexibility, Sampled, Slide, flexibility, sample
-from fishbelly.member.second_segments import Cut, Fields, Strain, end_movements, load_fields, strains, unit_fields
+from fishbelly.member.second_segments import (
+    Fields,
+    Strain,
+    end_movements,
+    load_fields,
+    strains,
+    unit_fields,
+)
 from fishbelly.member.second_solve import solve_parameters
-from fishbelly.member.second_statics import WAYS, Frame, Parameters, System, frame, sinks
+from fishbelly.member.second_statics import Frame, Parameters, System, frame, sinks
 
 __all__ = ["LoadShare", "SecondResult", "second_method"]
 
@@ -258,13 +265,20 @@ def _error(s: _Solved, sampled: Sampled, size: float) -> float:
     """Estimate of the error of the deflections [m]: what is not resolved, and round-off."""
     cut = s.frame.cut
     i = cut.intervals
-    reach = (cut.end - cut.start)[cut.segment]
-    if len(cut.stretches) == 1 or cut.free_left or cut.free_right:
-        reach = np.full(i.a.size, s.ground.member.length)
+    overhang = cut.free_left or cut.free_right
+    span = np.full(i.a.size, s.ground.member.length) if overhang else (cut.end - cut.start)[cut.segment]
+    reach = np.broadcast_to(span[:, None], i.x.shape).copy()
+    # a kink in an overhang moves only what lies beyond it
+    if cut.free_left:
+        part = slice(0, cut.stretches[0].stop)
+        reach[part] = i.x[part] - cut.start[0]
+    if cut.free_right:
+        part = slice(cut.stretches[-1].first, None)
+        reach[part] = cut.end[-1] - i.x[part]
     weight = i.stretch * RULE.weights
-    bent = (np.abs(s.strain.curvature[: s.frame.planes]) * weight).sum(axis=(0, 2)) * reach
+    bent = (np.abs(s.strain.curvature[: s.frame.planes]) * weight * reach).sum(axis=(0, 2))
     sheared = (np.abs(s.strain.angle[: s.frame.planes]) * weight).sum(axis=(0, 2))
-    return float((sampled.tail * (bent + sheared)).sum()) + s.parameters.correction * size
+    return 5.0 * float((sampled.tail * (bent + sheared)).sum()) + s.parameters.correction * size
 
 
 def _work_check(s: _Solved, deflection: Array) -> Mapping[str, float] | None:
@@ -286,7 +300,7 @@ def _work_check(s: _Solved, deflection: Array) -> Mapping[str, float] | None:
         for p in range(2):
             both[p, p] = edge(bend[p, p])
             moved[p] = edge(slide[p])
-        if not np.all(np.isfinite(both)):
+        if not np.all(both < 1e9 * np.median(bend[0, 0])):
             return None
         still = np.broadcast_to(s.ground.line[:, None, None], s.law.c.shape)
         law = Flexibility(s.law.EA, still, both, moved)

@@ -222,8 +222,11 @@ def _evaluated(geometry: Geometry, i: Intervals) -> tuple[Sections, NDArray[np.b
     )
     varies = np.zeros(shape[0], dtype=bool)
     groups: dict[tuple[tuple[int, ...], ...], list[int]] = {}
-    for k, middle in enumerate(0.5 * (i.a + i.b)):
-        groups.setdefault(geometry.present(float(middle)), []).append(k)
+    there_at: dict[float, tuple[tuple[int, ...], ...]] = {}
+    for k, home in enumerate(i.home.tolist()):
+        if home not in there_at:
+            there_at[home] = geometry.present(home)
+        groups.setdefault(there_at[home], []).append(k)
     for there, members in groups.items():
         k = np.array(members)
         if all(geometry.member.parts[p].cuts for p in there[0]):

@@ -88,7 +88,7 @@ class Cut:
 
     @cached_property
     def lever(self) -> Array:
-        """x minus the end from which forces are summed [m], shape (K, n)."""
+        """X minus the end from which forces are summed [m], shape (K, n)."""
         origin = np.where(self.from_left, self.start[self.segment], self.end[self.segment])
         return np.asarray(self.intervals.x - origin[:, None])
 

@@ -47,7 +47,13 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
     group = group_places(Geometry(member), np.array([[x]]), np.array([x]), 0, side)[0]
     short = moduli(member)
     s = group.stiffness(short)
-    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "x": x, "side": side, "stage": "all"}
+    data: Data = {
+        "title": member.title,
+        "units": "SI: m, N, Pa, rad, kg",
+        "x": x,
+        "side": side,
+        "stage": "all",
+    }
     data |= {k: _number(getattr(s, k)[0]) for k in ("EA", "EI_y", "EI_z", "EI_yz")}
     data |= {"GA_y": _shear(member, group, short, True), "GA_z": _shear(member, group, short, False)}
     data |= {"y_c": _number(s.y_c[0]), "z_c": _number(s.z_c[0]), "mass": _mass(member, group)}
@@ -170,7 +176,10 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
 def _jumps(left: Array, right: Array, table: Array) -> bool:
     size = np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1)
     gap = np.abs(left - right)
-    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size) or np.any(np.isnan(left) != np.isnan(right)))
+    return bool(
+        np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size)
+        or np.any(np.isnan(left) != np.isnan(right))
+    )
 
 
 def profile_at(member: Member, x: Array, sides: list[str]) -> Array:

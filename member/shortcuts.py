@@ -8,8 +8,8 @@ from typing import Any
 import numpy as np
 
 from fishbelly.member.analysis import Analysis, ModuliKey
-from fishbelly.member.note import Note
 from fishbelly.member.nodes import layout
+from fishbelly.member.note import Note
 from fishbelly.member.response import respond
 from fishbelly.member.section_law import ElasticLaw
 
@@ -50,4 +50,3 @@ def _prismatic(analysis: Analysis, EI: float) -> float | None:
     total = r.combined(np.asarray(sum(s.factors for s in shares)))
     w = float(total.deflection[0].max())
     return w if np.isfinite(w) and w > 0.0 else None
-

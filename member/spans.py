@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 from fishbelly.member.description import Member
 
@@ -46,7 +47,7 @@ def spans(member: Member) -> tuple[Span, ...]:
     places = [x for k, x in enumerate(places) if k == 0 or x - places[k - 1] > tiny]
     if not places:
         return ()
-    found = [Span(k + 1, a, b) for k, (a, b) in enumerate(zip(places, places[1:], strict=False))]
+    found = [Span(k + 1, a, b) for k, (a, b) in enumerate(pairwise(places))]
     left = [Span("left", 0.0, places[0])] if places[0] > tiny else []
     right = [Span("right", places[-1], member.length)] if member.length - places[-1] > tiny else []
     return tuple(left + found + right)

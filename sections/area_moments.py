@@ -44,7 +44,9 @@ class AreaMoments:
 
     def times(self, factor: Array | float) -> AreaMoments:
         """Return the moments weighted by a factor, such as E or density; the centroid stays."""
-        return AreaMoments(self.area * factor, self.y, self.z, self.zz * factor, self.yy * factor, self.yz * factor)
+        return AreaMoments(
+            self.area * factor, self.y, self.z, self.zz * factor, self.yy * factor, self.yz * factor
+        )
 
     def at(self, index: object) -> AreaMoments:
         """Return the moments at an index of the stack."""

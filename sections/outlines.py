@@ -128,7 +128,9 @@ def edge_boxes(outline: Outline, edges: NDArray[np.intp]) -> tuple[Array, Array,
     if curved.size:
         y_c, z_c, r, start, turn = arcs(outline, edges[curved])
         low = np.minimum(start, start + turn)
-        for k, (lo, hi, centre) in enumerate(((None, hi_y, y_c), (None, hi_z, z_c), (lo_y, None, y_c), (lo_z, None, z_c))):
+        for k, (lo, hi, centre) in enumerate(
+            ((None, hi_y, y_c), (None, hi_z, z_c), (lo_y, None, y_c), (lo_z, None, z_c))
+        ):
             # the arc passes the direction k * 90 degrees, seen from its centre
             passes = np.mod(0.5 * np.pi * k - low, 2.0 * np.pi) < np.abs(turn)
             if hi is not None:
@@ -245,7 +247,16 @@ def channel(d: Dimensions) -> Outline:
     toe = d["flange"] - d["slope"] * (b - d["flange_at"])
     root = d["flange"] + d["slope"] * (d["flange_at"] - w)
     zero = np.zeros_like(b)
-    corners = [(zero, -h), (b, -h), (b, -h + toe), (w, -h + root), (w, h - root), (b, h - toe), (b, h), (zero, h)]
+    corners = [
+        (zero, -h),
+        (b, -h),
+        (b, -h + toe),
+        (w, -h + root),
+        (w, h - root),
+        (b, h - toe),
+        (b, h),
+        (zero, h),
+    ]
     r, s = d["radius"], d["toe_radius"]
     return rounded(corners, [0.0, 0.0, s, r, r, s, 0.0, 0.0])
 

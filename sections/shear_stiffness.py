@@ -96,7 +96,9 @@ def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
     return np.asarray(empty & below & above & (height > 1e-12 * size))
 
 
-def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStiffness:
+def _piecewise(
+    levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool
+) -> ShearStiffness:
     """Sections in pieces one above the other, station by station."""
     stations = gaps.shape[0]
     total, peak = np.empty(stations), np.zeros(G.shape)

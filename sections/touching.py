@@ -33,12 +33,12 @@ def touching_groups(outlines: Sequence[Outline], station: int) -> list[list[int]
     return groups
 
 
-def _polygons(outline: Outline, station: int):  # type: ignore[no-untyped-def]  # noqa: ANN202
+def _polygons(outline: Outline, station: int):  # type: ignore[no-untyped-def]
     """Shapely geometry of an outline at one station; arcs by chords of a degree or two."""
     import shapely
 
     rings = []
-    ends_y, ends_z = outline.ends
+    _ends_y, _ends_z = outline.ends
     for first, stop in outline.loops:
         points = []
         for e in range(first, stop):

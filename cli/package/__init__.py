@@ -41,7 +41,7 @@ _FROM = {
 }
 """Public names by the module that holds them; a module is imported when one of its names is first asked for."""
 
-__all__ = ["__version__", *sorted(name for names in _FROM.values() for name in names)]  # noqa: PLE0604
+__all__ = ["__version__", *sorted(name for names in _FROM.values() for name in names)]
 
 
 def __getattr__(name: str) -> Any:
