@@ -95,7 +95,7 @@ def redundants(frame: Frame, layout: Layout, law: ElasticLaw, planes: int) -> Re
     free = [d for d in movable if d not in rigid]
     B_all = deformations(states, movable)
     springs = np.array([layout.nodes[d[0]].held(HELD_BY[d[1]])[0] for d in free])
-    loose = _loose(
+    loose = loose_movements(
         layout, free, B_all[:, [movable.index(d) for d in free]] if free else B_all[:, :0], springs
     )
     free = [d for d in free if d not in loose]
