@@ -24,6 +24,7 @@ from fishbelly.member.unknowns import (
     Dof,
     State,
     deformations,
+    loose_movements,
     movements,
     unit_states,
 )

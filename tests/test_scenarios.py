@@ -4,7 +4,6 @@ The second computations (`by_hand`: strips and the unit-load integral) must agre
 of its last digit.
 """
 
-from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
@@ -18,8 +17,8 @@ from by_hand import (
     stepped,
     strips,
 )
+from commands import deflect, section
 
-Command = Callable[..., Any]
 MM, KN, MPA = 1e-3, 1e3, 1e6
 INCH, FOOT = 0.0254, 0.3048
 LBF = 0.45359237 * 9.80665
@@ -67,7 +66,7 @@ def flitch(w: float, plate: tuple[float, float] = (10, 200), E: float = 11e9, cr
     return simple_span(4.8, EI, [0.15, 4.65], w, (), 2.4)
 
 
-def test_s1_section(section: Command) -> None:
+def test_s1_section() -> None:
     both = section(job("s1_flitch_beam"), "2.4 m")["EI_y"]
     timber = section(job("s1_flitch_beam"), "0.1 m")["EI_y"]
     agrees(timber, 11e9 * 0.150 * 0.225**3 / 12)
@@ -78,7 +77,7 @@ def test_s1_section(section: Command) -> None:
     prints(100 * (both - timber) / (both - timber + timber / 1.6), "59")
 
 
-def test_s1_deflections(deflect: Command) -> None:
+def test_s1_deflections() -> None:
     result = deflect(job("s1_flitch_beam"))["by_name"]
     Q, G, final = (down(result[n]) for n in ("Q", "G", "final"))
     agrees(Q, flitch(4 * KN))
@@ -95,7 +94,7 @@ def test_s1_deflections(deflect: Command) -> None:
     assert last["used"] == pytest.approx(0.9759, abs=5e-5)
 
 
-def test_s1_band(deflect: Command) -> None:
+def test_s1_band() -> None:
     total = deflect(job("s1_flitch_beam"))["by_name"]["at once"]["deflection"]["down"]
     low, high = total["band"]["low"], total["band"]["high"]
     for found, E, printed in ((low, 7.4e9, "19.7"), (total["value"], 11e9, "16.3"), (high, 13.5e9, "14.6")):
@@ -103,7 +102,7 @@ def test_s1_band(deflect: Command) -> None:
         prints(found / MM, printed)
 
 
-def test_s1_thicker_plate(deflect: Command) -> None:
+def test_s1_thicker_plate() -> None:
     thicker = changed(
         job("s1_flitch_beam"),
         ('width = "10 mm"', 'width = "12 mm"'),
@@ -130,7 +129,7 @@ def runway(plates: tuple[tuple[float, ...], ...], length: float, w: float = 0.0,
 BOTH_PLATES = ((210e9, 0.16, 0.0, 0.012), (210e9, 0.16, -0.412, -0.4))
 
 
-def test_s2_top_and_bottom(deflect: Command, section: Command) -> None:
+def test_s2_top_and_bottom() -> None:
     text = job("s2_runway_beam")
     result = deflect(text)["by_name"]
     wheels, more = down(result["wheels"]), down(result["with beam and rail"])
@@ -148,7 +147,7 @@ def test_s2_top_and_bottom(deflect: Command, section: Command) -> None:
     assert deflect(longer)["by_name"]["wheels"]["checks"][0]["ok"]
 
 
-def test_s2_bare(deflect: Command) -> None:
+def test_s2_bare() -> None:
     head, _, rest = job("s2_runway_beam").partition('[[part]]\nname = "top plate"')
     bare = down(deflect(head + rest[rest.index("[[support]]") :])["by_name"]["wheels"])
     agrees(bare, runway((), 1.0))
@@ -162,7 +161,7 @@ def one_plate(width: str, depth: str, length: float) -> str:
     return changed(text, ("160 mm", width), ("12 mm", depth), ("2547.5 mm", start), ("4952.5 mm", end))
 
 
-def test_s2_bottom_plate_alone(deflect: Command) -> None:
+def test_s2_bottom_plate_alone() -> None:
     """(a) fails full length; (b) passes from about 3160 mm; both largest at mid-span, as the plate is centred."""
     full = down(deflect(one_plate("160 mm", "15 mm", 7500))["by_name"]["wheels"])
     agrees(full, runway(((210e9, 0.16, -0.415, -0.4),), 7.5))
@@ -203,7 +202,7 @@ def arm(load: str, inertia: Any = None, breaks: list[float] | None = None) -> fl
     return integral(lambda x: M(x) * (L - x) / (E * I(x)), [0, a, L, *(breaks or [])])
 
 
-def test_s4(deflect: Command, section: Command) -> None:
+def test_s4() -> None:
     text = job("s4_sign_arm")
     result = deflect(text)["by_name"]
     for name, load, printed in (("self", "self", "0.202"), ("sign", "260", "0.402"), ("ice", "90", "0.139")):
@@ -224,7 +223,7 @@ def test_s4(deflect: Command, section: Command) -> None:
         prints(I, printed)
 
 
-def test_s4_shortcuts(deflect: Command) -> None:
+def test_s4_shortcuts() -> None:
     """Prismatic shortcuts and mid-point steps, on the wind."""
     exact = arm("900")
     text = job("s4_sign_arm")
@@ -275,7 +274,7 @@ def shaft(force: float, at: float, couple: bool = False, diameters: Any = SHAFT)
     return integral(lambda x: M(x) * m(x) / EI(x), breaks)
 
 
-def test_s5(deflect: Command) -> None:
+def test_s5() -> None:
     result = deflect(job("s5_pump_shaft"))["by_name"]
     printed = {"duty": ("0.021", "0.082", "0.176", "0.080"), "off duty": ("0.043", None, None, "0.162")}
     for name, force in (("duty", 1215.0), ("off duty", 2465.0)):
@@ -296,7 +295,7 @@ def test_s5(deflect: Command) -> None:
     prints(result["off duty"]["supports"][0]["vertical"] / A["vertical"], "2.029")
 
 
-def test_s5_shortcuts(deflect: Command) -> None:
+def test_s5_shortcuts() -> None:
     text = job("s5_pump_shaft")
     law = next(line for line in text.splitlines() if line.startswith("diameter"))
     for d, printed in ((34, "0.307"), (45, "0.100")):
@@ -353,7 +352,7 @@ def intact() -> str:
         (True, True, 3, "14.1"),
     ],
 )
-def test_s7_deflection(deflect: Command, shear: bool, cut: bool, reach: int, printed: str | None) -> None:
+def test_s7_deflection(shear: bool, cut: bool, reach: int, printed: str | None) -> None:
     """Influence zones reach beyond notches and rip; the hole stays as it is."""
     text = job("s7_joist") if cut else intact()
     if cut:
@@ -371,7 +370,7 @@ def test_s7_deflection(deflect: Command, shear: bool, cut: bool, reach: int, pri
     assert result["checks"][0]["ok"] is (not shear and not cut)
 
 
-def test_s7_totals(deflect: Command) -> None:
+def test_s7_totals() -> None:
     """190 mm of depth over the whole span against the joist as cut, bending alone, total load."""
     bending = changed(job("s7_joist"), ("shear = true", "shear = false"))
     as_cut = down(deflect(bending)["by_name"]["total"])
@@ -383,7 +382,7 @@ def test_s7_totals(deflect: Command) -> None:
     prints(100 * (rough / as_cut - 1), "50")
 
 
-def test_s7_stresses(deflect: Command, section: Command) -> None:
+def test_s7_stresses() -> None:
     def stress(depth: float, x: float) -> float:
         return 1900 * x * (4.2 - x) / 2 / (0.063 * depth**2 / 6) / MPA
 
@@ -439,7 +438,7 @@ def sistered(at: float) -> float:
     return simple_span(4.2, EI, edges, 1600.0, (), at)
 
 
-def test_s7_sistered(deflect: Command) -> None:
+def test_s7_sistered() -> None:
     text = changed(job("s7_joist"), ("shear = true", "shear = false"))
     head, mark, rest = text.partition("[[notch]]")
     worst = deflect(head + SISTER + mark + rest)["by_name"]["Q"]["deflection"]["down"]
@@ -474,7 +473,7 @@ def gantry(flat: float, load: str) -> float:
     return integral(lambda x: curvature(x) * (3.0 - x), [0.0, min(flat, 3.0), 3.0])
 
 
-def test_s9_deflections(deflect: Command, section: Command) -> None:
+def test_s9_deflections() -> None:
     text = job("s9_gantry_arm")
     result = deflect(text)["by_name"]
     for load, printed in (("tip", "21.0"), ("self", "1.1"), ("warmth", "11.3")):
@@ -488,7 +487,7 @@ def test_s9_deflections(deflect: Command, section: Command) -> None:
     prints(section(text, "2 m")["EI_y"] / 70e9 * 1e8, "375.6")
 
 
-def test_s9_lengths_of_flat(deflect: Command) -> None:
+def test_s9_lengths_of_flat() -> None:
     """Printed bare 41.1 mm: the unrounded value is 41.08 from I = 375.58 cm4, as here without the plate."""
     text = job("s9_gantry_arm")
     for end, printed in ((1835, "20.0"), (3000, "18.7")):
@@ -502,7 +501,7 @@ def test_s9_lengths_of_flat(deflect: Command) -> None:
     prints(tip / MM, "41.1")
 
 
-def test_s9_forces_in_the_flat(deflect: Command, section: Command) -> None:
+def test_s9_forces_in_the_flat() -> None:
     text = job("s9_gantry_arm")
     EA, z, EI = strips(*BOX, FLAT)
     EA_flat = 210e9 * 800e-6
@@ -537,7 +536,7 @@ def office(w: float, plated: bool) -> float:
     return simple_span(300.0, EI, [48.0, 252.0], w / 12, (), 150.0)
 
 
-def test_s11_deflections(deflect: Command, section: Command) -> None:
+def test_s11_deflections() -> None:
     before, after = deflect(job("s11_before_welding")), deflect(job("s11_after_welding"))
     old, new, live = (down(c) / INCH for c in (before["by_name"]["all"], after["by_name"]["new"], after["by_name"]["live"]))
     for value, w, plated, printed in (
@@ -558,7 +557,7 @@ def test_s11_deflections(deflect: Command, section: Command) -> None:
     prints(there["z_c"] / INCH + 15.9, "5.65")
 
 
-def test_s11_stresses(deflect: Command, section: Command) -> None:
+def test_s11_stresses() -> None:
     text = job("s11_after_welding")
     (_, z, EI), (_, z0, EI0) = strips(*OFFICE, PLATE), strips(*OFFICE)
     M_old, M_new = 0.9 * 25**2 / 8 * 12, 1.25 * 25**2 / 8 * 12
@@ -576,7 +575,7 @@ def test_s11_stresses(deflect: Command, section: Command) -> None:
     prints(-(top + old["min"]["value"] / KSI), "40.7")
 
 
-def test_s11_at_the_cut_off(deflect: Command, section: Command) -> None:
+def test_s11_at_the_cut_off() -> None:
     text = job("s11_after_welding")
     (_, z, EI), EI0 = strips(*OFFICE, PLATE), strips(*OFFICE)[2]
     bare = section(text, "4 ft", "--side", "left")["parts"][0]["stress_per_moment"]["bottom"]
