@@ -6,7 +6,9 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
+from fishbelly.cli.format_quantity import NOTHING
 from fishbelly.cli.grid import NOISE, PERCENT, TEXT, Column, Grid, column
+from fishbelly.cli.station_choice import names, sides
 
 Row = Mapping[str, Any]
 
@@ -119,9 +121,11 @@ def _worst_ratio(row: Row) -> str:
 
 
 def ratio_words(ratio: float) -> str:
-    """Write the number that a span is divided by: three figures, no decimals above 100."""
-    if ratio >= 1e6:
-        return f"{ratio:.1e}".replace("e+0", "e").replace("e+", "e")
+    """Write the number that a span is divided by: whole, of four figures above 10 000, of three below 100."""
+    if ratio >= 1e6 or ratio < 0.1:
+        return f"{ratio:.1e}".replace("e+0", "e").replace("e-0", "e-").replace("e+", "e")
+    if ratio >= 1e4:
+        return f"{float(f'{ratio:.4g}'):.0f}"
     return f"{ratio:.0f}" if ratio >= 100.0 else f"{ratio:.3g}"
 
 
@@ -203,7 +207,8 @@ def supports(combination: Row, noise: Noise) -> Grid:
             *_alike(moment),
             column(rows, "", TEXT, lambda r: "lifted" if r.get("lifted") else "", optional=True),
         ),
-        "forces on the member, vertical upwards, moments clockwise",
+        "forces on the member, vertical upwards, moments clockwise"
+        + ("; with all pattern loads on, least and most over their arrangements" if ranges else ""),
     )
 
 
@@ -216,6 +221,11 @@ def _alike(columns: Sequence[Column]) -> list[Column]:
 def spans(combination: Row, noise: Noise) -> Grid:
     """Write the largest deflection of every span, from the line between its supports."""
     rows = combination["spans"]
+
+    def ratio(span: Row) -> str:
+        still = span["ratio"] is None or abs(span["deflection"]) <= noise.deflection
+        return NOTHING if still else f"L/{ratio_words(span['ratio'])}"
+
     return Grid(
         "Spans",
         (
@@ -224,7 +234,7 @@ def spans(combination: Row, noise: Noise) -> Grid:
             column(rows, "to", "position"),
             column(rows, "deflection", "deflection", noise=noise.deflection),
             column(rows, "at x", "position", "at"),
-            column(rows, "ratio", TEXT, lambda s: "–" if s["ratio"] is None else f"L/{ratio_words(s['ratio'])}"),
+            column(rows, "ratio", TEXT, ratio),
         ),
         "from the line between the supports; an overhang from its support, L its own length",
     )
@@ -271,13 +281,13 @@ def stress(combination: Row, noise: Noise) -> Grid:
             column(rows, "at x", "position", peak("min", "at")),
             below,
             Column(sheared.title, sheared.what, sheared.values, True, noise.stress, True),
-            column(rows, "at x", "position", lambda r: (r.get("shear") or {}).get("at"), optional=True),
+            column(rows, "shear at x", "position", lambda r: (r.get("shear") or {}).get("at"), optional=True),
         ),
         "tension positive; z is the level above the datum line; shear by level cuts, without sign",
     )
 
 
-def stations(combination: Row, noise: Noise, marks: Sequence[str]) -> Grid:
+def stations(combination: Row, noise: Noise) -> Grid:
     """Write what stands at the stations.
 
     Parameters
@@ -286,11 +296,12 @@ def stations(combination: Row, noise: Noise, marks: Sequence[str]) -> Grid:
         One combination of the results.
     noise : Noise
         What is noise in it.
-    marks : sequence of str
-        What there is at every station, in words.
     """
     rows = combination["stations"]
-    force = [column(rows, "V", "force", noise=noise.force), column(rows, "N", "force", optional=True, noise=noise.force)]
+    force = [
+        column(rows, "V", "force", noise=noise.force),
+        column(rows, "N", "force", optional=True, noise=noise.force),
+    ]
     moment = [
         column(rows, "M", "moment", noise=noise.moment),
         column(rows, "M_datum", "moment", noise=noise.moment),
@@ -311,7 +322,8 @@ def stations(combination: Row, noise: Noise, marks: Sequence[str]) -> Grid:
             *_alike(force),
             *_alike(turned),
             *_alike(moved),
-            Column("", TEXT, tuple(marks), optional=True),
+            Column("side", TEXT, tuple(sides(rows)), optional=True),
+            Column("name", TEXT, tuple(names(rows, combination["supports"])), optional=True),
         ),
     )
 

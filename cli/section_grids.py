@@ -6,6 +6,7 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from fishbelly.cli.grid import TEXT, Column, Grid, column
+from fishbelly.cli.station_choice import sides
 
 Row = Mapping[str, Any]
 Line = tuple[str, str, str, float | None]
@@ -24,9 +25,9 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
     coupled = data["EI_yz"]
     if coupled is not None and abs(coupled) <= NOISE * EI:
         coupled = 0.0
-    angle = principal.get("angle")
-    if angle is not None and abs(angle) < NOISE:
-        angle = 0.0
+    big, small, angle = (principal.get(k) for k in ("EI_1", "EI_2", "angle"))
+    if angle is not None and big is not None and small is not None:
+        angle = None if big - small <= NOISE * big else (0.0 if abs(angle) < NOISE else angle)
     stiffness: list[Line] = [
         ("EA", "axial", "axial stiffness", data["EA"]),
         ("EI_y", "bending in the vertical plane", "bending stiffness", data["EI_y"]),
@@ -36,13 +37,13 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
         ("GA_y", "shear, sideways", "shear stiffness", data["GA_y"]),
     ]
     axes: list[Line] = [
-        ("EI_1", "largest", "bending stiffness", principal.get("EI_1")),
-        ("EI_2", "smallest", "bending stiffness", principal.get("EI_2")),
+        ("EI_1", "largest", "bending stiffness", big),
+        ("EI_2", "smallest", "bending stiffness", small),
         ("angle", "from y to the axis of EI_1, anticlockwise", "angle", angle),
     ]
     place: list[Line] = [
-        ("z_c", "centroid above the datum line (below: negative)", "length", _whole(data["z_c"], depth)),
-        ("y_c", "centroid to the right of it", "length", _whole(data["y_c"], depth)),
+        ("z_c", "centroid, above the datum line positive", "length", _whole(data["z_c"], depth)),
+        ("y_c", "centroid, to the right positive", "length", _whole(data["y_c"], depth)),
         ("z_top", "top of the section", "length", _whole(top, depth)),
         ("z_bottom", "bottom of the section", "length", _whole(bottom, depth)),
         ("depth", "overall", "length", depth),
@@ -121,15 +122,13 @@ def section_stresses(data: Row) -> Grid:
     )
 
 
-def stiffness_grid(data: Row, marks: Sequence[str]) -> Grid:
+def stiffness_grid(data: Row) -> Grid:
     """Write the stiffness along the member.
 
     Parameters
     ----------
     data : mapping
         Results of `fishbelly stiffness`.
-    marks : sequence of str
-        What there is at every station, in words.
     """
     rows = data["stations"]
     first = next((r["EI_y"] for r in rows if r["EI_y"]), None)
@@ -152,6 +151,6 @@ def stiffness_grid(data: Row, marks: Sequence[str]) -> Grid:
             column(rows, "EI_z", "bending stiffness"),
             column(rows, "EI_yz", "bending stiffness", optional=True, noise=NOISE * EI),
             column(rows, "y_c", "length", optional=True, scale=levels),
-            Column("", TEXT, tuple(marks), optional=True),
+            Column("side", TEXT, tuple(sides(rows)), optional=True),
         ),
     )

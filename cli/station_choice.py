@@ -27,8 +27,8 @@ def sides(rows: Sequence[Row]) -> list[str]:
     return said
 
 
-def marks(rows: Sequence[Row], supports: Iterable[Row] = ()) -> list[str]:
-    """Say at every station: its side of a jump, its name, the support there.
+def names(rows: Sequence[Row], supports: Iterable[Row] = ()) -> list[str]:
+    """Say at every station what it is called, and the supports there.
 
     Parameters
     ----------
@@ -40,10 +40,9 @@ def marks(rows: Sequence[Row], supports: Iterable[Row] = ()) -> list[str]:
     held = list(supports)
     tiny = _TINY * (rows[-1]["x"] if rows else 1.0)
     said = []
-    for row, side in zip(rows, sides(rows), strict=True):
-        names = [row.get("name")] + [s["name"] for s in held if abs(s["at"] - row["x"]) <= tiny]
-        there = ", ".join(dict.fromkeys(n for n in names if n))
-        said.append(f"{side} of {there}" if side and there else (side or there))
+    for row in rows:
+        there = [row.get("name")] + [s["name"] for s in held if abs(s["at"] - row["x"]) <= tiny]
+        said.append(", ".join(dict.fromkeys(n for n in there if n)))
     return said
 
 
@@ -117,9 +116,7 @@ def without_repeats(rows: Sequence[Row], keys: Sequence[str], kept: Sequence[int
         return all(_alike(rows[a][key], rows[b][key]) for key in keys)
 
     return [
-        k
-        for i, k in enumerate(kept)
-        if not (0 < i < len(kept) - 1 and same(kept[i - 1], k) and same(k, kept[i + 1]))
+        k for i, k in enumerate(kept) if not (0 < i < len(kept) - 1 and same(kept[i - 1], k) and same(k, kept[i + 1]))
     ]
 
 

@@ -17,7 +17,7 @@ from fishbelly.cli.section_grids import (
     section_stresses,
     stiffness_grid,
 )
-from fishbelly.cli.station_choice import breaks, marks, without_repeats
+from fishbelly.cli.station_choice import breaks, without_repeats
 from fishbelly.cli.tables_deflect import deflect_table
 from fishbelly.cli.text_table import paragraph, render
 
@@ -32,6 +32,10 @@ STIFFNESS_AXES = (
     "E-weighted centroid; z_c is the centroid's level above the datum line."
 )
 _EVEN = 20
+_MEANING = 43
+"""Columns that the meaning of a symbol takes."""
+_WHOLE_ANGLE = 10.0
+"""Angles are shown with the decimals of one of 10 degrees."""
 _STEADY = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass")
 
 
@@ -79,14 +83,19 @@ def _values(values: list[Line], style: str) -> list[str]:
     cells = []
     for _, _, what, value in values:
         label, size = unit_of(what, style)
-        number = NOTHING if value is None else format_number(value / size, "factor", style)  # type: ignore[arg-type]
+        scale = _WHOLE_ANGLE if what == "angle" else None
+        number = NOTHING
+        if value is not None:
+            number = format_number(value / size, "factor", style, scale=scale)  # type: ignore[arg-type]
         cells.append((number, "" if value is None else label))
     before = max(len(n.partition(".")[0]) for n, _ in cells)
     after = max(len(n) - len(n.partition(".")[0]) for n, _ in cells)
     lines = []
     for (symbol, meaning, _, _), (number, label) in zip(values, cells, strict=True):
         whole, point, rest = number.partition(".")
-        lines.append(f"  {symbol:<9}{meaning:<50}{whole:>{max(before, 6)}}{point + rest:<{after}} {label}".rstrip())
+        lines.append(
+            f"  {symbol:<9}{meaning:<{_MEANING}}{whole:>{max(before, 6)}}{point + rest:<{after}} {label}".rstrip()
+        )
     return lines
 
 
@@ -119,7 +128,7 @@ def stiffness_table(data: Mapping[str, Any], style: str, listed: bool = False) -
         Lines of at most 80 columns.
     """
     rows = data["stations"]
-    grid = stiffness_grid(data, marks(rows))
+    grid = stiffness_grid(data)
     said = []
     if not listed and rows:
         kept = _kept(rows)
@@ -142,9 +151,7 @@ def _kept(rows: list[Mapping[str, Any]]) -> list[int]:
     length = rows[-1]["x"]
     broken = set(breaks(rows)) if length else set()
     every = [
-        k
-        for k, row in enumerate(rows)
-        if row["x"] in broken or _on_grid(row["x"], length) or k in (0, len(rows) - 1)
+        k for k, row in enumerate(rows) if row["x"] in broken or _on_grid(row["x"], length) or k in (0, len(rows) - 1)
     ]
     return without_repeats(rows, _STEADY, every)
 

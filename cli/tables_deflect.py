@@ -10,8 +10,8 @@ from fishbelly.cli import deflect_grids as grids
 from fishbelly.cli.cautions import LINE
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
-from fishbelly.cli.station_choice import chosen, marks
-from fishbelly.cli.text_table import clean, paragraph, render, shown_width
+from fishbelly.cli.station_choice import chosen
+from fishbelly.cli.text_table import clean, fits, paragraph, render, shown_width
 
 Row = Mapping[str, Any]
 
@@ -19,6 +19,8 @@ AXES = (
     "Deflection down positive; M sagging positive (tension at the bottom), about the E-weighted centroid; "
     "EI_y for bending in the vertical plane, about the horizontal axis y–y; x from the left end."
 )
+_DISPENSABLE = ("M_datum", "rotation", "slope")
+"""Columns that go, in this order, where the stations would not fit into a line."""
 _SAME = 1e-6
 """Deflections that differ by less than this share are the same."""
 
@@ -66,7 +68,7 @@ def _combination(c: Row, length: float, style: str, listed: bool, explained: boo
         None,
         grids.spans(c, noise),
         grids.ends(c, noise),
-        grids.stress(c, noise),
+        _without(grids.stress(c, noise), "shear at x"),
     ]
     for grid in tables:
         if grid is None:
@@ -132,7 +134,7 @@ def _shear_share(entry: Row, noise: grids.Noise, style: str) -> str:
     if abs(part) <= noise.deflection:
         return "; shear share 0"
     said = format_value(part, "deflection", style, 3)  # type: ignore[arg-type]
-    return f"; shear share {said} ({100.0 * part / entry['value']:.1f} %)"
+    return f"; shear share {said} ({100.0 * part / entry['value']:.1f}%)"
 
 
 def _band(entry: Row, scale: float, style: str) -> str:
@@ -150,7 +152,7 @@ def _checked(checks: Sequence[Row]) -> str:
     if not missed and len(checks) == 1:
         said = "met"
     if near:
-        said += f"; between 90 and 110 %, a call for judgement: {near}"
+        said += f"; used between 90 and 110%, a call for judgement: {near}"
     return said
 
 
@@ -169,7 +171,8 @@ def _extremes(c: Row, noise: grids.Noise, style: str) -> list[str]:
             lines.append(f"  {name:<11} none")
             continue
         value = _value(entry["value"], what, style, floor, scale)
-        lines.append(f"  {name:<11} {value:>14} at x = {_at(entry['at'], style)}")
+        place = "" if abs(entry["value"]) <= floor else f" at x = {_at(entry['at'], style)}"
+        lines.append(f"  {name:<11} {value:>14}{place}")
     return lines
 
 
@@ -190,12 +193,19 @@ def _stations(c: Row, noise: grids.Noise, style: str, listed: bool) -> list[str]
     rows = c["stations"]
     if not rows:
         return []
-    grid = grids.stations(c, noise, marks(rows, c["supports"]))
+    grid = grids.stations(c, noise)
     envelope = grids.envelope(c, noise)
     kept = list(range(len(rows))) if listed else chosen(rows, _first(c), _second(c))
-    grid = _without_doubles(grid.picked(kept), c, noise)
-    note = "" if len(kept) == len(rows) else f"{len(kept)} of {len(rows)}: all with --json or -o FILE, others with --at"
-    lines = _headed(replace(grid, note=note), style)
+    grid = _without(grid.picked(kept), *_doubles(c, noise))
+    for name in () if listed else _DISPENSABLE:
+        if not fits(grid, style):
+            grid = _without(grid, name)
+    notes = (
+        [] if len(kept) == len(rows) else [f"{len(kept)} of {len(rows)}: all with --json or -o FILE, others with --at"]
+    )
+    if envelope is not None:
+        notes.insert(0, "with all pattern loads on")
+    lines = _headed(replace(grid, note="; ".join(notes)), style)
     if envelope is not None:
         lines += ["", *_headed(envelope.picked(kept), style)]
     return lines
@@ -213,11 +223,15 @@ def _second(c: Row) -> list[float]:
     return [s["at"] for s in c["spans"]]
 
 
-def _without_doubles(grid: Grid, c: Row, noise: grids.Noise) -> Grid:
-    """Leave out M_datum and rotation where they say what M and slope say."""
-    doubles = set()
+def _doubles(c: Row, noise: grids.Noise) -> list[str]:
+    """Name M_datum and rotation where they say what M and slope say."""
+    doubles = []
     for name, other, floor in (("M_datum", "M", noise.moment), ("rotation", "slope", noise.slope)):
         pairs = [(s[name], s[other]) for s in c["stations"] if s[name] is not None and s[other] is not None]
         if all(abs(a - b) <= floor + _SAME * abs(b) for a, b in pairs):
-            doubles.add(name)
-    return replace(grid, columns=tuple(col for col in grid.columns if col.title not in doubles))
+            doubles.append(name)
+    return doubles
+
+
+def _without(grid: Grid, *titles: str) -> Grid:
+    return replace(grid, columns=tuple(column for column in grid.columns if column.title not in titles))

@@ -17,8 +17,8 @@ _NARROWEST = 12
 """Columns of words are not made narrower than this before a table is folded."""
 _WIDEST_KEY = 24
 """Most that a first column of words takes where the table is folded."""
-_MOST_LINES = 3
-"""Lines that a cell of words may take; the rest is shortened."""
+_MOST_LINES = 2
+"""Lines that a cell of words may take; a longer one is shortened in its middle."""
 
 
 @dataclass(frozen=True)
@@ -56,11 +56,21 @@ def render(grid: Grid, style: str, digits: int = 4, width: int = WIDTH, indent: 
         Two lines of heads, of which the second has the units, and the rows. A table that is too wide is
         folded: the rest of its columns follow below, beside the first column again.
     """
-    strips = [
+    strips = _strips(grid, style, digits)
+    return _set(strips, width - indent, " " * indent) if strips else []
+
+
+def _strips(grid: Grid, style: str, digits: int) -> list[_Strip]:
+    return [
         _strip(c.title, c.unit(style), c.cells(style, digits), c.is_text, c.what == "position" and style == "us")
         for c in grid.without_empty().columns
     ]
-    return _set(strips, width - indent, " " * indent) if strips else []
+
+
+def fits(grid: Grid, style: str, digits: int = 4, width: int = WIDTH - _INDENT) -> bool:
+    """Whether a grid fits into a width without being folded."""
+    strips = _strips(grid, style, digits)
+    return sum(min(s.width, _NARROWEST) if s.words else s.width for s in strips) + _GAP * (len(strips) - 1) <= width
 
 
 def _strip(title: str, unit: str, cells: list[str], words: bool, brings_unit: bool) -> _Strip:
@@ -145,11 +155,11 @@ def _char_width(char: str) -> int:
 
 
 def clean(text: str) -> str:
-    """Set blanks for line ends and characters that steer a terminal, and one blank for several.
+    r"""Set blanks for line ends and characters that steer a terminal, and one blank for several.
 
     Examples
     --------
-    >>> clean("upper\\n plate\\x1b[31m")
+    >>> clean("upper\n plate\x1b[31m")
     'upper plate [31m'
     """
     if text.isascii() and text.isprintable():
@@ -168,7 +178,8 @@ def wrap(text: str, width: int, most: int = 0) -> list[str]:
     width : int
         Most columns of a line.
     most : int
-        Most lines; the rest is left out and the last line ends in "…". 0: as many as it takes.
+        Most lines; a text that takes more loses its middle, for which "…" stands, since names that are long
+        often differ at their ends. 0: as many as it takes.
 
     Returns
     -------
@@ -177,9 +188,33 @@ def wrap(text: str, width: int, most: int = 0) -> list[str]:
 
     Examples
     --------
-    >>> wrap("a plate under the beam", 9, most=2)
-    ['a plate', 'under th…']
+    >>> wrap("upper cover plate of the west girder 7", 14, most=2)
+    ['upper cover …', 'west girder 7']
     """
+    lines = _wrapped(text, width)
+    length = len(text)
+    while most and len(lines) > most and length > 2:
+        length = min(length - 1, most * width)
+        head = (length + 1) // 2
+        lines = _wrapped(f"{_head(text, head)} …{_tail(text, length - head)}", width)
+    return lines
+
+
+def _head(text: str, count: int) -> str:
+    """Give the beginning of a text, up to the last whole word where that leaves most of it."""
+    start = text[:count]
+    blank = start.rfind(" ")
+    return start[:blank] if text[count] != " " and 2 * blank > count else start.rstrip()
+
+
+def _tail(text: str, count: int) -> str:
+    """Give the end of a text, from a whole word on where one begins in it."""
+    end = text[len(text) - count :]
+    blank = end.find(" ")
+    return end[blank:] if 0 <= blank < len(end) - 1 else end
+
+
+def _wrapped(text: str, width: int) -> list[str]:
     lines, line, rest = [], "", text.split(" ")
     while rest:
         word = rest.pop(0)
@@ -197,8 +232,6 @@ def wrap(text: str, width: int, most: int = 0) -> list[str]:
     lines.append(line)
     if len(lines) > 1 and not lines[-1]:
         lines.pop()
-    if most and len(lines) > most:
-        lines = [*lines[: most - 1], _fitting(" ".join(lines[most - 1 :]), width - 1) + "…"]
     return lines
 
 

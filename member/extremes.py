@@ -56,13 +56,15 @@ def largest(panels: Panels, field: Array, first: int = 0, stop: int | None = Non
     envelope = points[0] + np.maximum(points[1:], 0.0).sum(axis=0)
     top = envelope.max(axis=1)
     reach = top + 0.03 * np.ptp(envelope, axis=1)
-    best: Extreme | None = None
-    for k in np.flatnonzero(reach >= top.max()):
-        found = _in_panel(panels, stack, first + int(k), envelope[k], points[:, k])
-        if best is None or found.value > best.value + 1e-13 * abs(best.value):
-            best = found
-    assert best is not None
-    return best
+    found: list[Extreme] = []
+    best = -np.inf
+    for k in np.argsort(-reach, kind="stable"):
+        if found and reach[k] <= best:
+            break
+        found.append(_in_panel(panels, stack, first + int(k), envelope[k], points[:, k]))
+        best = max(best, found[-1].value)
+    equal = [e for e in found if e.value >= best - 1e-12 * abs(best)]
+    return min(equal, key=lambda e: e.at)
 
 
 def _in_panel(panels: Panels, stack: Array, k: int, envelope: Array, points: Array) -> Extreme:

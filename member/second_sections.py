@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 from fishbelly.member.description import Member
 from fishbelly.member.faults import NoStiffness
 from fishbelly.member.geometry import Geometry, PlacedParts
+from fishbelly.member.loads import Temperature
 from fishbelly.member.second_grid import POINTS, RULE, Intervals, first_intervals
 from fishbelly.member.second_strips import StripMoments, strip_moments
 from fishbelly.sections.outlines import Outline
@@ -142,11 +143,13 @@ def sample(member: Member, moduli: Sequence[Array], slides: Sequence[Slide | Non
     geometry = Geometry(member)
     batch = first_intervals(member)
     most = MOST_INTERVALS + batch.a.size
+    # a temperature from top to bottom follows the edges, whose corners may change over in a turned section
+    warmed = any(isinstance(v, Temperature) and v.parts is None for v in member.loads)
     kept: list[tuple[Intervals, Sections, Array]] = []
     count = 0
     for _ in range(MOST_ROUNDS):
         sections, varies = _evaluated(geometry, batch)
-        tail, thin = _tails(sections, batch, moduli, slides, varies)
+        tail, thin = _tails(sections, batch, moduli, slides, varies, warmed)
         done = tail * (batch.b - batch.a) / member.length < RESOLVED
         done |= batch.b - batch.a <= SMALLEST * member.length
         count += done.size
@@ -180,7 +183,8 @@ def _refined(batch: Intervals, rest: NDArray[np.bool_], thin: NDArray[np.int_], 
 
 
 def _tails(
-    s: Sections, i: Intervals, moduli: Sequence[Array], slides: Sequence[Slide | None], varies: NDArray[np.bool_]
+    s: Sections, i: Intervals, moduli: Sequence[Array], slides: Sequence[Slide | None], varies: NDArray[np.bool_],
+    warmed: bool,
 ) -> tuple[Array, NDArray[np.int_]]:
     """How well each interval is resolved, and at which end (-1, +1) it gets thin."""
     tail, thin = np.zeros(i.a.size), np.zeros(i.a.size, dtype=np.int_)
@@ -202,6 +206,9 @@ def _tails(
         low = APEX * stiff.max(axis=-1)
         end = np.where(RULE.at_end(stiff, -1) < low, -1, np.where(RULE.at_end(stiff, 1) < low, 1, 0))
         thin[k] = np.where(thin[k] == 0, end, thin[k])
+        if warmed:
+            edges = RULE.tail(np.stack((s.bottom[k], s.top[k]))).max(axis=0)
+            tail[k] = np.maximum(tail[k], edges / (s.top[k] - s.bottom[k]).max(axis=-1))
     for slide in slides:
         if slide is not None and np.any(varies):
             g = np.asarray(slide(i.x[varies].ravel(), 0)).reshape(-1, POINTS)
@@ -221,14 +228,15 @@ def _evaluated(geometry: Geometry, i: Intervals) -> tuple[Sections, NDArray[np.b
         np.zeros((parts, *shape)),
     )
     varies = np.zeros(shape[0], dtype=bool)
-    groups: dict[tuple[tuple[int, ...], ...], list[int]] = {}
-    there_at: dict[float, tuple[tuple[int, ...], ...]] = {}
+    groups: dict[tuple[object, object], list[int]] = {}
+    there_at = {home: geometry.present(home) for home in set(i.home.tolist())}
     for k, home in enumerate(i.home.tolist()):
-        if home not in there_at:
-            there_at[home] = geometry.present(home)
-        groups.setdefault(there_at[home], []).append(k)
-    for there, members in groups.items():
+        # a notch takes mass between its ends and stiffness alone within its reach: never both in one call
+        weighed = tuple(n.start < home < n.end for n in geometry.member.notches)
+        groups.setdefault((there_at[home], weighed), []).append(k)
+    for members in groups.values():
         k = np.array(members)
+        there = there_at[float(i.home[k[0]])]
         if all(geometry.member.parts[p].cuts for p in there[0]):
             raise NoStiffness(float(i.a[k[0]]), "no part is there")
         placed = geometry.place(i.x[k].ravel(), "right", there)

@@ -20,6 +20,7 @@ Index = NDArray[np.intp]
 
 _LINE = np.polynomial.legendre.leggauss(3)
 _ARC = np.polynomial.legendre.leggauss(14)
+_SHORT_ARC = np.polynomial.legendre.leggauss(7)
 _LARGEST = 2_000_000
 """Most entries (stations, strips, edges) worked on at once."""
 
@@ -237,11 +238,16 @@ def _integrated(
     below, above = levels[:, :-1], levels[:, 1:]
     order, y, owner = _owned(e, 0.5 * (below + above), parts, targets)
     before = np.concatenate((np.full((*owner.shape[:2], 1), -1), owner[:, :, :-1]), axis=2)
-    integrals = _edge_integrals(e, order, below, above)
-    values = np.empty((parts, 6, levels.shape[0]))
-    for k in range(parts):
-        share = (before == k).astype(float) - (owner == k)
-        values[k] = np.einsum("sle,msle->ms", share, integrals)
+    # only edges that part what is owned from what is not, or by another part, count
+    s, k, place = np.nonzero((before != owner) & (above > below)[:, :, None])
+    integrals = _edge_integrals(e, s, order[s, k, place], below[s, k], above[s, k])
+    ends, starts = before[s, k, place], owner[s, k, place]
+    values = np.zeros((parts, 6, levels.shape[0]))
+    for part in range(parts):
+        share = (ends == part).astype(float) - (starts == part)
+        mine = np.flatnonzero(share)
+        for m in range(6):
+            values[part, m] = np.bincount(s[mine], share[mine] * integrals[m, mine], levels.shape[0])
     # something is left in a strip where any stretch of its level line is owned
     after = np.concatenate((y[:, :, 1:], y[:, :, -1:]), axis=2)
     height = (levels[:, -1:] - levels[:, :1])[:, :, None]
@@ -281,26 +287,29 @@ def _owned(
     return order, y, owner
 
 
-def _edge_integrals(e: _Edges, order: Index, below: Array, above: Array) -> Array:
-    """∫ y, y²/2, y z, y³/3, y z², y² z/2 dz of every edge over every strip, shape (6, S, K, m)."""
-    def of(field: Array) -> Array:
-        return np.take_along_axis(np.broadcast_to(field[:, None, :], (*below.shape, field.shape[1])), order, axis=2)
-
-    y0, z0 = of(e.y0), of(e.z0)
-    half = 0.5 * (above - below)[:, :, None, None]
-    z = 0.5 * (above + below)[:, :, None, None] + half * _LINE[0]
-    y = y0[..., None] + of(e.lean)[..., None] * (z - z0[..., None])
-    result = _powers(y, z, half * _LINE[1])
-    if np.any(e.side):
-        side = e.side[order]
-        where = np.nonzero(side)
-        s, k, _ = where
-        r, cy, cz = of(e.radius)[where], y0[where], z0[where]
-        a, b = (np.arcsin(np.clip((v[s, k] - cz) / r, -1.0, 1.0)) for v in (below, above))
-        angle = (0.5 * (a + b))[:, None] + (0.5 * (b - a))[:, None] * _ARC[0]
-        y = cy[:, None] + (side[where] * r)[:, None] * np.cos(angle)
-        z = cz[:, None] + r[:, None] * np.sin(angle)
-        result[:, *where] = _powers(y, z, (0.5 * (b - a) * r)[:, None] * np.cos(angle) * _ARC[1])
+def _edge_integrals(e: _Edges, station: Index, edge: Index, below: Array, above: Array) -> Array:
+    """∫ y, y²/2, y z, y³/3, y z², y² z/2 dz of M edges, each over its strip, shape (6, M)."""
+    result = np.empty((6, station.size))
+    y0, z0, side = e.y0[station, edge], e.z0[station, edge], e.side[edge]
+    flat = np.flatnonzero(side == 0.0)
+    if flat.size:
+        half = 0.5 * (above - below)[flat, None]
+        z = 0.5 * (above + below)[flat, None] + half * _LINE[0]
+        y = y0[flat, None] + e.lean[station, edge][flat, None] * (z - z0[flat, None])
+        result[:, flat] = _powers(y, z, half * _LINE[1])
+    bent = np.flatnonzero(side)
+    if bent.size:
+        r = e.radius[station, edge]
+        a, b = (np.arcsin(np.clip((v[bent] - z0[bent]) / r[bent], -1.0, 1.0)) for v in (below, above))
+        wide = np.abs(b - a) > 0.5
+        for chosen, (points, weights) in ((wide, _ARC), (~wide, _SHORT_ARC)):
+            at = bent[chosen]
+            middle, half = 0.5 * (a + b)[chosen, None], 0.5 * (b - a)[chosen, None]
+            angle = middle + half * points
+            radius, cos = r[at, None], np.cos(angle)
+            y = y0[at, None] + side[at, None] * radius * cos
+            z = z0[at, None] + radius * np.sin(angle)
+            result[:, at] = _powers(y, z, half * radius * cos * weights)
     return result
 
 

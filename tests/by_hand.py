@@ -4,6 +4,7 @@ Nothing here uses the package.
 """
 
 from collections.abc import Callable, Iterable
+from itertools import pairwise
 
 import numpy as np
 from numpy.polynomial.legendre import leggauss
@@ -18,7 +19,7 @@ def integral(f: Along, breaks: Iterable[float]) -> float:
     total = 0.0
     places = sorted(set(breaks))
     t = np.pi / 2 * (POINTS + 1)
-    for a, b in zip(places, places[1:], strict=False):
+    for a, b in pairwise(places):
         x = a + (b - a) * (1 - np.cos(t)) / 2
         total += float(np.sum(WEIGHTS * np.pi / 2 * (b - a) / 2 * np.sin(t) * f(x)))
     return total
@@ -78,3 +79,22 @@ def stepped(*pieces: tuple[float, float, float], other: float = 0.0) -> Along:
         return total
 
     return f
+
+
+def simple_span(
+    L: float, EI: Along, breaks: list[float], w: float, points: tuple[tuple[float, float], ...], at: float
+) -> float:
+    """Deflection at a place of a simple span of varying EI, by the unit load."""
+    M, m = moment_simple(L, w, points), moment_simple(L, 0.0, [(1.0, at)])
+    return integral(lambda x: M(x) * m(x) / EI(x), [0.0, L, at, *breaks, *(a for _, a in points)])
+
+
+def skew_strips(*parts: tuple[float, float, float, float, float]) -> float:
+    """EI in the vertical plane of strips (E, width, z_bottom, z_top, y of the middle), free to bend aside."""
+    E, b, z0, z1, y = (np.array(column, dtype=float) for column in zip(*parts, strict=True))
+    EA, z = E * b * (z1 - z0), (z0 + z1) / 2
+    z_c, y_c = float(np.sum(EA * z) / EA.sum()), float(np.sum(EA * y) / EA.sum())
+    EI_y = strips(*(part[:4] for part in parts))[2]
+    EI_z = float(np.sum(EA * (b**2 / 12 + (y - y_c) ** 2)))
+    EI_yz = float(np.sum(EA * (y - y_c) * (z - z_c)))
+    return EI_y - EI_yz**2 / EI_z

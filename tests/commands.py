@@ -1,4 +1,4 @@
-"""Commands run in this process on a job text: their JSON results."""
+"""Commands run in this process on a job text, and what tests of whole jobs share."""
 
 import contextlib
 import io
@@ -7,7 +7,15 @@ import tempfile
 from pathlib import Path
 from typing import Any
 
+import pytest
+
 from fishbelly.cli.main import run
+
+MM, KN, MPA = 1e-3, 1e3, 1e6
+INCH, FOOT = 0.0254, 0.3048
+LBF = 0.45359237 * 9.80665
+KSI = 1000 * LBF / INCH**2
+KLF = 1000 * LBF / FOOT
 
 
 def command(name: str, text: str, *options: str) -> Any:
@@ -32,3 +40,32 @@ def deflect(text: str, *at: str) -> Any:
 def section(text: str, at: str, *options: str) -> Any:
     """Result of ``section`` at a place."""
     return command("section", text, "--at", at, *options)
+
+
+def scenario(name: str) -> str:
+    """Text of a scenario's job."""
+    return Path(__file__).with_name("scenarios").joinpath(f"{name}.toml").read_text(encoding="utf-8")
+
+
+def changed(text: str, *pairs: tuple[str, str]) -> str:
+    """The text with every old replaced by its new; each must be there."""
+    for old, new in pairs:
+        assert old in text, old
+        text = text.replace(old, new)
+    return text
+
+
+def down(combination: Any) -> float:
+    """Largest deflection down [m] of a combination."""
+    return float(combination["deflection"]["down"]["value"])
+
+
+def agrees(found: float, second: float) -> None:
+    """A second, independent computation."""
+    assert found == pytest.approx(second, rel=1e-8)
+
+
+def prints(value: float, printed: str) -> None:
+    """Half of the last digit of a printed figure."""
+    digits = printed.partition(".")[2]
+    assert abs(value - float(printed)) <= 0.5 * 10 ** -len(digits) * (1 + 1e-9), (value, printed)

@@ -1,0 +1,104 @@
+"""Results as the tables that go into files: every column, every station, all combinations in one table."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
+from typing import Any
+
+from fishbelly.cli import deflect_grids as grids
+from fishbelly.cli.grid import TEXT, Column, Grid, column
+from fishbelly.cli.section_grids import section_parts, section_stresses
+
+Row = Mapping[str, Any]
+
+
+def joined(title: str, pairs: Sequence[tuple[str, Grid]]) -> Grid:
+    """Put the grids of several combinations below each other, with the combination as the first column.
+
+    Parameters
+    ----------
+    title : str
+        Heading of the whole.
+    pairs : sequence of tuple of str and Grid
+        Name of each combination and its grid; all grids have the same columns.
+    """
+    names = tuple(name for name, grid in pairs for _ in range(grid.count))
+    columns = [Column("combination", TEXT, names)]
+    for same in zip(*(grid.columns for _, grid in pairs), strict=True):
+        settled = [c.values if c.is_text else c.settled() for c in same]
+        columns.append(replace(same[0], values=tuple(v for values in settled for v in values), noise=0.0, scale=0.0))
+    return Grid(title, tuple(columns))
+
+
+def per_combination(data: Row, title: str, make: Callable[[Row, grids.Noise], Grid]) -> Grid:
+    """Make one grid of what every combination has."""
+    pairs = [(c["name"], make(c, grids.noise_of(c, data["length"]))) for c in data["combinations"]]
+    return joined(title, pairs)
+
+
+def answers(data: Row) -> Grid:
+    """Write one row a combination: largest deflections, moments and shears with their places, and checks."""
+    rows = data["combinations"]
+
+    def entry(group: str, name: str, key: str) -> Callable[[Row], Any]:
+        return lambda row: None if row[group][name] is None else row[group][name].get(key)
+
+    def band(edge: str) -> Callable[[Row], Any]:
+        return lambda row: ((row["deflection"]["down"] or {}).get("band") or {}).get(edge)
+
+    columns = [
+        column(rows, "combination", TEXT, "name"),
+        column(rows, "for", TEXT),
+        column(rows, "down", "deflection", entry("deflection", "down", "value")),
+        column(rows, "down at x", "position", entry("deflection", "down", "at")),
+        column(rows, "shear part", "deflection", entry("deflection", "down", "shear_part")),
+        column(rows, "down, low E", "deflection", band("low"), optional=True),
+        column(rows, "down, high E", "deflection", band("high"), optional=True),
+    ]
+    for title, what, group, name in (
+        ("up", "deflection", "deflection", "up"),
+        ("across", "deflection", "deflection", "across"),
+        ("M sagging", "moment", "moment", "sagging"),
+        ("M hogging", "moment", "moment", "hogging"),
+        ("V max", "force", "shear", "max"),
+        ("V min", "force", "shear", "min"),
+    ):
+        columns.append(column(rows, title, what, entry(group, name, "value")))
+        columns.append(column(rows, f"{title} at x", "position", entry(group, name, "at")))
+    columns += grids.summary(data).columns[3:]
+    return Grid("Answer", tuple(columns))
+
+
+def checks(data: Row) -> list[Grid]:
+    """Write the checks of all combinations, one grid for each kind."""
+    kinds: dict[str, list[tuple[str, Grid]]] = {}
+    for c in data["combinations"]:
+        for grid in grids.checks(c):
+            kinds.setdefault(grid.title, []).append((c["name"], grid))
+    return [joined(title.partition(" (")[0], pairs) for title, pairs in kinds.items()]
+
+
+def stations(data: Row) -> Grid:
+    """Write the stations of all combinations, with the envelope of pattern loads where there is one."""
+
+    def make(c: Row, noise: grids.Noise) -> Grid:
+        grid, envelope = grids.stations(c, noise), grids.envelope(c, noise)
+        extra = envelope.columns[1:] if envelope is not None else _no_envelope(grid.count, patterned)
+        return replace(grid, columns=(*grid.columns, *extra))
+
+    patterned = next((c for c in data["combinations"] if c.get("envelope")), None)
+    return per_combination(data, "Stations", make)
+
+
+def _no_envelope(count: int, patterned: Row | None) -> tuple[Column, ...]:
+    if patterned is None:
+        return ()
+    shape = grids.envelope(patterned, grids.noise_of(patterned, 1.0))
+    assert shape is not None
+    return tuple(replace(c, values=(None,) * count) for c in shape.columns[1:])
+
+
+def section_details(data: Row) -> list[Grid]:
+    """Write the parts of a cross-section and their stresses."""
+    return [section_parts(data), section_stresses(data)]

@@ -1,0 +1,180 @@
+"""Results as a workbook: one sheet a question, units in the heads, the job file at the end."""
+
+from __future__ import annotations
+
+import io
+import math
+from dataclasses import replace
+from datetime import datetime
+from typing import Any
+
+from fishbelly.cli import deflect_grids
+from fishbelly.cli.cautions import FULL
+from fishbelly.cli.file_grids import answers, checks, per_combination, section_details, stations
+from fishbelly.cli.files_csv import head
+from fishbelly.cli.format_quantity import format_position
+from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
+from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
+from fishbelly.cli.tables import SECTION_AXES, STIFFNESS_AXES
+from fishbelly.cli.tables_deflect import AXES
+
+_CREATED = datetime(2000, 1, 1)
+"""Date in the file's properties, always the same so that the same job gives the same file."""
+_MOST_TEXT = 32767
+"""Characters that a cell holds."""
+_WIDEST = 60
+_NARROWEST = 9
+_AXES = {"deflect": AXES, "stiffness": STIFFNESS_AXES, "section": SECTION_AXES}
+
+
+def xlsx_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
+    """Write results as a workbook.
+
+    Parameters
+    ----------
+    command : {"deflect", "stiffness", "section"}
+        Whose results they are.
+    data : dict
+        Results in SI units.
+    job : Job
+        The job: its style of units, its text and, for the EI sheet of `deflect`, its member.
+
+    Returns
+    -------
+    bytes
+        The file; the same for the same job.
+    """
+    import xlsxwriter
+
+    out = io.BytesIO()
+    book = xlsxwriter.Workbook(out, {"in_memory": True})
+    book.set_properties({"title": data.get("title") or "", "created": _CREATED})
+    pen = _Pen(book, job.style)
+    sheets = {"deflect": _deflect, "stiffness": _stiffness, "section": _section}[command](data, job)
+    for grid in sheets:
+        if grid.count:
+            pen.grid(grid)
+    pen.lines("Notes", _notes(command, data, job))
+    pen.lines("Job file", job.text.splitlines(), plain=True)
+    book.close()
+    return out.getvalue()
+
+
+def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
+    from fishbelly.member.section_results import stiffness
+
+    places = [s["x"] for s in data["combinations"][0]["stations"]]
+    table = stiffness(job.member, places)
+    return [
+        answers(data),
+        *checks(data),
+        per_combination(data, "Supports", deflect_grids.supports),
+        per_combination(data, "Spans", deflect_grids.spans),
+        per_combination(data, "Ends", deflect_grids.ends),
+        per_combination(data, "Stress", deflect_grids.stress),
+        stations(data),
+        replace(stiffness_grid(table), title="EI"),
+    ]
+
+
+def _stiffness(data: dict[str, Any], _: Any) -> list[Grid]:
+    return [replace(stiffness_grid(data), title="EI")]
+
+
+def _section(data: dict[str, Any], job: Any) -> list[Grid]:
+    rows = [line for _, lines in section_lines(data) for line in lines]
+    headings = [heading for heading, lines in section_lines(data) for _ in lines]
+    shown = [(what, None if v is None else v / unit_of(what, job.style)[1]) for _, _, what, v in rows]
+    values = Column("value", "factor", tuple(v for _, v in shown), own=True)
+    single = Grid(
+        "Section",
+        (
+            Column("about", TEXT, tuple(headings)),
+            Column("quantity", TEXT, tuple(r[0] for r in rows)),
+            Column("meaning", TEXT, tuple(r[1] for r in rows)),
+            values,
+            Column("unit", TEXT, tuple(unit_of(what, job.style)[0] for what, _ in shown)),
+        ),
+    )
+    return [single, ratios(data), *section_details(data)]
+
+
+def _notes(command: str, data: dict[str, Any], job: Any) -> list[str]:
+    lines = [data.get("title") or "", f"Job file: {job.name}"]
+    if command == "section":
+        lines.append(f"x = {format_position(data['x'], job.style)}, {data.get('side', 'right')} side")
+    if "length" in data:
+        lines.append(f"Length {format_position(data['length'], job.style)}")
+    lines += [_AXES[command], ""]
+    for c in data.get("combinations", ()):
+        check = c.get("cross_check")
+        if check is not None and check.get("difference") is not None:
+            lines.append(f"Second method, {c['name']}: {check['method']}, difference {check['difference']:.1e}")
+    lines += [str(note) for note in data.get("notes", ())]
+    return [*lines, "", *FULL.splitlines()]
+
+
+class _Pen:
+    """Writes sheets of one workbook."""
+
+    def __init__(self, book: Any, style: str) -> None:
+        self.book, self.style = book, style
+        self.bold = book.add_format({"bold": True, "bottom": 1, "text_wrap": True, "valign": "top"})
+        self.words = book.add_format({"text_wrap": True, "valign": "top"})
+        self.formats: dict[tuple[str, bool], Any] = {}
+
+    def grid(self, grid: Grid) -> None:
+        """Write a grid as a sheet: frozen bold heads, numbers, and rows at a jump shaded."""
+        sheet = self.book.add_worksheet(grid.title[:31])
+        jumps = next((c.values for c in grid.columns if c.title == "side"), ())
+        columns = [c for c in grid.columns if not (c.optional and c.empty)]
+        for k, column in enumerate(columns):
+            title = head(column.title, column.unit(self.style))
+            sheet.write_string(0, k, title, self.bold)
+            numbers = [] if column.is_text else column.numbers(self.style)
+            texts = [str(v or "") for v in column.values] if column.is_text else []
+            longest = max((len(t) for t in texts), default=0)
+            sheet.set_column(k, k, min(max(len(title) + 2, longest + 1, _NARROWEST), _WIDEST))
+            pattern = "General" if column.is_text else _pattern(column, numbers)
+            for row in range(grid.count):
+                look = self._format(pattern, bool(jumps and jumps[row]))
+                if texts and texts[row]:
+                    sheet.write_string(row + 1, k, texts[row][:_MOST_TEXT], look)
+                elif numbers and numbers[row] is not None:
+                    sheet.write_number(row + 1, k, numbers[row], look)
+                else:
+                    sheet.write_blank(row + 1, k, None, look)
+        sheet.freeze_panes(1, 0)
+        sheet.set_landscape()
+        sheet.fit_to_pages(1, 0)
+        sheet.repeat_rows(0)
+
+    def lines(self, name: str, lines: list[str], plain: bool = False) -> None:
+        """Write lines of text as a sheet of one column."""
+        sheet = self.book.add_worksheet(name)
+        sheet.set_column(0, 0, 100)
+        for row, line in enumerate(lines):
+            sheet.write_string(row, 0, line[:_MOST_TEXT], None if plain else self.words)
+
+    def _format(self, pattern: str, shaded: bool) -> Any:
+        key = (pattern, shaded)
+        if key not in self.formats:
+            look = {"num_format": pattern} | ({"bg_color": "#EDEDED"} if shaded else {})
+            self.formats[key] = self.book.add_format(look)
+        return self.formats[key]
+
+
+def _pattern(column: Column, numbers: list[float | None]) -> str:
+    """Choose how a spreadsheet shows a column: about five figures of its largest number."""
+    if column.what == PERCENT:
+        return "0.0"
+    if column.what == "position":
+        return "0.000"
+    top = max((abs(n) for n in numbers if n is not None), default=0.0)
+    if top == 0.0:
+        return "0"
+    exponent = math.floor(math.log10(top))
+    if column.own or not -4 <= exponent < 9:
+        return "General" if column.own else "0.0000E+00"
+    decimals = max(4 - exponent, 0)
+    return f"0.{'0' * decimals}" if decimals else "0"
