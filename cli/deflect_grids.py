@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -340,9 +340,10 @@ def envelope(combination: Row, noise: Noise) -> Grid | None:
         ("V", "force", noise.force),
         ("deflection", "deflection", noise.deflection),
     ):
-        pair = [
-            column(rows, f"{key} {bound}", what, lambda r, key=key, bound=bound: r[key][bound], noise=floor)
-            for bound in ("min", "max")
-        ]
+        pair = [column(rows, f"{key} {edge}", what, _bound(key, edge), noise=floor) for edge in ("min", "max")]
         columns += _alike(pair)
     return Grid("Envelope", tuple(columns), "least and most over all arrangements of pattern loads")
+
+
+def _bound(key: str, edge: str) -> Callable[[Row], Any]:
+    return lambda row: row[key][edge]

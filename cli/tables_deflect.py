@@ -183,10 +183,14 @@ def _second_method(check: Row, noise: grids.Noise, style: str) -> list[str]:
     if check.get("at") is not None:
         said += f" at x = {_at(check['at'], style)}"
     if check.get("difference") is not None:
-        said += f", difference {check['difference']:.1e} of it"
+        said += f", difference {_small(check['difference'])} of it"
     if check.get("equilibrium") is not None:
-        said += f"; reactions against loads: residual {check['equilibrium']:.1e}"
+        said += f"; reactions against loads: residual {_small(check['equilibrium'])}"
     return paragraph(said + ".")
+
+
+def _small(share: float) -> str:
+    return "0" if share == 0.0 else f"{share:.1e}"
 
 
 def _stations(c: Row, noise: grids.Noise, style: str, listed: bool) -> list[str]:

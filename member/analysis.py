@@ -116,9 +116,7 @@ class Analysis:
     def planes(self) -> int:
         """2 where the member also bends sideways, else 1."""
         bands = ("nominal", "low", "high") if has_band(self.member) else ("nominal",)
-        keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {
-            ModuliKey()
-        }
+        keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {ModuliKey()}
         if any(np.any(v) for a in self.loads for v in (a.q[1], a.P[1])):
             return 2
         pushed = any(np.any(a.n) or np.any(a.F) for a in self.loads)
@@ -139,10 +137,7 @@ class Analysis:
             )
             if turned or (np.any(aside) and (pushed or len(self._holding) > 1)):
                 return 2
-            if any(
-                np.any(np.abs(a.m[1]) > 1e-11 * np.abs(a.n) * size.max()) or np.any(a.C[1])
-                for a in self.loads
-            ):
+            if any(np.any(np.abs(a.m[1]) > 1e-11 * np.abs(a.n) * size.max()) or np.any(a.C[1]) for a in self.loads):
                 return 2
         return 1
 
@@ -150,9 +145,7 @@ class Analysis:
     def _holding(self) -> list[str]:
         return [s.name for s in self.member.supports if s.along > 0.0]
 
-    def responses(
-        self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None
-    ) -> Response:
+    def responses(self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None) -> Response:
         """Responses to every atom on one set of moduli."""
         with_shear = self.member.shear if shear is None else shear
         name = (key, lifted, with_shear)
@@ -176,9 +169,7 @@ class Analysis:
         for creep in own:
             mine = np.array([a.own_creep == creep for a in self.atoms]) & (lasting != 0.0)
             if mine.any():
-                found.append(
-                    Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0))
-                )
+                found.append(Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0)))
         return tuple(found)
 
     def combine(self, combination: Combination, band: str = "nominal") -> Combined:
@@ -231,9 +222,7 @@ class Analysis:
                 for k, s in enumerate(supports)
                 if s.only_up and s.name not in lifted and r.reactions[k, 0] > 1e-9 * size
             }
-            presses = {
-                s.name: g for s in supports if s.name in lifted and (g := self._gap(r, shares, s.name)) > 0.0
-            }
+            presses = {s.name: g for s in supports if s.name in lifted and (g := self._gap(r, shares, s.name)) > 0.0}
             if not pulls and not presses:
                 return lifted
             if pulls:

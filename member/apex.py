@@ -1,4 +1,4 @@
-"""Where the member runs out to a point: is the deflection there finite, and has it a slope?
+"""Where the member runs out to a point: whether its deflection there is finite, and whether it has a slope.
 
 On the panel that touches the point strains follow a power of the distance from it. Curvature as distance^e gives a
 finite slope for e > -1 and a finite deflection for e > -2; a shear angle a finite deflection for e > -1.

@@ -36,9 +36,7 @@ def geometry_breaks(member: Member) -> list[float]:
             *notch_span(notch, part.start, part.end, True),
             *notch_span(notch, part.start, part.end, False),
         ]
-        places += notch.depth.knots[
-            (notch.depth.knots > notch.start) & (notch.depth.knots < notch.end)
-        ].tolist()
+        places += notch.depth.knots[(notch.depth.knots > notch.start) & (notch.depth.knots < notch.end)].tolist()
     for haunch in member.haunches:
         places += [haunch.at - haunch.reach[0], haunch.at, haunch.at + haunch.reach[1]]
     places += haunch_crossings(member)
@@ -76,9 +74,7 @@ def breakpoints(member: Member, more: Iterable[float] = ()) -> Array:
         Increasing places [m]; two places closer than 1e-11 of the length are one.
     """
     places = geometry_breaks(member) + load_breaks(member)
-    places += (
-        [s.at for s in member.supports] + [h.at for h in member.hinges] + [s.at for s in member.stations]
-    )
+    places += [s.at for s in member.supports] + [h.at for h in member.hinges] + [s.at for s in member.stations]
     places += [x for limit in member.limits for x in (limit.start, limit.end) if x is not None]
     if isinstance(member.camber, Law):
         places += member.camber.knots.tolist()

@@ -50,16 +50,12 @@ def _notch(draft: Draft, notch: Notch, path: Path) -> Iterator[Problem]:
     start, end = max(notch.start, part.start), min(notch.end, part.end)
     if start >= end:
         found = f"{notch.start:.6g} m to {notch.end:.6g} m"
-        yield Problem(
-            (*path, "from"), f'a stretch on "{part.name}", {part.start:.6g} m to {part.end:.6g} m', found
-        )
+        yield Problem((*path, "from"), f'a stretch on "{part.name}", {part.start:.6g} m to {part.end:.6g} m', found)
     elif _sound(part) and notch.side in SIDES:
         yield from _notch_depth(draft, notch, part, path, start, end)
 
 
-def _notch_depth(
-    draft: Draft, notch: Notch, part: Part, path: Path, start: float, end: float
-) -> Iterator[Problem]:
+def _notch_depth(draft: Draft, notch: Notch, part: Part, path: Path, start: float, end: float) -> Iterator[Problem]:
     width, depth, others, x = outline_sizes(part, start, end, {"notch": notch.depth})
     cut = others["notch"]
     upright = notch.side in ("bottom", "top")
@@ -107,9 +103,7 @@ def _opening(draft: Draft, opening: Opening, path: Path) -> Iterator[Problem]:
     if opening.diameter is None:
         for key in ("length", "depth"):
             if getattr(opening, key) <= 0.0:
-                yield Problem(
-                    (*path, key), "a length above 0 m, or `diameter` instead", f"{getattr(opening, key):g} m"
-                )
+                yield Problem((*path, key), "a length above 0 m, or `diameter` instead", f"{getattr(opening, key):g} m")
         most = 0.5 * min(opening.length, opening.depth)
         if not 0.0 <= opening.radius <= most * (1.0 + 1e-9):
             yield Problem(
@@ -120,9 +114,7 @@ def _opening(draft: Draft, opening: Opening, path: Path) -> Iterator[Problem]:
     elif opening.diameter <= 0.0:
         yield Problem((*path, "diameter"), "a length above 0 m", f"{opening.diameter:g} m")
     half = 0.5 * (opening.length if opening.diameter is None else opening.diameter)
-    if draft.length is not None and not (
-        half - draft.slack <= opening.at <= draft.length - half + draft.slack
-    ):
+    if draft.length is not None and not (half - draft.slack <= opening.at <= draft.length - half + draft.slack):
         found = f"{opening.at - half:.6g} m to {opening.at + half:.6g} m"
         yield Problem((*path, "at"), f"an opening within the member, 0 to {draft.length:.6g} m", found)
     if not opening.of:

@@ -48,9 +48,7 @@ def _transverse(draft: Draft, load: Distributed | Point, path: Path) -> Iterator
     if load.per is not None:
         yield from one_of(load.per, PER, (*path, "per"))
         if load.direction == "across":
-            yield Problem(
-                (*path, "per"), "", "a load across the member has no `per`: per is for vertical loads"
-            )
+            yield Problem((*path, "per"), "", "a load across the member has no `per`: per is for vertical loads")
     if isinstance(load, Point):
         return
     places = [x for x, _ in load.stations]

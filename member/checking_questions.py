@@ -60,9 +60,7 @@ def _limit(draft: Draft, limit: Limit, path: Path, spans: tuple[int | str, ...] 
     yield from one_of(limit.of, ("down", "up", "across", "resultant"), (*path, "of"))
     if limit.at is not None:
         if limit.span_over is not None or limit.cantilever_over is not None:
-            yield Problem(
-                (*path, "at"), "", "a limit at a station needs `absolute` or `slope`: a station has no span"
-            )
+            yield Problem((*path, "at"), "", "a limit at a station needs `absolute` or `slope`: a station has no span")
         if limit.spans is not None or limit.start is not None or limit.end is not None:
             yield Problem((*path, "at"), "", "either `at`, or `span`, or `from` and `to`")
     for key, x in (("from", limit.start), ("to", limit.end)):

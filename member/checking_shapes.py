@@ -45,9 +45,7 @@ def _clear(d: Values) -> Array:
 
 
 RULES: dict[str, tuple[Rule, ...]] = {
-    "tube": (
-        ("wall", lambda d: d["diameter"] - 2.0 * d["wall"], "a wall of less than half the diameter", True),
-    ),
+    "tube": (("wall", lambda d: d["diameter"] - 2.0 * d["wall"], "a wall of less than half the diameter", True),),
     "box": (
         ("web", lambda d: d["width"] - 2.0 * d["web"], "a wall of less than half the width", True),
         ("flange", lambda d: d["depth"] - 2.0 * d["flange"], "a wall of less than half the depth", True),
@@ -59,10 +57,7 @@ RULES: dict[str, tuple[Rule, ...]] = {
         ),
         (
             "inner_radius",
-            lambda d: (
-                np.minimum(d["width"] - 2.0 * d["web"], d["depth"] - 2.0 * d["flange"])
-                - 2.0 * d["inner_radius"]
-            ),
+            lambda d: np.minimum(d["width"] - 2.0 * d["web"], d["depth"] - 2.0 * d["flange"]) - 2.0 * d["inner_radius"],
             "a radius of at most half the clear width and depth",
             False,
         ),
@@ -211,9 +206,7 @@ def _rules(part: Part, path: Path) -> Iterator[Problem]:
             if value == 0.0 and key in _MAY_BE_ZERO:
                 continue  # no radius, no fault of the radius
             along = (
-                ""
-                if all(law.is_constant for law in part.shape.dimensions.values())
-                else f" at x = {x[worst]:.6g} m"
+                "" if all(law.is_constant for law in part.shape.dimensions.values()) else f" at x = {x[worst]:.6g} m"
             )
             yield Problem((*path, key), words, f"{value:.6g} m{along}")
 
@@ -225,10 +218,7 @@ def _polygon(shape: Shape, path: Path) -> Iterator[Problem]:
             y, z = corners[:, 0], corners[:, 1]
             if len(corners) < 3:
                 yield Problem((*path, key), "at least three points", f"{len(corners)}")
-            elif (
-                abs(np.sum(y * np.roll(z, -1) - np.roll(y, -1) * z))
-                <= 1e-12 * np.ptp(corners, axis=0).sum() ** 2
-            ):
+            elif abs(np.sum(y * np.roll(z, -1) - np.roll(y, -1) * z)) <= 1e-12 * np.ptp(corners, axis=0).sum() ** 2:
                 yield Problem((*path, key), "points that enclose an area", "points on one line")
 
 

@@ -54,9 +54,7 @@ def _same_place(draft: Draft, i: int, support: Support) -> Iterator[Problem]:
     for other in draft.supports[:i]:
         if other is None or abs(other.at - support.at) > draft.slack:
             continue
-        both = [
-            k for k in ("down", "rotation", "along", "across") if getattr(other, k) and getattr(support, k)
-        ]
+        both = [k for k in ("down", "rotation", "along", "across") if getattr(other, k) and getattr(support, k)]
         if both:
             yield Problem(
                 ("support", i, "at"),

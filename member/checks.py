@@ -156,9 +156,7 @@ def _largest_size(panels: Panels, field: Array, first: int, stop: int) -> Extrem
 def _resultant(panels: Panels, down: Array, across: Array, first: int, stop: int) -> Extreme:
     pieces = down.shape[0] - 1
     if pieces > MOST_PATTERNS:
-        raise CannotCompute(
-            f"a limit of the resultant with {pieces} pattern loads: more than {MOST_PATTERNS}"
-        )
+        raise CannotCompute(f"a limit of the resultant with {pieces} pattern loads: more than {MOST_PATTERNS}")
     best: Extreme | None = None
     for on in product((0.0, 1.0), repeat=pieces):
         weights = np.array([1.0, *on])
@@ -240,9 +238,7 @@ def _entries(stress: PartStress, strength: Strength) -> list[Check]:
     name = f"strength of {stress.part}"
     if strength.tension is not None and stress.highest is not None:
         p = stress.highest
-        entries.append(
-            Check(name, None, strength.tension, max(p.value, 0.0), p.at, "tension", stress.part, p.z)
-        )
+        entries.append(Check(name, None, strength.tension, max(p.value, 0.0), p.at, "tension", stress.part, p.z))
     if strength.compression is not None and stress.lowest is not None:
         p = stress.lowest
         entries.append(

@@ -31,6 +31,7 @@ from fishbelly.member.unknowns import (
 
 Array = NDArray[np.float64]
 
+
 @dataclass(frozen=True, eq=False)
 class Redundants:
     """Matrices of one layout and one law, independent of the loads.
@@ -96,9 +97,7 @@ def redundants(frame: Frame, layout: Layout, law: ElasticLaw, planes: int) -> Re
     free = [d for d in movable if d not in rigid]
     B_all = deformations(states, movable)
     springs = np.array([layout.nodes[d[0]].held(HELD_BY[d[1]])[0] for d in free])
-    loose = loose_movements(
-        layout, free, B_all[:, [movable.index(d) for d in free]] if free else B_all[:, :0], springs
-    )
+    loose = loose_movements(layout, free, B_all[:, [movable.index(d) for d in free]] if free else B_all[:, :0], springs)
     free = [d for d in free if d not in loose]
     known = [d for d in movable if d in rigid or d in loose]
     units = _unit_forces(frame, layout, states)
@@ -210,14 +209,9 @@ def solve(
     """
     released = [determinate(frame, r.layout, a, planes) for a in loads]
     gaps = np.array([_gaps(frame, r, law, d.forces, f) for d, f in zip(released, free, strict=True)])
-    known = np.array([[s.get(d, np.zeros(2))[1] for d in r.known] for s in sinks]).reshape(
-        len(loads), len(r.known)
-    )
+    known = np.array([[s.get(d, np.zeros(2))[1] for d in r.known] for s in sinks]).reshape(len(loads), len(r.known))
     pushed = np.array(
-        [
-            [_out_of_balance(r.layout, d, a, dof) for dof in r.free]
-            for d, a in zip(released, loads, strict=True)
-        ]
+        [[_out_of_balance(r.layout, d, a, dof) for dof in r.free] for d, a in zip(released, loads, strict=True)]
     )
     pushed = pushed.reshape(len(loads), len(r.free))
     springs = np.array([[s.get(d, np.zeros(2))[0] for d in r.free] for s in sinks]).reshape(pushed.shape)
@@ -226,8 +220,7 @@ def solve(
     matrix = np.block([[-r.flexibility, r.B_free], [r.B_free.T, r.springs]])
     found = _solved(matrix, right) if matrix.size else right
     return [
-        _solution(r, released[k], loads[k], found[:u, k], found[u:, k], known[k], sinks[k])
-        for k in range(len(loads))
+        _solution(r, released[k], loads[k], found[:u, k], found[u:, k], known[k], sinks[k]) for k in range(len(loads))
     ]
 
 
@@ -316,9 +309,7 @@ def _solution(
         forces.N[part] += value * r.units.N[slot, part]
         forces.V[:, part] += value * r.units.V[:, slot, part]
         forces.M[:, part] += value * r.units.M[:, slot, part]
-    movements = dict(zip(r.free, moved.tolist(), strict=True)) | dict(
-        zip(r.known, known.tolist(), strict=True)
-    )
+    movements = dict(zip(r.free, moved.tolist(), strict=True)) | dict(zip(r.known, known.tolist(), strict=True))
     carried = dict(zip(r.free, (r.B_free.T @ s).tolist(), strict=True)) | dict(
         zip(r.known, (r.B_known.T @ s).tolist(), strict=True)
     )
@@ -327,7 +318,5 @@ def _solution(
     for dof in r.loose:
         if abs(reactions[dof]) > 1e-7 * max(size, 1e-300) and abs(reactions[dof]) > 1e-9:
             node, way = dof
-            raise Mechanism(
-                f"the member can {MOVES[way]} at x = {r.layout.nodes[node].at:.6g} m, and a load pushes it"
-            )
+            raise Mechanism(f"the member can {MOVES[way]} at x = {r.layout.nodes[node].at:.6g} m, and a load pushes it")
     return Solution(forces, movements, reactions)

@@ -122,8 +122,8 @@ class Placing:
     position: tuple[Law, Law] | None = None
     anchor: str = "top"
     flush: str = "middle"
-    gap: Law = constant(0.0)
-    shift: tuple[Law, Law] = (constant(0.0), constant(0.0))
+    gap: Law = field(default_factory=lambda: constant(0.0))
+    shift: tuple[Law, Law] = field(default_factory=lambda: (constant(0.0), constant(0.0)))
 
 
 @dataclass(frozen=True, eq=False)

@@ -218,9 +218,7 @@ def repeated_names(draft: Draft) -> Iterator[Problem]:
 
 def infinite_numbers(draft: Draft) -> Iterator[Problem]:
     """Find numbers that are not finite, where they have to be."""
-    things: list[tuple[Path, Any]] = [
-        ((kind, i), t) for kind, many in draft.listed.items() for i, t in enumerate(many)
-    ]
+    things: list[tuple[Path, Any]] = [((kind, i), t) for kind, many in draft.listed.items() for i, t in enumerate(many)]
     things += [(("material", m.name), m) for m in draft.materials]
     for path, thing in things:
         if thing is not None:

@@ -54,9 +54,7 @@ class Determinate:
     right: tuple[Ends | None, ...]
 
 
-def _forward(
-    panels: Panels, first: int, stop: int, start: float | Array, density: Array, jumps: Array
-) -> Array:
+def _forward(panels: Panels, first: int, stop: int, start: float | Array, density: Array, jumps: Array) -> Array:
     """Start value plus integral plus jumps, at the points of panels; jumps act at borders first+1 .. stop-1."""
     inner, whole = panels_integral(panels, first, stop, density)
     before = np.cumsum(whole, axis=-1) - whole
@@ -65,9 +63,7 @@ def _forward(
     return np.asarray(np.expand_dims(start, (-1, -2)) + (before + steps)[..., None] + inner)
 
 
-def _backward(
-    panels: Panels, first: int, stop: int, end: float | Array, density: Array, jumps: Array
-) -> Array:
+def _backward(panels: Panels, first: int, stop: int, end: float | Array, density: Array, jumps: Array) -> Array:
     """End value minus integral minus jumps to the right, at the points of panels."""
     inner, whole = panels_integral(panels, first, stop, density)
     after = np.cumsum(whole[..., ::-1], axis=-1)[..., ::-1] - whole

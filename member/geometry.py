@@ -83,9 +83,7 @@ class Geometry:
         tiny = 2.0 * self.tolerance
         return start <= x + tiny < end if side == "right" else start < x - tiny <= end
 
-    def present(
-        self, x: float, side: str = "right"
-    ) -> tuple[tuple[int, ...], tuple[int, ...], tuple[int, ...]]:
+    def present(self, x: float, side: str = "right") -> tuple[tuple[int, ...], tuple[int, ...], tuple[int, ...]]:
         """Indices of the parts, notches (reach included) and openings that are there at x."""
         m = self.member
         parts = tuple(i for i, p in enumerate(m.parts) if self.is_there(p.start, p.end, x, side))
@@ -99,8 +97,7 @@ class Geometry:
         openings = tuple(
             i
             for i, o in enumerate(m.openings)
-            if names.intersection(o.of)
-            and self.is_there(o.at - half_length(o), o.at + half_length(o), x, side)
+            if names.intersection(o.of) and self.is_there(o.at - half_length(o), o.at + half_length(o), x, side)
         )
         return parts, tuple(notches), openings
 
@@ -121,9 +118,7 @@ class Geometry:
                 return float(Bounds.of(outline).middle_z[0])
         raise ValueError(f"the opening at {opening.at:g} m cuts no part that is there")
 
-    def place(
-        self, x: Array, side: str = "right", there: tuple[tuple[int, ...], ...] | None = None
-    ) -> PlacedParts:
+    def place(self, x: Array, side: str = "right", there: tuple[tuple[int, ...], ...] | None = None) -> PlacedParts:
         """Outlines at stations between two breaks.
 
         Parameters
@@ -151,12 +146,8 @@ class Geometry:
         ]
         cuts += [c for k in notches for c in self._notch(k, names, outlines, adding, x, side)]
         cuts += [c for k in openings for c in self._opening(k, names, outlines, adding, x)]
-        run_in = np.array([self._run_in(self.member.parts[i], x) for i in adding]).reshape(
-            len(adding), x.size
-        )
-        return PlacedParts(
-            x, adding, tuple(outlines[i] for i in adding), tuple(c for c in cuts if c.targets), run_in
-        )
+        run_in = np.array([self._run_in(self.member.parts[i], x) for i in adding]).reshape(len(adding), x.size)
+        return PlacedParts(x, adding, tuple(outlines[i] for i in adding), tuple(c for c in cuts if c.targets), run_in)
 
     def _run_in(self, part: Part, x: Array) -> Array:
         left, right = part.run_in
@@ -167,9 +158,7 @@ class Geometry:
             factor = np.minimum(factor, (part.end - x) / right)
         return np.clip(factor, 0.0, 1.0)
 
-    def _stand(
-        self, parts: tuple[int, ...], x: Array, side: str
-    ) -> tuple[dict[str, _Stand], dict[int, Outline]]:
+    def _stand(self, parts: tuple[int, ...], x: Array, side: str) -> tuple[dict[str, _Stand], dict[int, Outline]]:
         stands: dict[str, _Stand] = {}
         outlines: dict[int, Outline] = {}
         for i in parts:
@@ -256,9 +245,7 @@ def _drawn(part: Part, x: Array, side: str, extra: Array | float) -> Outline:
     return outline.turned(part.turn)
 
 
-def _offset(
-    part: Part, box: Bounds, stands: dict[str, _Stand], x: Array, side: str
-) -> tuple[Array, Array, Array]:
+def _offset(part: Part, box: Bounds, stands: dict[str, _Stand], x: Array, side: str) -> tuple[Array, Array, Array]:
     """Shift of a part as placed without haunches, and how far haunches of others carry it [m]."""
     place = part.place
     zero = np.zeros(x.size)

@@ -149,9 +149,7 @@ def steps(x: Sequence[float] | Array, values: Sequence[float] | Array) -> Law:
     return Law(xs[:-1], np.zeros(xs.size), coefficients)
 
 
-def parabola(
-    x: Sequence[float] | Array, values: Sequence[float] | Array, flat_at: Sequence[float] = ()
-) -> Law:
+def parabola(x: Sequence[float] | Array, values: Sequence[float] | Array, flat_at: Sequence[float] = ()) -> Law:
     """Make a law of parabolas between stations, each level at one of its two ends.
 
     Parameters
@@ -177,9 +175,7 @@ def parabola(
     return _pieces(x, values, tuple(flat_at))
 
 
-def _pieces(
-    x: Sequence[float] | Array, values: Sequence[float] | Array, flat_at: tuple[float, ...] | None
-) -> Law:
+def _pieces(x: Sequence[float] | Array, values: Sequence[float] | Array, flat_at: tuple[float, ...] | None) -> Law:
     xs, vs = np.asarray(x, dtype=float), np.asarray(values, dtype=float)
     gaps = np.diff(xs)
     if np.any(gaps < 0.0):

@@ -30,9 +30,7 @@ def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
 def _cases(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     member = analysis.member
     if len(member.combinations) == 1 and member.combinations[0].name == "all" and len(member.cases) > 1:
-        yield Note(
-            f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1"
-        )
+        yield Note(f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1")
     used = {case for c in member.combinations for case, f in c.factors.items() if f}
     unused = [c for c in member.cases if c not in used]
     if unused:
@@ -77,9 +75,7 @@ def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     if worst is not None and worst[1] > worst[2] * (1.0 + 1e-9):
         at, together_k, own_k, names, joined = worst
         how = (
-            "are taken to act together, rigidly joined"
-            if joined
-            else "do not all touch, yet are taken to act together"
+            "are taken to act together, rigidly joined" if joined else "do not all touch, yet are taken to act together"
         )
         yield Note(
             f"{_listed(names)} {how}: EI {{EI}} at x = {{at}}, {{own}} with nothing joined",
@@ -140,8 +136,8 @@ def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
             top = s["max"]
             if material.cracking is not None and top is not None and top["value"] > material.cracking:
                 yield Note(
-                    f"{s['part']}: tension {{found}} at x = {{at}} is above the cracking stress {{limit}} in {c['name']}, "
-                    "and is counted as uncracked",
+                    f"{s['part']}: tension {{found}} at x = {{at}} is above the cracking stress {{limit}} "
+                    f"in {c['name']}, and is counted as uncracked",
                     {
                         "found": (top["value"], "stress"),
                         "at": (top["at"], "position"),
@@ -177,7 +173,7 @@ def _deep(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
     if depth > 0.1 * shortest:
         shear = "shear deformation is included" if member.shear else "shear deformation is left out"
         yield Note(
-            f"depth {{depth}} is more than a tenth of the shortest span {{span}}: beam theory is an estimate there; {shear}",
+            "depth {depth} is more than a tenth of the shortest span {span}: beam theory is an estimate there; " + shear,
             {"depth": (depth, "length"), "span": (shortest, "length")},
         )
 
@@ -204,13 +200,9 @@ def _cantilevers(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
         if limit.spans is not None and not any(isinstance(s, str) for s in limit.spans):
             continue
         if limit.cantilever_over is not None:
-            yield Note(
-                f"limit {limit.name}: an overhang may sag its own length over {limit.cantilever_over:g}"
-            )
+            yield Note(f"limit {limit.name}: an overhang may sag its own length over {limit.cantilever_over:g}")
         else:
-            yield Note(
-                f"limit {limit.name}: an overhang counts with twice its length, 2L/{limit.span_over:g}"
-            )
+            yield Note(f"limit {limit.name}: an overhang counts with twice its length, 2L/{limit.span_over:g}")
 
 
 def _openings(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
@@ -238,12 +230,18 @@ def _lifted(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
 
 
 def _verdict(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
-    differences = [c["cross_check"]["difference"] for c in combinations if c["cross_check"] is not None]
-    if differences:
-        yield Note(f"second method: largest difference {max(differences):.1e} of the largest deflection")
-    residuals = [c["cross_check"]["equilibrium"] for c in combinations if c["cross_check"] is not None]
-    if residuals:
-        yield Note(f"reactions against loads: residual {max(residuals):.1e} of the loads")
+    checked = [c["cross_check"] for c in combinations if c["cross_check"] is not None]
+    if checked:
+        difference = _tiny(max(c["difference"] for c in checked))
+        residual = _tiny(max(c["equilibrium"] for c in checked))
+        yield Note(
+            f"second method: largest difference {difference} of the largest deflection; "
+            f"reactions against loads: residual {residual} of the loads"
+        )
+
+
+def _tiny(value: float) -> str:
+    return f"{value:.1e}" if value > 1e-15 else "below 1e-15"
 
 
 NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (

@@ -96,9 +96,7 @@ def _roots(a: Haunch, b: Haunch, low: float, high: float) -> list[float]:
         x[0], x[2] = np.nextafter(x[0], end), np.nextafter(x[2], start)
         d = haunch_extra(a, x, "right") - haunch_extra(b, x, "right")
         c2, c1, c0 = 2.0 * (d[0] - 2.0 * d[1] + d[2]), -3.0 * d[0] + 4.0 * d[1] - d[2], d[0]
-        for r in np.roots(
-            np.trim_zeros(np.where(np.abs([c2, c1, c0]) < 1e-14 * a.depth, 0.0, [c2, c1, c0]), "f")
-        ):
+        for r in np.roots(np.trim_zeros(np.where(np.abs([c2, c1, c0]) < 1e-14 * a.depth, 0.0, [c2, c1, c0]), "f")):
             if abs(r.imag) < 1e-12 and 0.0 < r.real < 1.0:
                 roots.append(start + float(r.real) * (end - start))
     return roots

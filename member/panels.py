@@ -57,9 +57,7 @@ class Panels:
             u = 0.5 * (1.0 + self.rule.points)
             own = (self.b[k] - self.a[k]) * u * u
             end = self.a[k] if left else self.b[k]
-            found.append(
-                (int(k), other, np.stack((own, np.abs(self.x[other][order] - end), order.astype(float))))
-            )
+            found.append((int(k), other, np.stack((own, np.abs(self.x[other][order] - end), order.astype(float)))))
         return tuple(found)
 
     @property
@@ -86,9 +84,7 @@ class Panels:
         a, b, anchor = self.a[panel], self.b[panel], self.anchor[panel]
         h = b - a
         plain = np.where(u < 0.5, a + h * u, b - h * (1.0 - u))
-        return np.asarray(
-            np.where(anchor < 0, a + h * u * u, np.where(anchor > 0, b - h * (1.0 - u) ** 2, plain))
-        )
+        return np.asarray(np.where(anchor < 0, a + h * u * u, np.where(anchor > 0, b - h * (1.0 - u) ** 2, plain)))
 
     def local(self, panel: NDArray[np.intp], x: Array) -> Array:
         """Return local coordinates s of places x [m] in panels."""

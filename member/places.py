@@ -19,9 +19,7 @@ EVEN = 101
 
 def default_places(member: Member) -> Array:
     """An even 101 places and every break [m]."""
-    return merged(
-        [*np.linspace(0.0, member.length, EVEN).tolist(), *breakpoints(member).tolist()], member.length
-    )
+    return merged([*np.linspace(0.0, member.length, EVEN).tolist(), *breakpoints(member).tolist()], member.length)
 
 
 def force_jumps(member: Member) -> list[float]:

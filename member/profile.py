@@ -35,6 +35,7 @@ class Group:
     placed: PlacedParts
     composition: Composition
     over_opening: bool
+    _sheared: dict[tuple[int, bool], tuple[Moduli, ShearStiffness]] = field(default_factory=dict, repr=False)
 
     def modulus(self, values: Array) -> Array:
         """Moduli of the parts of this group at its stations, run-in counted, shape (P, S)."""
@@ -45,7 +46,14 @@ class Group:
         return section_stiffness(self.composition.moments, self.modulus(moduli.E))
 
     def shear(self, moduli: Moduli, across: bool = False) -> ShearStiffness:
-        """Shear stiffness along z, or along y."""
+        """Shear stiffness along z, or along y, for a set of moduli; computed once."""
+        key = (id(moduli), across)
+        if key not in self._sheared:
+            # the moduli are kept beside the result, so that their identity stays theirs
+            self._sheared[key] = (moduli, self._shear(moduli, across))
+        return self._sheared[key][1]
+
+    def _shear(self, moduli: Moduli, across: bool) -> ShearStiffness:
         stiffness = self.stiffness(moduli)
         section = self.composition
         if across:
@@ -154,9 +162,7 @@ def varies(member: Member, a: Array, b: Array) -> NDArray[np.bool_]:
     return result
 
 
-def group_places(
-    geometry: Geometry, x: Array, middles: Array, first_row: int, side: str = "right"
-) -> list[Group]:
+def group_places(geometry: Geometry, x: Array, middles: Array, first_row: int, side: str = "right") -> list[Group]:
     """Evaluate places, those with the same parts present together.
 
     Parameters

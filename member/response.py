@@ -67,10 +67,7 @@ class Response:
         """Sum over atoms with factors, shape (A,): a response without the axis of atoms."""
         single = ("N", "axial", "reactions")
         return Response(
-            *(
-                np.tensordot(factors, getattr(self, f.name), (0, 0 if f.name in single else 1))
-                for f in fields(self)
-            )
+            *(np.tensordot(factors, getattr(self, f.name), (0, 0 if f.name in single else 1)) for f in fields(self))
         )
 
     @property
@@ -124,9 +121,7 @@ def respond(
         rotation[p], deflection[p] = _deflected(
             frame.profile.panels, layout, found, strains.curvature[p], strains.shear[p], p
         )
-    reactions = np.array(
-        [_reactions(frame, r, s, atom, a) for s, atom, a in zip(found, atoms, loads, strict=True)]
-    )
+    reactions = np.array([_reactions(frame, r, s, atom, a) for s, atom, a in zip(found, atoms, loads, strict=True)])
     return Response(N, V, M, strains.axial, strains.curvature, strains.shear, rotation, deflection, reactions)
 
 

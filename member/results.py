@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
@@ -16,53 +15,18 @@ from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import Extreme, largest, values_at
 from fishbelly.member.moduli import has_band
-from fishbelly.member.places import default_places, force_jumps, two_sided
+from fishbelly.member.notes import notes
+from fishbelly.member.panels import Panels
+from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.spans import spans
-from fishbelly.member.stresses import Loading, PartStress, loadings, part_stresses
+from fishbelly.member.station_results import envelope_rows, station_rows
+from fishbelly.member.stresses import PartStress, loadings, part_stresses
 
 Array = NDArray[np.float64]
 Data = dict[str, Any]
 
 NEGLIGIBLE = 1e-9
 """A largest value below this share of the largest of its kind does not exist."""
-
-
-@dataclass(frozen=True, eq=False)
-class Pieces:
-    """Fields of a combination by piece: everything but the patterns first, then each pattern; (J + 1, K, n).
-
-    `M`: moment about the centroid; `M_datum`: about the datum line; `rotation` and `deflection` have a leading
-    axis of planes.
-    """
-
-    N: Array
-    V: Array
-    M: Array
-    M_datum: Array
-    rotation: Array
-    shear: Array
-    deflection: Array
-    reactions: Array
-
-
-def pieces(analysis: Analysis, loading: Sequence[Loading]) -> Pieces:
-    """Sum the shares of a combination, piece by piece."""
-    frame = analysis.frame
-
-    def total(name: str) -> Array:
-        return np.asarray(sum(getattr(share.response, name) for share in loading))
-
-    N, V, M = total("N"), total("V"), total("M")
-    return Pieces(
-        N,
-        V[0],
-        M[0] + N * frame.centre[0],
-        M[0] - N * frame.line[0],
-        total("rotation"),
-        total("shear"),
-        total("deflection"),
-        total("reactions"),
-    )
 
 
 def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
@@ -88,8 +52,6 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
     wanted = None if at is None else [float(x) for x in at]
     analysis = Analysis.of(member, wanted or ())
     combinations = [_combination(analysis, c, wanted) for c in map(analysis.combine, member.combinations)]
-    from fishbelly.member.notes import notes
-
     return {
         "title": member.title,
         "units": "SI: m, N, Pa, rad, kg",
@@ -100,9 +62,7 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
             {
                 "name": "all",
                 "cases": list(member.cases),
-                "combinations": [
-                    {key: c[key] for key in ("name", "deflection", "stress")} for c in combinations
-                ],
+                "combinations": [{key: c[key] for key in ("name", "deflection", "stress")} for c in combinations],
             }
         ],
     }
@@ -128,10 +88,10 @@ def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | N
         "joints": [],
     }
     data["cross_check"] = cross_check(analysis, combined, data["deflection"])
-    stations = _stations(analysis, p, apexes, wanted)
+    stations = station_rows(analysis, p, apexes, wanted)
     data["stations"] = stations
     if combined.patterns:
-        data["envelope"] = _envelope(analysis, p, stations)
+        data["envelope"] = envelope_rows(analysis, p, stations)
     if combined.lifted:
         data["lifted"] = sorted(combined.lifted)
     if has_band(analysis.member):
@@ -150,9 +110,7 @@ def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
     return {
         "down": _shear_part(analysis, combined, down) if down.value > NEGLIGIBLE * size else None,
         "up": {"value": up.value, "at": up.at} if up.value > NEGLIGIBLE * size else None,
-        "across": {"value": sign * across.value, "at": across.at}
-        if across.value > NEGLIGIBLE * size
-        else None,
+        "across": {"value": sign * across.value, "at": across.at} if across.value > NEGLIGIBLE * size else None,
     }
 
 
@@ -170,7 +128,7 @@ def _shear_part(analysis: Analysis, combined: Combined, e: Extreme) -> Data:
     return {"value": e.value, "at": e.at, "shear_part": e.value - float(bent[0])}
 
 
-def _both(panels: Any, field: Array) -> tuple[Extreme, Extreme, float]:
+def _both(panels: Panels, field: Array) -> tuple[Extreme, Extreme, float]:
     high, low = largest(panels, field), largest(panels, -field)
     return high, low, max(abs(high.value), abs(low.value))
 
@@ -219,8 +177,7 @@ def _ends(analysis: Analysis, p: Pieces, apexes: Apexes) -> Data:
     ):
         at = np.array([x])
         w, rotation, angle = (
-            float(values_at(panels, f[0].sum(axis=0), at, side)[0])
-            for f in (p.deflection, p.rotation, p.shear)
+            float(values_at(panels, f[0].sum(axis=0), at, side)[0]) for f in (p.deflection, p.rotation, p.shear)
         )
         turned = None if none else rotation
         result[name] = {
@@ -290,109 +247,6 @@ def _stress(s: PartStress) -> Data:
     if s.shear is not None:
         data["shear"] = {"value": s.shear[0], "at": s.shear[1]}
     return data
-
-
-def _stations(analysis: Analysis, p: Pieces, apexes: Apexes, wanted: list[float] | None) -> list[Data]:
-    member, panels = analysis.member, analysis.profile.panels
-    named = {s.at: s.name for s in member.stations}
-    base = default_places(member) if wanted is None else np.array([*wanted, *(s.at for s in member.stations)])
-    x, sides = two_sided(np.unique(base), [*force_jumps(member), *_jumps(analysis, p)], member.length)
-    columns = _columns(analysis, p, x, sides)
-    tiny = 1e-9 * member.length
-    rows = []
-    for k, place in enumerate(x):
-        border = panels.border(float(place))
-        infinite = border in (apexes.right_of if sides[k] == "right" else apexes.left_of)
-        infinite &= abs(float(place) - _border_at(panels, border)) < tiny
-        row: Data = {
-            "x": float(place),
-            "name": next((n for at, n in named.items() if abs(at - place) < tiny), None),
-        }
-        row |= {key: float(v[k]) + 0.0 for key, v in columns.items()}
-        if infinite:
-            row["slope"] = row["rotation"] = None
-        rows.append(row)
-    return rows
-
-
-def _border_at(panels: Any, border: int) -> float:
-    return float(panels.a[border] if border < panels.count else panels.b[-1])
-
-
-def _columns(analysis: Analysis, p: Pieces, x: Array, sides: Sequence[str]) -> dict[str, Array]:
-    panels = analysis.profile.panels
-    fields = {
-        "M": p.M.sum(axis=0),
-        "M_datum": p.M_datum.sum(axis=0),
-        "V": p.V.sum(axis=0),
-        "N": p.N.sum(axis=0),
-        "slope": (p.rotation[0] + p.shear[0]).sum(axis=0),
-        "rotation": p.rotation[0].sum(axis=0),
-        "deflection": p.deflection[0].sum(axis=0),
-        "across": p.deflection[1].sum(axis=0),
-    }
-    stack = np.stack(list(fields.values()))
-    left, right = (values_at(panels, stack, x, side) for side in ("left", "right"))
-    chosen = np.where(np.array(sides) == "left", left, right)
-    return dict(zip(fields, chosen, strict=True))
-
-
-def _jumps(analysis: Analysis, p: Pieces) -> list[float]:
-    """Borders at which any listed value jumps [m]."""
-    panels = analysis.profile.panels
-    found: set[int] = set()
-    fields = (p.M, p.M_datum, p.V, p.N, p.rotation[0] + p.shear[0], p.rotation[0], p.deflection[0])
-    for field in fields:
-        total = field.sum(axis=0)
-        left, right = panels.ends(total)
-        size = np.abs(total).max()
-        found.update(np.flatnonzero(np.abs(left[1:] - right[:-1]) > 1e-9 * size) + 1)
-    return [float(panels.a[k]) for k in sorted(found)]
-
-
-def _envelope(analysis: Analysis, p: Pieces, stations: Sequence[Data]) -> Data:
-    """Smallest and largest value at every station and support over all arrangements of pattern loads."""
-    x = np.array([s["x"] for s in stations])
-    sides = ["left" if k + 1 < x.size and x[k + 1] == x[k] else "right" for k in range(x.size)]
-    sides[-1] = "left"
-    panels = analysis.profile.panels
-    stack = {
-        "M": p.M,
-        "V": p.V,
-        "N": p.N,
-        "deflection": p.deflection[0],
-        "across": p.deflection[1],
-        "rotation": p.rotation[0],
-    }
-    columns = {}
-    for name, field in stack.items():
-        left, right = (values_at(panels, field, x, side) for side in ("left", "right"))
-        v = np.where(np.array(sides) == "left", left, right)
-        columns[name] = (v[0] + np.minimum(v[1:], 0.0).sum(axis=0), v[0] + np.maximum(v[1:], 0.0).sum(axis=0))
-    rows = [
-        {
-            "x": float(x[k]),
-            **{n: {"min": float(lo[k]), "max": float(hi[k])} for n, (lo, hi) in columns.items()},
-        }
-        for k in range(x.size)
-    ]
-    order = sorted(range(len(analysis.member.supports)), key=lambda k: analysis.member.supports[k].at)
-    supports = []
-    for k in order:
-        row: Data = {"name": analysis.member.supports[k].name, "at": analysis.member.supports[k].at}
-        for name, column, sign in (
-            ("vertical", 0, -1.0),
-            ("along", 1, 1.0),
-            ("moment", 2, 1.0),
-            ("across", 3, 1.0),
-        ):
-            v = sign * p.reactions[:, k, column]
-            row[name] = {
-                "min": float(v[0] + np.minimum(v[1:], 0.0).sum()),
-                "max": float(v[0] + np.maximum(v[1:], 0.0).sum()),
-            }
-        supports.append(row)
-    return {"stations": rows, "supports": supports}
 
 
 def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:

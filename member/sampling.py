@@ -100,9 +100,7 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
         if panels + batch.a.size > most:
             break
     if batch.a.size:
-        raise CannotCompute(
-            f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved"
-        )
+        raise CannotCompute(f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved")
     return _assembled(geometry, kept, groups, rows)
 
 
@@ -179,11 +177,7 @@ def _vanishes(geometry: Geometry, short: Moduli, a: float, b: float, apex: int) 
     end, side = (a, "right") if apex < 0 else (b, "left")
     with np.errstate(all="ignore"):
         there, inside = (
-            float(
-                group_places(geometry, np.array([[x]]), np.array([0.5 * (a + b)]), 0, side)[0]
-                .stiffness(short)
-                .EA[0]
-            )
+            float(group_places(geometry, np.array([[x]]), np.array([0.5 * (a + b)]), 0, side)[0].stiffness(short).EA[0])
             for x in (end, 0.5 * (a + b))
         )
     return not there > 1e-13 * inside
@@ -218,9 +212,7 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
     )
 
 
-def _assembled(
-    geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int
-) -> Profile:
+def _assembled(geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int) -> Profile:
     a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
     anchor = np.concatenate([k.anchor for k, _ in kept])
     row = np.concatenate([r for _, r in kept]).astype(np.intp)

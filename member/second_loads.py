@@ -211,9 +211,7 @@ def _force(ground: Ground, p: Pushes, load: Point, factor: float) -> None:
         _push(p, k, float(along), ground.level("centroid", load.at))
 
 
-def _hold_back(
-    ground: Ground, p: Pushes, load: Temperature | Shrinkage | Prestress, factor: float, E: Array
-) -> None:
+def _hold_back(ground: Ground, p: Pushes, load: Temperature | Shrinkage | Prestress, factor: float, E: Array) -> None:
     """Free strain e + a (z - about) of every part, times E, as forces about the line."""
     s = ground.sections
     middle = 0.5 * (ground.intervals.a + ground.intervals.b)

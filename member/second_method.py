@@ -13,9 +13,9 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from fishbelly.member.description import Member
-from fishbelly.member.second_grid import RULE
+from fishbelly.member.second_grid import POINTS, RULE
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, pushes
-from fishbelly.member.second_sections import POINTS, Flexibility, Sampled, Slide, flexibility, sample
+from fishbelly.member.second_sections import Flexibility, Sampled, Slide, flexibility, sample
 from fishbelly.member.second_segments import (
     Fields,
     Strain,
@@ -253,9 +253,7 @@ def _reactions(s: _Solved, share: LoadShare) -> Array:
             if np.isfinite(stiffness):
                 support = member.supports[i]
                 sunk = share.factor(support) * support.sinks if support.sinks and hold.way == 0 else 0.0
-                part = stiffness * (sunk - moved) if rigid else float(force) * stiffness / hold.spring
-                if not rigid and len(hold.supports) > 1:
-                    part = stiffness * (sunk - moved)
+                part = float(force) if len(hold.supports) == 1 else stiffness * (sunk - moved)
                 found[i, hold.way] += part
                 rest -= part
         for i in rigid:
@@ -324,6 +322,5 @@ def _work(s: _Solved, shape: _Shape) -> float:
     total -= float((s.loads.jumps[1:3] * moved)[: s.frame.planes].sum())
     # a couple at a hinge turns what lies to its left
     bent = (s.strain.curvature * i.stretch) @ RULE.weights
-    turned = np.concatenate((shape.rotation[:, :1], shape.rotation - 0.0), axis=1)
-    turned[:, 1:] = shape.rotation - bent
+    turned = np.concatenate((shape.rotation[:, :1], shape.rotation - bent), axis=1)
     return 0.5 * (total + float((s.loads.jumps[3:] * turned)[: s.frame.planes].sum()))

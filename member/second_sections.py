@@ -183,7 +183,11 @@ def _refined(batch: Intervals, rest: NDArray[np.bool_], thin: NDArray[np.int_], 
 
 
 def _tails(
-    s: Sections, i: Intervals, moduli: Sequence[Array], slides: Sequence[Slide | None], varies: NDArray[np.bool_],
+    s: Sections,
+    i: Intervals,
+    moduli: Sequence[Array],
+    slides: Sequence[Slide | None],
+    varies: NDArray[np.bool_],
     warmed: bool,
 ) -> tuple[Array, NDArray[np.int_]]:
     """How well each interval is resolved, and at which end (-1, +1) it gets thin."""
@@ -230,10 +234,10 @@ def _evaluated(geometry: Geometry, i: Intervals) -> tuple[Sections, NDArray[np.b
     varies = np.zeros(shape[0], dtype=bool)
     groups: dict[tuple[object, object], list[int]] = {}
     there_at = {home: geometry.present(home) for home in set(i.home.tolist())}
-    for k, home in enumerate(i.home.tolist()):
+    for number, home in enumerate(i.home.tolist()):
         # a notch takes mass between its ends and stiffness alone within its reach: never both in one call
         weighed = tuple(n.start < home < n.end for n in geometry.member.notches)
-        groups.setdefault((there_at[home], weighed), []).append(k)
+        groups.setdefault((there_at[home], weighed), []).append(number)
     for members in groups.values():
         k = np.array(members)
         there = there_at[float(i.home[k[0]])]

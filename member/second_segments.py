@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -31,7 +32,7 @@ class Stretch:
 
 
 @dataclass(frozen=True, eq=False)
-class Cut:
+class Segments:
     """The member between its nodes.
 
     Parameters
@@ -50,12 +51,12 @@ class Cut:
     free_right: bool
 
     @classmethod
-    def at(cls, intervals: Intervals, borders: list[int], held: set[int]) -> Cut:
+    def at(cls, intervals: Intervals, borders: list[int], held: set[int]) -> Segments:
         """Cut at borders, of which `held` have supports; the first and last are the ends of the member."""
         count = intervals.a.size
         free_left, free_right = 0 not in held, count not in held
         stretches = []
-        for a, b in zip(borders, borders[1:], strict=False):
+        for a, b in pairwise(borders):
             middle = 0.5 * (intervals.a[a] + intervals.b[b - 1])
             split = a + int(np.argmin(np.abs(intervals.a[a:b] - middle)))
             if free_left and a == 0:
@@ -111,7 +112,7 @@ class Strain:
     angle: Array
 
 
-def unit_fields(cut: Cut) -> Fields:
+def unit_fields(cut: Segments) -> Fields:
     """Forces by each unit force at the end from which they are summed, shape (5, K, n)."""
     shape = cut.intervals.x.shape
     N, V, M = np.zeros((5, *shape)), np.zeros((2, 5, *shape)), np.zeros((2, 5, *shape))
@@ -123,7 +124,7 @@ def unit_fields(cut: Cut) -> Fields:
     return Fields(N, V, M)
 
 
-def load_fields(cut: Cut, p: Pushes) -> tuple[Fields, Array]:
+def load_fields(cut: Segments, p: Pushes) -> tuple[Fields, Array]:
     """Forces by the loads inside the segments, and what is left over where the two halves meet.
 
     Returns
@@ -145,7 +146,7 @@ def load_fields(cut: Cut, p: Pushes) -> tuple[Fields, Array]:
     return out, over
 
 
-def _ahead(cut: Cut, p: Pushes, s: Stretch, out: Fields) -> Array:
+def _ahead(cut: Segments, p: Pushes, s: Stretch, out: Fields) -> Array:
     """Sum loads from the left end of a segment to its split; the value there."""
     if s.split == s.first:
         return np.zeros(5)
@@ -162,7 +163,7 @@ def _ahead(cut: Cut, p: Pushes, s: Stretch, out: Fields) -> Array:
     return _all(p, part, p.jumps[:, s.first + 1 : s.split], out, summed)
 
 
-def _behind(cut: Cut, p: Pushes, s: Stretch, out: Fields) -> Array:
+def _behind(cut: Segments, p: Pushes, s: Stretch, out: Fields) -> Array:
     """Sum loads from the right end of a segment back to its split; the value there."""
     if s.split == s.stop:
         return np.zeros(5)
@@ -198,7 +199,7 @@ def strains(f: Flexibility, line: Array, fields: Fields) -> Strain:
     return Strain(axial, curvature, np.stack([fields.V[p] * f.slide[p] for p in range(2)]))
 
 
-def end_movements(cut: Cut, strain: Strain) -> tuple[Array, Array]:
+def end_movements(cut: Segments, strain: Strain) -> tuple[Array, Array]:
     """Movement of the right end of each segment against its left end, by the strains of each half.
 
     Returns

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from fishbelly.member.description import Support
 from fishbelly.member.faults import Mechanism
 from fishbelly.member.second_loads import Ground, LoadShare
-from fishbelly.member.second_segments import Cut
+from fishbelly.member.second_segments import Segments
 
 Array = NDArray[np.float64]
 
@@ -92,7 +92,7 @@ class Frame:
         All directions held.
     hinges : dict of int to float
         Nodes with a hinge, and the level of the centroid there from the line [m].
-    cut : Cut
+    cut : Segments
         The member between the nodes.
     planes : int
         1: the vertical plane alone; 2: both.
@@ -101,7 +101,7 @@ class Frame:
     borders: tuple[int, ...]
     holds: tuple[Hold, ...]
     hinges: dict[int, float]
-    cut: Cut
+    cut: Segments
     planes: int
 
     @property
@@ -130,7 +130,7 @@ def frame(ground: Ground, lifted: Collection[str], planes: int) -> Frame:
     places = [float(np.append(ground.intervals.a, ground.intervals.b[-1])[b]) for b in borders]
     holds += _references(holds, node[working[0][2]], places, planes)
     hinges = {node[b]: float(ground.level("centroid", x)[0]) for b, x in hinged.items() if 0 < b < count}
-    cut = Cut.at(ground.intervals, borders, {b for _, _, b in working})
+    cut = Segments.at(ground.intervals, borders, {b for _, _, b in working})
     return Frame(tuple(borders), tuple(holds), hinges, cut, planes)
 
 

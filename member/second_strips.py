@@ -65,9 +65,7 @@ class _Edges:
     owner: Index
 
 
-def strip_moments(
-    outlines: Sequence[Outline], cuts: Sequence[tuple[Outline, tuple[int, ...]]]
-) -> StripMoments:
+def strip_moments(outlines: Sequence[Outline], cuts: Sequence[tuple[Outline, tuple[int, ...]]]) -> StripMoments:
     """Moments of parts of which later ones displace earlier ones, cuts taken off.
 
     Parameters
@@ -82,9 +80,7 @@ def strip_moments(
     StripMoments
     """
     boxes = np.array([o.bounds() for o in outlines])
-    about = np.stack(
-        [0.5 * (boxes[:, k].min(axis=0) + boxes[:, k + 2].max(axis=0)) for k in (0, 1)]
-    )  # (2, S)
+    about = np.stack([0.5 * (boxes[:, k].min(axis=0) + boxes[:, k + 2].max(axis=0)) for k in (0, 1)])  # (2, S)
     moved = [o.moved(-about[0], -about[1]) for o in (*outlines, *(c[0] for c in cuts))]
     targets = [c[1] for c in cuts]
     edges = _edges(moved)
@@ -101,7 +97,8 @@ def strip_moments(
 
 def _rows(e: _Edges, rows: slice) -> _Edges:
     shaped = (e.low, e.high, e.left, e.right, e.y0, e.z0, e.lean, e.radius, e.climb)
-    return _Edges(*(v[rows] for v in shaped), e.side, e.owner)
+    low, high, left, right, y0, z0, lean, radius, climb = (v[rows] for v in shaped)
+    return _Edges(low, high, left, right, y0, z0, lean, radius, climb, e.side, e.owner)
 
 
 def _edges(outlines: Sequence[Outline]) -> _Edges:
@@ -114,8 +111,11 @@ def _edges(outlines: Sequence[Outline]) -> _Edges:
             fields.append([v[:, keep] for v in found])
             sides.append(np.full(int(keep.sum()), side))
             owners.append(np.full(int(keep.sum()), k, dtype=np.intp))
-    columns = [np.concatenate([f[j] for f in fields], axis=1) for j in range(9)]
-    return _Edges(*columns, np.concatenate(sides), np.concatenate(owners))
+    low, high, left, right, y0, z0, lean, radius, climb = (
+        np.concatenate([f[j] for f in fields], axis=1) for j in range(9)
+    )
+    side, owner = np.concatenate(sides), np.concatenate(owners)
+    return _Edges(low, high, left, right, y0, z0, lean, radius, climb, side, owner)
 
 
 def _corners(outline: Outline, curved: bool) -> tuple[Array, Array, Array, Array, Array]:
@@ -231,9 +231,7 @@ def _crossings(e: _Edges, i: Index, j: Index) -> Array:
     return np.concatenate(columns, axis=1)
 
 
-def _integrated(
-    e: _Edges, levels: Array, parts: int, targets: Sequence[tuple[int, ...]]
-) -> tuple[Array, Array, Array]:
+def _integrated(e: _Edges, levels: Array, parts: int, targets: Sequence[tuple[int, ...]]) -> tuple[Array, Array, Array]:
     """Moments (P, 6, S), bottom and top (S,) of stations whose levels are given."""
     below, above = levels[:, :-1], levels[:, 1:]
     order, y, owner = _owned(e, 0.5 * (below + above), parts, targets)

@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.description import Material, Member
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.moduli import Moduli, moduli
@@ -166,8 +167,11 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
     for k in range(every.size - 1):
         if every[k] == every[k + 1] and not _jumps(table[:, k], table[:, k + 1], table):
             keep[k] = False
+    breaks = breakpoints(member)
     rows = [
-        {"x": float(every[k])} | {name: _number(v) for name, v in zip(COLUMNS, table[:, k], strict=True)}
+        {"x": float(every[k])}
+        | {name: _number(v) for name, v in zip(COLUMNS, table[:, k], strict=True)}
+        | {"break": bool(np.abs(breaks - every[k]).min() < 1e-9 * member.length)}
         for k in np.flatnonzero(keep)
     ]
     return {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all", "stations": rows}
@@ -176,10 +180,7 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
 def _jumps(left: Array, right: Array, table: Array) -> bool:
     size = np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1)
     gap = np.abs(left - right)
-    return bool(
-        np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size)
-        or np.any(np.isnan(left) != np.isnan(right))
-    )
+    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size) or np.any(np.isnan(left) != np.isnan(right)))
 
 
 def profile_at(member: Member, x: Array, sides: list[str]) -> Array:

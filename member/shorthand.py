@@ -34,9 +34,7 @@ def fixed(at: float, name: str | None = None) -> Support:
     return Support(name or f"fixed at {at:g} m", at, **everything)  # type: ignore[arg-type]
 
 
-def uniform(
-    value: float, start: float, end: float, case: str = "load", direction: str = "down"
-) -> Distributed:
+def uniform(value: float, start: float, end: float, case: str = "load", direction: str = "down") -> Distributed:
     """Uniform load [N/m] from start to end [m]."""
     return Distributed(((start, value), (end, value)), case, direction)
 

@@ -68,9 +68,7 @@ class Result:
 
     def _must_be_linear(self) -> None:
         if not self.linear:
-            raise NotLinear(
-                "bearings that cannot pull may lift off: results do not add; solve them as one combination"
-            )
+            raise NotLinear("bearings that cannot pull may lift off: results do not add; solve them as one combination")
 
     def field(self, quantity: str) -> Array:
         """Values at the grid points, shape (K, n), of one of `QUANTITIES`."""

@@ -205,9 +205,9 @@ def _peak(analysis: Analysis, stress: Array, y: Array, z: Array, sign: float) ->
     there = ~np.isnan(stress[0, :, :, 0])
     best: StressPeak | None = None
     rough = np.where(np.isnan(stress), -np.inf, sign * stress)
-    tops = rough[0].max(axis=-1) + np.where(np.isfinite(rough[1:]), np.maximum(rough[1:], 0.0), 0.0).max(
-        axis=-1
-    ).sum(axis=0)
+    tops = rough[0].max(axis=-1) + np.where(np.isfinite(rough[1:]), np.maximum(rough[1:], 0.0), 0.0).max(axis=-1).sum(
+        axis=0
+    )
     span = np.nanmax(np.abs(stress)) if np.any(there) else 0.0
     for c in range(stress.shape[1]):
         if not there[c].any() or tops[c].max() < tops.max() - 0.05 * span - 1e-300:
@@ -218,9 +218,7 @@ def _peak(analysis: Analysis, stress: Array, y: Array, z: Array, sign: float) ->
             if best is None or found.value > sign * best.value * (1.0 + 1e-13 * np.sign(sign * best.value)):
                 k = int(np.clip(panels.find(np.array([found.at]))[0], first, stop - 1))
                 basis = panels.rule.basis(panels.local(np.array([k]), np.array([found.at])))[0]
-                best = StressPeak(
-                    sign * found.value, found.at, float(basis @ z[c, k]), float(basis @ y[c, k])
-                )
+                best = StressPeak(sign * found.value, found.at, float(basis @ z[c, k]), float(basis @ y[c, k]))
     return best
 
 

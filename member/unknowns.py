@@ -46,6 +46,7 @@ class State:
 
 
 def movements(layout: Layout, planes: int) -> list[Dof]:
+    """Every movement of the nodes that takes part: those of ends that turn freely are left out."""
     found: list[Dof] = []
     for k, node in enumerate(layout.nodes):
         if len(layout.holds_along) > 1:
@@ -63,6 +64,7 @@ def movements(layout: Layout, planes: int) -> list[Dof]:
 
 
 def unit_states(layout: Layout, planes: int) -> list[State]:
+    """Unknown end forces of the segments between nodes; moments that are known are left out."""
     states = []
     several = len(layout.holds_along) > 1
     for number, seg in enumerate(layout.segments):
@@ -89,6 +91,7 @@ def unit_states(layout: Layout, planes: int) -> list[State]:
 
 
 def deformations(states: list[State], movable: list[Dof]) -> Array:
+    """Deformation of each unit end force's segment by unit movements, shape (states, movements)."""
     columns = {d: k for k, d in enumerate(movable)}
     B = np.zeros((len(states), len(movable)))
     for row, state in enumerate(states):

@@ -1,8 +1,8 @@
 """Area moments of outlines, exact for straight and circular edges (Green's theorem along the outline).
 
 Each edge is integrated by points: three Gauss points on a straight edge are exact for second moments, sixteen
-Chebyshev points on an arc of a quarter circle reach 1e-15. Moments are formed about a point beside the outline and then about its own
-centroid, never about a far axis.
+Chebyshev points on an arc of a quarter circle reach 1e-15. Moments are formed about a point beside the outline and
+then about its own centroid, never about a far axis.
 """
 
 from __future__ import annotations
@@ -44,9 +44,7 @@ class AreaMoments:
 
     def times(self, factor: Array | float) -> AreaMoments:
         """Return the moments weighted by a factor, such as E or density; the centroid stays."""
-        return AreaMoments(
-            self.area * factor, self.y, self.z, self.zz * factor, self.yy * factor, self.yz * factor
-        )
+        return AreaMoments(self.area * factor, self.y, self.z, self.zz * factor, self.yy * factor, self.yz * factor)
 
     def at(self, index: object) -> AreaMoments:
         """Return the moments at an index of the stack."""
@@ -91,9 +89,7 @@ def area_moments(outline: Outline) -> AreaMoments:
     area = total[0]
     safe = np.where(area == 0.0, 1.0, area)
     y, z = total[1] / safe, total[2] / safe
-    return AreaMoments(
-        area, y0 + y, z0 + z, total[3] - area * z * z, total[4] - area * y * y, total[5] - area * y * z
-    )
+    return AreaMoments(area, y0 + y, z0 + z, total[3] - area * z * z, total[4] - area * y * y, total[5] - area * y * z)
 
 
 def _raw(outline: Outline) -> Array:

@@ -166,21 +166,15 @@ def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing
     half = 0.5 * np.diff(edges, axis=1)[..., None]
     # a level z = middle + half sin(pi s / 2) takes the square root out of the ends of an arc
     angle = 0.5 * np.pi * r.points
-    shape, slope = (
-        (np.sin(angle), 0.5 * np.pi * np.cos(angle)) if curved else (r.points, np.ones(r.points.size))
-    )
+    shape, slope = (np.sin(angle), 0.5 * np.pi * np.cos(angle)) if curved else (r.points, np.ones(r.points.size))
     z = 0.5 * (edges[:, 1:] + edges[:, :-1])[..., None] + half * shape
     flat = widths(p, z.reshape(z.shape[0], -1), parts, targets)
-    cut = Widths(
-        *(getattr(flat, f).reshape(parts, *z.shape) for f in ("width", "first", "second", "left", "right"))
-    )
+    cut = Widths(*(getattr(flat, f).reshape(parts, *z.shape) for f in ("width", "first", "second", "left", "right")))
     return Levels(edges, z, half * slope, cut)
 
 
 def _stacked(rows: Sequence[AreaMoments]) -> AreaMoments:
-    return AreaMoments(
-        *(np.stack([getattr(m, f) for m in rows]) for f in ("area", "y", "z", "zz", "yy", "yz"))
-    )
+    return AreaMoments(*(np.stack([getattr(m, f) for m in rows]) for f in ("area", "y", "z", "zz", "yy", "yz")))
 
 
 def _integrated(levels: Levels) -> AreaMoments:

@@ -89,9 +89,7 @@ def _straight(
     for sense, mask in ((1.0, climbs), (-1.0, rise < 0.0)):
         if np.any(mask):
             low = np.where(mask, np.minimum(za, zb), np.inf)
-            columns.append(
-                (low, np.where(mask, np.maximum(za, zb), np.inf), ya, za, slope, np.zeros_like(ya))
-            )
+            columns.append((low, np.where(mask, np.maximum(za, zb), np.inf), ya, za, slope, np.zeros_like(ya)))
             flags.append((sense, 0.0, owner))
 
 

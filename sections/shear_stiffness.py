@@ -96,9 +96,7 @@ def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
     return np.asarray(empty & below & above & (height > 1e-12 * size))
 
 
-def _piecewise(
-    levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool
-) -> ShearStiffness:
+def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStiffness:
     """Sections in pieces one above the other, station by station."""
     stations = gaps.shape[0]
     total, peak = np.empty(stations), np.zeros(G.shape)
@@ -123,9 +121,7 @@ def _piecewise(
     return ShearStiffness(total, peak)
 
 
-def _piece(
-    levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]
-) -> tuple[float, float, Array] | None:
+def _piece(levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]) -> tuple[float, float, Array] | None:
     """EI, GA and peaks of the slabs of one piece, bending about its own centroid."""
     r = rule(levels.z.shape[-1])
     z, stretch = levels.z[s, slabs], levels.stretch[s, slabs]

@@ -160,13 +160,18 @@ def test_columns_stand_on_their_decimal_points():
 
 
 def test_no_noise_and_no_minus_zero():
-    text = deflect_table(solved(simple())[1], "metric")
+    _, data = solved(simple())
+    data["notes"] = []
+    data["combinations"][0]["cross_check"] = None  # it speaks of tiny differences on purpose
+    text = deflect_table(data, "metric")
     assert not re.search(r"-0\.?0*(?![\d.])", text)
     assert not re.search(r"\de-\d", text)
 
 
 def test_nothing_happens_without_load():
-    text = deflect_table(solved(simple().replace("10 kN/m", "0 kN/m"))[1], "metric")
+    _, data = solved(simple().replace("10 kN/m", "0 kN/m"))
+    data["notes"] = []
+    text = deflect_table(data, "metric")
     assert "  down    none" in text
     assert not re.search(r"\de-\d", text)
 

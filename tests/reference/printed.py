@@ -20,7 +20,7 @@ def half_a_digit(found: float, printed: float, row: dict[str, Any], key: str, di
     where the row's number has lost trailing zeros. Where the print itself is off by more than half a digit
     the row states the difference (`rel_diff`), and `found` must show just that difference.
     """
-    text = repr(abs(float(printed))).removesuffix(".0")
+    text = f"{abs(printed):.15g}"
     shown = text.replace(".", "").lstrip("0")
     if len(shown if "." in text else shown.rstrip("0")) >= 10:
         assert found == pytest.approx(printed, rel=1e-9), (row["id"], key)

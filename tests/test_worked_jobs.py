@@ -1,0 +1,174 @@
+"""Worked jobs that ship: each runs, and gives what its comment says it gives."""
+
+import json
+import re
+import subprocess
+import sys
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any
+
+import pytest
+from commands import INCH, KN, MM, MPA, changed, deflect, down, prints
+
+from fishbelly.catalog.worked_jobs import worked_jobs
+from fishbelly.cli.main import run
+
+JOBS = {job.name: job.text for job in worked_jobs()}
+Values = list[tuple[float, str]]
+
+
+def found(combination: Any, limit: str) -> dict[str, Any]:
+    return next(c for c in combination["checks"] if c["limit"] == limit)
+
+
+def flitch_beam(text: str) -> Values:
+    result = deflect(text)["by_name"]
+    imposed, final = found(result["imposed"], "imposed load"), found(result["final"], "final")
+    return [
+        (imposed["found"] / MM, "7.15 mm"),
+        (imposed["allowed"] / MM, "11.67 mm"),
+        (final["found"] / MM, "14.58 mm"),
+        (final["allowed"] / MM, "16.80 mm"),
+        (final["used"] * 100, "87 %"),
+        (final["band"]["low"] / MM, "16.67 mm"),
+    ]
+
+
+def pump_shaft(text: str) -> Values:
+    result = deflect(text)["by_name"]["shut off"]
+    return [
+        (found(result, "seal face")["found"] / MM, "0.0623 mm"),
+        (found(result, "seal face")["allowed"] / MM, "0.08 mm"),
+        (found(result, "running clearance")["found"] / MM, "0.233 mm"),
+        (found(result, "running clearance")["allowed"] / MM, "0.30 mm"),
+        (found(result, "pump bearing")["found"] / 1e-3, "0.466 mrad"),
+        (-result["supports"][0]["vertical"], "1161 N"),
+    ]
+
+
+def notched_joist(text: str) -> Values:
+    result = deflect(text)["by_name"]
+    cuts = text[text.index("\n[[notch]]") : text.index("\n[[support]]")]
+    whole = deflect(changed(text, (cuts, "")))["by_name"]
+    return [
+        (down(result["imposed"]) / MM, "6.36 mm"),
+        (found(result["imposed"], "imposed load")["allowed"] / MM, "8.67 mm"),
+        (down(result["all"]) / MM, "9.75 mm"),
+        (found(result["all"], "all load")["allowed"] / MM, "14 mm"),
+        (down(whole["imposed"]) / MM, "5.68 mm"),
+        (down(whole["all"]) / MM, "8.71 mm"),
+    ]
+
+
+def tapered_arm(text: str) -> Values:
+    result = deflect(text)["by_name"]
+    dead, wind = found(result["dead"], "dead"), found(result["wind"], "wind")
+    both = found(result["dead and wind"], "both")
+    return [
+        (dead["found"] / INCH, "0.802 in"),
+        (dead["allowed"] / INCH, "2.20 in"),
+        (wind["found"] / INCH, "1.656 in"),
+        (wind["allowed"] / INCH, "2.93 in"),
+        (both["found"] / INCH, "1.840 in"),
+        (both["allowed"] / INCH, "3.52 in"),
+    ]
+
+
+def haunched_rafter(text: str) -> Values:
+    result = deflect(text)["by_name"]
+    sliding = deflect(changed(text, ('along = "held"\n', "")))["by_name"]
+    assert sliding["all"]["supports"][0]["along"] == pytest.approx(0.0, abs=1e-6)
+    return [
+        (down(result["snow"]) / MM, "9.32 mm"),
+        (found(result["snow"], "snow")["allowed"] / MM, "30.56 mm"),
+        (down(result["all"]) / MM, "14.46 mm"),
+        (found(result["all"], "all load")["allowed"] / MM, "44.00 mm"),
+        (result["snow"]["supports"][0]["along"] / KN, "31.0 kN"),
+        (result["all"]["supports"][0]["along"] / KN, "48.1 kN"),
+        (down(sliding["snow"]) / MM, "9.46 mm"),
+        (down(sliding["all"]) / MM, "14.68 mm"),
+    ]
+
+
+def plated_beam(text: str) -> Values:
+    result = deflect(text)["by_name"]
+    plate = text[text.index('[[part]]\nname = "plate"') : text.index("[[support]]")]
+    bare = deflect(changed(text, (plate, "")))["by_name"]
+    beam = found(result["all"], "strength of beam")
+    return [
+        (down(result["imposed"]) / MM, "8.83 mm"),
+        (found(result["imposed"], "imposed load")["allowed"] / MM, "16.67 mm"),
+        (down(result["all"]) / MM, "14.80 mm"),
+        (found(result["all"], "all load")["allowed"] / MM, "24.00 mm"),
+        (beam["found"] / MPA, "141.1 MPa"),
+        (beam["allowed"] / MPA, "180 MPa"),
+        (beam["used"] * 100, "78 %"),
+        (found(result["all"], "strength of plate")["found"] / MPA, "102.7 MPa"),
+        (down(bare["imposed"]) / MM, "10.47 mm"),
+        (down(bare["all"]) / MM, "17.57 mm"),
+    ]
+
+
+EXPECTED: dict[str, Callable[[str], Values]] = {
+    "flitch-beam": flitch_beam,
+    "haunched-rafter": haunched_rafter,
+    "notched-joist": notched_joist,
+    "plated-beam": plated_beam,
+    "pump-shaft": pump_shaft,
+    "tapered-arm": tapered_arm,
+}
+
+
+def test_every_worked_job_is_tried() -> None:
+    assert set(JOBS) == set(EXPECTED)
+
+
+@pytest.mark.parametrize("name", EXPECTED)
+def test_gives_what_its_comment_says(name: str) -> None:
+    """Every number with a unit in the comment is computed, to half of its last digit, and none besides."""
+    text = JOBS[name]
+    comment = " ".join(line.removeprefix("#").strip() for line in text.splitlines() if line.startswith("#"))
+    answer = comment[comment.index("Expected:") :]
+    values = EXPECTED[name](text)
+    for value, said in values:
+        prints(value, said.split()[0])
+    stated = re.findall(r"\d[\d.]* (?:mm|in|N|kN|MPa|mrad|%)(?= |,|;|\.|$)", answer)
+    assert stated == [said for _, said in in_order(answer, values)]
+
+
+def in_order(answer: str, values: Values) -> Values:
+    """Values by their place in the comment, each said once."""
+    assert all(answer.count(said) >= 1 for _, said in values)
+    return sorted(values, key=lambda value: re.search(rf"(?<![\d.]){re.escape(value[1])}", answer).start())  # type: ignore[union-attr]
+
+
+@pytest.mark.parametrize("name", EXPECTED)
+def test_meets_its_limits(name: str) -> None:
+    assert all(check["ok"] for c in deflect(JOBS[name])["combinations"] for check in c["checks"])
+
+
+@pytest.mark.parametrize("name", EXPECTED)
+def test_first_line_says_what_it_shows(name: str) -> None:
+    first = JOBS[name].splitlines()[0]
+    assert first.startswith("# ") and 20 < len(first) <= 110
+
+
+def test_start_lists_and_prints(capsys: pytest.CaptureFixture[str]) -> None:
+    assert run(["start"]) == 0
+    listed = capsys.readouterr().out
+    assert all(name in listed for name in EXPECTED)
+    assert run(["start", "flitch-beam"]) == 0
+    assert capsys.readouterr().out == JOBS["flitch-beam"]
+
+
+def test_from_start_to_answer_as_typed(tmp_path: Path) -> None:
+    """``start flitch-beam`` into a file, then ``deflect`` on it, each a process of its own."""
+    fishbelly = [sys.executable, "-m", "fishbelly"]
+    job = tmp_path / "my-beam.toml"
+    with job.open("w", encoding="utf-8") as file:
+        subprocess.run([*fishbelly, "start", "flitch-beam"], stdout=file, check=True, cwd=tmp_path)
+    words = [*fishbelly, "deflect", job.name, "--json"]
+    done = subprocess.run(words, capture_output=True, text=True, check=True, cwd=tmp_path)
+    final = json.loads(done.stdout)["combinations"][1]
+    prints(down(final) / MM, "14.58")
