@@ -74,11 +74,12 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
     "--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version."
 )
 def cli() -> None:
-    """Bending stiffness EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
+    """State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
 
     A job is one TOML file: parts with shape, material and place, supports, loads, limits. Begin with
     `fishbelly start`, which lists worked jobs, then
 
+    \b
         fishbelly start flitch-beam > my-beam.toml
         fishbelly deflect my-beam.toml
     """

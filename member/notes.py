@@ -173,7 +173,7 @@ def _deep(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
     if depth > 0.1 * shortest:
         shear = "shear deformation is included" if member.shear else "shear deformation is left out"
         yield Note(
-            "depth {depth} is more than a tenth of the shortest span {span}: beam theory is an estimate there; " + shear,
+            f"depth {{depth}} is over a tenth of the shortest span {{span}}: beam theory is an estimate there; {shear}",
             {"depth": (depth, "length"), "span": (shortest, "length")},
         )
 

@@ -51,7 +51,7 @@ class SecondResult:
     error : float
         Its own estimate of its error over the largest deflection.
     largest : float
-        Largest deflection anywhere, of either plane [m].
+        Largest deflection of either plane at the Gauss points and the places asked for [m].
     work_check : mapping or None
         Work of the loads ½ΣPδ, and its values with the softest and the stiffest section throughout, between
         which it must lie [J]: "work", "softest", "stiffest". None with several shares, free strain,
@@ -144,7 +144,7 @@ def second_method(
         reactions += _reactions(solved, share)
         everywhere += shape.deflection
         errors.append(_error(solved, sampled, float(np.abs(shape.deflection).max())))
-    largest = float(np.abs(everywhere).max())
+    largest = max(float(np.abs(everywhere).max()), float(np.abs(total).max(initial=0.0)))
     error = _ROUND_OFF + sum(errors) / largest if largest > 0.0 else 0.0
     work = _work_check(solved, everywhere) if solved is not None and len(shares) == 1 else None
     return SecondResult(total, reactions, error, largest, work)

@@ -106,10 +106,10 @@ def _edges(outlines: Sequence[Outline]) -> _Edges:
     sides: list[Array] = []
     owners: list[Index] = []
     for k, outline in enumerate(outlines):
-        for found, side in (_straight(outline), *_curved(outline)):
+        for found, half in (_straight(outline), *_curved(outline)):
             keep = np.any(found[1] > found[0], axis=0)
             fields.append([v[:, keep] for v in found])
-            sides.append(np.full(int(keep.sum()), side))
+            sides.append(np.full(int(keep.sum()), half))
             owners.append(np.full(int(keep.sum()), k, dtype=np.intp))
     low, high, left, right, y0, z0, lean, radius, climb = (
         np.concatenate([f[j] for f in fields], axis=1) for j in range(9)

@@ -180,7 +180,7 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
 def _jumps(left: Array, right: Array, table: Array) -> bool:
     size = np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1)
     gap = np.abs(left - right)
-    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-9 * size) or np.any(np.isnan(left) != np.isnan(right)))
+    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-6 * size) or np.any(np.isnan(left) != np.isnan(right)))
 
 
 def profile_at(member: Member, x: Array, sides: list[str]) -> Array:

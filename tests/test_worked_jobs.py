@@ -128,7 +128,8 @@ def test_every_worked_job_is_tried() -> None:
 def test_gives_what_its_comment_says(name: str) -> None:
     """Every number with a unit in the comment is computed, to half of its last digit, and none besides."""
     text = JOBS[name]
-    comment = " ".join(line.removeprefix("#").strip() for line in text.splitlines() if line.startswith("#"))
+    head = text.split("\n\n", 1)[0]
+    comment = " ".join(line.removeprefix("#").strip() for line in head.splitlines())
     answer = comment[comment.index("Expected:") :]
     values = EXPECTED[name](text)
     for value, said in values:
