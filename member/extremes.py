@@ -100,7 +100,7 @@ def _peak(panels: Panels, values: Array, s0: float, value0: float) -> tuple[floa
         slope, bend = basis @ first, basis @ second
         low, high = np.where(slope > 0.0, s, low), np.where(slope > 0.0, high, s)
         step = s - slope / np.where(bend == 0.0, 1.0, bend)
-        s = np.where((step > low) & (step < high), step, 0.5 * (low + high))
+        s = np.where((step >= low) & (step <= high), step, 0.5 * (low + high))
     tops = r.basis(s) @ values
     best = int(np.argmax(tops))
     # no better than the point it started from, up to round-off: that point stays

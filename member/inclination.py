@@ -38,7 +38,8 @@ def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
                     level[g.rows] = getattr(g.composition.boxes[g.placed.index.index(index)], face)
             slope = (level[profile.row] @ panels.rule.differentiate.T) / panels.stretch
             slope = np.where(np.isnan(slope), 0.0, np.abs(slope))
-            slope[panels.anchor != 0] = 0.0
+            # next to a point in which the member ends, x itself has too few digits for a slope
+            slope[(panels.anchor != 0) | (panels.b - panels.a < 1e-6 * analysis.member.length)] = 0.0
             k = np.unravel_index(int(np.argmax(slope)), slope.shape)
             if slope[k] > best[0]:
                 best = (float(slope[k]), float(panels.x[k]))

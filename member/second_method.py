@@ -129,25 +129,30 @@ def second_method(
     places = np.atleast_1d(np.asarray(x, dtype=float))
     short = np.asarray(short_E, dtype=float)
     slides = [s.shear_flexibility or shear_flexibility for s in shares]
-    sets = list({v.tobytes(): v for v in (short, *(np.asarray(s.E, dtype=float) for s in shares))}.values())
-    sampled = sample(member, sets, [s for s in {id(s): s for s in slides}.values() if s is not None])
+    sampled = _sampled(member, [short, *(np.asarray(s.E, dtype=float) for s in shares)], slides)
     ground = Ground.of(member, sampled.intervals, sampled.sections, short)
+    solved = [_solve(ground, share, slide, lifted) for share, slide in zip(shares, slides, strict=True)]
     total = np.zeros((2, places.size))
     reactions = np.zeros((len(member.supports), 5))
     everywhere = np.zeros((2, *sampled.intervals.x.shape))
-    errors = []
-    solved: _Solved | None = None
-    for share, slide in zip(shares, slides, strict=True):
-        solved = _solve(ground, share, slide, lifted)
-        shape = _shape(solved)
-        total += _at(solved, shape, places)
-        reactions += _reactions(solved, share)
+    error = 0.0
+    for share, found in zip(shares, solved, strict=True):
+        shape = _shape(found)
+        total += _at(found, shape, places)
+        reactions += _reactions(found, share)
         everywhere += shape.deflection
-        errors.append(_error(solved, sampled, float(np.abs(shape.deflection).max())))
+        error += _error(found, sampled, float(np.abs(shape.deflection).max()))
     largest = max(float(np.abs(everywhere).max()), float(np.abs(total).max(initial=0.0)))
-    error = _ROUND_OFF + sum(errors) / largest if largest > 0.0 else 0.0
-    work = _work_check(solved, everywhere) if solved is not None and len(shares) == 1 else None
+    error = _ROUND_OFF + error / largest if largest > 0.0 else 0.0
+    work = _work_check(solved[0]) if len(solved) == 1 else None
     return SecondResult(total, reactions, error, largest, work)
+
+
+def _sampled(member: Member, moduli: Sequence[Array], slides: Sequence[Slide | None]) -> Sampled:
+    """Sections resolved for every different set of moduli and every different 1/GA."""
+    sets = {E.tobytes(): E for E in moduli}
+    different = {id(s): s for s in slides if s is not None}
+    return sample(member, list(sets.values()), list(different.values()))
 
 
 def _solve(ground: Ground, share: LoadShare, slide: Slide | None, lifted: frozenset[str]) -> _Solved:
@@ -283,7 +288,7 @@ def _error(s: _Solved, sampled: Sampled, size: float) -> float:
     return _SAFETY * float((sampled.tail * bent).sum() + sheared) + s.parameters.correction * size
 
 
-def _work_check(s: _Solved, deflection: Array) -> Mapping[str, float] | None:
+def _work_check(s: _Solved) -> Mapping[str, float] | None:
     """Work of the loads against the work with one section throughout."""
     forces = s.fields
     push = np.abs(forces.V).max()

@@ -35,7 +35,7 @@ def solve_parameters(
         When something can move freely.
     """
     rows: list[tuple[list[int], Array, float]] = []
-    f, cut = system.frame, system.frame.cut
+    cut = system.frame.cut
     last = len(cut.stretches) - 1
     for k in range(last + 1):
         left, right = system.right_of(k), system.left_of(k + 1)
@@ -44,6 +44,19 @@ def solve_parameters(
             move = by_left[k] @ left.coefficients, by_right[k] @ right.coefficients
             known = by_left[k] @ left.constant + by_right[k] @ right.constant + by_loads[k]
             _compatibility(system, rows, k, left.columns + right.columns, np.hstack(move), known)
+    _held(system, rows)
+    matrix, b = np.zeros((system.count, system.count)), np.zeros(system.count)
+    for i, (columns, row, value) in enumerate(rows):
+        np.add.at(matrix[i], columns, row)
+        b[i] = value
+    length = float(np.mean(cut.end - cut.start))
+    x, correction = _solved(matrix, b, _units(system, length, bend))
+    return _read(system, x, correction)
+
+
+def _held(system: System, rows: list[tuple[list[int], Array, float]]) -> None:
+    """What supports hold stays where they have come to rest, or presses their springs."""
+    f = system.frame
     for k, hold in enumerate(f.holds):
         columns = [system.move[hold.node, c] for c in f.active]
         row = hold.movement[f.active]
@@ -53,13 +66,6 @@ def solve_parameters(
         else:
             full = np.append(row * hold.spring, 1.0)
             rows.append(([*columns, system.hold[k]], full, float(system.sinks[k, 1])))
-    matrix, b = np.zeros((system.count, system.count)), np.zeros(system.count)
-    for i, (columns, row, value) in enumerate(rows):
-        np.add.at(matrix[i], columns, row)
-        b[i] = value
-    length = float(np.mean(cut.end - cut.start))
-    x, correction = _solved(matrix, b, _units(system, length, bend))
-    return _read(system, x, correction)
 
 
 def _equilibrium(

@@ -14,6 +14,10 @@ from fishbelly.member.response import respond
 from fishbelly.member.section_law import ElasticLaw
 
 
+POINTED = 1e-9
+"""A member whose softest section is below this share of the mean runs out to a point: no shortcut to speak of."""
+
+
 def shortcuts(analysis: Analysis, combinations: Sequence[dict[str, Any]]) -> Iterator[Any]:
     """Deflection down of the first combination with the softest, the stiffest and the mean section throughout."""
     stiffness = analysis.profile.stiffness(analysis.moduli(ModuliKey()))
@@ -26,6 +30,8 @@ def shortcuts(analysis: Analysis, combinations: Sequence[dict[str, Any]]) -> Ite
     mean = float(((EI * panels.stretch) @ panels.rule.weights).sum()) / length
     found = []
     for name, value in (("softest", float(EI.min())), ("mean", mean), ("stiffest", float(EI.max()))):
+        if value < POINTED * mean:
+            continue
         w = _prismatic(analysis, value)
         if w is not None:
             found.append((name, w))

@@ -149,7 +149,9 @@ def _tangent_points(
     for sign in (1.0, -1.0):
         angle = np.arctan2(sign * up, sign * right)
         passed = np.mod(angle - start, 2.0 * np.pi)
-        angle = np.where(passed <= turn, angle, start)
+        # beyond the arc its nearer end: a direction that falls on the end itself must not jump to the other
+        nearest = np.where(passed - turn < 2.0 * np.pi - passed, start + turn, start)
+        angle = np.where(passed <= turn, angle, nearest)
         y.append(y_c + r * np.cos(angle))
         z.append(z_c + r * np.sin(angle))
     return np.concatenate(y), np.concatenate(z)
@@ -228,18 +230,30 @@ def _runs(there: NDArray[np.bool_]) -> list[tuple[int, int]]:
 
 
 def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple[float, float] | None:
-    """Largest shear stress of a part by level cuts, vertical plane."""
+    """Largest shear stress of a part by level cuts; with shear in both planes, their largest ones as vectors.
+
+    With pattern loads in both planes the largest of each plane, wherever it is, are put together: never too low.
+    """
+    panels = analysis.profile.panels
+    fields = [_shear_field(analysis, loading, index, p) for p in range(analysis.planes)]
+    tops = [max((largest(panels, s * field) for s in (1.0, -1.0)), key=lambda e: e.value) for field in fields]
+    top = max(tops, key=lambda e: e.value)
+    if len(fields) == 1 or min(e.value for e in tops) <= 1e-12 * top.value:
+        return top.value, top.at
+    if fields[0].shape[0] > 1:
+        return float(np.hypot(tops[0].value, tops[1].value)), top.at
+    both = largest(panels, fields[0] ** 2 + fields[1] ** 2)
+    return float(np.sqrt(max(both.value, 0.0))), both.at
+
+
+def _shear_field(analysis: Analysis, loading: Sequence[Loading], index: int, plane: int) -> Array:
+    """Largest shear stress of a part on any level of the section, by shear in one plane, shape (J+1, K, n)."""
     profile = analysis.profile
     groups = [g for g in profile.groups if index in g.placed.index]
-    total = None
+    total = np.zeros(loading[0].response.V[0].shape)
     for share in loading:
         peak = np.zeros(profile.rows)
         for g in groups:
-            peak[g.rows] = g.shear(share.moduli).peak[g.placed.index.index(index)]
-        field = share.response.V[0] * peak[profile.row]
-        total = field if total is None else total + field
-    if total is None:
-        return None
-    both = [largest(profile.panels, s * total) for s in (1.0, -1.0)]
-    top = max(both, key=lambda e: e.value)
-    return top.value, top.at
+            peak[g.rows] = g.shear(share.moduli, plane == 1).peak[g.placed.index.index(index)]
+        total = total + share.response.V[plane] * peak[profile.row]
+    return total

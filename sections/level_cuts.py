@@ -185,7 +185,8 @@ def _line_arc(p: Pieces, line: NDArray[np.intp], arc: NDArray[np.intp]) -> tuple
     c = p.y0[:, line] + m * (p.z0[:, arc] - p.z0[:, line]) - p.y0[:, arc]
     with np.errstate(invalid="ignore"):
         root = np.sqrt((1.0 + m * m) * p.radius[:, arc] ** 2 - c * c)
-    return tuple(p.z0[:, arc] + (-m * c + s * root) / (1.0 + m * m) for s in (1.0, -1.0))  # type: ignore[return-value]
+        first, second = ((-m * c + s * root) / (1.0 + m * m) for s in (1.0, -1.0))
+    return p.z0[:, arc] + first, p.z0[:, arc] + second
 
 
 def _arc_arc(p: Pieces, i: NDArray[np.intp], j: NDArray[np.intp]) -> tuple[Array, Array]:
@@ -194,7 +195,8 @@ def _arc_arc(p: Pieces, i: NDArray[np.intp], j: NDArray[np.intp]) -> tuple[Array
     with np.errstate(divide="ignore", invalid="ignore"):
         along = (p.radius[:, i] ** 2 - p.radius[:, j] ** 2 + d2) / (2.0 * d2)
         across = np.sqrt(p.radius[:, i] ** 2 / d2 - along**2)
-    return tuple(p.z0[:, i] + along * dz + s * across * dy for s in (1.0, -1.0))  # type: ignore[return-value]
+        first, second = (along * dz + s * across * dy for s in (1.0, -1.0))
+    return p.z0[:, i] + first, p.z0[:, i] + second
 
 
 @dataclass(frozen=True, eq=False)

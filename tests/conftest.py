@@ -9,8 +9,8 @@ from hypothesis import HealthCheck, settings
 
 # members take a few milliseconds each and the first one imports the geometry library: no deadline for one example
 _COMMON = {"deadline": None, "suppress_health_check": [HealthCheck.too_slow, HealthCheck.data_too_large]}
-settings.register_profile("fast", max_examples=25, derandomize=True, **_COMMON)
-settings.register_profile("full", max_examples=400, **_COMMON)
+settings.register_profile("fast", max_examples=10, derandomize=True, **_COMMON)
+settings.register_profile("full", max_examples=200, **_COMMON)
 FULL = os.environ.get("FISHBELLY_FULL") == "1"
 settings.load_profile("full" if FULL else "fast")
 

@@ -217,8 +217,9 @@ def _cuts(
 ) -> list[Hole]:
     """Parts that take away, and notches from the left or the right; what runs into an edge is seen there already."""
     found = []
-    taking = sum(bool(member.parts[i].cuts) for i in there[0])
-    notches = [member.notches[k].side for k in there[1] if any(member.parts[i].name == member.notches[k].of for i in placed.index)]
+    names = {member.parts[i].name for i in placed.index}
+    taking = sum(bool(names.intersection(member.parts[i].cuts)) for i in there[0])
+    notches = [member.notches[k].side for k in there[1] if member.notches[k].of in names]
     for k, cut in enumerate(placed.cuts[: taking + len(notches)]):
         if not cut.mass or (k >= taking and notches[k - taking] in ("top", "bottom")):
             continue

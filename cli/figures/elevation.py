@@ -1,0 +1,178 @@
+"""The elevation: parts, holes, supports, loads, breaks and dimensions, to a scale that is stated."""
+
+from __future__ import annotations
+
+from collections.abc import Collection
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from fishbelly.cli.figures import loads as loads_
+from fishbelly.cli.figures import parts as parts_
+from fishbelly.cli.figures import supports as supports_
+from fishbelly.cli.figures.letters import lines_of
+from fishbelly.cli.figures.loads import LoadPlan
+from fishbelly.cli.figures.paper import GREY, LEFT, LINE, MEDIUM, RIGHT, THIN, WIDTH, bare, own_panel, pens, size_of, text_width
+from fishbelly.cli.figures.scene import MARGIN, Scene, scale_words, scene
+from fishbelly.cli.figures.side_view import side_view
+from fishbelly.cli.figures.ticks import place
+from fishbelly.member.description import Member
+from fishbelly.member.spans import spans
+
+BODY = 19.0
+"""Height that the member's depth is drawn with, at most [mm]."""
+_DIMENSION = 5.2
+_MOST_WORDS = 3
+
+
+@dataclass(frozen=True, eq=False)
+class Layout:
+    """Heights of the bands of an elevation, from the bottom [mm]."""
+
+    words: tuple[str, ...]
+    dimension: float
+    chain: float
+    tags: float
+    stations: float
+    names: float
+    symbols: float
+    loads: LoadPlan
+
+    @property
+    def below(self) -> float:
+        """Everything under the member."""
+        bands = (self.dimension, self.chain, self.tags, self.stations, self.names, self.symbols)
+        return LINE * len(self.words) + sum(bands)
+
+    @property
+    def above(self) -> float:
+        """Everything over the member."""
+        return self.loads.height + 2.0
+
+    @property
+    def height(self) -> float:
+        """Everything."""
+        return self.below + BODY + self.above
+
+
+def layout(
+    member: Member, style: str, cases: Collection[str] | None = None, with_loads: bool = True, width: float | None = None
+) -> Layout:
+    """Choose the bands of an elevation; `width` is that of the axes [mm]."""
+    across = (WIDTH - LEFT - RIGHT) if width is None else width
+    planned = loads_.plan(member, style, across - 2.0 * MARGIN, cases if with_loads else ())
+    words = lines_of(loads_.words_of(planned), across, _MOST_WORDS)
+    several = len(spans(member)) > 1
+    return Layout(
+        words=tuple(words),
+        dimension=_DIMENSION,
+        chain=_DIMENSION if several else 0.0,
+        tags=parts_.TAGS,
+        stations=LINE + 0.4 if member.stations else 0.0,
+        names=LINE + 0.4 if member.supports else 0.0,
+        symbols=supports_.HEIGHT if member.supports else 1.0,
+        loads=planned,
+    )
+
+
+def plot(job: Any, cases: Collection[str] | None = None, with_loads: bool = True, ax: Any = None) -> Any:
+    """Draw the elevation of a job.
+
+    Parameters
+    ----------
+    job : Job
+        The job: its member and its style of units.
+    cases : collection of str, optional
+        Load cases of which the loads are drawn; default all.
+    with_loads : bool
+        Whether loads are drawn at all.
+    ax : Axes, optional
+        Where to draw; default axes of a new figure.
+
+    Returns
+    -------
+    Axes
+        Horizontal axis in m along the member, vertical axis in mm of paper.
+    """
+    with pens():
+        bands = layout(job.member, job.style, cases, with_loads, None if ax is None else size_of(ax)[0])
+        if ax is None:
+            ax = own_panel(bands.height, foot=2.0)
+        bare(ax)
+        height = size_of(ax)[1]
+        room = max(height - bands.below - bands.above, 4.0)
+        drawn = scene(ax, side_view(job.member), job.style, bands.below, room)
+        parts_.draw(drawn)
+        _caption(drawn, height, with_loads and bool(bands.loads.blocks or bands.loads.points))
+        loads_.draw(drawn, bands.loads, drawn.top + 1.2)
+        _below(drawn, bands)
+    return ax
+
+
+def _caption(drawn: Scene, height: float, loaded: bool) -> None:
+    words = f"Elevation, {scale_words(drawn.factor)}"
+    if drawn.view.member.rises:
+        words += f", member level though it rises {np.degrees(drawn.view.member.rises):.3g}°"
+    if loaded:
+        words += "; loads before factors"
+    drawn.ax.text(drawn.left, height + 0.8, words, ha="left", va="bottom", clip_on=False)
+
+
+def _below(drawn: Scene, bands: Layout) -> None:
+    """Draw what stands under the member, from the bottom upwards."""
+    y = 0.0
+    for line in reversed(bands.words):
+        drawn.ax.text(drawn.left, y + 0.5 * LINE, line, ha="left", va="center")
+        y += LINE
+    _length(drawn, y + 1.2)
+    y += bands.dimension
+    if bands.chain:
+        _chain(drawn, y + 1.2)
+        y += bands.chain
+    parts_.draw_tags(drawn, parts_.tags(drawn), y + 0.5 * LINE + 0.6)
+    y += bands.tags
+    if bands.stations:
+        _stations(drawn, y + 0.5 * LINE)
+        y += bands.stations
+    supports_.draw(drawn, y + 0.5 * LINE)
+
+
+def _dimension(drawn: Scene, start: float, end: float, height: float, text: str) -> None:
+    """Draw a dimension line between two places [m] with its text over it."""
+    drawn.ax.plot([start, end], [height, height], color="black", lw=THIN, zorder=3)
+    for x in (start, end):
+        at = drawn.mm(x)
+        drawn.ax.plot(drawn.x(np.array([at - 0.7, at + 0.7])), [height - 0.7, height + 0.7], color="black", lw=MEDIUM)
+    if text:
+        drawn.write(drawn.mm(0.5 * (start + end)), height + 0.4 + 0.5 * LINE, text)
+
+
+def _length(drawn: Scene, height: float) -> None:
+    """Draw the length, with thin ticks where the cross-section breaks."""
+    _dimension(drawn, 0.0, drawn.length, height, place(drawn.length, drawn.length, drawn.style))
+    for x in drawn.view.breaks:
+        drawn.ax.plot([x, x], [height - 0.9, height + 0.9], color="black", lw=THIN)
+
+
+def _chain(drawn: Scene, height: float) -> None:
+    """Draw spans and overhangs, with their lengths where every one has room."""
+    pieces = spans(drawn.view.member)
+    texts = [place(p.length, drawn.length, drawn.style) for p in pieces]
+    if any(text_width(t) > drawn.mm(p.end) - drawn.mm(p.start) - 0.6 for t, p in zip(texts, pieces, strict=True)):
+        texts = [t.split(" ")[0] for t in texts] if drawn.style != "us" else texts
+    for piece, text in zip(pieces, texts, strict=True):
+        fits = text_width(text) <= drawn.mm(piece.end) - drawn.mm(piece.start) - 0.6
+        _dimension(drawn, piece.start, piece.end, height, text if fits else "")
+
+
+def _stations(drawn: Scene, height: float) -> None:
+    """Mark named stations by an upright line down to their names."""
+    stations = sorted(drawn.view.member.stations, key=lambda s: s.at)
+    placed = supports_.placed_in_row(drawn, [(s.at, s.name) for s in stations])
+    for s in stations:
+        top = drawn.edges(s.at)[1] + 1.0
+        drawn.ax.plot([s.at, s.at], [height + 0.6 * LINE, top], color=GREY, lw=MEDIUM, ls=(0, (6, 1.5, 1, 1.5)), zorder=6)
+    for middle, text in placed:
+        drawn.write(middle, height, text, style="italic")
+
