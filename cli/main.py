@@ -70,9 +70,7 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
     callback=_cautions,
     help="What results do not cover.",
 )
-@click.option(
-    "--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version."
-)
+@click.option("--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version.")
 def cli() -> None:
     """State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
 
@@ -96,9 +94,7 @@ def _refused(option: str) -> Callable[[click.Context, click.Parameter, Any], Non
 def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
     """Options that every command with results shares."""
     options = (
-        click.option(
-            "--json", "as_json", is_flag=True, help="Print one JSON object in SI units instead of the table."
-        ),
+        click.option("--json", "as_json", is_flag=True, help="Print one JSON object in SI units instead of the table."),
         click.option(
             "-o",
             "--output",
@@ -147,9 +143,7 @@ def _wrapped(head: str, text: str) -> str:
 
 @cli.command()
 @click.argument("job")
-@click.option(
-    "--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".'
-)
+@click.option("--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".')
 @click.option(
     "--side",
     type=click.Choice(["left", "right"]),
@@ -157,13 +151,9 @@ def _wrapped(head: str, text: str) -> str:
     show_default=True,
     help="Side of a break.",
 )
-@click.option(
-    "--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's]."
-)
+@click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
 @_outputs
-def section(
-    job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool
-) -> int:
+def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
     """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
 
     Example: fishbelly section my-beam.toml --at "1.2 m"
@@ -211,9 +201,7 @@ def stiffness(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, 
     metavar="X",
     help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
 )
-@click.option(
-    "--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order")
-)
+@click.option("--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order"))
 @_outputs
 def deflect(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
     """Show reactions, moments, deflections, stresses and limits.
@@ -281,11 +269,7 @@ def _finish(
         from fishbelly.cli import tables
 
         show = {"section": tables.section_table, "stiffness": tables.stiffness_table}
-        text = (
-            show[command](data, job.style)
-            if command == "section"
-            else _table(command, data, job.style, listed)
-        )
+        text = show[command](data, job.style) if command == "section" else _table(command, data, job.style, listed)
         click.echo(text.rstrip("\n"))
     if not (sys.stdout.isatty() and sys.stderr.isatty() and not as_json):
         for note in data.get("notes", ()):
@@ -318,6 +302,8 @@ def run(arguments: Sequence[str] | None = None) -> int:
     int
         Exit status.
     """
+    # the systems solved here are small: threads of the linear algebra only get in each other's way
+    os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
     try:
         status = cli.main(
             args=None if arguments is None else list(arguments), prog_name="fishbelly", standalone_mode=False

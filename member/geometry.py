@@ -84,7 +84,7 @@ class Geometry:
         return start <= x + tiny < end if side == "right" else start < x - tiny <= end
 
     def present(self, x: float, side: str = "right") -> tuple[tuple[int, ...], tuple[int, ...], tuple[int, ...]]:
-        """Indices of the parts, notches (reach included) and openings that are there at x."""
+        """Indices of the parts, notches and openings that are there at x; ~i for a notch within its reach alone."""
         m = self.member
         parts = tuple(i for i, p in enumerate(m.parts) if self.is_there(p.start, p.end, x, side))
         names = {m.parts[i].name for i in parts}
@@ -92,8 +92,10 @@ class Geometry:
         for i, n in enumerate(m.notches):
             if n.of in names:
                 p = m.part(n.of)
-                if self.is_there(*notch_span(n, p.start, p.end, True), x, side):
+                if self.is_there(*notch_span(n, p.start, p.end, False), x, side):
                     notches.append(i)
+                elif self.is_there(*notch_span(n, p.start, p.end, True), x, side):
+                    notches.append(~i)
         openings = tuple(
             i
             for i, o in enumerate(m.openings)
@@ -191,7 +193,7 @@ class Geometry:
         x: Array,
         side: str,
     ) -> list[Cut]:
-        notch = self.member.notches[k]
+        notch = self.member.notches[k if k >= 0 else ~k]
         if notch.of not in names:
             return []
         target = names.index(notch.of)
@@ -206,9 +208,7 @@ class Geometry:
             edges[2] = box.left + depth
         else:
             edges[0] = box.right - depth
-        part = self.member.part(notch.of)
-        start, end = notch_span(notch, part.start, part.end, False)
-        return [Cut(_box_outline(*edges), (target,), self.is_there(start, end, float(x[x.size // 2]), side))]
+        return [Cut(_box_outline(*edges), (target,), k >= 0)]
 
     def _opening(
         self, k: int, names: list[str], outlines: dict[int, Outline], adding: tuple[int, ...], x: Array

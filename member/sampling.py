@@ -11,6 +11,7 @@ from fishbelly.member.breakpoints import breakpoints, merged
 from fishbelly.member.description import Member
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.geometry import Geometry
+from fishbelly.member.loads import Temperature
 from fishbelly.member.moduli import Moduli, moduli
 from fishbelly.member.openings import opening_round_ends
 from fishbelly.member.panels import POINTS, Panels
@@ -130,7 +131,8 @@ def _tails(
     geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch
 ) -> dict[str, Array]:
     """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
-    columns = np.zeros((8, count * POINTS))
+    columns = np.zeros((11, count * POINTS))
+    warm, aside = _asks(geometry.member)
     for g in new:
         s = g.stiffness(short)
         size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
@@ -150,14 +152,15 @@ def _tails(
     if not np.all(np.isfinite(v)):
         k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
         raise CannotCompute(f"no stiffness between x = {batch.a[k]:.6g} m and {batch.b[k]:.6g} m")
-    unresolved = tail(v[:7], POINTS) - _noise(v[:7], batch)
+    unresolved = tail(v[:10], POINTS) - _noise(v[:10], batch)
     inverse = unresolved[:3].max(axis=0)
-    largest = np.maximum(v[7].max(axis=-1), 1e-300)
-    offset = unresolved[3:5] * np.abs(v[3:5]).max(axis=-1) / largest
+    largest = np.maximum(v[10].max(axis=-1), 1e-300)
+    levels = [3, 4, 8, 9]
+    offset = unresolved[levels] * np.abs(v[levels]).max(axis=-1) / largest
     crossed = unresolved[5] * np.abs(v[5]).max(axis=-1)
     done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
     if shear:
-        done &= unresolved[6] < SHEAR_RESOLVED
+        done &= unresolved[6:8].max(axis=0) < SHEAR_RESOLVED
     width = (batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a))
     done |= width < 1e-12
     EI = 1.0 / v[1]
@@ -170,6 +173,12 @@ def _tails(
     at_zero = (batch.anchor < 0) & (batch.a == 0.0)
     done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 14))
     return {"done": done.astype(float), "apex": apex.astype(float)}
+
+
+def _asks(member: Member) -> tuple[bool, bool]:
+    """Whether the loads ask for the section's top and bottom (a temperature gradient), and for shear sideways."""
+    warm = any(isinstance(v, Temperature) and v.parts is None and v.top != v.bottom for v in member.loads)
+    return warm, any(getattr(v, "direction", "") == "across" for v in member.loads)
 
 
 def _vanishes(geometry: Geometry, short: Moduli, a: float, b: float, apex: int) -> bool:

@@ -168,14 +168,14 @@ def _solve(ground: Ground, share: LoadShare, slide: Slide | None, lifted: frozen
     return _with_law(ground, f, loads, law, down)
 
 
-def _with_law(ground: Ground, f: Frame, loads: Pushes, law: Flexibility, down: Array) -> _Solved:
+def _with_law(ground: Ground, f: Frame, loads: Pushes, law: Flexibility, down: Array, refine: bool = True) -> _Solved:
     own, over = load_fields(f.cut, loads)
     free = Fields(own.N + loads.free[0], own.V, own.M + loads.free[1:])
     units = unit_fields(f.cut)
     left, right = end_movements(f.cut, strains(law, ground.line, units))
     by_loads = sum(end_movements(f.cut, strains(law, ground.line, free)))
     bend = float(np.median(law.bend[0, 0]))
-    found = solve_parameters(System(f, loads.jumps, down), over, left, right, np.asarray(by_loads), bend)
+    found = solve_parameters(System(f, loads.jumps, down), over, left, right, np.asarray(by_loads), bend, refine)
     ends = np.where(f.cut.from_left[:, None], found.left[f.cut.segment], found.right[f.cut.segment])
     N = own.N + ends[:, :1]
     V = own.V + ends[:, 1:3].T[:, :, None]
@@ -312,7 +312,7 @@ def _work_check(s: _Solved) -> Mapping[str, float] | None:
         still = np.broadcast_to(s.ground.line[:, None, None], s.law.c.shape)
         law = Flexibility(s.law.EA, still, both, moved)
         down = np.zeros((len(s.frame.holds), 2))
-        solved = _with_law(s.ground, s.frame, s.loads, law, down)
+        solved = _with_law(s.ground, s.frame, s.loads, law, down, refine=False)
         found[name] = _work(solved, _shape(solved))
     return found
 

@@ -12,7 +12,13 @@ Array = NDArray[np.float64]
 
 
 def solve_parameters(
-    system: System, over: Array, by_left: Array, by_right: Array, by_loads: Array, bend: float
+    system: System,
+    over: Array,
+    by_left: Array,
+    by_right: Array,
+    by_loads: Array,
+    bend: float,
+    refine: bool = True,
 ) -> Parameters:
     """Find the parameters at all nodes.
 
@@ -28,6 +34,8 @@ def solve_parameters(
         The same by the loads and free strain.
     bend : float
         A typical 1/EI, to scale with [1/(N m2)].
+    refine : bool
+        Refine the solution on residuals of higher precision.
 
     Raises
     ------
@@ -50,7 +58,7 @@ def solve_parameters(
         np.add.at(matrix[i], columns, row)
         b[i] = value
     length = float(np.mean(cut.end - cut.start))
-    x, correction = _solved(matrix, b, _units(system, length, bend))
+    x, correction = _solved(matrix, b, _units(system, length, bend), refine)
     return _read(system, x, correction)
 
 
@@ -125,7 +133,7 @@ def _units(system: System, length: float, bend: float) -> Array:
     return unit
 
 
-def _solved(matrix: Array, b: Array, unit: Array) -> tuple[Array, float]:
+def _solved(matrix: Array, b: Array, unit: Array, refine: bool) -> tuple[Array, float]:
     """Solve, refine on residuals of higher precision, and say how far the first refinement moved."""
     scaled = matrix * unit
     size = np.abs(scaled).max(axis=1)
@@ -135,7 +143,7 @@ def _solved(matrix: Array, b: Array, unit: Array) -> tuple[Array, float]:
     try:
         x = np.linalg.solve(scaled, b)
         first = 0.0
-        if np.any(b):
+        if refine and np.any(b):
             wide, target = scaled.astype(np.longdouble), b.astype(np.longdouble)
             for turn in range(2 if b.size < 500 else 1):
                 step = np.linalg.solve(scaled, (target - wide @ x.astype(np.longdouble)).astype(float))

@@ -13,7 +13,6 @@ from fishbelly.member.note import Note
 from fishbelly.member.response import respond
 from fishbelly.member.section_law import ElasticLaw
 
-
 POINTED = 1e-9
 """A member whose softest section is below this share of the mean runs out to a point: no shortcut to speak of."""
 

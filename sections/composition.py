@@ -18,8 +18,9 @@ from fishbelly.sections.area_moments import AreaMoments, area_moments
 from fishbelly.sections.chebyshev import rule
 from fishbelly.sections.level_cuts import Pieces, Widths, events, pieces, widths
 from fishbelly.sections.outlines import Outline
-from fishbelly.sections.overlap import relation
+from fishbelly.sections.overlap import boxes_apart, relation
 from fishbelly.sections.placing import Bounds
+from fishbelly.sections.slab_moments import slab_moments
 
 Array = NDArray[np.float64]
 
@@ -87,13 +88,18 @@ class Composition:
     @cached_property
     def crossing(self) -> bool:
         """Whether any two outlines cross, or more than two lie within each other."""
-        if "mixed" in self.relations.values():
+        if self.overlaps_itself or "mixed" in self.relations.values():
             return True
         for i in range(len(self.outlines)):
             removers = [j for (k, j) in self.relations if k == i]
             if len(removers) > 1 and not self._apart(removers):
                 return True
         return False
+
+    @cached_property
+    def overlaps_itself(self) -> bool:
+        """Whether an outline has copies whose boxes overlap, as a pair set too close."""
+        return any(_copies_meet(o) for o in self.outlines)
 
     def _apart(self, removers: list[int]) -> bool:
         shapes = [self._outline(j) for j in removers]
@@ -112,7 +118,8 @@ class Composition:
     def moments(self) -> AreaMoments:
         """Moments of what works of each part, shape (P, S)."""
         if self.crossing:
-            return _integrated(self.levels)
+            edges = events(self.pieces, True, self.overlaps_itself)
+            return slab_moments(self.pieces, edges, len(self.outlines), [c[1] for c in self.cuts])
         return self._subtracted(self.relations)
 
     @cached_property
@@ -140,7 +147,8 @@ class Composition:
     @cached_property
     def levels(self) -> Levels:
         """Level cuts of the whole section."""
-        return level_cuts(self.pieces, len(self.outlines), [c[1] for c in self.cuts], self.crossing)
+        targets = [c[1] for c in self.cuts]
+        return level_cuts(self.pieces, len(self.outlines), targets, self.crossing, self.overlaps_itself)
 
     @cached_property
     def extent(self) -> tuple[Array, Array]:
@@ -158,9 +166,9 @@ class Composition:
         return Composition(tuple(o.turned(0.5 * np.pi) for o in self.outlines), cuts)
 
 
-def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing: bool) -> Levels:
+def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing: bool, itself: bool = False) -> Levels:
     """Cut the section between its events: Chebyshev levels, crowded to the events where edges are curved."""
-    edges = events(p, crossing)
+    edges = events(p, crossing, itself)
     curved = bool(np.any(p.branch))
     r = rule(_CURVED_POINTS if curved else _STRAIGHT_POINTS)
     half = 0.5 * np.diff(edges, axis=1)[..., None]
@@ -173,21 +181,15 @@ def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing
     return Levels(edges, z, half * slope, cut)
 
 
+def _copies_meet(outline: Outline) -> bool:
+    """Whether the boxes of two outer loops of an outline share area at any station."""
+    if len(outline.loops) < 2:
+        return False
+    loops = [Outline(outline.y[:, a:b], outline.z[:, a:b], outline.bulge[a:b], ((0, b - a),)) for a, b in outline.loops]
+    # holes run clockwise: their corners enclose an area below zero
+    outer = [Bounds.of(o) for o in loops if np.any((o.y * (o.ends[1] - np.roll(o.z, 1, axis=1))).sum(axis=1) > 0.0)]
+    return any(not boxes_apart(a, b) for k, a in enumerate(outer) for b in outer[:k])
+
+
 def _stacked(rows: Sequence[AreaMoments]) -> AreaMoments:
     return AreaMoments(*(np.stack([getattr(m, f) for m in rows]) for f in ("area", "y", "z", "zz", "yy", "yz")))
-
-
-def _integrated(levels: Levels) -> AreaMoments:
-    weight = levels.stretch * rule(levels.z.shape[-1]).weights
-    z0 = 0.5 * (levels.edges[:, 0] + levels.edges[:, -1])
-    z = levels.z - z0[:, None, None]
-    w, first, second = levels.widths.width, levels.widths.first, levels.widths.second
-    area = (w * weight).sum(axis=(2, 3))
-    total = np.where(area == 0.0, 1.0, area)
-    y_c = (first * weight).sum(axis=(2, 3)) / total
-    z_c = (w * z * weight).sum(axis=(2, 3)) / total
-    dz = z - z_c[:, :, None, None]
-    moment_y = first - y_c[:, :, None, None] * w
-    zz = (w * dz**2 * weight).sum(axis=(2, 3))
-    yy = ((second - y_c[:, :, None, None] * (first + moment_y)) * weight).sum(axis=(2, 3))
-    return AreaMoments(area, y_c, z0 + z_c, zz, yy, (moment_y * dz * weight).sum(axis=(2, 3)))

@@ -125,7 +125,7 @@ def _curved(
             flags.append((branch * float(np.sign(turn[0, e])), branch, owner))
 
 
-def events(p: Pieces, crossing: bool) -> Array:
+def events(p: Pieces, crossing: bool, itself: bool = False) -> Array:
     """Levels at which anything begins, ends or crosses, sorted, shape (S, K).
 
     Parameters
@@ -134,10 +134,12 @@ def events(p: Pieces, crossing: bool) -> Array:
         Boundary pieces.
     crossing : bool
         Whether outlines may cross each other; crossings are then found.
+    itself : bool
+        Whether an outline may cross itself, as the copies of a pair that overlap.
     """
     levels = [np.where(np.isfinite(p.low), p.low, np.nan), np.where(np.isfinite(p.high), p.high, np.nan)]
     if crossing:
-        levels.append(_crossings(p))
+        levels.append(_crossings(p, itself))
     z = np.sort(np.concatenate(levels, axis=1), axis=1)
     top = np.nanmax(z, axis=1, keepdims=True)
     z = np.where(np.isnan(z), top, z)
@@ -147,10 +149,10 @@ def events(p: Pieces, crossing: bool) -> Array:
     return np.asarray(z[:, np.concatenate(([True], apart))])
 
 
-def _crossings(p: Pieces) -> Array:
+def _crossings(p: Pieces, itself: bool) -> Array:
     """Levels where pieces of different outlines meet, NaN elsewhere, shape (S, C)."""
     i, j = np.triu_indices(p.owner.size, 1)
-    keep = p.owner[i] != p.owner[j]
+    keep = (p.owner[i] != p.owner[j]) | itself
     i, j = i[keep], j[keep]
     low, high = np.maximum(p.low[:, i], p.low[:, j]), np.minimum(p.high[:, i], p.high[:, j])
     keep = np.any(high > low, axis=0)
@@ -231,25 +233,43 @@ def widths(p: Pieces, levels: Array, parts: int, targets: Sequence[Sequence[int]
     -------
     Widths
     """
+    order, last, met = owners(p, levels, parts, targets)
+    y = np.where(met, np.take_along_axis(p.at(levels), order, axis=2), 0.0)
+    # the stretch to the right of the last piece is outside everything
+    end = np.concatenate((y[:, :, 1:], y[:, :, -1:]), axis=2)
+    return _collect(np.where(met, last, -1), y, end, parts)
+
+
+def owners(
+    p: Pieces, levels: Array, parts: int, targets: Sequence[Sequence[int]]
+) -> tuple[NDArray[np.intp], NDArray[np.int_], NDArray[np.bool_]]:
+    """Order of the pieces along level lines, and who owns the stretch to the right of each.
+
+    Returns
+    -------
+    order : ndarray of int, shape (S, L, m)
+        Pieces from left to right, at most m of them met by any level.
+    last : ndarray of int, shape (S, L, m)
+        The part that owns what lies right of each; -1 nothing.
+    met : ndarray of bool, shape (S, L, m)
+        Whether the level meets so many pieces at all.
+    """
     y = np.where(p.active(levels), p.at(levels), np.inf)
     order = np.argsort(y, axis=2, kind="stable")
-    met = int(np.isfinite(y).sum(axis=2).max(initial=0))
-    order = order[:, :, :met]
-    y = np.take_along_axis(y, order, axis=2)
-    owners, entering = p.owner[order], -p.sign[order]
-    entering = np.where(np.isfinite(y), entering, 0.0)
-    last = np.full(y.shape, -1)
+    most = int(np.isfinite(y).sum(axis=2).max(initial=0))
+    order = order[:, :, :most]
+    met = np.isfinite(np.take_along_axis(y, order, axis=2))
+    owner = p.owner[order]
+    entering = np.where(met, -p.sign[order], 0.0)
+    last = np.full(order.shape, -1)
     inside = []
     for k in range(parts + len(targets)):
-        inside.append(np.cumsum(np.where(owners == k, entering, 0.0), axis=2) > 0.5)
+        inside.append(np.cumsum(np.where(owner == k, entering, 0.0), axis=2) > 0.5)
         if k < parts:
             last[inside[k]] = k
     for c, hit in enumerate(targets):
         last[inside[parts + c] & np.isin(last, hit)] = -1
-    # the stretch to the right of the last piece is outside everything
-    end = np.concatenate((y[:, :, 1:], y[:, :, -1:]), axis=2)
-    y, end = np.where(np.isfinite(y), y, 0.0), np.where(np.isfinite(end), end, 0.0)
-    return _collect(last, y, end, parts)
+    return order, last, met
 
 
 def _collect(last: NDArray[np.int_], y: Array, end: Array, parts: int) -> Widths:

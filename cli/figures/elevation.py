@@ -15,9 +15,8 @@ from fishbelly.cli.figures.letters import lines_of
 from fishbelly.cli.figures.loads import LoadPlan
 from fishbelly.cli.figures.paper import GREY, LEFT, LINE, MEDIUM, RIGHT, THIN, WIDTH, bare, own_panel, pens, size_of, text_width
 from fishbelly.cli.figures.scene import MARGIN, Scene, scale_words, scene
-from fishbelly.cli.figures.side_view import side_view
+from fishbelly.cli.figures.side_view import SideView, side_view
 from fishbelly.cli.figures.ticks import place
-from fishbelly.member.description import Member
 from fishbelly.member.spans import spans
 
 BODY = 19.0
@@ -57,18 +56,20 @@ class Layout:
 
 
 def layout(
-    member: Member, style: str, cases: Collection[str] | None = None, with_loads: bool = True, width: float | None = None
+    view: SideView, style: str, cases: Collection[str] | None = None, with_loads: bool = True, width: float | None = None
 ) -> Layout:
     """Choose the bands of an elevation; `width` is that of the axes [mm]."""
+    member = view.member
     across = (WIDTH - LEFT - RIGHT) if width is None else width
     planned = loads_.plan(member, style, across - 2.0 * MARGIN, cases if with_loads else ())
     words = lines_of(loads_.words_of(planned), across, _MOST_WORDS)
-    several = len(spans(member)) > 1
+    tags = parts_.tags(scene(None, view, style, across, 0.0, BODY))
+    rows = 1 + max((t.row for t in tags if not t.inside), default=-1)
     return Layout(
         words=tuple(words),
         dimension=_DIMENSION,
-        chain=_DIMENSION if several else 0.0,
-        tags=parts_.TAGS,
+        chain=_DIMENSION if len(spans(member)) > 1 else 0.0,
+        tags=rows * parts_.TAGS,
         stations=LINE + 0.4 if member.stations else 0.0,
         names=LINE + 0.4 if member.supports else 0.0,
         symbols=supports_.HEIGHT if member.supports else 1.0,
@@ -96,13 +97,16 @@ def plot(job: Any, cases: Collection[str] | None = None, with_loads: bool = True
         Horizontal axis in m along the member, vertical axis in mm of paper.
     """
     with pens():
-        bands = layout(job.member, job.style, cases, with_loads, None if ax is None else size_of(ax)[0])
+        view = side_view(job.member)
+        bands = layout(view, job.style, cases, with_loads, None if ax is None else size_of(ax)[0])
         if ax is None:
             ax = own_panel(bands.height, foot=2.0)
         bare(ax)
-        height = size_of(ax)[1]
+        width, height = size_of(ax)
         room = max(height - bands.below - bands.above, 4.0)
-        drawn = scene(ax, side_view(job.member), job.style, bands.below, room)
+        drawn = scene(ax, view, job.style, width, bands.below, room)
+        ax.set_xlim(drawn.left, drawn.right)
+        ax.set_ylim(0.0, height)
         parts_.draw(drawn)
         _caption(drawn, height, with_loads and bool(bands.loads.blocks or bands.loads.points))
         loads_.draw(drawn, bands.loads, drawn.top + 1.2)
@@ -130,8 +134,8 @@ def _below(drawn: Scene, bands: Layout) -> None:
     if bands.chain:
         _chain(drawn, y + 1.2)
         y += bands.chain
-    parts_.draw_tags(drawn, parts_.tags(drawn), y + 0.5 * LINE + 0.6)
     y += bands.tags
+    parts_.draw_tags(drawn, parts_.tags(drawn), y)
     if bands.stations:
         _stations(drawn, y + 0.5 * LINE)
         y += bands.stations
@@ -174,5 +178,5 @@ def _stations(drawn: Scene, height: float) -> None:
         top = drawn.edges(s.at)[1] + 1.0
         drawn.ax.plot([s.at, s.at], [height + 0.6 * LINE, top], color=GREY, lw=MEDIUM, ls=(0, (6, 1.5, 1, 1.5)), zorder=6)
     for middle, text in placed:
-        drawn.write(middle, height, text, style="italic")
+        drawn.write(middle, height, text, style="italic", bbox=supports_.white())
 

@@ -15,21 +15,23 @@ from fishbelly.cli.figures.side_view import Stretch
 
 Array = NDArray[np.float64]
 
-TAGS = LINE + 2.4
+TAGS = LINE + 1.6
 """Height of a row of numbers under the member [mm]."""
+_MOST_ROWS = 5
 _TOO_THIN = 0.5
-"""Parts thinner than this on paper are drawn solid [mm]."""
+"""Parts thinner than this on paper are drawn without a hatch [mm]."""
 _DASHES = (0, (4.0, 2.0))
 
 
 @dataclass(frozen=True)
 class Tag:
-    """The number of a part: inside it at (x, height) [mm], or in a row under the member."""
+    """The number of a part: inside it at (x, height) [mm], or in a row under the member, counted from the top."""
 
     part: int
     x: float
     height: float
     inside: bool
+    row: int = 0
 
 
 def draw(scene: Scene) -> None:
@@ -58,8 +60,9 @@ def _surface(scene: Scene, run: list[Stretch], level: float) -> None:
     look = part_look(run[0].part)
     ring_x, ring_z = np.concatenate((x, x[::-1])), np.concatenate((low, high[::-1]))
     thin = float((high - low).max()) < _TOO_THIN
-    drawn = {"facecolor": "black"} if thin else look.drawn
-    scene.ax.fill(ring_x, ring_z, edgecolor="black", lw=MEDIUM, zorder=level, joinstyle="miter", **drawn)
+    drawn = {"facecolor": ("0.3", "0.8")[run[0].part % 2]} if thin else look.drawn
+    pen = THIN if thin else MEDIUM
+    scene.ax.fill(ring_x, ring_z, edgecolor="black", lw=pen, zorder=level, joinstyle="miter", **drawn)
     for s in run:
         for line in s.lines:
             scene.ax.plot(s.x, scene.up(line), color="black", lw=THIN, zorder=level)
@@ -148,22 +151,24 @@ def _below(scene: Scene, parts: list[int]) -> list[Tag]:
         alike = same[a, b]
         wanted.append(a + (b - a) * (alike.index(part) + 1.0) / (len(alike) + 1.0))
     sizes = [text_width(number_of(scene.view.member, p)) + 1.6 for p in parts]
-    middles = apart(wanted, sizes, 0.0, scene.width)
-    if middles is None:
-        return []
-    return [Tag(p, float(m), 0.0, False) for p, m in zip(parts, middles, strict=True)]
+    for rows in range(1, _MOST_ROWS + 1):
+        # neighbours stand in different rows, so that a line passes between those of the rows above
+        middles = apart(wanted, [s / rows for s in sizes], 1.0, scene.width - 1.0, 0.8 / rows)
+        if middles is not None:
+            place = {p: k % rows for k, p in enumerate(sorted(parts, key=lambda p: middles[parts.index(p)]))}
+            return [Tag(p, float(m), 0.0, False, place[p]) for p, m in zip(parts, middles, strict=True)]
+    return []
 
 
-def draw_tags(scene: Scene, chosen: tuple[Tag, ...], row: float) -> None:
-    """Write the numbers; those in the row, whose middle is at a height [mm], with a line to their part."""
+def draw_tags(scene: Scene, chosen: tuple[Tag, ...], top: float) -> None:
+    """Write the numbers; those in rows, of which the first ends at a height [mm], with a line to their part."""
     for tag in chosen:
         text = number_of(scene.view.member, tag.part)
-        height = tag.height if tag.inside else row
+        height = tag.height if tag.inside else top - 0.5 * TAGS - tag.row * TAGS
         if not tag.inside:
             x, z = _foot(scene, tag)
-            scene.ax.plot(
-                scene.x(np.array([tag.x, x])), [row + 0.5 * LINE, z], color=GREY, lw=THIN, zorder=5.5, solid_capstyle="butt"
-            )
+            line_x, line_z = scene.x(np.array([tag.x, tag.x, x])), [height + 0.5 * LINE, top, z]
+            scene.ax.plot(line_x, line_z, color=GREY, lw=THIN, zorder=5.5, solid_capstyle="butt")
             scene.ax.plot([scene.x(x)], [z], "o", ms=1.6, color="black", mec="white", mew=0.3, zorder=5.6)
         ground = {"boxstyle": "round,pad=0.18", "facecolor": "white", "edgecolor": "black", "lw": THIN}
         scene.write(tag.x, height, text, zorder=6.5, bbox=ground)

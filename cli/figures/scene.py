@@ -8,7 +8,6 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.cli.figures.paper import size_of
 from fishbelly.cli.figures.side_view import SideView
 
 Array = NDArray[np.float64]
@@ -101,26 +100,25 @@ def exaggeration(depth: float, length: float, width: float, room: float) -> floa
     return float(max(s * power for s in _STEPS if s * power <= best * (1.0 + 1e-9)))
 
 
-def scene(ax: Any, view: SideView, style: str, below: float, room: float) -> Scene:
-    """Set up axes for an elevation.
+def scene(ax: Any, view: SideView, style: str, width: float, below: float, room: float) -> Scene:
+    """Choose scales for an elevation.
 
     Parameters
     ----------
-    ax : Axes
-        Bare axes.
+    ax : Axes or None
+        Bare axes; None to look at places only.
     view : SideView
         The member.
     style : {"metric", "us"}
         Units to show.
+    width : float
+        Width of the axes [mm].
     below : float
         Height that is needed under the member [mm].
     room : float
         Height that the member may take [mm].
     """
-    width, height = size_of(ax)
     left, right = limits(view.member.length, width)
-    ax.set_xlim(left, right)
-    ax.set_ylim(0.0, height)
     low, high = view.levels
     factor = exaggeration(high - low, view.member.length, width, room)
     per_mm = (right - left) / width

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import itertools
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -81,7 +82,7 @@ class SideView:
     stretches: tuple[Stretch, ...]
     holes: tuple[Hole, ...]
 
-    @property
+    @cached_property
     def levels(self) -> tuple[float, float]:
         """Lowest and highest level of all [m]."""
         return min(float(s.low.min()) for s in self.stretches), max(float(s.high.max()) for s in self.stretches)

@@ -1,0 +1,91 @@
+"""What all lines along the member share: places with jumps, marks of the largest and the smallest, faint uprights."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.cli.figures.letters import Spots
+from fishbelly.cli.figures.paper import GREY, THIN, size_of
+from fishbelly.cli.figures.scene import limits
+from fishbelly.cli.figures.supports import white
+from fishbelly.cli.figures.ticks import place, set_places, set_values, value
+from fishbelly.member.description import Member
+
+Array = NDArray[np.float64]
+Mark = tuple[float, float]
+"""Value and place of an extreme, SI units."""
+
+_ROOM = 0.24
+"""Share of the reach left free over and under a line, for the values of its extremes."""
+
+
+def frame(ax: Any, member: Member, style: str, labelled: bool) -> None:
+    """Set up the horizontal axis, and leave only the edges that say something."""
+    width, _ = size_of(ax)
+    ax.set_xlim(*limits(member.length, width))
+    set_places(ax, member.length, style, width, labelled)
+    for side in ("top", "right"):
+        ax.spines[side].set_visible(False)
+    for at in sorted({s.at for s in member.supports}):
+        ax.axvline(at, color=GREY, lw=THIN, ls=(0, (1, 2)), zorder=1)
+
+
+def upright(ax: Any, values: Array, words: str, what: str, style: str, down: bool = False, from_zero: bool = True) -> None:
+    """Set up the vertical axis for values [SI]; `down`: positive downwards."""
+    low, high = float(np.nanmin(values)), float(np.nanmax(values))
+    if from_zero:
+        low, high = min(low, 0.0), max(high, 0.0)
+    size = max(abs(low), abs(high))
+    if high - low <= 1e-9 * size:
+        low, high = (low - 0.05 * size, high + 0.05 * size) if size else (-1.0, 1.0)
+    room = _ROOM * (high - low)
+    low, high = low - (0.0 if from_zero and low == 0.0 else room), high + (0.0 if from_zero and high == 0.0 else room)
+    pad = 0.03 * (high - low)
+    low, high = low - (pad if low == 0.0 else 0.0), high + (pad if high == 0.0 else 0.0)
+    ax.set_ylim((high, low) if down else (low, high))
+    set_values(ax, words, what, style, size_of(ax)[1])
+
+
+def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, member: Member, style: str) -> None:
+    """Mark extremes with a dot, their value and their place, off the line and off each other."""
+    width, height = size_of(ax)
+    (x0, x1), (y0, y1) = ax.get_xlim(), ax.get_ylim()
+    fine_x, fine_y = _dense((x - x0) / (x1 - x0) * width, (y - y0) / (y1 - y0) * height)
+    spots = Spots(width, height, fine_x, fine_y)
+    scale = max((abs(v) for v, _ in extremes), default=0.0)
+    for number, at in extremes:
+        mm_x, mm_y = (at - x0) / (x1 - x0) * width, (number - y0) / (y1 - y0) * height
+        ax.plot([at], [number], "o", ms=2.6, color="black", zorder=6, clip_on=False)
+        text = f"{value(number, what, style, 3, scale)} at {place(at, member.length, style)}"
+        found = spots.find(text, float(mm_x), float(mm_y))
+        if found is not None:
+            ax.text(
+                x0 + found[0] / width * (x1 - x0),
+                y0 + found[1] / height * (y1 - y0),
+                text,
+                ha="center",
+                va="center",
+                zorder=7,
+                bbox=white(),
+            )
+
+
+def _dense(x: Array, y: Array) -> tuple[Array, Array]:
+    """Points of a line no farther apart than half a millimetre, up to a limit."""
+    known = np.isfinite(x) & np.isfinite(y)
+    x, y = x[known], y[known]
+    if x.size < 2:
+        return x, y
+    steps = np.minimum(np.ceil(np.hypot(np.diff(x), np.diff(y)) / 0.5).astype(int), 200) + 1
+    pieces_x = [np.linspace(a, b, n) for a, b, n in zip(x[:-1], x[1:], steps, strict=True)]
+    pieces_y = [np.linspace(a, b, n) for a, b, n in zip(y[:-1], y[1:], steps, strict=True)]
+    return np.concatenate(pieces_x), np.concatenate(pieces_y)
+
+
+def zero(ax: Any, member: Member) -> None:
+    """Draw the line of zero over the member's length."""
+    ax.plot([0.0, member.length], [0.0, 0.0], color="black", lw=THIN, zorder=3)

@@ -1,0 +1,107 @@
+"""Moment, shear, slope or deflection along the member, extremes marked, with the side it is drawn on in words."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Any
+
+import numpy as np
+
+from fishbelly.cli.figures import lines
+from fishbelly.cli.figures.lines import Array, Mark
+from fishbelly.cli.figures.paper import HEAVY, MEDIUM, own_panel, pens
+
+QUANTITIES: Mapping[str, tuple[str, str, bool]] = {
+    "moment": ("M", "moment", True),
+    "shear": ("V", "force", False),
+    "slope": ("slope", "slope", False),
+    "deflection": ("deflection", "deflection", True),
+}
+"""By name: the key of stations, the quantity of its unit, whether positive values are drawn downwards."""
+WORDS: Mapping[str, str] = {
+    "moment": "M, drawn on the tension side, sagging positive",
+    "shear": "V, upward on the left part positive",
+    "slope": "slope, clockwise positive",
+    "deflection": "deflection, down positive and drawn downwards",
+}
+NEGLIGIBLE = 1e-9
+
+
+def plot(job: Any, combination: Mapping[str, Any], quantity: str, ax: Any = None, labelled: bool = True) -> Any:
+    """Draw one quantity of one combination.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    combination : mapping
+        One of the combinations of `fishbelly deflect`, with stations all along the member.
+    quantity : {"moment", "shear", "slope", "deflection"}
+        Which.
+    ax : Axes, optional
+        Where to draw; default axes of a new figure.
+    labelled : bool
+        Whether the horizontal axis has labels.
+
+    Returns
+    -------
+    Axes
+        In SI units; ticks in those of the job.
+    """
+    key, what, down = QUANTITIES[quantity]
+    with pens():
+        if ax is None:
+            ax = own_panel(26.0)
+        stations = combination["stations"]
+        x = np.array([s["x"] for s in stations])
+        y = np.array([np.nan if s[key] is None else s[key] for s in stations])
+        band = _band(combination, key)
+        marks = _marks(combination, quantity, x, y)
+        every = np.concatenate((y, *(band or ()), [v for v, _ in marks]))
+        if not np.any(np.abs(np.nan_to_num(every)) > 0.0):
+            every = y = np.zeros(y.size)
+            marks = []
+        lines.frame(ax, job.member, job.style, labelled)
+        lines.upright(ax, every, WORDS[quantity], what, job.style, down)
+        lines.zero(ax, job.member)
+        if band is not None:
+            ax.fill_between(x, *band, facecolor="0.88", edgecolor="0.4", lw=MEDIUM, ls="--", zorder=1.5)
+        else:
+            ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
+        ends_x, ends_y = _closed(x, y)
+        ax.plot(ends_x, ends_y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="round")
+        lines.mark(ax, x, y, marks, what, job.member, job.style)
+    return ax
+
+
+def _band(combination: Mapping[str, Any], key: str) -> tuple[Array, Array] | None:
+    """Smallest and largest value over arrangements of pattern loads."""
+    rows = (combination.get("envelope") or {}).get("stations")
+    if not rows or key not in rows[0] or len(rows) != len(combination["stations"]):
+        return None
+    return np.array([r[key]["min"] for r in rows]), np.array([r[key]["max"] for r in rows])
+
+
+def _closed(x: Array, y: Array) -> tuple[Array, Array]:
+    """Add the drops to zero at both ends."""
+    return np.concatenate((x[:1], x, x[-1:])), np.concatenate(([0.0], y, [0.0]))
+
+
+def _marks(combination: Mapping[str, Any], quantity: str, x: Array, y: Array) -> list[Mark]:
+    """Largest and smallest value with their places; what is negligible beside the other is left out."""
+    if quantity == "moment":
+        found = [combination["moment"]["sagging"], combination["moment"]["hogging"]]
+    elif quantity == "shear":
+        found = [combination["shear"]["max"], combination["shear"]["min"]]
+    elif quantity == "deflection":
+        up = combination["deflection"]["up"]
+        found = [combination["deflection"]["down"], up and {"value": -up["value"], "at": up["at"]}]
+    else:
+        if not np.any(np.isfinite(y)):
+            return []
+        ends = [int(np.nanargmax(y)), int(np.nanargmin(y))]
+        found = [{"value": float(y[k]), "at": float(x[k])} for k in ends]
+    marks = [(float(f["value"]), float(f["at"])) for f in found if f is not None]
+    top = max((abs(v) for v, _ in marks), default=0.0)
+    kept = [m for m in marks if abs(m[0]) > NEGLIGIBLE * top]
+    return list(dict.fromkeys(kept))
