@@ -131,24 +131,7 @@ def _tails(
     geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch
 ) -> dict[str, Array]:
     """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
-    columns = np.zeros((11, count * POINTS))
-    warm, aside = _asks(geometry.member)
-    for g in new:
-        s = g.stiffness(short)
-        size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
-        cross = s.EI_yz / np.sqrt(s.EI_y * s.EI_z)
-        ga = g.shear(short).GA if shear else np.ones(g.rows.size)
-        columns[:, g.rows - first] = (
-            1.0 / s.EA,
-            1.0 / s.EI_y,
-            1.0 / s.EI_z,
-            s.z_c,
-            s.y_c,
-            cross,
-            1.0 / ga,
-            size,
-        )
-    v = columns.reshape(8, count, POINTS)
+    v = _sampled(geometry.member, new, short, first, count, shear)
     if not np.all(np.isfinite(v)):
         k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
         raise CannotCompute(f"no stiffness between x = {batch.a[k]:.6g} m and {batch.b[k]:.6g} m")
@@ -173,6 +156,25 @@ def _tails(
     at_zero = (batch.anchor < 0) & (batch.a == 0.0)
     done |= (batch.anchor != 0) & (batch.halved >= np.where(at_zero, 34, 14))
     return {"done": done.astype(float), "apex": apex.astype(float)}
+
+
+def _sampled(member: Member, new: list[Group], short: Moduli, first: int, count: int, shear: bool) -> Array:
+    """What has to be resolved at the points of panels, shape (11, panels, n); size of the section last."""
+    columns = np.zeros((11, count * POINTS))
+    warm, aside = _asks(member)
+    for g in new:
+        s, at = g.stiffness(short), g.rows - first
+        size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
+        cross = s.EI_yz / np.sqrt(s.EI_y * s.EI_z)
+        ga = g.shear(short).GA if shear else np.ones(at.size)
+        across = g.shear(short, across=True).GA if shear and aside else np.ones(at.size)
+        columns[:6, at] = (1.0 / s.EA, 1.0 / s.EI_y, 1.0 / s.EI_z, s.z_c, s.y_c, cross)
+        columns[6:8, at] = (1.0 / ga, 1.0 / across)
+        if warm:
+            low, high = g.composition.extent
+            columns[8:10, at] = (np.nanmin(low, axis=0), np.nanmax(high, axis=0))
+        columns[10, at] = size
+    return columns.reshape(11, count, POINTS)
 
 
 def _asks(member: Member) -> tuple[bool, bool]:
