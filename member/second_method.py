@@ -283,7 +283,9 @@ def _error(s: _Solved, sampled: Sampled, size: float) -> float:
     weight = i.stretch * RULE.weights
     bent = (np.abs(s.strain.curvature[: s.frame.planes]) * weight * reach).sum(axis=(0, 2))
     slide = s.law.slide[: s.frame.planes]
-    loose = RULE.tail(slide) / np.maximum(slide.max(axis=-1), 1e-300)
+    # towards a point in which the member ends 1/GA passes all bounds; there its tail says nothing
+    with np.errstate(over="ignore", invalid="ignore"):
+        loose = np.nan_to_num(RULE.tail(slide) / np.maximum(slide.max(axis=-1), 1e-300), posinf=1.0)
     sheared = (loose[:, :, None] * np.abs(s.strain.angle[: s.frame.planes]) * weight).sum()
     return _SAFETY * float((sampled.tail * bent).sum() + sheared) + s.parameters.correction * size
 

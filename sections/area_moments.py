@@ -1,6 +1,6 @@
 """Area moments of outlines, exact for straight and circular edges (Green's theorem along the outline).
 
-Each edge is integrated by points: three Gauss points on a straight edge are exact for second moments, sixteen
+Each edge is integrated by points: three Gauss points on a straight edge are exact for second moments, twenty-four
 Chebyshev points on an arc of a quarter circle reach 1e-15. Moments are formed about a point beside the outline and
 then about its own centroid, never about a far axis.
 """
@@ -18,7 +18,7 @@ from fishbelly.sections.outlines import Outline, arcs
 Array = NDArray[np.float64]
 
 _LINE = (np.array([-np.sqrt(0.6), 0.0, np.sqrt(0.6)]), np.array([5.0, 8.0, 5.0]) / 9.0)
-_ARC_POINTS = 16
+_ARC_POINTS = 24
 
 
 @dataclass(frozen=True, eq=False)
@@ -105,10 +105,10 @@ def _raw(outline: Outline) -> Array:
         result += _green(a + t * dy, b + t * dz, 0.5 * _LINE[1] * dz)
     if curved.size:
         y_c, z_c, r, start, turn = (v[..., None] for v in arcs(outline, curved))
-        r16 = rule(_ARC_POINTS)
-        angle = start + 0.5 * turn * (1.0 + r16.points)
+        arc_rule = rule(_ARC_POINTS)
+        angle = start + 0.5 * turn * (1.0 + arc_rule.points)
         cos, sin = np.cos(angle), np.sin(angle)
-        result += _green(y_c + r * cos, z_c + r * sin, 0.5 * r16.weights * turn * r * cos)
+        result += _green(y_c + r * cos, z_c + r * sin, 0.5 * arc_rule.weights * turn * r * cos)
     return result
 
 

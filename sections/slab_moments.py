@@ -19,7 +19,7 @@ from fishbelly.sections.level_cuts import Pieces, owners
 Array = NDArray[np.float64]
 
 _LINE = (np.array([-np.sqrt(0.6), 0.0, np.sqrt(0.6)]), np.array([5.0, 8.0, 5.0]) / 9.0)
-_ARC_POINTS = 16
+_ARC_POINTS = 32
 
 
 def slab_moments(p: Pieces, edges: Array, parts: int, targets: Sequence[Sequence[int]]) -> AreaMoments:
@@ -64,15 +64,15 @@ def _integrals(p: Pieces, edges: Array, y0: Array, z0: Array) -> Array:
         z = np.broadcast_to(z, y.shape)
         result[..., lines] = _terms(y - y0[:, None, None, None], z - z0[:, None, None, None], half * _LINE[1])
     if curved.size:
-        r16 = rule(_ARC_POINTS)
+        arc_rule = rule(_ARC_POINTS)
         radius, centre = p.radius[:, None, curved], p.z0[:, None, curved]
         ends = [np.arcsin(np.clip((v - centre) / radius, -1.0, 1.0)) for v in (low, high)]
         half = 0.5 * (ends[1] - ends[0])[..., None]
-        angle = 0.5 * (ends[1] + ends[0])[..., None] + half * r16.points
+        angle = 0.5 * (ends[1] + ends[0])[..., None] + half * arc_rule.points
         cos, sin = radius[..., None] * np.cos(angle), radius[..., None] * np.sin(angle)
         y = p.y0[:, None, curved, None] + p.branch[curved][:, None] * cos
         z = centre[..., None] + sin
-        weight = half * r16.weights * cos
+        weight = half * arc_rule.weights * cos
         result[..., curved] = _terms(y - y0[:, None, None, None], z - z0[:, None, None, None], weight)
     return result
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import replace
 from typing import Any
 
@@ -175,9 +175,13 @@ def same(
     other: dict[tuple[float, str], dict[str, float]],
     tolerance: float,
     change: Callable[[str, float], float] = lambda key, v: v,
+    weighed_with: Sequence[dict[tuple[float, str], dict[str, float]]] = (),
 ) -> None:
-    """Assert that two tables agree; `change` turns a value of the other one into what is expected."""
-    size = sizes_of(one)
+    """Assert that two tables agree; `change` turns a value of the other one into what is expected.
+
+    Differences are weighed against the largest value of their kind, in the tables `weighed_with` too.
+    """
+    size = sizes_of(one, *weighed_with)
     for place, row in one.items():
         for key in KEYS:
             gap = abs(row[key] - change(key, other[place][key]))

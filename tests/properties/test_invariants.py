@@ -71,12 +71,9 @@ def test_superposition(member: Member, other: Load, f: float, g: float) -> None:
     combos = (case("a", load=1.0), case("b", other=1.0), case("both", load=f, other=g))
     member = replace(member, loads=(*member.loads, other), combinations=combos)
     a, b, both = (table(member, combination=k) for k in range(3))
-    expected = {p: {k: f * a[p][k] + g * b[p][k] for k in KEYS} for p in a}
-    scale = {p: {k: abs(f * a[p][k]) + abs(g * b[p][k]) for k in KEYS} for p in a}
-    for key in KEYS:
-        size = max(s[key] for s in scale.values())
-        for p in a:
-            assert abs(both[p][key] - expected[p][key]) <= ROUND_OFF * size + 1e-300
+    sum_of = {p: {k: f * a[p][k] + g * b[p][k] for k in KEYS} for p in a}
+    parts = [{p: {k: v * t[p][k] for k in KEYS} for p in t} for v, t in ((f, a), (g, b))]
+    same(both, sum_of, ROUND_OFF, weighed_with=parts)
 
 
 @given(members(count=1), places, places, st.booleans(), st.booleans())
