@@ -10,8 +10,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Atom, Frame, actions, atoms
+from fishbelly.member.apex import pinched_at
 from fishbelly.member.description import Combination, Member
-from fishbelly.member.faults import CannotCompute
+from fishbelly.member.faults import CannotCompute, NoStiffness
 from fishbelly.member.moduli import Moduli, has_band, moduli
 from fishbelly.member.nodes import layout
 from fishbelly.member.profile import Profile
@@ -84,7 +85,11 @@ class Analysis:
     @classmethod
     def of(cls, member: Member, more: Iterable[float] = ()) -> Analysis:
         """Sample a member; `more` are further borders of the grid [m]."""
-        return cls(build_profile(member, tuple(more)))
+        profile = build_profile(member, tuple(more))
+        pinched = pinched_at(profile)
+        if pinched is not None:
+            raise NoStiffness(pinched, "the section runs out to nothing inside the member")
+        return cls(profile)
 
     @property
     def member(self) -> Member:
@@ -198,6 +203,11 @@ class Analysis:
         for part in parts[1:]:
             total = total + part
         return total
+
+    def round_off(self, total: Response) -> float:
+        """Deflection below which a combination's is nothing but round-off [m]."""
+        stiffest = float(np.nanmax(self.profile.stiffness(self.moduli(ModuliKey())).EI_y))
+        return 1e-12 * float(np.abs(total.M).max()) / stiffest * self.member.length**2
 
     def _patterns(self, combination: Combination) -> tuple[NDArray[np.bool_], ...]:
         """Atoms of `pattern` loads, those of one span and case together."""

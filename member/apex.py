@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.faults import NoStiffness
 from fishbelly.member.panels import Panels
+from fishbelly.member.profile import Profile
 from fishbelly.member.response import Response
 from fishbelly.member.section_law import run_out
 
@@ -28,6 +29,20 @@ class Apexes:
 
     left_of: frozenset[int]
     right_of: frozenset[int]
+
+
+def pinched_at(profile: Profile) -> float | None:
+    """Place inside the member where the section runs out to nothing and no supported hinge makes that right [m]."""
+    panels, member = profile.panels, profile.member
+    tiny = 1e-9 * member.length
+    for k, _, _ in panels.apexes:
+        x = float(panels.a[k] if panels.anchor[k] < 0 else panels.b[k])
+        inside = tiny < x < member.length - tiny
+        hinged = any(abs(h.at - x) < tiny for h in member.hinges)
+        held = any(abs(s.at - x) < tiny and s.down > 0.0 for s in member.supports)
+        if inside and not (hinged and held):
+            return x
+    return None
 
 
 def judge(panels: Panels, r: Response) -> Apexes:

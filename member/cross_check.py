@@ -65,7 +65,7 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
         short_E=analysis.moduli(ModuliKey()).E,
     )
     value = float(second.deflection[plane, 0])
-    size = max(float(np.abs(combined.total.deflection).max()), abs(first))
+    size = max(float(np.abs(combined.total.deflection).max()), abs(first), analysis.round_off(combined.total))
     difference = abs(value - first) / size
     if not difference <= max(AGREES, min(second.error, CERTAIN)):
         raise CannotCompute(

@@ -106,7 +106,7 @@ def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
     aside = [largest(panels, s * p.deflection[1]) for s in (1.0, -1.0)]
     across = max(aside, key=lambda e: e.value)
     sign = 1.0 if across is aside[0] else -1.0
-    size = max(abs(down.value), abs(up.value), abs(across.value))
+    size = max(abs(down.value), abs(up.value), abs(across.value), analysis.round_off(combined.total) / NEGLIGIBLE)
     return {
         "down": _shear_part(analysis, combined, down) if down.value > NEGLIGIBLE * size else None,
         "up": {"value": up.value, "at": up.at} if up.value > NEGLIGIBLE * size else None,

@@ -27,7 +27,14 @@ WORDS: Mapping[str, str] = {
 NEGLIGIBLE = 1e-9
 
 
-def plot(job: Any, combination: Mapping[str, Any], quantity: str, ax: Any = None, labelled: bool = True) -> Any:
+def plot(
+    job: Any,
+    combination: Mapping[str, Any],
+    quantity: str,
+    ax: Any = None,
+    labelled: bool = True,
+    fine: tuple[Array, Array] | None = None,
+) -> Any:
     """Draw one quantity of one combination.
 
     Parameters
@@ -42,6 +49,8 @@ def plot(job: Any, combination: Mapping[str, Any], quantity: str, ax: Any = None
         Where to draw; default axes of a new figure.
     labelled : bool
         Whether the horizontal axis has labels.
+    fine : tuple of ndarray, optional
+        Places [m] and values [SI] of the line, where it is known at more places than the stations.
 
     Returns
     -------
@@ -56,6 +65,9 @@ def plot(job: Any, combination: Mapping[str, Any], quantity: str, ax: Any = None
         x = np.array([s["x"] for s in stations])
         y = np.array([np.nan if s[key] is None else s[key] for s in stations])
         band = _band(combination, key)
+        places = x
+        if fine is not None:
+            x, y = fine
         marks = _marks(combination, quantity, x, y)
         every = np.concatenate((y, *(band or ()), [v for v, _ in marks]))
         if not np.any(np.abs(np.nan_to_num(every)) > 0.0):
@@ -65,7 +77,7 @@ def plot(job: Any, combination: Mapping[str, Any], quantity: str, ax: Any = None
         lines.upright(ax, every, WORDS[quantity], what, job.style, down)
         lines.zero(ax, job.member)
         if band is not None:
-            ax.fill_between(x, *band, facecolor="0.88", edgecolor="0.4", lw=MEDIUM, ls="--", zorder=1.5)
+            ax.fill_between(places, *band, facecolor="0.88", edgecolor="0.4", lw=MEDIUM, ls="--", zorder=1.5)
         else:
             ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
         ends_x, ends_y = _closed(x, y)

@@ -151,6 +151,8 @@ def table(member: Member, places_: tuple[float, ...] = GRID, combination: int = 
     found: dict[tuple[float, str], dict[str, float]] = {}
     for row in run(member, *places_, combination=combination)["stations"]:
         x = min(places_, key=lambda p: abs(p - row["x"]))
+        if abs(x - row["x"]) > 1e-9:
+            continue
         if (x, "left") in found:
             found[x, "right"] = row
         else:

@@ -1,0 +1,212 @@
+"""Whole figures: panels put together on a page 160 mm wide, as tall as they need."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Any
+
+from fishbelly.cli.cautions import LINE as CAUTION
+from fishbelly.cli.figures import (
+    cross_section,
+    elevation,
+    key,
+    response_lines,
+    section_key,
+    share_areas,
+    stiffness_lines,
+    stress_depth,
+)
+from fishbelly.cli.figures.curves import Curves, section_places
+from fishbelly.cli.figures.governing import governing_place, stress_bars
+from fishbelly.cli.figures.letters import lines_of, one_line, shortened
+from fishbelly.cli.figures.paper import LEFT, LINE, RIGHT, WIDTH, page, panel, pens
+from fishbelly.cli.figures.section_shapes import part_shapes
+from fishbelly.cli.figures.side_view import side_view
+from fishbelly.cli.figures.stress_depth import Bar
+from fishbelly.cli.figures.ticks import pretty
+from fishbelly.cli.format_quantity import unit_label, unit_size
+from fishbelly.member.section_results import section_at, stiffness
+
+ACROSS = WIDTH - LEFT - RIGHT
+_HEAD, _AXIS, _FOOT = 4.6, 8.5, 5.0
+"""Heights of a panel's caption, of the labels of a horizontal axis, of the last line [mm]."""
+_MOMENT, _SHEAR, _SLOPE, _DEFLECTION = 26.0, 21.0, 18.0, 24.0
+_STIFFNESS, _SHARES = 22.0, 30.0
+_STRESS = 54.0
+"""Width of stresses beside a cross-section [mm]."""
+_SECTION_LEFT = cross_section.MARGIN_LEFT
+_SMALL = 38.0
+"""Most height of a cross-section under other panels [mm]."""
+
+
+class _Column:
+    """Panels below each other: heights are gathered first, then the figure is made."""
+
+    def __init__(self, title: str, lines: list[str]) -> None:
+        title = shortened(title, WIDTH - 2.0 * _SECTION_LEFT)
+        self.lines = ([title] if title else []) + lines
+        self.y = 2.5 + LINE * len(self.lines) + 0.5
+
+    def room(self, height: float, head: float = _HEAD) -> float:
+        """Give the top of a panel of a height, and go on below it."""
+        top = self.y + head
+        self.y = top + height
+        return top
+
+    def figure(self) -> Any:
+        """Make the figure with its title lines and the caution at its foot."""
+        figure = page(self.y + _FOOT)
+        tall = self.y + _FOOT
+        for k, line in enumerate(self.lines):
+            weight = "bold" if k == 0 and len(self.lines) > 1 else "normal"
+            figure.text(_SECTION_LEFT / WIDTH, 1.0 - (2.5 + (k + 0.5) * LINE) / tall, line, ha="left", va="center", weight=weight)
+        figure.text(1.0 - RIGHT / WIDTH, 2.4 / tall, CAUTION, ha="right", va="center")
+        return figure
+
+
+def section_page(job: Any, data: Mapping[str, Any]) -> Any:
+    """Draw a cross-section with the stress that a unit moment gives beside it.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    data : mapping
+        Results of `fishbelly section`.
+
+    Returns
+    -------
+    Figure
+    """
+    with pens():
+        column = _Column(job.member.title, [])
+        row = _SectionRow(job, data, cross_section.TALLEST, column)
+        wide = WIDTH - _SECTION_LEFT - RIGHT
+        words = section_key.height(job, data, wide)
+        top = column.room(words, 9.0)
+        figure = column.figure()
+        unit = unit_label("moment", job.style)
+        bars = [
+            Bar(
+                next(k for k, p in enumerate(job.member.parts) if p.name == part["name"]),
+                (part["z_bottom"], part["z_top"]),
+                tuple(part["stress_per_moment"][e] * unit_size("moment", job.style) for e in ("bottom", "top")),
+            )
+            for part in data["parts"]
+            if None not in (part["z_bottom"], part["z_top"], *part["stress_per_moment"].values())
+        ]
+        row.draw(figure, bars, f"Stress for M = 1 {pretty(unit)}, sagging")
+        section_key.plot(job, data, panel(figure, _SECTION_LEFT, top, wide, words))
+    return figure
+
+
+class _SectionRow:
+    """A cross-section and a stress diagram that shares its levels, side by side."""
+
+    def __init__(self, job: Any, data: Mapping[str, Any], tallest: float, column: _Column) -> None:
+        self.job, self.data = job, data
+        shapes = part_shapes(job.member, data["x"], data["side"])
+        self.wide = WIDTH - _SECTION_LEFT - RIGHT - _STRESS - 3.0
+        self.sheet = cross_section.sheet(shapes, self.wide, tallest)
+        self.top = column.room(self.sheet.height)
+
+    def draw(self, figure: Any, bars: list[Bar], words: str) -> None:
+        """Draw both."""
+        height = self.sheet.height
+        cross_section.plot(self.job, self.data, panel(figure, _SECTION_LEFT, self.top, self.wide, height))
+        if bars:
+            ax = panel(figure, WIDTH - RIGHT - _STRESS, self.top, _STRESS, height)
+            words = shortened(words, _STRESS)
+            stress_depth.plot(self.job, bars, words, (self.sheet.level(0.0), self.sheet.level(height)), ax)
+
+
+def stiffness_page(job: Any, data: Mapping[str, Any]) -> Any:
+    """Draw EI_y, EA, the centroid and the share of the parts under the elevation.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    data : mapping
+        Results of `fishbelly stiffness`; the lines are drawn at places of their own.
+
+    Returns
+    -------
+    Figure
+    """
+    fine = stiffness(job.member, section_places(job.member))
+    with pens():
+        column = _Column(job.member.title, [])
+        bands = elevation.layout(side_view(job.member), job.style, with_loads=False)
+        tops = [column.room(bands.height)]
+        tops += [column.room(_STIFFNESS, _HEAD + 1.0) for _ in stiffness_lines.QUANTITIES]
+        tops += [column.room(_SHARES, _HEAD + 1.0)]
+        words = key.height(job.member, job.style)
+        tops.append(column.room(words, _AXIS + 1.0))
+        figure = column.figure()
+        elevation.plot(job, with_loads=False, ax=panel(figure, LEFT, tops[0], ACROSS, bands.height))
+        for quantity, top in zip(stiffness_lines.QUANTITIES, tops[1:], strict=False):
+            stiffness_lines.plot(job, fine, quantity, panel(figure, LEFT, top, ACROSS, _STIFFNESS), labelled=False)
+        share_areas.plot(job, fine, panel(figure, LEFT, tops[-2], ACROSS, _SHARES))
+        key.plot(job, panel(figure, LEFT, tops[-1], ACROSS, words))
+    return figure
+
+
+def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], governs: bool) -> Any:
+    """Draw one combination: elevation, moment, shear, slope, deflection, and stress where it governs.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    curves : Curves
+        The solved member.
+    combination : mapping
+        One of the combinations of `fishbelly deflect`.
+    governs : bool
+        Whether it is the one whose checks are used most, of several.
+
+    Returns
+    -------
+    Figure
+    """
+    member, name = job.member, str(combination["name"])
+    factors = next(c.factors for c in member.combinations if c.name == name)
+    cases = [case for case, factor in factors.items() if factor]
+    x, why = governing_place(combination)
+    side, bars = stress_bars(curves.analysis, name, x)
+    section = section_at(member, x, side)
+    with pens():
+        column = _Column(member.title, _said(combination, factors, governs))
+        bands = elevation.layout(side_view(member), job.style, cases)
+        heights = {"moment": _MOMENT, "shear": _SHEAR, "slope": _SLOPE, "deflection": _DEFLECTION}
+        top = column.room(bands.height)
+        tops = {q: column.room(h, _HEAD + 1.0) for q, h in heights.items()}
+        words = key.height(member, job.style)
+        key_top = column.room(words, _AXIS + 1.0)
+        row = _SectionRow(job, section, _SMALL, column)
+        column.room(0.0, _AXIS)
+        figure = column.figure()
+        elevation.plot(job, cases, ax=panel(figure, LEFT, top, ACROSS, bands.height))
+        for quantity, at in tops.items():
+            ax = panel(figure, LEFT, at, ACROSS, heights[quantity])
+            fine = curves.along(combination, quantity)
+            response_lines.plot(job, combination, quantity, ax, quantity == "deflection", fine)
+        key.plot(job, panel(figure, LEFT, key_top, ACROSS, words))
+        every = ", all spans loaded" if combination.get("envelope") else ""
+        row.draw(figure, bars, f"Stress there: {one_line(why)}{every}")
+    return figure
+
+
+def _said(combination: Mapping[str, Any], factors: Mapping[str, float], governs: bool) -> list[str]:
+    """Lines over the figure: which combination, its factors, what is drawn."""
+    text = f"Combination {one_line(str(combination['name']))}"
+    if governs:
+        text += " (checks used most)" if combination["checks"] else " (largest deflection)"
+    parts = [f"{one_line(case)} × {factor:g}" for case, factor in factors.items() if factor]
+    if parts:
+        text += ": " + ", ".join(parts)
+    if combination.get("envelope"):
+        text += "; line: all spans loaded, grey: every arrangement of pattern loads"
+    return lines_of(text, WIDTH - 2.0 * _SECTION_LEFT, 2)
+

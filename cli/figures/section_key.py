@@ -1,0 +1,141 @@
+"""The words under a cross-section: its centroid and stiffness, materials with n, parts with their sizes."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+from fishbelly.cli.figures.letters import lines_of, one_line, shortened
+from fishbelly.cli.figures.looks import material_look, number_of
+from fishbelly.cli.figures.paper import LINE, MEDIUM, bare, own_panel, pens, size_of, text_width
+from fishbelly.cli.figures.section_dimensions import size_words
+from fishbelly.cli.figures.section_shapes import part_shapes
+from fishbelly.cli.figures.ticks import value
+from fishbelly.cli.format_quantity import unit_label
+from fishbelly.member.description import Member
+
+_ROW = LINE + 0.5
+_SWATCH = 5.0
+_GAP = 1.5
+
+
+def _facts(data: Mapping[str, Any], style: str) -> str:
+    def offset(v: float, positive: str, negative: str) -> str:
+        v = 0.0 if abs(v) < 5e-6 else v
+        return f"{value(abs(v), 'length', style, 4)} {positive if v >= 0.0 else negative}" if v else ""
+
+    places = [offset(data["z_c"], "above", "below"), offset(data["y_c"], "right of", "left of")]
+    words = [
+        f"E-weighted centroid {places[0] + ' the datum line' if places[0] else 'on the datum line'}"
+        + (f" and {places[1]} y = 0" if places[1] else "")
+    ]
+    words += [
+        f"EA {value(data['EA'], 'axial stiffness', style, 4)}",
+        f"EI_y {value(data['EI_y'], 'bending stiffness', style, 4)} about the horizontal axis y–y",
+        f"EI_z {value(data['EI_z'], 'bending stiffness', style, 4)}",
+    ]
+    principal = data.get("principal") or {}
+    angle = principal.get("angle")
+    big, small = principal.get("EI_1"), principal.get("EI_2")
+    if None not in (angle, big, small) and big - small > 1e-9 * big:
+        turned = value(angle, "angle", style, 3) if abs(angle) > 1e-6 else "0 deg"
+        words.append(f"principal axis 1 turned {turned} from y, EI_1 {value(big, 'bending stiffness', style, 4)}")
+        words.append(f"EI_2 {value(small, 'bending stiffness', style, 4)}")
+    unit = unit_label("length", style)  # type: ignore[arg-type]
+    return "; ".join([*words, f"dimensions in {unit}"])
+
+
+def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[tuple[str, str]]:
+    """Name and words of the materials at the section."""
+    n, to = data["transformed"]["n"], data["transformed"]["to"]
+    return [
+        (
+            name,
+            f"{one_line(name)}, E = {value(member.material(name).E, 'modulus', style, 4)}, "
+            f"n = {n[name]:.4g}" + (" (E / E of this)" if name == to and len(n) > 1 else ""),
+        )
+        for name in n
+    ]
+
+
+def _parts(member: Member, shapes: Sequence[tuple[int, Any]], style: str) -> list[str]:
+    found = []
+    for index, shape in shapes:
+        part = member.parts[index]
+        left, bottom, right, top = shape.bounds
+        size = f"{size_words(right - left, style)} × {size_words(top - bottom, style)}"
+        over = " over both" if part.pair else ""
+        found.append(f"{number_of(member, index)}  {one_line(part.name)}, {one_line(part.material or '')}, {size}{over}")
+    return found
+
+
+def _columns(texts: Sequence[str], width: float, more: float) -> int:
+    if len(texts) < 3:
+        return 1
+    widest = max(text_width(t) for t in texts) + more
+    return max(1 if len(texts) < 9 else 2, min(4, int(width // widest)))
+
+
+def height(job: Any, data: Mapping[str, Any], width: float) -> float:
+    """Height that the words take in a width [mm]."""
+    shapes = part_shapes(job.member, data["x"], data["side"])
+    materials, parts = _materials(job.member, data, job.style), _parts(job.member, shapes, job.style)
+    facts = lines_of(_facts(data, job.style), width, 5)
+    rows = sum(
+        -(-len(texts) // _columns(texts, width, more)) for texts, more in (([m[1] for m in materials], 8.0), (parts, 3.0))
+    )
+    return len(facts) * LINE + rows * _ROW + 2.0 * _GAP
+
+
+def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
+    """Write the words that belong to a cross-section.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    data : mapping
+        Results of `fishbelly section`.
+    ax : Axes, optional
+        Where to draw; default axes of a new figure.
+
+    Returns
+    -------
+    Axes
+        In mm of paper.
+    """
+    with pens():
+        if ax is None:
+            ax = own_panel(height(job, data, 149.0), left=6.0, foot=2.0)
+        bare(ax)
+        width, tall = size_of(ax)
+        ax.set_xlim(0.0, width)
+        ax.set_ylim(0.0, tall)
+        y = tall
+        for line in lines_of(_facts(data, job.style), width, 5):
+            ax.text(0.0, y - 0.5 * LINE, line, ha="left", va="center")
+            y -= LINE
+        materials = _materials(job.member, data, job.style)
+        y = _table(ax, [m[1] for m in materials], y - _GAP, width, _SWATCH + 2.0, job.member, [m[0] for m in materials])
+        shapes = part_shapes(job.member, data["x"], data["side"])
+        _table(ax, _parts(job.member, shapes, job.style), y - _GAP, width, 0.0, job.member, [])
+    return ax
+
+
+def _table(
+    ax: Any, texts: Sequence[str], top: float, width: float, indent: float, member: Member, swatches: Sequence[str]
+) -> float:
+    """Write texts in columns, with the hatch of materials before them; returns where the next begins."""
+    from matplotlib.patches import Rectangle
+
+    count = _columns(texts, width, indent + (1.0 if indent else 3.0))
+    rows, wide = -(-len(texts) // count), width / count
+    for k, text in enumerate(texts):
+        x, y = k // rows * wide, top - (k % rows + 0.5) * _ROW
+        if swatches:
+            look = material_look(member, swatches[k])
+            ax.add_patch(
+                Rectangle((x + 0.2, y - 0.42 * LINE), _SWATCH, 0.84 * LINE, edgecolor="black", lw=MEDIUM, **look.drawn)
+            )
+        ax.text(x + indent, y, shortened(text, wide - indent - 1.0), ha="left", va="center")
+    return top - rows * _ROW
