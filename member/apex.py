@@ -53,7 +53,8 @@ def judge(panels: Panels, r: Response) -> Apexes:
     NoStiffness
         When the deflection is infinite there.
     """
-    left_of, right_of = set(), set()
+    left_of: set[int] = set()
+    right_of: set[int] = set()
     for apex in panels.apexes:
         k, _other, _ = apex
         at_a = panels.anchor[k] < 0

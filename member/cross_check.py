@@ -101,10 +101,8 @@ def _only(key: ModuliKey, owns: set[tuple[str, float]]) -> Callable[[Load | Supp
     """Tell which loads belong to a long-term set: those of its own creep factor, or all others."""
 
     def belongs(load: Load | Support) -> bool:
-        own = isinstance(load, Shrinkage) and load.creep is not None
-        if key.own:
-            return own and (load.part, load.creep) in key.own  # type: ignore[union-attr]
-        return not own
+        own = (load.part, load.creep) if isinstance(load, Shrinkage) and load.creep is not None else None
+        return own in key.own if key.own else own is None
 
     return belongs
 

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass, field
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -108,7 +109,8 @@ class Profile:
                 columns[:, g.rows] = (s.EA, s.y_c, s.z_c, s.EI_y, s.EI_z, s.EI_yz)
             return SectionStiffness(*columns)
 
-        return self._once("stiffness", moduli, build)
+        stiffness: SectionStiffness = self._once("stiffness", moduli, build)
+        return stiffness
 
     def shear_stiffness(self, moduli: Moduli, across: bool = False) -> Array:
         """GA along z, or along y, at every sampled place [N], shape (R,)."""
@@ -119,7 +121,8 @@ class Profile:
                 column[g.rows] = g.shear(moduli, across).GA
             return column
 
-        return self._once("across" if across else "down", moduli, build)
+        column: Array = self._once("across" if across else "down", moduli, build)
+        return column
 
     def mass(self, density: Array) -> tuple[Array, Array, Array]:
         """Mass per length [kg/m] and its centroid y, z [m] at every sampled place, each shape (R,)."""
@@ -129,7 +132,7 @@ class Profile:
             columns[:, g.rows] = (total.area, total.y, total.z)
         return columns[0], columns[1], columns[2]
 
-    def _once(self, what: str, moduli: Moduli, build: Callable[[], object]) -> object:  # type: ignore[misc]
+    def _once(self, what: str, moduli: Moduli, build: Callable[[], Any]) -> Any:
         key = (what, id(moduli))
         if key not in self._cache:
             self._cache[key] = build()

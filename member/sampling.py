@@ -72,7 +72,7 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
     short = moduli(member)
     with_shear = member.shear if shear is None else shear
     batch = _start(member, geometry, breakpoints(member, more))
-    kept: list[tuple[_Batch, Array]] = []
+    kept: list[tuple[_Batch, NDArray[np.intp]]] = []
     groups: list[Group] = []
     rows = panels = 0
     most = MOST_PANELS + batch.a.size
@@ -133,8 +133,8 @@ def _tails(
     """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
     v = _sampled(geometry.member, new, short, first, count, shear)
     if not np.all(np.isfinite(v)):
-        k = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
-        raise CannotCompute(f"no stiffness between x = {batch.a[k]:.6g} m and {batch.b[k]:.6g} m")
+        first_bad = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
+        raise CannotCompute(f"no stiffness between x = {batch.a[first_bad]:.6g} m and {batch.b[first_bad]:.6g} m")
     unresolved = tail(v[:10], POINTS) - _noise(v[:10], batch)
     inverse = unresolved[:3].max(axis=0)
     largest = np.maximum(v[10].max(axis=-1), 1e-300)
@@ -223,7 +223,7 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
     )
 
 
-def _assembled(geometry: Geometry, kept: list[tuple[_Batch, Array]], groups: list[Group], rows: int) -> Profile:
+def _assembled(geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int) -> Profile:
     a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
     anchor = np.concatenate([k.anchor for k, _ in kept])
     row = np.concatenate([r for _, r in kept]).astype(np.intp)

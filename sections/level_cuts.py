@@ -69,7 +69,8 @@ def pieces(outlines: Sequence[Outline]) -> Pieces:
             _curved(columns, flags, k, arcs(outline, curved))
     stack = np.stack([np.stack(c) for c in columns], axis=-1)
     sign, branch, owner = (np.array(v) for v in zip(*flags, strict=True))
-    return Pieces(*stack, sign.astype(float), branch.astype(float), owner.astype(np.intp))
+    low, high, y0, z0, slope, radius = stack
+    return Pieces(low, high, y0, z0, slope, radius, sign.astype(float), branch.astype(float), owner.astype(np.intp))
 
 
 def _straight(
