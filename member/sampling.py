@@ -130,12 +130,16 @@ def _first(member: Member, breaks: Array) -> _Batch:
 def _tails(
     geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch
 ) -> dict[str, Array]:
-    """What is resolved, and which panels end in an apex (-2 at a, +2 at b)."""
+    """What is resolved, and which panels end in an apex (-2 at a, +2 at b).
+
+    Far from the datum coordinates have fewer digits, and no more is asked of the section.
+    """
     v = _sampled(geometry.member, new, short, first, count, shear)
     if not np.all(np.isfinite(v)):
         first_bad = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
         raise CannotCompute(f"no stiffness between x = {batch.a[first_bad]:.6g} m and {batch.b[first_bad]:.6g} m")
-    unresolved = tail(v[:10], POINTS) - _noise(v[:10], batch)
+    far = np.hypot(v[3], v[4]).max(axis=-1) / np.maximum(v[10].min(axis=-1), 1e-300)
+    unresolved = tail(v[:10], POINTS) - _noise(v[:10], batch) - 100.0 * np.finfo(float).eps * far
     inverse = unresolved[:3].max(axis=0)
     largest = np.maximum(v[10].max(axis=-1), 1e-300)
     levels = [3, 4, 8, 9]

@@ -8,13 +8,14 @@ from typing import Any
 import numpy as np
 
 from fishbelly.cli.figures import section_dimensions
-from fishbelly.cli.figures.letters import apart
+from fishbelly.cli.figures.letters import apart, shortened
 from fishbelly.cli.figures.looks import material_look, number_of
 from fishbelly.cli.figures.paper import GREY, LINE, MEDIUM, RIGHT, THIN, WIDTH, bare, own_panel, pens, size_of
 from fishbelly.cli.figures.section_shapes import part_shapes
 from fishbelly.cli.figures.sheet_of_section import Sheet, scales
 from fishbelly.cli.figures.supports import white
 from fishbelly.cli.figures.ticks import place
+from fishbelly.member.breakpoints import geometry_breaks
 from fishbelly.member.description import Member
 
 MARGIN_LEFT = 6.0
@@ -84,8 +85,9 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         paper = sheet(shapes, width, max(height - TOP - FOOT, 6.0))
         ax.set_xlim(0.0, width)
         ax.set_ylim(0.0, height)
-        side = "" if data["x"] in (0.0, job.member.length) else f", {data['side']} side"
+        side = f", {data['side']} side" if _at_break(job.member, data["x"]) else ""
         head = f"Cross-section at x = {place(data['x'], job.member.length, job.style)}{side}, {paper.words}"
+        head = shortened(f"{head}, hatched by material", width)
         ax.text(0.0, height + 0.8, head, ha="left", va="bottom", clip_on=False)
         for index, shape in shapes:
             _surface(ax, paper, shape, job.member, index)
@@ -93,6 +95,12 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         _axes(ax, paper, data)
         section_dimensions.draw(ax, paper, shapes, job.style)
     return ax
+
+
+def _at_break(member: Member, x: float) -> bool:
+    """Whether the cross-section may differ on the two sides of x."""
+    tiny = 1e-9 * member.length
+    return tiny < x < member.length - tiny and any(abs(b - x) < tiny for b in geometry_breaks(member))
 
 
 def _surface(ax: Any, paper: Sheet, shape: Any, member: Member, index: int) -> None:
@@ -128,17 +136,20 @@ def _numbers(ax: Any, paper: Sheet, member: Member, shapes: Sequence[tuple[int, 
 
 
 def _foot(paper: Sheet, shape: Any) -> tuple[float, float]:
-    """Return the point of a part that its number points at [mm]: in its leftmost piece, half way up."""
-    pieces = sorted(getattr(shape, "geoms", (shape,)), key=lambda g: (round(g.bounds[0], 9), -g.area))
-    inside = pieces[0].representative_point()
-    left, bottom, right, top = pieces[0].bounds
+    """Return the point of a part that its number points at [mm]: in its leftmost piece, off the middle of its height."""
     from shapely.geometry import LineString
 
-    level = LineString([(left - 1.0, inside.y), (right + 1.0, inside.y)]).intersection(pieces[0])
-    first = min((g.bounds[0] for g in getattr(level, "geoms", (level,))), default=inside.x)
-    reach = max((g.bounds[2] for g in getattr(level, "geoms", (level,)) if g.bounds[0] == first), default=inside.x)
-    inset = min(1.5 / paper.by_y, 0.5 * (reach - first))
-    return float(paper.across(first + inset)), float(paper.up(inside.y))
+    piece = min(getattr(shape, "geoms", (shape,)), key=lambda g: (round(g.bounds[0], 9), -g.area))
+    left, bottom, right, top = piece.bounds
+    share = 0.64 if (top - bottom) * paper.by_z > 8.0 else 0.5
+    for z in (bottom + share * (top - bottom), piece.representative_point().y):
+        level = LineString([(left - 1.0, z), (right + 1.0, z)]).intersection(piece)
+        cuts = sorted(g.bounds[0::2] for g in getattr(level, "geoms", (level,)) if not g.is_empty)
+        if cuts:
+            break
+    first, last = cuts[0]
+    inset = min(1.5 / paper.by_y, 0.5 * (last - first))
+    return float(paper.across(first + inset)), float(paper.up(z))
 
 
 def _axes(ax: Any, paper: Sheet, data: Mapping[str, Any]) -> None:

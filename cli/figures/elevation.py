@@ -37,6 +37,7 @@ class Layout:
     names: float
     symbols: float
     loads: LoadPlan
+    body: float = BODY
 
     @property
     def below(self) -> float:
@@ -52,7 +53,7 @@ class Layout:
     @property
     def height(self) -> float:
         """Everything."""
-        return self.below + BODY + self.above
+        return self.below + self.body + self.above
 
 
 def layout(
@@ -63,7 +64,8 @@ def layout(
     across = (WIDTH - LEFT - RIGHT) if width is None else width
     planned = loads_.plan(member, style, across - 2.0 * MARGIN, cases if with_loads else ())
     words = lines_of(loads_.words_of(planned), across, _MOST_WORDS)
-    tags = parts_.tags(scene(None, view, style, across, 0.0, BODY))
+    looked = scene(None, view, style, across, 0.0, BODY)
+    tags = parts_.tags(looked)
     rows = 1 + max((t.row for t in tags if not t.inside), default=-1)
     return Layout(
         words=tuple(words),
@@ -74,6 +76,7 @@ def layout(
         names=LINE + 0.4 if member.supports else 0.0,
         symbols=supports_.HEIGHT if member.supports else 1.0,
         loads=planned,
+        body=float(np.ptp(looked.up(np.array(view.levels)))),
     )
 
 
@@ -173,7 +176,7 @@ def _chain(drawn: Scene, height: float) -> None:
 def _stations(drawn: Scene, height: float) -> None:
     """Mark named stations by an upright line down to their names."""
     stations = sorted(drawn.view.member.stations, key=lambda s: s.at)
-    placed = supports_.placed_in_row(drawn, [(s.at, s.name) for s in stations])
+    placed = supports_.placed_in_row(drawn, [(s.at, s.name, "") for s in stations])
     for s in stations:
         top = drawn.edges(s.at)[1] + 1.0
         drawn.ax.plot([s.at, s.at], [height + 0.6 * LINE, top], color=GREY, lw=MEDIUM, ls=(0, (6, 1.5, 1, 1.5)), zorder=6)

@@ -27,10 +27,9 @@ def _words(member: Member, part: Part, style: str) -> str:
 
 def columns(member: Member, style: str, width: float) -> int:
     """Choose into how many columns the key goes, by what most entries need; `width` in mm."""
-    needed = sorted(text_width(_words(member, p, style)) for p in member.parts)
-    usual = needed[int(0.8 * (len(needed) - 1))] + _SWATCH + 7.0
-    most = 1 if len(member.parts) <= 2 else 4
-    return max(1, min(most, int(width // min(usual, width / (2 if len(needed) > 10 else 1)))))
+    needed = max(text_width(_words(member, p, style)) for p in member.parts) + _SWATCH + 7.0
+    count = len(member.parts)
+    return 1 if count <= 2 else max(1 if count <= 8 else 2, min(4, int(width // needed)))
 
 
 def height(member: Member, style: str, width: float = WIDTH - LEFT - RIGHT) -> float:

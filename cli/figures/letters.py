@@ -15,6 +15,8 @@ from fishbelly.cli.figures.paper import LINE, text_width
 Array = NDArray[np.float64]
 
 ELLIPSIS = "…"
+_MOST_COVERED = 8
+"""Points of a line, half a millimetre apart, that a label may hide."""
 
 
 def one_line(text: str) -> str:
@@ -148,7 +150,7 @@ class Spots:
                 cost = self._cost(box, x, y)
                 if best is None or cost < best[0]:
                     best = (cost, box)
-        if best is None or math.isinf(best[0]):
+        if best is None or math.isinf(best[0]) or self._covered(best[1]) > _MOST_COVERED:
             return None
         box = best[1]
         self.taken.append(box)
@@ -159,7 +161,11 @@ class Spots:
             return math.inf
         if any(box.meets(other) for other in self.taken):
             return math.inf
+        far = math.hypot(0.5 * (box.left + box.right) - x, 0.5 * (box.bottom + box.top) - y)
+        return far + 6.0 * min(self._covered(box), 10)
+
+    def _covered(self, box: Box) -> int:
+        """How many points of the line a box hides."""
         inside = (self.curve_x > box.left - 0.5) & (self.curve_x < box.right + 0.5)
         inside &= (self.curve_y > box.bottom - 0.4) & (self.curve_y < box.top + 0.4)
-        far = math.hypot(0.5 * (box.left + box.right) - x, 0.5 * (box.bottom + box.top) - y)
-        return far + 6.0 * float(np.minimum(inside.sum(), 10))
+        return int(inside.sum())

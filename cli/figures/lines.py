@@ -12,7 +12,7 @@ from fishbelly.cli.figures.letters import Spots
 from fishbelly.cli.figures.paper import GREY, THIN, size_of
 from fishbelly.cli.figures.scene import limits
 from fishbelly.cli.figures.supports import white
-from fishbelly.cli.figures.ticks import place, set_places, set_values, value
+from fishbelly.cli.figures.ticks import exact, place, set_places, set_values
 from fishbelly.member.description import Member
 
 Array = NDArray[np.float64]
@@ -51,18 +51,24 @@ def upright(ax: Any, values: Array, words: str, what: str, style: str, down: boo
 
 
 def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, member: Member, style: str) -> None:
-    """Mark extremes with a dot, their value and their place, off the line and off each other."""
+    """Mark extremes with a dot, their value and their place, off the line and off each other.
+
+    Those without a free spot are written over the panel, at its right.
+    """
     width, height = size_of(ax)
     (x0, x1), (y0, y1) = ax.get_xlim(), ax.get_ylim()
     fine_x, fine_y = _dense((x - x0) / (x1 - x0) * width, (y - y0) / (y1 - y0) * height)
     spots = Spots(width, height, fine_x, fine_y)
     scale = max((abs(v) for v, _ in extremes), default=0.0)
+    crowded: list[str] = []
     for number, at in extremes:
         mm_x, mm_y = (at - x0) / (x1 - x0) * width, (number - y0) / (y1 - y0) * height
         ax.plot([at], [number], "o", ms=2.6, color="black", zorder=6, clip_on=False)
-        text = f"{value(number, what, style, 3, scale)} at {place(at, member.length, style)}"
+        text = f"{exact(number, what, style, scale)} at {place(at, member.length, style)}"
         found = spots.find(text, float(mm_x), float(mm_y))
-        if found is not None:
+        if found is None:
+            crowded.append(text)
+        else:
             ax.text(
                 x0 + found[0] / width * (x1 - x0),
                 y0 + found[1] / height * (y1 - y0),
@@ -72,6 +78,8 @@ def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, membe
                 zorder=7,
                 bbox=white(),
             )
+    if crowded:
+        ax.text(x1, y1 + 0.7 / height * (y1 - y0), "; ".join(crowded), ha="right", va="bottom", clip_on=False)
 
 
 def _dense(x: Array, y: Array) -> tuple[Array, Array]:

@@ -35,6 +35,8 @@ _STIFFNESS, _SHARES = 22.0, 30.0
 _STRESS = 54.0
 """Width of stresses beside a cross-section [mm]."""
 _SECTION_LEFT = cross_section.MARGIN_LEFT
+_BOLD = 1.2
+"""How much wider bold letters are, at most."""
 _SMALL = 38.0
 """Most height of a cross-section under other panels [mm]."""
 
@@ -43,7 +45,8 @@ class _Column:
     """Panels below each other: heights are gathered first, then the figure is made."""
 
     def __init__(self, title: str, lines: list[str]) -> None:
-        title = shortened(title, WIDTH - 2.0 * _SECTION_LEFT)
+        title = shortened(title, (WIDTH - 2.0 * _SECTION_LEFT) / _BOLD)
+        self.titled = bool(title)
         self.lines = ([title] if title else []) + lines
         self.y = 2.5 + LINE * len(self.lines) + 0.5
 
@@ -58,7 +61,7 @@ class _Column:
         figure = page(self.y + _FOOT)
         tall = self.y + _FOOT
         for k, line in enumerate(self.lines):
-            weight = "bold" if k == 0 and len(self.lines) > 1 else "normal"
+            weight = "bold" if k == 0 and self.titled else "normal"
             figure.text(_SECTION_LEFT / WIDTH, 1.0 - (2.5 + (k + 0.5) * LINE) / tall, line, ha="left", va="center", weight=weight)
         figure.text(1.0 - RIGHT / WIDTH, 2.4 / tall, CAUTION, ha="right", va="center")
         return figure
@@ -185,7 +188,9 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
         words = key.height(member, job.style)
         key_top = column.room(words, _AXIS + 1.0)
         row = _SectionRow(job, section, _SMALL, column)
-        column.room(0.0, _AXIS)
+        wide = WIDTH - _SECTION_LEFT - RIGHT
+        materials = section_key.materials_height(job, section, wide)
+        materials_top = column.room(materials, _AXIS + 1.0)
         figure = column.figure()
         elevation.plot(job, cases, ax=panel(figure, LEFT, top, ACROSS, bands.height))
         for quantity, at in tops.items():
@@ -193,8 +198,8 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
             fine = curves.along(combination, quantity)
             response_lines.plot(job, combination, quantity, ax, quantity == "deflection", fine)
         key.plot(job, panel(figure, LEFT, key_top, ACROSS, words))
-        every = ", all spans loaded" if combination.get("envelope") else ""
-        row.draw(figure, bars, f"Stress there: {one_line(why)}{every}")
+        row.draw(figure, bars, f"Stress there ({one_line(why)})")
+        section_key.plot_materials(job, section, panel(figure, _SECTION_LEFT, materials_top, wide, materials))
     return figure
 
 
@@ -207,6 +212,6 @@ def _said(combination: Mapping[str, Any], factors: Mapping[str, float], governs:
     if parts:
         text += ": " + ", ".join(parts)
     if combination.get("envelope"):
-        text += "; line: all spans loaded, grey: every arrangement of pattern loads"
+        text += "; lines and stress: all spans loaded, grey: every arrangement of pattern loads"
     return lines_of(text, WIDTH - 2.0 * _SECTION_LEFT, 2)
 

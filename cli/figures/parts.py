@@ -144,11 +144,10 @@ def _below(scene: Scene, parts: list[int]) -> list[Tag]:
     for part in parts:
         stretches = [s for s in scene.view.stretches if s.part == part]
         spans[part] = scene.mm(float(stretches[0].x[0])), scene.mm(float(stretches[-1].x[-1]))
-    same = {span: [p for p in parts if spans[p] == span] for span in spans.values()}
     wanted = []
     for part in parts:
         a, b = spans[part]
-        alike = same[a, b]
+        alike = [p for p in parts if abs(sum(spans[p]) - a - b) < 8.0]
         wanted.append(a + (b - a) * (alike.index(part) + 1.0) / (len(alike) + 1.0))
     sizes = [text_width(number_of(scene.view.member, p)) + 1.6 for p in parts]
     for rows in range(1, _MOST_ROWS + 1):

@@ -20,7 +20,7 @@ QUANTITIES: Mapping[str, tuple[str, str, bool]] = {
 """By name: the key of stations, the quantity of its unit, whether positive values are drawn downwards."""
 WORDS: Mapping[str, str] = {
     "moment": "M, drawn on the tension side, sagging positive",
-    "shear": "V, upward on the left part positive",
+    "shear": "V, positive where the part on the left pushes up",
     "slope": "slope, clockwise positive",
     "deflection": "deflection, down positive and drawn downwards",
 }
@@ -82,7 +82,7 @@ def plot(
             ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
         ends_x, ends_y = _closed(x, y)
         ax.plot(ends_x, ends_y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="round")
-        lines.mark(ax, x, y, marks, what, job.member, job.style)
+        lines.mark(ax, ends_x, ends_y, marks, what, job.member, job.style)
     return ax
 
 

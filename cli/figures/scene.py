@@ -96,8 +96,8 @@ def exaggeration(depth: float, length: float, width: float, room: float) -> floa
     """Choose the round factor by which the depth is drawn too large, so that it fills a room [mm]."""
     natural = depth / length * (width - 2.0 * MARGIN)
     best = room / natural
-    power = 10.0 ** np.floor(np.log10(best) + 1e-9)
-    return float(max(s * power for s in _STEPS if s * power <= best * (1.0 + 1e-9)))
+    power = 10.0 ** np.floor(np.log10(best) + 1e-7)
+    return float(max(s * power for s in _STEPS if s * power <= best * (1.0 + 1e-6)))
 
 
 def scene(ax: Any, view: SideView, style: str, width: float, below: float, room: float) -> Scene:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -38,21 +39,25 @@ def _facts(data: Mapping[str, Any], style: str) -> str:
     angle = principal.get("angle")
     big, small = principal.get("EI_1"), principal.get("EI_2")
     if None not in (angle, big, small) and big - small > 1e-9 * big:
+        angle = abs(angle) if abs(abs(angle) - 0.5 * math.pi) < 1e-6 else angle
         turned = value(angle, "angle", style, 3) if abs(angle) > 1e-6 else "0 deg"
         words.append(f"principal axis 1 turned {turned} from y, EI_1 {value(big, 'bending stiffness', style, 4)}")
         words.append(f"EI_2 {value(small, 'bending stiffness', style, 4)}")
     unit = unit_label("length", style)  # type: ignore[arg-type]
+    to = data["transformed"]
+    if len(to["n"]) > 1:
+        words.append(f"n = E / E of {one_line(to['to'])}")
     return "; ".join([*words, f"dimensions in {unit}"])
 
 
 def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[tuple[str, str]]:
     """Name and words of the materials at the section."""
-    n, to = data["transformed"]["n"], data["transformed"]["to"]
+    n = data["transformed"]["n"]
     return [
         (
             name,
             f"{one_line(name)}, E = {value(member.material(name).E, 'modulus', style, 4)}, "
-            f"n = {n[name]:.4g}" + (" (E / E of this)" if name == to and len(n) > 1 else ""),
+            f"n = {n[name]:.4g}",
         )
         for name in n
     ]
@@ -85,6 +90,24 @@ def height(job: Any, data: Mapping[str, Any], width: float) -> float:
         -(-len(texts) // _columns(texts, width, more)) for texts, more in (([m[1] for m in materials], 8.0), (parts, 3.0))
     )
     return len(facts) * LINE + rows * _ROW + 2.0 * _GAP
+
+
+def materials_height(job: Any, data: Mapping[str, Any], width: float) -> float:
+    """Height that the key of the materials alone takes in a width [mm]."""
+    texts = [m[1] for m in _materials(job.member, data, job.style)]
+    return -(-len(texts) // _columns(texts, width, _SWATCH + 3.0)) * _ROW
+
+
+def plot_materials(job: Any, data: Mapping[str, Any], ax: Any) -> Any:
+    """Write the key of the materials alone, in axes as for `plot`."""
+    with pens():
+        bare(ax)
+        width, tall = size_of(ax)
+        ax.set_xlim(0.0, width)
+        ax.set_ylim(0.0, tall)
+        materials = _materials(job.member, data, job.style)
+        _table(ax, [m[1] for m in materials], tall, width, _SWATCH + 2.0, job.member, [m[0] for m in materials])
+    return ax
 
 
 def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:

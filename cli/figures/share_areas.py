@@ -68,12 +68,15 @@ def _number(ax: Any, job: Any, k: int, x: Array, low: Array, high: Array) -> Non
     width, height = size_of(ax)
     text = number_of(job.member, k)
     half = (0.5 * text_width(text) + 1.0) / width * (ax.get_xlim()[1] - ax.get_xlim()[0])
-    inside = (x > half) & (x < job.member.length - half)
-    depth = np.where(inside, high - low, -1.0)
-    best = np.flatnonzero(depth >= depth.max() - 1e-6)
-    at = int(best[best.size // 2])
-    window = (x >= x[at] - half) & (x <= x[at] + half)
-    bottom, top = float(low[window].max()), float(high[window].min())
-    if (top - bottom) * height > 1.25 * LINE and depth[at] > 0.0:
+    best: tuple[float, float, float] | None = None
+    for share in (0.5, 0.45, 0.55, 0.4, 0.6, 0.35, 0.65, 0.3, 0.7, 0.25, 0.75, 0.2, 0.8, 0.15, 0.85, 0.1, 0.9, 0.06, 0.94):
+        at = share * job.member.length
+        edges = np.array([at - half, at, at + half])
+        window = (x >= edges[0]) & (x <= edges[2])
+        bottom = max(float(np.interp(edges, x, low).max()), float(low[window].max(initial=0.0)))
+        top = min(float(np.interp(edges, x, high).min()), float(high[window].min(initial=1.0)))
+        if best is None or top - bottom > best[2] - best[1] + 0.02:
+            best = (at, bottom, top)
+    if best is not None and (best[2] - best[1]) * height > 1.25 * LINE:
         ground = {"boxstyle": "round,pad=0.15", "facecolor": "white", "edgecolor": "black", "lw": THIN}
-        ax.text(x[at], 0.5 * (bottom + top), text, ha="center", va="center", zorder=5, bbox=ground)
+        ax.text(best[0], 0.5 * (best[1] + best[2]), text, ha="center", va="center", zorder=5, bbox=ground)

@@ -71,4 +71,12 @@ def _marks(x: Array, y: Array) -> list[Mark]:
     if y[high] - y[low] <= _EQUAL * size:
         # the same everywhere: once, in the middle
         return [(float(y[high]), float(x[np.argmin(np.abs(x - 0.5 * x[-1]))]))]
-    return [(float(y[k]), float(x[k])) for k in (high, low)]
+    return [(float(y[k]), _middle(x, y, k, _EQUAL * size)) for k in (high, low)]
+
+
+def _middle(x: Array, y: Array, k: int, tiny: float) -> float:
+    """Middle of the stretch from k on over which a value stays the same [m]."""
+    end = k
+    while end + 1 < y.size and abs(y[end + 1] - y[k]) <= tiny:
+        end += 1
+    return float(0.5 * (x[k] + x[end]))

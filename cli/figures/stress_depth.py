@@ -9,7 +9,7 @@ from typing import Any
 from fishbelly.cli.figures.letters import apart
 from fishbelly.cli.figures.looks import material_look
 from fishbelly.cli.figures.paper import GREY, HEAVY, LINE, MEDIUM, THIN, own_panel, pens, size_of, text_width
-from fishbelly.cli.figures.ticks import ticks, trimmed
+from fishbelly.cli.figures.ticks import ticks
 from fishbelly.cli.format_quantity import format_number
 
 _MOST_VALUES = 9
@@ -90,14 +90,18 @@ def _stress_axis(ax: Any, bars: Sequence[Bar], style: str, width: float) -> None
     inner = max(width - 2.0 * beside, 10.0)
     per_mm = (high - low) / inner
     ax.set_xlim(low - beside * per_mm, high + beside * per_mm)
-    chosen = ticks(low, high, "stress", style, max(2, int(inner // 13.0)))
+    for most in (6, 5, 4, 3, 2):
+        chosen = ticks(low, high, "stress", style, most)
+        widest = max(map(text_width, chosen.labels), default=0.0)
+        if chosen.at.size < 2 or (chosen.at[1] - chosen.at[0]) / per_mm > widest + 1.5:
+            break
     ax.set_xticks(chosen.at, chosen.labels)
     ax.spines["bottom"].set_bounds(low, high)
     ax.set_xlabel(f"stress [{chosen.unit}], tension positive")
 
 
 def _number(value: float, style: str, scale: float) -> str:
-    return trimmed(format_number(value, "stress", style, 3, scale))  # type: ignore[arg-type]
+    return format_number(value, "stress", style, 3, scale).replace("-", "−")  # type: ignore[arg-type]
 
 
 def _values(ax: Any, bars: Sequence[Bar], style: str) -> None:

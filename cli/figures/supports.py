@@ -134,18 +134,18 @@ def _spiral(scene: Scene, x: float, height: float) -> None:
     _line(scene, [(float(a), float(b)) for a, b in points], MEDIUM)
 
 
-def names(scene: Scene) -> list[tuple[float, str]]:
-    """Place and name of the supports, those at one place together, with what a symbol cannot say."""
-    found: dict[float, list[str]] = {}
+def names(scene: Scene) -> list[tuple[float, str, str]]:
+    """Place and name of the supports, those at one place together, and what a symbol cannot say."""
+    found: dict[float, tuple[list[str], list[str]]] = {}
     for s in sorted(scene.view.member.supports, key=lambda s: s.at):
-        said = s.name
+        words, more = found.setdefault(s.at, ([], []))
+        words.append(s.name)
         if s.only_up:
-            said += ", up only"
+            more.append("up only")
         if s.sinks:
             way, size = ("sinks", s.sinks) if s.sinks > 0.0 else ("jacked", -s.sinks)
-            said += f", {way} {value(size, 'deflection', scene.style)}"
-        found.setdefault(s.at, []).append(said)
-    return [(at, "; ".join(words)) for at, words in found.items()]
+            more.append(f"{way} {value(size, 'deflection', scene.style)}")
+    return [(at, "; ".join(words), "".join(f", {m}" for m in more)) for at, (words, more) in found.items()]
 
 
 def _names(scene: Scene, height: float) -> None:
@@ -154,24 +154,27 @@ def _names(scene: Scene, height: float) -> None:
         scene.write(place, height, text, bbox=white())
 
 
-def placed_in_row(scene: Scene, wanted: list[tuple[float, str]], most: float = 60.0) -> list[tuple[float, str]]:
-    """Labels of places [m] moved apart in one row: middles [mm] and texts, cut shorter until they fit."""
+def placed_in_row(scene: Scene, wanted: list[tuple[float, str, str]], most: float = 60.0) -> list[tuple[float, str]]:
+    """Labels of places [m] moved apart in one row: middles [mm] and texts, cut shorter until they fit.
+
+    Of each label the first text is cut, the second is kept.
+    """
     if not wanted:
         return []
-    places = [scene.mm(at) for at, _ in wanted]
+    places = [scene.mm(at) for at, _, _ in wanted]
     room = scene.width + LINE
     for limit in (most, 40.0, 28.0, 20.0, 15.0, 12.0, 9.5, 7.5, 6.0):
-        texts = [_brief(text, limit) for _, text in wanted]
+        texts = [_brief(text, limit, more) for _, text, more in wanted]
         middles = apart(places, [text_width(t) for t in texts], -0.5 * LINE, room - 0.5 * LINE, 1.2)
         if middles is not None:
             return [(float(m), t) for m, t in zip(middles, texts, strict=True) if t]
     return []
 
 
-def _brief(text: str, limit: float) -> str:
+def _brief(text: str, limit: float, more: str) -> str:
     if text_width(text) > limit and text.startswith("support "):
         text = text.removeprefix("support ")
-    return shortened(text, limit)
+    return shortened(text, limit - (text_width(more) if limit > 12.0 else 0.0)) + (more if limit > 12.0 else "")
 
 
 def white() -> dict[str, Any]:

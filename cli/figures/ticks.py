@@ -104,11 +104,19 @@ def places(length: float, style: str, most: int) -> Ticks:
 
 def place(x: float, length: float, style: str) -> str:
     """Write a place along a member of a length [m], with its unit."""
+    if x == 0.0:
+        return f"0 {places(length, style, 5).unit.split('-')[0]}"
     if style == "us" or length >= _SHORT_METRIC:
         if style == "us" and length < _SHORT_US:
             return f"{trimmed(format_number(x, 'length', 'us', 4, length))} in"
         return format_position(x, style)  # type: ignore[arg-type]
     return f"{trimmed(format_number(x, 'length', 'metric', 5, length))} mm"
+
+
+def exact(number_: float, what: str, style: str, scale: float) -> str:
+    """Write a value with its unit and the decimals that a largest value beside it has with three figures."""
+    text = format_number(number_, what, style, 3, scale).replace("-", "−")  # type: ignore[arg-type]
+    return f"{text} {pretty(unit_label(what, style))}".rstrip()  # type: ignore[arg-type]
 
 
 def value(number_: float, what: str, style: str, digits: int = 3, scale: float | None = None) -> str:
@@ -134,7 +142,7 @@ def set_places(ax: Any, length: float, style: str, width: float, labelled: bool 
 def set_values(ax: Any, words: str, what: str, style: str, height: float) -> None:
     """Mark the vertical axis with a quantity and write what it is above it; `height` is that of the axes [mm]."""
     low, high = ax.get_ylim()
-    chosen = ticks(low, high, what, style, max(2, int(height // 6.0)))
+    chosen = ticks(low, high, what, style, max(2, int(height // 4.2)))
     ax.set_yticks(chosen.at, chosen.labels)
     head, _, rest = words.partition(",")
     text = f"{head} [{chosen.unit or '–'}]" + (f",{rest}" if rest else "")
