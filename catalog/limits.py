@@ -19,6 +19,10 @@ class PublishedLimit:
         Cap [m], alone or together with L/n (the smaller governs).
     cantilever_over : float or None
         n of own length / n where the code prints one for cantilevers, else None.
+    of : str
+        Which deflection: ``"down"``, or ``"across"`` of limits on sideways deflection.
+    net : bool
+        Whether the precamber is deducted.
     loads : str
         Under which loads or combination.
     code, clause : str
@@ -31,6 +35,8 @@ class PublishedLimit:
     span_over: float | None
     absolute: float | None
     cantilever_over: float | None
+    of: str
+    net: bool
     loads: str
     code: str
     clause: str
@@ -69,6 +75,8 @@ def _limit(row: dict[str, str]) -> PublishedLimit:
         span_over=number("span_over"),
         absolute=number("absolute [m]"),
         cantilever_over=number("cantilever_over"),
+        of=row["of"] or "down",
+        net=row["net"] == "yes",
         loads=row["loads"],
         code=row["code"],
         clause=row["clause"],

@@ -131,7 +131,7 @@ def find_rolled(designation: str) -> RolledSection:
         row = _rows_by_normal_form(file).get(wanted)
         if row is not None:
             return _section(row)
-    raise UnknownDesignation(designation, nearest_names(designation, rolled_designations()))
+    raise UnknownDesignation(designation, nearest_names(designation, rolled_designations(), fold=normal_form))
 
 
 @cache

@@ -1,13 +1,15 @@
 """Find anything in the catalogue by any word, with values, units and source."""
 
+import re
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 
+from fishbelly.catalog.designations import normal_form, series_of
 from fishbelly.catalog.k_def import SERVICE_CLASSES
 from fishbelly.catalog.limits import PublishedLimit, limits
 from fishbelly.catalog.materials import CatalogMaterial, materials
-from fishbelly.catalog.rolled import RolledSection, rolled_sections
-from fishbelly.catalog.tables import read_table
+from fishbelly.catalog.rolled import SERIES, RolledSection, rolled_sections
+from fishbelly.catalog.tables import nearest_names, read_table
 
 Value = tuple[str, float, str]
 """Label, number, SI unit (empty for a ratio)."""
@@ -93,7 +95,8 @@ def limit_entry(limit: PublishedLimit) -> Entry:
         ("cantilever over", limit.cantilever_over, ""),
     )
     values = tuple((label, value, unit) for label, value, unit in fields if value is not None)
-    return Entry("limit", limit.name, limit.loads, values, limit.source, limit.note)
+    kind = limit.loads + (", sideways" if limit.of == "across" else "")
+    return Entry("limit", limit.name, kind, values, limit.source, limit.note)
 
 
 def k_def_entries() -> list[Entry]:
@@ -128,14 +131,30 @@ def everything() -> list[Entry]:
     return [entry for group in _GROUPS for entry in group()]
 
 
+_GROUP_WORDS = {
+    "material": ("material", "materials"),
+    "rolled section": ("rolled section", "rolled sections", "section", "sections", "size", "sizes"),
+    "limit": ("limit", "limits", "deflection limits"),
+    "creep of timber": ("creep of timber", "k_def", "kdef", "deformation factor"),
+}
+"""Words that ask for the whole of a group."""
+
+
 def _squeezed(text: str) -> str:
     return "".join(text.split()).casefold().replace("×", "x")
+
+
+def is_named(entry: Entry, word: str) -> bool:
+    """Whether a word is the entry's name: in any case, with any spacing; of a section in any usual spelling."""
+    if _squeezed(entry.name) == _squeezed(word):
+        return True
+    return entry.group == "rolled section" and normal_form(entry.name) == normal_form(word)
 
 
 def _rank(entry: Entry, wanted: str) -> int:
     """0 for the name itself, 1 for its beginning, 2 inside it, 3 elsewhere."""
     name = _squeezed(entry.name)
-    if name == wanted:
+    if is_named(entry, wanted):
         return 0
     if name.startswith(wanted):
         return 1
@@ -144,7 +163,7 @@ def _rank(entry: Entry, wanted: str) -> int:
     return 3
 
 
-def search(word: str) -> list[Entry]:
+def search(word: str, entries: Iterable[Entry] | None = None) -> list[Entry]:
     """Everything in which all the given words occur, in any case.
 
     Names, groups, kinds, sources and notes are looked at. What has the words as its name comes first, then
@@ -154,6 +173,8 @@ def search(word: str) -> list[Entry]:
     ----------
     word : str
         One word or several; empty finds everything.
+    entries : iterable of Entry, optional
+        What to search in; default `everything`.
 
     Returns
     -------
@@ -165,11 +186,56 @@ def search(word: str) -> list[Entry]:
     >>> [entry.name for entry in search("ipe 300")][:2]
     ['IPE 300', 'IPE A 300']
     """
-    words = word.casefold().replace("×", "x").split()
-    wanted = _squeezed(word)
+    known = everything() if entries is None else list(entries)
+    asked = " ".join(word.casefold().split())
+    for group, words in _GROUP_WORDS.items():
+        if asked in words:
+            return [entry for entry in known if entry.group == group]
+    in_name = _begins(_squeezed(word))
+    parts = [_begins(part) for part in asked.replace("×", "x").split()]
+    only_names = _is_designation(word)
     found = []
-    for entry in everything():
-        text = " ".join((entry.group, entry.name, entry.kind, entry.source, entry.note)).casefold()
-        if all(part in text for part in words) or wanted in _squeezed(entry.name):
+    for entry in known:
+        text = (entry.name if only_names else " ".join(_texts(entry))).casefold()
+        if all(p.search(text) for p in parts) or in_name.search(_squeezed(entry.name)) or is_named(entry, word):
             found.append(entry)
-    return sorted(found, key=lambda entry: _rank(entry, wanted))
+    return sorted(found, key=lambda entry: _rank(entry, _squeezed(word)))
+
+
+def _texts(entry: Entry) -> tuple[str, ...]:
+    return (entry.group, *_GROUP_WORDS[entry.group], entry.name, entry.kind, entry.source, entry.note)
+
+
+def _begins(word: str) -> re.Pattern[str]:
+    """Pattern of a word where a word or a number begins."""
+    before = r"(?<!\d)(?<!\d\.)" if word[:1].isdigit() else r"(?<![^\W\d_])"
+    return re.compile(before + re.escape(word))
+
+
+def _is_designation(word: str) -> bool:
+    """Whether a text is a section's designation by its look: letters of a series, then numbers."""
+    form = normal_form(word)
+    series = series_of(form)
+    return series != "" and series in SERIES and any(c.isdigit() for c in form)
+
+
+def nearest(word: str, entries: Iterable[Entry] | None = None, count: int = 6) -> list[str]:
+    """Names, and words for kinds of things, that look most like a word that finds nothing, the best first.
+
+    Parameters
+    ----------
+    word : str
+        What was asked for.
+    entries : iterable of Entry, optional
+        What there is; default `everything`.
+    count : int
+        How many at most.
+    """
+    known = list(everything() if entries is None else entries)
+    sections = tuple(entry.name for entry in known if entry.group == "rolled section")
+    near = nearest_names(word, sections, count, normal_form) if any(c.isdigit() for c in word) else []
+    if near and series_of(normal_form(near[0])) == series_of(normal_form(word)):
+        return near
+    kinds = {w.strip("(),") for entry in known for w in (*entry.kind.split(), *entry.group.split())}
+    words = tuple(dict.fromkeys((*(entry.name for entry in known), *sorted(kinds))))
+    return nearest_names(word, words, count)

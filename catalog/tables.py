@@ -5,6 +5,9 @@ units in decimal arithmetic, so that ``5.6`` in a column of millimetres is the f
 """
 
 import csv
+import math
+import re
+from collections.abc import Callable, Iterable
 from decimal import Decimal
 from difflib import get_close_matches
 from functools import cache
@@ -117,8 +120,23 @@ def numbers(row: dict[str, str]) -> dict[str, float]:
     return found
 
 
-def nearest_names(name: str, known: tuple[str, ...], count: int = 4) -> list[str]:
+_NUMBER = re.compile(r"\d+(?:\.\d+)?")
+_FAR = 0.3
+"""Names whose numbers differ by more than this, as sum of logarithms of ratios, are not near."""
+
+
+def folded(name: str) -> str:
+    """Spelling under which a name is looked up: no spaces, any case."""
+    return "".join(name.split()).casefold()
+
+
+def nearest_names(
+    name: str, known: tuple[str, ...], count: int = 4, fold: Callable[[str], str] = folded
+) -> list[str]:
     """Names of the catalogue that look most like `name`, the best first.
+
+    Names that go on where `name` ends come first, then those with the same letters and the nearest numbers
+    (``IPE 300`` and ``IPE 330`` for ``IPE 310``); only where there are neither, names spelt alike.
 
     Parameters
     ----------
@@ -128,11 +146,37 @@ def nearest_names(name: str, known: tuple[str, ...], count: int = 4) -> list[str
         What there is.
     count : int
         How many at most.
+    fold : callable
+        Gives the spelling under which names are compared.
     """
-    folded: dict[str, str] = {}
+    by_spelling: dict[str, str] = {}
     for entry in known:
-        folded.setdefault("".join(entry.split()).casefold(), entry)
-    wanted = "".join(name.split()).casefold()
-    longer = [entry for entry in folded if wanted and entry.startswith(wanted)]
-    close = [*longer, *get_close_matches(wanted, list(folded), n=count, cutoff=0.5)]
-    return [folded[entry] for entry in dict.fromkeys(close)][:count]
+        by_spelling.setdefault(fold(entry), entry)
+    wanted = fold(name)
+    near = [entry for entry in by_spelling if wanted and entry.startswith(wanted)]
+    near += _by_numbers(wanted, by_spelling)
+    if not near:
+        near = get_close_matches(wanted, list(by_spelling), n=count, cutoff=0.5)
+    return [by_spelling[entry] for entry in dict.fromkeys(near)][:count]
+
+
+def _by_numbers(wanted: str, spellings: Iterable[str]) -> list[str]:
+    """Spellings with the same letters in front and as many numbers, by how far these differ."""
+    numbers_wanted = _positive(wanted)
+    if not numbers_wanted:
+        return []
+    letters = _NUMBER.split(wanted)[0]
+    found = []
+    for spelling in spellings:
+        have = _positive(spelling)
+        if len(have) == len(numbers_wanted) and _NUMBER.split(spelling)[0] == letters:
+            pairs = zip(numbers_wanted, have, strict=True)
+            distance = sum(abs(math.log(a / b)) for a, b in pairs)
+            if distance <= _FAR:
+                found.append((distance, spelling))
+    return [spelling for _, spelling in sorted(found, key=lambda pair: pair[0])]
+
+
+def _positive(spelling: str) -> list[float]:
+    values = [float(text) for text in _NUMBER.findall(spelling)]
+    return values if all(value > 0.0 for value in values) else []

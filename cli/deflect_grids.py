@@ -174,6 +174,7 @@ def _checks(title: str, what: str, rows: Sequence[Row]) -> Grid:
             *values,
             column(rows, "used", PERCENT, "used"),
             column(rows, "verdict", TEXT, verdict),
+            column(rows, "source", TEXT, optional=True),
         ),
     )
 

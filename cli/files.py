@@ -75,6 +75,11 @@ def write(path: str, command: str, data: dict[str, Any], job: Any, force: bool) 
     _replace(path, target, content)
 
 
+def write_bytes(path: str, content: bytes, force: bool) -> None:
+    """Write what is ready to a file, whole or not at all; raises `FileFault`."""
+    _replace(path, _checked(path, force, None), content)
+
+
 def _content(suffix: str) -> Callable[[str, dict[str, Any], Any], bytes]:
     if suffix == ".csv":
         from fishbelly.cli.files_csv import csv_bytes

@@ -60,6 +60,18 @@ def xlsx_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
     return out.getvalue()
 
 
+def grid_xlsx(grid: Grid, style: str) -> bytes:
+    """Write one table as a workbook, in the units of a style."""
+    import xlsxwriter
+
+    out = io.BytesIO()
+    book = xlsxwriter.Workbook(out, {"in_memory": True})
+    book.set_properties({"title": grid.title, "created": _CREATED})
+    _Pen(book, style).grid(grid)
+    book.close()
+    return out.getvalue()
+
+
 def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
     from fishbelly.member.section_results import stiffness
 

@@ -9,12 +9,14 @@ from pathlib import Path as FilePath
 from typing import Any
 
 from fishbelly.cli.faults import Fault, JobFaults
+from fishbelly.cli.job_catalogue import read_catalogue
 from fishbelly.cli.job_cuts import read_haunches, read_notches, read_openings
+from fishbelly.cli.job_limits import read_limits
 from fishbelly.cli.job_loads import read_loads
 from fishbelly.cli.job_materials import read_materials
 from fishbelly.cli.job_models import NOT_BUILT, TABLES, JobTable
 from fishbelly.cli.job_parts import read_part
-from fishbelly.cli.job_questions import camber_of, read_combinations, read_limits, read_stations_by_name
+from fishbelly.cli.job_questions import camber_of, read_combinations, read_stations_by_name
 from fishbelly.cli.job_references import given_names, references
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_supports import read_hinges, read_supports
@@ -101,6 +103,7 @@ def _job(report: Report, text: str) -> Job:
     report.data.update({kind: list_of_tables(kind, report) for kind in TABLES if kind in report.data})
     top = _top_level(report)
     length = None if top is None else top.length
+    report.catalogue = read_catalogue(report)
     materials, material_names = read_materials(report)
     sizes: dict[str, str] = {}
     parts: list[Part | None] = [
@@ -135,7 +138,7 @@ def _job(report: Report, text: str) -> Job:
 
 def _top_level(report: Report) -> JobTable | None:
     """Read the keys of the top level, and note tables that are unknown or not built."""
-    known = {*TABLES, "material"}
+    known = {*TABLES, "material", "catalog"}
     for key in report.data:
         if key in NOT_BUILT[""] and key not in keys_of(JobTable):
             shown = f"[[{key}]]" if isinstance(report.data[key], list) else f'key "{key}"'
@@ -156,7 +159,7 @@ def _top_level(report: Report) -> JobTable | None:
 def _unknown_table(key: str, report: Report) -> None:
     from fishbelly.cli.faults import suggest
 
-    hint = suggest(key, (*TABLES, "material", *keys_of(JobTable)))
+    hint = suggest(key, (*TABLES, "material", "catalog", *keys_of(JobTable)))
     report.place(report.line((key,)), "", f'unknown table "{key}"', hint, (key,))
 
 

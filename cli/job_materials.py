@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from fishbelly.catalog.materials import CatalogMaterial, UnknownMaterial, find_material
+from fishbelly.catalog.materials import CatalogMaterial, UnknownMaterial
 from fishbelly.cli.faults import as_written
 from fishbelly.cli.job_models import MaterialTable
 from fishbelly.cli.job_report import Report
@@ -32,21 +32,21 @@ def read_materials(report: Report) -> tuple[list[Material], dict[str, str]]:
     if not isinstance(own, dict):
         report.about(("material",), "materials are tables with their name, [material.NAME]")
         own = {}
-    materials = [m for name in own if (m := _own(name, report)) is not None]
+    materials = [m for name in own if (m := own_material(name, report)) is not None]
     names = {name: name for name in own}
     for i, part in enumerate(report.data.get("part", [])):
         name = part.get("material") if isinstance(part, dict) else None
         if not isinstance(name, str) or name in names or not name.strip():
             continue
         try:
-            entry = find_material(name)
+            entry = report.catalogue.find_material(name)
         except UnknownMaterial as error:
             _unknown(("part", i, "material"), name, [*own], error.nearest, report)
             continue
         names[name] = entry.name
         report.named_at.setdefault(entry.name, ("part", i, "material"))
         if all(m.name != entry.name for m in materials):
-            materials.append(_from_catalogue(entry))
+            materials.append(_from_catalogue(entry, report))
     return materials, names
 
 
@@ -62,28 +62,47 @@ def _unknown(path: Path, name: str, own: list[str], near: list[str], report: Rep
     report.add(path, "a material of the job or the catalogue", as_written(name), hint)
 
 
-def _from_catalogue(entry: CatalogMaterial) -> Material:
+def _from_catalogue(entry: CatalogMaterial | Material, report: Report) -> Material:
+    if isinstance(entry, Material):
+        return entry
+    report.published[entry.name] = entry
     return Material(entry.name, **{key: getattr(entry, key) for key in _SAME})
 
 
-def _own(name: str, report: Report) -> Material | None:
+def own_material(name: str, report: Report, model: type[MaterialTable] = MaterialTable) -> Material | None:
+    """Read one ``[material.NAME]``; None where it cannot be had.
+
+    Parameters
+    ----------
+    name : str
+        Its name.
+    report : Report
+        The file; takes the faults.
+    model : type
+        What its table has to be.
+    """
     path: Path = ("material", name)
     raw = report.data["material"][name]
     if not isinstance(raw, dict):
         report.add(path, "a table [material.NAME]", as_written(raw))
         return None
-    table = read_table(MaterialTable, raw, path, report)
+    table = read_table(model, raw, path, report)
     if table is None:
         return None
     values: dict[str, float | None] = dict.fromkeys(_SAME)
+    base: Material | None = None
     if table.like is not None:
         try:
-            entry = find_material(table.like)
+            entry = report.catalogue.find_material(table.like)
         except UnknownMaterial as error:
             hint = "nearest are " + ", ".join(f'"{n}"' for n in error.nearest) if error.nearest else ""
             report.add((*path, "like"), "a material of the catalogue", as_written(table.like), hint)
             return None
         values = {key: getattr(entry, key) for key in _SAME}
+        if isinstance(entry, Material):
+            base = entry
+        else:
+            report.published[name] = entry
     if table.G is not None and table.poisson is not None:
         report.add((*path, "poisson"), "either `G` or `poisson`", "both")
         return None
@@ -97,7 +116,11 @@ def _own(name: str, report: Report) -> Material | None:
     E = values.pop("E")
     assert E is not None
     band = None if table.band is None else (table.band[0], table.band[1])
+    if band is None and base is not None and table.E is None:
+        band = base.band
     if band is not None and not band[0] <= E <= band[1]:
         report.warnings.append(f'material "{name}": its E lies outside its band')
     strength = None if table.strength is None else Strength(**table.strength)
+    if strength is None and base is not None:
+        strength = base.strength
     return Material(name, E, band=band, strength=strength, **values)

@@ -90,6 +90,14 @@ class JobTable(Table):
     camber: Annotated[Any, Camber()] = None
 
 
+class CatalogTable(Table):
+    """``[catalog]``: files with sections and materials of one's own, beside the job."""
+
+    files: Annotated[
+        tuple[str, ...], Many(Text("the name of a file"), 'a list of files such as ["sections.csv"]', one=True)
+    ]
+
+
 class StrengthReader(Reader):
     """One allowable stress, or ``{ tension, compression, shear }``."""
 
@@ -241,6 +249,7 @@ class LimitTable(Table):
     """``[[limit]]``."""
 
     name: Name
+    like: MaybeName = None
     span_over: Annotated[float | None, Factor("a number", above=0.0)] = None
     absolute: MaybePositiveLength = None
     slope: Annotated[float | None, Quantity(Kind.ANGLE, "above zero")] = None

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
-from fishbelly.catalog.rolled import UnknownDesignation, find_rolled
+from fishbelly.catalog.rolled import UnknownDesignation
 from fishbelly.cli.faults import as_written, nearest
 from fishbelly.cli.job_models import JobTable
 from fishbelly.cli.job_outlines import finished, rolled_shape, written_shape
@@ -144,7 +144,7 @@ def _shape(
         return written_shape(table, kind, end, path, report)
     designation = str(getattr(table, "size"))  # noqa: B009
     try:
-        section = find_rolled(designation)
+        section = report.catalogue.find_section(designation)
     except UnknownDesignation as error:
         hint = "nearest are " + ", ".join(f'"{n}"' for n in error.nearest) if error.nearest else ""
         report.add((*path, "size"), "a designation of the catalogue", as_written(designation), hint)

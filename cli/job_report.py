@@ -8,7 +8,9 @@ from dataclasses import dataclass, field
 from pathlib import Path as FilePath
 from typing import Any
 
+from fishbelly.catalog.materials import CatalogMaterial
 from fishbelly.cli.faults import Fault, as_written, suggest
+from fishbelly.cli.own_catalogue import Catalogue
 from fishbelly.cli.job_types import Path, ValueFault
 from fishbelly.cli.toml_lines import Lines
 from fishbelly.member.draft import Problem
@@ -48,6 +50,10 @@ class Report:
         Folder of the job, for files beside it.
     named_at : dict of str to tuple
         Where the job first names a material of the catalogue.
+    published : dict of str to CatalogMaterial
+        Materials of the job that come from the catalogue, or start from it.
+    catalogue : Catalogue
+        The catalogue, with sections and materials of the job's own files.
     """
 
     name: str
@@ -57,6 +63,8 @@ class Report:
     faults: list[Fault] = field(default_factory=list)
     warnings: list[str] = field(default_factory=list)
     named_at: dict[str, Path] = field(default_factory=dict)
+    published: dict[str, CatalogMaterial] = field(default_factory=dict)
+    catalogue: Catalogue = field(default_factory=Catalogue)
     _paths: set[Path] = field(default_factory=set)
 
     def add(self, path: Path, expected: str, found: str, hint: str = "") -> None:
@@ -105,7 +113,23 @@ class Report:
             if problem.among:
                 word = problem.found.strip('"')
                 hint = suggest(word, tuple(dict.fromkeys(name for name in problem.among if name)))
+            elif path[0] == "material" and not problem.found and path[1] in self.published:
+                hint = self._way_out(str(path[1]), str(path[-1]))
             self.add(path, problem.expected, self._found(path, problem.found), hint)
+
+    def _way_out(self, name: str, key: str) -> str:
+        """Say how a property that the catalogue does not give is had."""
+        entry = self.published[name]
+        known = ""
+        if key == "creep" and entry.k_def:
+            values = ", ".join(f"{value:g} in service class {label}" for label, value in entry.k_def.items())
+            known = f"k_def of {entry.name} is {values}"
+        elif key == "creep":
+            known = "the catalogue cannot know it"
+        if name in self.data.get("material", {}):
+            return known
+        write = f'write [material.NAME] with like = "{entry.name}" and {key}'
+        return f"{known}: {write}" if known else write
 
     def value(self, path: Path) -> Any:
         """Return what the job has at a path, None where there is nothing."""

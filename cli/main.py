@@ -25,13 +25,38 @@ NOT_BUILT = {
     "schedule": "one job over a list of members",
     "compare": "several jobs side by side",
     "sheet": "the calculation sheet",
-    "catalog": "materials, rolled sections and limits with their sources",
 }
 """Commands that are not built yet; each is refused by its name."""
+
+LATER = {
+    "catalog": ("fishbelly.cli.catalog_command", "Find materials, sections and deflection limits by any word."),
+}
+"""Commands that stand in modules of their own, imported when called: the module, and the line for --help."""
 
 
 class _Group(click.Group):
     """The group of commands: names those that are not built yet, suggests the nearest one otherwise."""
+
+    def list_commands(self, ctx: click.Context) -> list[str]:
+        return sorted({*self.commands, *LATER})
+
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+        if cmd_name in LATER and cmd_name not in self.commands:
+            from importlib import import_module
+
+            command: click.Command = import_module(LATER[cmd_name][0]).command
+            command.name = cmd_name
+            return command
+        return super().get_command(ctx, cmd_name)
+
+    def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
+        rows = []
+        for name in self.list_commands(ctx):
+            known = self.commands.get(name)
+            if known is None or not known.hidden:
+                rows.append((name, LATER[name][1] if known is None else known.get_short_help_str(60)))
+        with formatter.section("Commands"):
+            formatter.write_dl(rows)
 
     def resolve_command(self, ctx: click.Context, args: list[str]) -> Any:
         name = args[0] if args else ""
@@ -40,7 +65,7 @@ class _Group(click.Group):
         if name and self.get_command(ctx, name) is None and not name.startswith("-"):
             from fishbelly.cli.faults import suggest
 
-            hint = suggest(name, [*self.commands, *NOT_BUILT])
+            hint = suggest(name, [*self.list_commands(ctx), *NOT_BUILT])
             raise click.UsageError(f'unknown command "{name}"' + (f"; {hint}" if hint else ""))
         return super().resolve_command(ctx, args)
 
@@ -72,7 +97,7 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
 )
 @click.option("--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version.")
 def cli() -> None:
-    """State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
+    r"""State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
 
     A job is one TOML file: parts with shape, material and place, supports, loads, limits. Begin with
     `fishbelly start`, which lists worked jobs, then
@@ -143,7 +168,9 @@ def _wrapped(head: str, text: str) -> str:
 
 @cli.command()
 @click.argument("job")
-@click.option("--at", required=True, metavar="X", help='Place along the member, with its unit, such as "1.2 m".')
+@click.option(
+    "--at", "places", required=True, multiple=True, metavar="X", help='Place along the member, such as "1.2 m".'
+)
 @click.option(
     "--side",
     type=click.Choice(["left", "right"]),
@@ -153,12 +180,16 @@ def _wrapped(head: str, text: str) -> str:
 )
 @click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
 @_outputs
-def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+def section(
+    job: str, places: tuple[str, ...], side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool
+) -> int:
     """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
 
     Example: fishbelly section my-beam.toml --at "1.2 m"
     """
-    read, places = _read(job, [at], outputs, force)
+    if len(places) > 1:
+        raise click.UsageError(f"--at: expected one place, got {len(places)}; `stiffness` takes several")
+    read, at = _read(job, places, outputs, force)
     from fishbelly.member.section_results import section_at
 
     if to is not None and to not in [m.name for m in read.member.materials]:
@@ -166,7 +197,7 @@ def section(job: str, at: str, side: str, to: str | None, as_json: bool, outputs
 
         hint = suggest(to, [m.name for m in read.member.materials])
         raise click.UsageError(f'--to: no part is of material "{to}"' + (f"; {hint}" if hint else ""))
-    data = section_at(read.member, places[0], side, to)
+    data = section_at(read.member, at[0], side, to)
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
 
@@ -286,6 +317,10 @@ def _table(command: str, data: dict[str, Any], style: str, listed: bool) -> str:
 
 def main(arguments: Sequence[str] | None = None) -> None:
     """Run the command line and leave with its status."""
+    import warnings
+
+    # a number that runs out of range ends in words and status 3; nobody is to read of array divisions
+    warnings.simplefilter("ignore", RuntimeWarning)
     sys.exit(run(arguments))
 
 
@@ -322,10 +357,15 @@ def run(arguments: Sequence[str] | None = None) -> int:
         click.echo("fishbelly: stopped", err=True)
         return 130
     except BrokenPipeError:
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        _discard_stdout()
         return DONE
     except Exception as error:
         return _caught(error)
+
+
+def _discard_stdout() -> None:
+    """Send what is still buffered for standard output to nowhere, so that leaving does not fail on it again."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
 
 
 def _caught(error: Exception) -> int:
@@ -343,6 +383,10 @@ def _caught(error: Exception) -> int:
     if isinstance(error, CannotCompute):
         click.echo(f"fishbelly: {error}", err=True)
         return CANNOT
+    if isinstance(error, OSError) and error.filename is None:
+        click.echo(f"fishbelly: cannot write the result: {error.strerror}", err=True)
+        _discard_stdout()
+        return WRONG
     if os.environ.get("FISHBELLY_TRACE"):
         import traceback
 

@@ -42,7 +42,7 @@ def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tupl
     ValueFault
         With every fault of the file.
     """
-    rows, comma = _rows(path)
+    rows, comma = read_rows(path)
     if not rows:
         raise ValueFault(Ill(("file",), "", f"{as_written(path.name)} is empty"))
     line, header = rows[0]
@@ -70,8 +70,14 @@ def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tupl
     return [row[1] or 0.0 for row in found], [row[2] or 0.0 for row in found]
 
 
-def _rows(path: Path) -> tuple[list[Row], bool]:
-    """Read the rows that hold something, with their line numbers, and whether commas are decimal."""
+def read_rows(path: Path) -> tuple[list[Row], bool]:
+    """Read the rows of a csv file that hold something, with their line numbers, and whether commas are decimal.
+
+    Raises
+    ------
+    ValueFault
+        Where the file is not there or is no text.
+    """
     if path.suffix.lower() in (".xlsx", ".xlsm", ".xls", ".ods"):
         raise ValueFault(
             Ill(

@@ -47,7 +47,7 @@ def deflect_table(data: Row, style: str, listed: bool = False) -> str:
     if len(data["combinations"]) > 1:
         lines += [*_headed(grids.summary(data), style), ""]
     for k, combination in enumerate(data["combinations"]):
-        lines += _combination(combination, data["length"], style, listed, explained=k == 0)
+        lines += _combination(combination, data["length"], style, listed, data["combinations"][:k])
     if data.get("notes"):
         lines.append("Notes")
         for note in data["notes"]:
@@ -56,14 +56,15 @@ def deflect_table(data: Row, style: str, listed: bool = False) -> str:
     return "\n".join([*lines, LINE]) + "\n"
 
 
-def _combination(c: Row, length: float, style: str, listed: bool, explained: bool) -> list[str]:
+def _combination(c: Row, length: float, style: str, listed: bool, earlier: Sequence[Row]) -> list[str]:
+    explained = not earlier
     noise = grids.noise_of(c, length)
     purpose = " (for strength)" if c.get("for") == "strength" else ""
     heading = paragraph(f"Combination {c['name']}{purpose}")
     lines = [*heading, "-" * max(map(shown_width, heading)), ""]
     lines += [*_answer(c, noise, style), ""]
     tables = [
-        *grids.checks(c),
+        *(_without(grid, "source") for grid in grids.checks(c)),
         grids.supports(c, noise),
         None,
         grids.spans(c, noise),
@@ -75,9 +76,19 @@ def _combination(c: Row, length: float, style: str, listed: bool, explained: boo
             lines += [*_extremes(c, noise, style), ""]
         elif grid.count:
             lines += [*_headed(grid if explained else replace(grid, note=""), style), ""]
+            if grid.title.startswith("Limits of deflection"):
+                lines += _sources(c, earlier)
     if c.get("cross_check") is not None:
         lines += [*_second_method(c["cross_check"], noise, style), ""]
     return [*lines, *_stations(c, noise, style, listed), ""]
+
+
+def _sources(c: Row, earlier: Sequence[Row]) -> list[str]:
+    """Say where published limits stand, with what is to be known about them, at their first check."""
+    said = {check["limit"] for other in earlier for check in other["checks"]}
+    new = [check for check in c["checks"] if check.get("source") and check["limit"] not in said]
+    lines = [line for k in new for line in paragraph(f"{k['limit']}: {k['source']}", "    ", "      ")]
+    return ["  Published limits:", *lines, ""] if lines else []
 
 
 def _headed(grid: Grid, style: str) -> list[str]:

@@ -134,7 +134,7 @@ class Frame:
 
 
 def atoms(member: Member) -> tuple[Atom, ...]:
-    """Return the groups of loads that act together, in the order of the member's cases."""
+    """Return the groups of loads that act together, in the order of the member's cases; at least one."""
     found: dict[Atom, None] = {}
     for load in member.loads:
         for atom in _atoms_of(member, load):
@@ -142,7 +142,7 @@ def atoms(member: Member) -> tuple[Atom, ...]:
     for support in member.supports:
         if support.sinks:
             found.setdefault(Atom(support.case))
-    return tuple(found)
+    return tuple(found) or (Atom("nothing"),)
 
 
 def _atoms_of(member: Member, load: Load) -> list[Atom]:

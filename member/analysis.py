@@ -81,6 +81,7 @@ class Analysis:
     profile: Profile
     _responses: dict[object, Response] = field(default_factory=dict, repr=False)
     _moduli: dict[ModuliKey, Moduli] = field(default_factory=dict, repr=False)
+    _combined: dict[tuple[object, ...], Combined] = field(default_factory=dict, repr=False)
 
     @classmethod
     def of(cls, member: Member, more: Iterable[float] = ()) -> Analysis:
@@ -178,7 +179,13 @@ class Analysis:
         return tuple(found)
 
     def combine(self, combination: Combination, band: str = "nominal") -> Combined:
-        """Response of a combination, bearings that cannot pull lifted off where they would."""
+        """Response of a combination, bearings that cannot pull lifted off where they would; computed once."""
+        key = (tuple(combination.factors.items()), tuple(combination.sustained.items()), combination.name, band)
+        if key not in self._combined:
+            self._combined[key] = self._combine(combination, band)
+        return self._combined[key]
+
+    def _combine(self, combination: Combination, band: str) -> Combined:
         shares = self.shares(combination, band)
         patterns = self._patterns(combination)
         if any(s.only_up for s in self.member.supports):

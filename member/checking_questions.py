@@ -51,12 +51,14 @@ def _limit(draft: Draft, limit: Limit, path: Path, spans: tuple[int | str, ...] 
     if len(given) != 1 and not alone:
         found = " and ".join(f"`{k}`" for k in given)
         yield Problem(path, "one of `span_over`, `absolute` and `slope`", found)
-    for key in ("span_over", "absolute", "slope", "cantilever_over"):
+    for key in ("span_over", "absolute", "slope", "cantilever_over", "cap"):
         value = getattr(limit, key)
         if value is not None and value <= 0.0:
             yield Problem((*path, key), "a number above 0", f"{value:g}")
     if limit.cantilever_over is not None and ("absolute" in given or "slope" in given):
         yield Problem((*path, "cantilever_over"), "", "it goes with `span_over` only")
+    if limit.cap is not None and limit.span_over is None and limit.cantilever_over is None:
+        yield Problem((*path, "cap"), "", "it goes with `span_over` or `cantilever_over` only")
     yield from one_of(limit.of, ("down", "up", "across", "resultant"), (*path, "of"))
     if limit.at is not None:
         if limit.span_over is not None or limit.cantilever_over is not None:
@@ -78,5 +80,10 @@ def _spans(limit: Limit, path: Path, spans: tuple[int | str, ...]) -> Iterator[P
         if span not in spans:
             shown = f'"{span}"' if isinstance(span, str) else str(span)
             yield Problem((*path, "span"), f"a span of this member ({known})", shown)
+    only_overhangs = limit.cantilever_over is not None and limit.span_over is None
+    if only_overhangs and spans and not {"left", "right"} & set(limit.spans or spans):
+        yield Problem(
+            (*path, "cantilever_over"), "an overhang, or `span_over` beside it", "spans between supports only"
+        )
     if not spans and limit.at is None and (limit.span_over is not None or limit.cantilever_over is not None):
         yield Problem(path, "supports that hold down, for a limit on spans", "none")

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import product
 
 import numpy as np
@@ -28,7 +29,8 @@ MOST_PATTERNS = 12
 class Check:
     """A limit or strength in one combination.
 
-    `allowed` and `found` in m, rad or Pa; `span` numbers it, or names an overhang; `at` is the place [m].
+    `allowed` and `found` in m, rad or Pa; `span` numbers it, or names an overhang; `at` is the place [m];
+    `source` says where a published limit stands.
     """
 
     limit: str
@@ -39,6 +41,7 @@ class Check:
     kind: str
     part: str | None = None
     z: float | None = None
+    source: str = ""
 
     @property
     def used(self) -> float:
@@ -53,10 +56,14 @@ class Check:
 
 @dataclass(frozen=True, eq=False)
 class Fields:
-    """Deflection (2, J + 1, K, n) and rotation of a combination: everything but patterns, then each pattern."""
+    """Deflection (2, J + 1, K, n) and rotation of a combination: everything but patterns, then each pattern.
+
+    `spans`: the spans and overhangs in this combination.
+    """
 
     deflection: Array
     rotation: Array
+    spans: tuple[Span, ...]
 
 
 def relative(analysis: Analysis, field: Array, span: Span) -> Array:
@@ -111,8 +118,10 @@ def check_limit(analysis: Analysis, limit: Limit, fields: Fields) -> Check | Non
     start = 0 if limit.start is None else panels.border(limit.start)
     end = panels.count if limit.end is None else panels.border(limit.end)
     worst: Check | None = None
-    for span in spans(analysis.member):
-        if limit.spans is not None and span.label not in limit.spans:
+    for span in fields.spans:
+        if limit.spans is not None and not span.answers(limit.spans):
+            continue
+        if not span.overhang and _for_overhangs(limit):
             continue
         first, stop = max(start, panels.border(span.start)), min(end, panels.border(span.end))
         if first >= stop:
@@ -120,7 +129,12 @@ def check_limit(analysis: Analysis, limit: Limit, fields: Fields) -> Check | Non
         found = _over_span(analysis, limit, fields, span, first, stop)
         if worst is None or found.used > worst.used:
             worst = found
-    return worst
+    return worst if worst is None else replace(worst, source=limit.source)
+
+
+def _for_overhangs(limit: Limit) -> bool:
+    """Whether a limit speaks of overhangs only."""
+    return limit.span_over is None and limit.absolute is None and limit.slope is None
 
 
 def _over_span(analysis: Analysis, limit: Limit, fields: Fields, span: Span, first: int, stop: int) -> Check:
@@ -172,10 +186,11 @@ def allowed(limit: Limit, span: Span) -> float:
     """Allowed deflection of a span [m]: a cantilever's length counts twice unless `cantilever_over` is given."""
     if limit.absolute is not None:
         return limit.absolute
+    most = math.inf if limit.cap is None else limit.cap
     if span.overhang and limit.cantilever_over is not None:
-        return span.length / limit.cantilever_over
+        return min(span.length / limit.cantilever_over, most)
     assert limit.span_over is not None
-    return (2.0 if span.overhang else 1.0) * span.length / limit.span_over
+    return min((2.0 if span.overhang else 1.0) * span.length / limit.span_over, most)
 
 
 def _at_station(analysis: Analysis, limit: Limit, fields: Fields) -> Check:
@@ -201,7 +216,7 @@ def _at_station(analysis: Analysis, limit: Limit, fields: Fields) -> Check:
     else:
         found = _worst_resultant(down, across)
     assert limit.absolute is not None
-    return Check(limit.name, None, limit.absolute, found, x, "deflection")
+    return Check(limit.name, None, limit.absolute, found, x, "deflection", source=limit.source)
 
 
 def _worst(values: Array) -> float:
@@ -245,6 +260,6 @@ def _entries(stress: PartStress, strength: Strength) -> list[Check]:
             Check(name, None, strength.compression, max(-p.value, 0.0), p.at, "compression", stress.part, p.z)
         )
     if strength.shear is not None and stress.shear is not None:
-        value, at = stress.shear
-        entries.append(Check(name, None, strength.shear, value, at, "shear", stress.part))
+        s = stress.shear
+        entries.append(Check(name, None, strength.shear, s.value, s.at, "shear", stress.part, s.z))
     return entries

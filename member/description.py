@@ -300,6 +300,10 @@ class Limit:
         Only these spans, numbered from 1; overhangs are "left" and "right".
     cantilever_over : float, optional
         For an overhang: allowed is its own length over this number.
+    cap : float, optional
+        Beside `span_over` or `cantilever_over`: never more than this is allowed [m].
+    source : str
+        Where the limit is published, and what to know about it; empty for one's own.
     """
 
     name: str
@@ -314,6 +318,8 @@ class Limit:
     end: float | None = None
     spans: tuple[int | str, ...] | None = None
     cantilever_over: float | None = None
+    cap: float | None = None
+    source: str = ""
 
 
 @dataclass(frozen=True, eq=False)

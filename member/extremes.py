@@ -12,6 +12,10 @@ from fishbelly.member.panels import Panels
 Array = NDArray[np.float64]
 
 
+LEVEL = 1e-12
+"""Values closer than this share of the field's largest are one: where they are level the leftmost place is given."""
+
+
 @dataclass(frozen=True, eq=False)
 class Extreme:
     """A largest value, where it is [m], and which pattern loads are on there (shape (J,))."""
@@ -63,8 +67,19 @@ def largest(panels: Panels, field: Array, first: int = 0, stop: int | None = Non
             break
         found.append(_in_panel(panels, stack, first + int(k), envelope[k], points[:, k]))
         best = max(best, found[-1].value)
-    equal = [e for e in found if e.value >= best - 1e-12 * abs(best)]
-    return min(equal, key=lambda e: e.at)
+    equal = [e for e in found if e.value >= best - LEVEL * abs(best)]
+    return _leftmost(panels, min(equal, key=lambda e: e.at), envelope, points, first)
+
+
+def _leftmost(panels: Panels, found: Extreme, envelope: Array, points: Array, first: int) -> Extreme:
+    """Where a field is level at its largest value, the first point of it that is."""
+    size = np.abs(points).max()
+    k, j = np.unravel_index(int(np.argmax(envelope >= found.value - LEVEL * size)), envelope.shape)
+    s = float(np.concatenate(([-1.0], panels.rule.points, [1.0]))[j])
+    at = float(panels.place(np.array(first + k), np.array(s)))
+    if envelope[k, j] < found.value - LEVEL * size or at >= found.at:
+        return found
+    return Extreme(found.value, at, points[1:, k, j] > 0.0)
 
 
 def _in_panel(panels: Panels, stack: Array, k: int, envelope: Array, points: Array) -> Extreme:

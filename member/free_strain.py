@@ -74,7 +74,8 @@ def free_plane(profile: Profile, load: Load, group: Group, x: Array, short: Modu
         if load.strain is not None:
             e[k] = -load.strain
         elif load.force is not None:
-            stiff = group.modulus(short.E)[k] * group.composition.moments.area[k]
+            # the strain it is fixed with; over a run-in the force it passes on grows with the modulus that works
+            stiff = short.E[group.placed.index[k]] * group.composition.moments.area[k]
             e[k] = -load.force / np.where(stiff > 0.0, stiff, np.inf)
     if not (np.any(e) or np.any(a)):
         return None

@@ -114,9 +114,10 @@ class Geometry:
             return opening.level
         side = "left" if opening.at >= self.member.length else "right"
         parts, _, _ = self.present(opening.at, side)
-        for i in parts:
-            if self.member.parts[i].name in opening.of and not self.member.parts[i].cuts:
-                outline = self._stand(parts, np.array([opening.at]), side)[1][i]
+        there = {self.member.parts[i].name: i for i in parts if not self.member.parts[i].cuts}
+        for name in opening.of:
+            if name in there:
+                outline = self._stand(parts, np.array([opening.at]), side)[1][there[name]]
                 return float(Bounds.of(outline).middle_z[0])
         raise ValueError(f"the opening at {opening.at:g} m cuts no part that is there")
 
@@ -197,8 +198,10 @@ class Geometry:
         if notch.of not in names:
             return []
         target = names.index(notch.of)
-        box = Bounds.of(outlines[adding[target]])
-        depth = notch_depth(notch, x, side)
+        outline, depth = outlines[adding[target]], notch_depth(notch, x, side)
+        if self.member.part(notch.of).pair and notch.side in ("left", "right"):
+            return self._notched_pair(outline, depth, notch.side, target, k >= 0)
+        box = Bounds.of(outline)
         edges = [box.left - 1.0, box.bottom - 1.0, box.right + 1.0, box.top + 1.0]
         if notch.side == "bottom":
             edges[3] = box.bottom + depth
@@ -209,6 +212,16 @@ class Geometry:
         else:
             edges[0] = box.right - depth
         return [Cut(_box_outline(*edges), (target,), k >= 0)]
+
+    def _notched_pair(self, outline: Outline, depth: Array, face: str, target: int, mass: bool) -> list[Cut]:
+        """A notch from the side in a pair: cut from the first copy, and mirrored from the second."""
+        edges, loops = outline.bulge.size // 2, outline.loops[: len(outline.loops) // 2]
+        first = Bounds.of(Outline(outline.y[:, :edges], outline.z[:, :edges], outline.bulge[:edges], loops))
+        left, right = (
+            (first.left - 1e-3, first.left + depth) if face == "left" else (first.right - depth, first.right + 1e-3)
+        )
+        cut = _box_outline(left, first.bottom - 1.0, right, first.top + 1.0)
+        return [Cut(cut, (target,), mass), Cut(cut.mirrored(Bounds.of(outline).middle_y), (target,), mass)]
 
     def _opening(
         self, k: int, names: list[str], outlines: dict[int, Outline], adding: tuple[int, ...], x: Array

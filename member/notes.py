@@ -13,6 +13,7 @@ from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
 from fishbelly.member.shortcuts import shortcuts
 from fishbelly.member.spans import spans
+from fishbelly.sections.composition import Composition
 from fishbelly.sections.touching import touching_groups
 
 Array = NDArray[np.float64]
@@ -48,10 +49,23 @@ def _overlaps(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
                 yield Note(f"{b.name} displaces {a.name} where they overlap")
 
 
+def _copies(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    for group in analysis.profile.groups:
+        for i, index in enumerate(group.placed.index):
+            part = analysis.member.parts[index]
+            if part.pair and Composition((group.composition.outlines[i],)).overlaps_itself:
+                yield Note(f"the two copies of {part.name} overlap; what they share counts once")
+
+
+def _camber(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    member = analysis.member
+    if isinstance(member.camber, float) and any(v.net for v in member.limits):
+        if any(s.overhang for s in spans(member)):
+            yield Note("camber is a parabola over each span; overhangs are taken to have none")
+
+
 def _overlap_area(section: Any, i: int, j: int) -> bool:
     """Whether two outlines share area at some station, or only come close."""
-    from fishbelly.sections.composition import Composition
-
     pair = Composition((section.outlines[i], section.outlines[j]))
     lost = pair.gross.area[0] - pair.moments.area[0]
     return bool(np.any(lost > 1e-9 * pair.gross.area[0]))
@@ -226,7 +240,7 @@ def _large(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
 def _lifted(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
     for c in combinations:
         for name in c.get("lifted", ()):
-            yield Note(f"{name} lifts off in {c['name']}")
+            yield Note(f"{name} lifts off in {c['name']}; it ends no span there")
 
 
 def _verdict(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
@@ -247,6 +261,7 @@ def _tiny(value: float) -> str:
 NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _cases,
     _overlaps,
+    _copies,
     _apart,
     _moduli_apart,
     _lasting,
@@ -255,6 +270,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _deep,
     _thrust,
     _cantilevers,
+    _camber,
     _openings,
     _large,
     _lifted,

@@ -62,6 +62,9 @@ class Group:
             s = stiffness
             stiffness = SectionStiffness(s.EA, -s.z_c, s.y_c, s.EI_z, s.EI_y, -s.EI_yz)
         E, G = self.modulus(moduli.E), self.modulus(moduli.G)
+        if not np.all(moduli.G[list(self.placed.index)] > 0.0):
+            # without a shear modulus only shear stresses are wanted, and stiffness shares them by E
+            G = E
         return shear_stiffness(section.levels, E, G, stiffness, self.over_opening)
 
     @cached_property

@@ -14,6 +14,7 @@ from fishbelly.member.checks import Check, Fields, applies, check_limit, check_s
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import Extreme, largest, values_at
+from fishbelly.member.faults import CannotCompute
 from fishbelly.member.moduli import has_band
 from fishbelly.member.notes import notes
 from fishbelly.member.panels import Panels
@@ -51,6 +52,7 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
     """
     wanted = None if at is None else [float(x) for x in at]
     analysis = Analysis.of(member, wanted or ())
+    _in_range(analysis)
     combinations = [_combination(analysis, c, wanted) for c in map(analysis.combine, member.combinations)]
     return {
         "title": member.title,
@@ -68,6 +70,15 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
     }
 
 
+def _in_range(analysis: Analysis) -> None:
+    """See that the numbers of the job can be computed with at all."""
+    for combination in analysis.member.combinations:
+        total = analysis.combine(combination).total
+        with np.errstate(all="ignore"):
+            if not np.all(np.isfinite([np.square(np.abs(f).max(initial=0.0)) for f in (total.M, total.deflection)])):
+                raise CannotCompute(f"the numbers of combination {combination.name} pass what a computer can hold")
+
+
 def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | None) -> Data:
     loading = loadings(analysis, combined)
     p = pieces(analysis, loading)
@@ -82,7 +93,7 @@ def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | N
         "shear": _shears(analysis, p),
         "supports": _supports(analysis, combined, p),
         "ends": _ends(analysis, p, apexes),
-        "spans": _spans(analysis, p),
+        "spans": _spans(analysis, combined, p),
         "checks": [_check(c) for c in checks],
         "stress": [_stress(s) for s in stresses],
         "joints": [],
@@ -142,8 +153,9 @@ def _moments(analysis: Analysis, p: Pieces) -> Data:
 
 
 def _shears(analysis: Analysis, p: Pieces) -> Data:
-    high, low, _ = _both(analysis.profile.panels, p.V)
-    return {"max": {"value": high.value, "at": high.at}, "min": {"value": -low.value, "at": low.at}}
+    high, low, size = _both(analysis.profile.panels, p.V)
+    largest_v, smallest_v = (0.0 if abs(v) <= 1e-12 * size else v for v in (high.value, -low.value))
+    return {"max": {"value": largest_v, "at": high.at}, "min": {"value": smallest_v, "at": low.at}}
 
 
 def _supports(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
@@ -188,15 +200,16 @@ def _ends(analysis: Analysis, p: Pieces, apexes: Apexes) -> Data:
     return result
 
 
-def _spans(analysis: Analysis, p: Pieces) -> list[Data]:
+def _spans(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
     panels = analysis.profile.panels
     rows = []
-    for span in spans(analysis.member):
+    nothing = 1e-12 * float(np.abs(p.deflection[0].sum(axis=0)).max()) + analysis.round_off(combined.total)
+    for span in spans(analysis.member, combined.lifted):
         field = relative(analysis, p.deflection[0], span)
         first, stop = panels.border(span.start), panels.border(span.end)
         both = [(s, largest(panels, s * field, first, stop)) for s in (1.0, -1.0)]
         sign, found = max(both, key=lambda b: b[1].value)
-        value = sign * found.value
+        value = sign * found.value if found.value > nothing else 0.0
         rows.append(
             {
                 "from": span.start,
@@ -204,14 +217,14 @@ def _spans(analysis: Analysis, p: Pieces) -> list[Data]:
                 "span": span.label,
                 "deflection": value + 0.0,
                 "at": found.at,
-                "ratio": span.length / abs(value) if found.value > 1e-15 * span.length else None,
+                "ratio": span.length / abs(value) if value else None,
             }
         )
     return rows
 
 
 def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequence[PartStress]) -> list[Check]:
-    fields = Fields(p.deflection, p.rotation[0:2])
+    fields = Fields(p.deflection, p.rotation[0:2], spans(analysis.member, combined.lifted))
     found = []
     for limit in analysis.member.limits:
         if applies(limit, combined.combination):
@@ -237,6 +250,8 @@ def _check(c: Check) -> Data:
     }
     if c.part is not None:
         data |= {"part": c.part, "z": c.z}
+    if c.source:
+        data["source"] = c.source
     return data
 
 
@@ -245,7 +260,7 @@ def _stress(s: PartStress) -> Data:
     for name, peak in (("max", s.highest), ("min", s.lowest)):
         data[name] = None if peak is None else {"value": peak.value, "at": peak.at, "z": peak.z}
     if s.shear is not None:
-        data["shear"] = {"value": s.shear[0], "at": s.shear[1]}
+        data["shear"] = {"value": s.shear.value, "at": s.shear.at, "z": s.shear.z}
     return data
 
 

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import breakpoints, merged
 from fishbelly.member.description import Member
-from fishbelly.member.faults import CannotCompute
+from fishbelly.member.faults import CannotCompute, NoStiffness
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.loads import Temperature
 from fishbelly.member.moduli import Moduli, moduli
@@ -90,6 +90,7 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
             x = grid.x[which] if varying else grid.x[which][:, POINTS // 2 : POINTS // 2 + 1]
             new = group_places(geometry, x, 0.5 * (batch.a + batch.b)[which], rows)
             row[which] = rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
+            _stands(new, short)
             if varying:
                 worst = _tails(geometry, new, short, rows, which.size, with_shear, batch.at(which))
                 done[which] = worst["done"].astype(bool)
@@ -125,6 +126,14 @@ def _first(member: Member, breaks: Array) -> _Batch:
         anchor[varying & (np.abs(a - place) < close)] = -1
         anchor[varying & (np.abs(b - place) < close)] = 1
     return _Batch(a, b, anchor, varying, np.zeros(a.size, dtype=np.int_))
+
+
+def _stands(new: list[Group], short: Moduli) -> None:
+    """See that something is left of the section everywhere."""
+    for g in new:
+        gone = np.flatnonzero(~(g.stiffness(short).EA > 0.0))
+        if gone.size:
+            raise NoStiffness(float(g.placed.x[gone[0]]), "nothing is left of the section there")
 
 
 def _tails(
@@ -227,7 +236,9 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
     )
 
 
-def _assembled(geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int) -> Profile:
+def _assembled(
+    geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int
+) -> Profile:
     a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
     anchor = np.concatenate([k.anchor for k, _ in kept])
     row = np.concatenate([r for _, r in kept]).astype(np.intp)

@@ -247,5 +247,6 @@ def _plane(ground: Ground, load: Temperature | Shrinkage | Prestress, k: int) ->
         return zero - load.strain, zero
     if load.strain is not None:
         return zero - load.strain, zero
-    stiff = ground.short[k] * s.run_in[k] * s.works[k, 0]
+    # the strain it is fixed with, before any run-in
+    stiff = ground.short[k] * s.works[k, 0]
     return -(load.force or 0.0) / np.where(stiff > 0.0, stiff, np.inf), zero

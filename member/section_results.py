@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.description import Material, Member
+from fishbelly.member.faults import NoStiffness
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.moduli import Moduli, moduli
 from fishbelly.member.places import default_places, two_sided
@@ -47,7 +48,10 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
         side = "right"
     group = group_places(Geometry(member), np.array([[x]]), np.array([x]), 0, side)[0]
     short = moduli(member)
-    s = group.stiffness(short)
+    with np.errstate(all="ignore"):
+        s = group.stiffness(short)
+        if not s.EA[0] > 0.0:
+            raise NoStiffness(x, "nothing is left of the section there")
     data: Data = {
         "title": member.title,
         "units": "SI: m, N, Pa, rad, kg",
@@ -192,10 +196,11 @@ def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
         if not which.size:
             continue
         for g in group_places(geometry, x[which][:, None], x[which], 0, side):
-            s = g.stiffness(short)
-            ga = g.shear(short).GA if _has_shear(member, g) else np.full(g.rows.size, np.nan)
-            mass = np.full(g.rows.size, np.nan)
-            if density is not None:
-                mass = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total().area
-            table[:, which[g.rows]] = (s.EA, s.EI_y, s.EI_z, s.EI_yz, ga, s.z_c, s.y_c, mass)
+            with np.errstate(all="ignore"):
+                s = g.stiffness(short)
+                ga = g.shear(short).GA if _has_shear(member, g) else np.full(g.rows.size, np.nan)
+                mass = np.full(g.rows.size, np.nan)
+                if density is not None:
+                    mass = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total().area
+                table[:, which[g.rows]] = (s.EA, s.EI_y, s.EI_z, s.EI_yz, ga, s.z_c, s.y_c, mass)
     return table

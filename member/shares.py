@@ -41,5 +41,5 @@ def bending_shares(member: Member, x: Array, sides: list[str]) -> Array:
             z_c = g.stiffness(moduli(member)).z_c
             own = stiff * (m.zz + m.area * (np.nan_to_num(m.z) - z_c) ** 2)
             total = own.sum(axis=0)
-            result[np.ix_(list(g.placed.index), which[g.rows])] = own / np.where(total > 0.0, total, 1.0)
+            result[np.ix_(np.array(g.placed.index), which[g.rows])] = own / np.where(total > 0.0, total, 1.0)
     return result

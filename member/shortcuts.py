@@ -22,13 +22,15 @@ def shortcuts(analysis: Analysis, combinations: Sequence[dict[str, Any]]) -> Ite
     stiffness = analysis.profile.stiffness(analysis.moduli(ModuliKey()))
     row, panels = analysis.profile.row, analysis.profile.panels
     EI = stiffness.EI_y[row]
+    ends = np.concatenate([e.ravel() for e in panels.ends(EI)])
+    softest, stiffest = min(float(EI.min()), float(ends.min())), max(float(EI.max()), float(ends.max()))
     exact = combinations[0]["deflection"]["down"]
-    if exact is None or EI.max() < EI.min() * (1.0 + 1e-9):
+    if exact is None or stiffest < softest * (1.0 + 1e-9):
         return
     length = float((panels.stretch @ panels.rule.weights).sum())
     mean = float(((EI * panels.stretch) @ panels.rule.weights).sum()) / length
     found = []
-    for name, value in (("softest", float(EI.min())), ("mean", mean), ("stiffest", float(EI.max()))):
+    for name, value in (("softest", softest), ("mean", mean), ("stiffest", stiffest)):
         if value < POINTED * mean:
             continue
         w = _prismatic(analysis, value)

@@ -82,6 +82,8 @@ def _columns(analysis: Analysis, p: Pieces, x: Array, sides: Sequence[str]) -> d
     stack = np.stack(list(fields.values()))
     left, right = (values_at(panels, stack, x, side) for side in ("left", "right"))
     chosen = np.where(np.array(sides) == "left", left, right)
+    # what is 1e-14 of the largest of its kind is round-off where nothing should be
+    chosen = np.where(np.abs(chosen) <= 1e-14 * np.abs(stack).max(axis=(1, 2))[:, None], 0.0, chosen)
     return dict(zip(fields, chosen, strict=True))
 
 

@@ -39,17 +39,26 @@ class StressPeak:
 
 
 @dataclass(frozen=True)
+class ShearPeak:
+    """A largest shear stress without sign [Pa], where along the member [m] and at which height [m]."""
+
+    value: float
+    at: float
+    z: float | None
+
+
+@dataclass(frozen=True)
 class PartStress:
     """Stress of one part over the member; None where the part has no stress of that sign to speak of.
 
     `highest`: largest stress, tension positive; `lowest`: smallest; `shear`: largest shear stress by level
-    cuts, a value without sign and its place [Pa], [m].
+    cuts, without sign; its level is None where both planes have shear.
     """
 
     part: str
     highest: StressPeak | None
     lowest: StressPeak | None
-    shear: tuple[float, float] | None = None
+    shear: ShearPeak | None = None
 
 
 def loadings(analysis: Analysis, combined: Combined) -> tuple[Loading, ...]:
@@ -91,7 +100,8 @@ def part_stresses(analysis: Analysis, loading: Sequence[Loading]) -> tuple[PartS
     """
     member = analysis.member
     found = []
-    with_shear = member.shear
+    asked = any(m.strength is not None and m.strength.shear is not None for m in member.materials)
+    with_shear = member.shear or asked
     for index, part in enumerate(member.parts):
         if part.cuts or part.material is None:
             continue
@@ -229,7 +239,7 @@ def _runs(there: NDArray[np.bool_]) -> list[tuple[int, int]]:
     return [(int(a), int(b)) for a, b in zip(edges[::2], edges[1::2], strict=True)]
 
 
-def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple[float, float] | None:
+def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> ShearPeak | None:
     """Largest shear stress of a part by level cuts; with shear in both planes, their largest ones as vectors.
 
     With pattern loads in both planes the largest of each plane, wherever it is, are put together: never too low.
@@ -239,11 +249,23 @@ def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> t
     tops = [max((largest(panels, s * field) for s in (1.0, -1.0)), key=lambda e: e.value) for field in fields]
     top = max(tops, key=lambda e: e.value)
     if len(fields) == 1 or min(e.value for e in tops) <= 1e-12 * top.value:
-        return top.value, top.at
+        return ShearPeak(top.value, top.at, _shear_level(analysis, loading, index, top.at) if top is tops[0] else None)
     if fields[0].shape[0] > 1:
-        return float(np.hypot(tops[0].value, tops[1].value)), top.at
+        return ShearPeak(float(np.hypot(tops[0].value, tops[1].value)), top.at, None)
     both = largest(panels, fields[0] ** 2 + fields[1] ** 2)
-    return float(np.sqrt(max(both.value, 0.0))), both.at
+    return ShearPeak(float(np.sqrt(max(both.value, 0.0))), both.at, None)
+
+
+def _shear_level(analysis: Analysis, loading: Sequence[Loading], index: int, at: float) -> float:
+    """Level of the largest shear stress of a part in the vertical plane, at the sampled place nearest to x [m]."""
+    profile = analysis.profile
+    level = np.full(profile.rows, np.nan)
+    for g in profile.groups:
+        if index in g.placed.index:
+            level[g.rows] = g.shear(loading[0].moduli).level[g.placed.index.index(index)]
+    places, levels = profile.panels.x.ravel(), level[profile.row].ravel()
+    known = np.flatnonzero(~np.isnan(levels))
+    return float(levels[known[int(np.argmin(np.abs(places[known] - at)))]])
 
 
 def _shear_field(analysis: Analysis, loading: Sequence[Loading], index: int, plane: int) -> Array:

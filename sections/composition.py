@@ -153,7 +153,7 @@ class Composition:
     @cached_property
     def extent(self) -> tuple[Array, Array]:
         """Lowest and highest level of what works of each part, each shape (P, S) [m]; NaN where nothing is left."""
-        if not self.cuts:
+        if not self.cuts and not self.relations:
             return np.array([b.bottom for b in self.boxes]), np.array([b.top for b in self.boxes])
         there = self.levels.widths.width.max(axis=3) > 1e-12 * np.abs(self.levels.edges).max()
         low = np.where(there, self.levels.edges[:, :-1], np.inf).min(axis=2)

@@ -33,22 +33,22 @@ def fibres(section: Composition, part: int, planar: bool) -> tuple[Array, Array]
         low, high = section.extent[0][part], section.extent[1][part]
         middle = section.boxes[part].middle_y
         return np.stack((middle, middle)), np.stack((low, high))
-    if not is_cut(section, part):
+    if not loses(section, part):
         outline = section.outlines[part]
         return outline.y.T, outline.z.T
     return _on_levels(section, part)
 
 
-def is_cut(section: Composition, part: int) -> bool:
-    """Whether anything is cut from a part."""
-    return any(part in targets for _, targets, _ in section.cuts)
+def loses(section: Composition, part: int) -> bool:
+    """Whether anything is cut from a part or displaced by a later one."""
+    return section.overlaps_itself or any(i == part for i, _ in section.relations)
 
 
 def arc_data(section: Composition, part: int) -> Array:
     """Centre y, z, radius, start angle and angle turned through of the arcs that bow outwards, shape (5, E, S)."""
     outline = section.outlines[part]
     curved = np.flatnonzero(outline.bulge > 0.0)
-    if not curved.size or is_cut(section, part):
+    if not curved.size or loses(section, part):
         return np.empty((5, 0, outline.y.shape[0]))
     return np.stack([np.asarray(v).T for v in arcs(outline, curved)])
 

@@ -16,17 +16,31 @@ from numpy.typing import NDArray
 
 from fishbelly.sections.chebyshev import rule
 from fishbelly.sections.composition import Levels
+from fishbelly.sections.level_cuts import Widths
 from fishbelly.sections.stiffness import SectionStiffness
 
 Array = NDArray[np.float64]
 
+_FIELDS = ("width", "first", "second", "left", "right")
+
 
 @dataclass(frozen=True, eq=False)
 class ShearStiffness:
-    """Shear stiffness [N], shape (S,), and largest shear stress of each part for V = 1 N [1/m2], shape (P, S)."""
+    """Shear stiffness, and the largest shear stress of each part.
+
+    Parameters
+    ----------
+    GA : ndarray, shape (S,)
+        Shear stiffness [N].
+    peak : ndarray, shape (P, S)
+        Largest shear stress of each part for V = 1 N [1/m2].
+    level : ndarray, shape (P, S)
+        Where it is [m].
+    """
 
     GA: Array
     peak: Array
+    level: Array
 
 
 def shear_stiffness(
@@ -80,10 +94,40 @@ def _energy(levels: Levels, G: Array, flow: Array, ga: Array) -> ShearStiffness:
     there = ga > 0.0
     angle = np.where(there, flow, 0.0) / np.where(there, ga, 1.0)
     flexibility = (angle * flow * levels.stretch * rule(ga.shape[-1]).weights).sum(axis=(1, 2))
-    met = levels.widths.width > 0.0
-    peak = np.where(met, np.abs(angle), 0.0).max(axis=(2, 3)) * G
+    steepest, at = _steepest(flow, ga, levels)
+    met = levels.widths.width.max(axis=3) > 0.0
+    per_slab = np.where(met, steepest, -1.0)
+    slab = per_slab.argmax(axis=2)
+    peak = np.maximum(np.take_along_axis(per_slab, slab[..., None], axis=2)[..., 0], 0.0) * G
+    level = np.take_along_axis(np.broadcast_to(at, per_slab.shape), slab[..., None], axis=2)[..., 0]
     with np.errstate(divide="ignore"):
-        return ShearStiffness(1.0 / flexibility, peak)
+        return ShearStiffness(1.0 / flexibility, peak, level)
+
+
+_FINE = 81
+"""Places in a slab at which the shear angle is looked at; a parabola through the three largest finds the peak."""
+
+
+def _steepest(flow: Array, ga: Array, levels: Levels) -> tuple[Array, Array]:
+    """Largest shear angle in every slab, its ends counted, and its level, shape (S, K)."""
+    n = flow.shape[-1]
+    s = np.linspace(-1.0, 1.0, _FINE)
+    basis = rule(n).basis(s)
+    q, b = np.abs(flow @ basis.T), ga @ basis.T
+    # where the section runs out to a point neither flow nor width has digits left
+    wide = b > 1e-9 * ga.max(axis=(1, 2), keepdims=True)
+    angle = np.where(wide, q, 0.0) / np.where(wide, b, 1.0)
+    k = angle.argmax(axis=-1)
+    inner = np.clip(k, 1, _FINE - 2)[..., None] + np.array([-1, 0, 1])
+    left, middle, right = np.moveaxis(np.take_along_axis(angle, inner, axis=-1), -1, 0)
+    bend = 2.0 * middle - left - right
+    turns = (bend > 0.0) & (k > 0) & (k < _FINE - 1)
+    safe = np.where(turns, bend, 1.0)
+    top = np.where(turns, middle + (right - left) ** 2 / (8.0 * safe), angle.max(axis=-1))
+    step = np.where(turns, (right - left) / (2.0 * safe), 0.0)
+    place = s[k] + step * (s[1] - s[0])
+    z = np.einsum("skn,skn->sk", levels.z, rule(n).basis(place.ravel()).reshape(*place.shape, n))
+    return top, z
 
 
 def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
@@ -99,10 +143,10 @@ def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
 def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStiffness:
     """Sections in pieces one above the other, station by station."""
     stations = gaps.shape[0]
-    total, peak = np.empty(stations), np.zeros(G.shape)
+    total, peak, level = np.empty(stations), np.zeros(G.shape), np.zeros(G.shape)
     for s in range(stations):
         group = np.cumsum(gaps[s])
-        ei, ga, peaks = [], [], []
+        ei, ga, peaks, places = [], [], [], []
         for g in np.unique(group):
             slabs = np.flatnonzero((group == g) & ~gaps[s])
             piece = _piece(levels, E[:, s], G[:, s], s, slabs)
@@ -110,6 +154,7 @@ def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], shar
                 ei.append(piece[0])
                 ga.append(piece[1])
                 peaks.append(piece[2])
+                places.append(piece[3])
         stiff, soft = np.array(ei), np.array(ga)
         if share_angle:
             total[s] = soft.sum()
@@ -117,15 +162,21 @@ def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], shar
         else:
             total[s] = stiff.sum() ** 2 / (stiff**2 / soft).sum()
             shares = stiff / stiff.sum()
-        peak[:, s] = (np.array(peaks) * shares[:, None]).max(axis=0)
-    return ShearStiffness(total, peak)
+        each = np.array(peaks) * shares[:, None]
+        highest = each.argmax(axis=0)
+        peak[:, s] = each.max(axis=0)
+        level[:, s] = np.array(places)[highest, np.arange(G.shape[0])]
+    return ShearStiffness(total, peak, level)
 
 
-def _piece(levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]) -> tuple[float, float, Array] | None:
-    """EI, GA and peaks of the slabs of one piece, bending about its own centroid."""
+def _piece(
+    levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]
+) -> tuple[float, float, Array, Array] | None:
+    """EI, GA, peaks and their levels of the slabs of one piece, bending about its own centroid."""
     r = rule(levels.z.shape[-1])
     z, stretch = levels.z[s, slabs], levels.stretch[s, slabs]
-    width = levels.widths.width[:, s, slabs]
+    w = levels.widths
+    width = w.width[:, s, slabs]
     ea, ga = np.tensordot(E, width, 1), np.tensordot(G, width, 1)
     axial = float((ea * stretch @ r.weights).sum())
     if axial <= 0.0:
@@ -133,8 +184,6 @@ def _piece(levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]) 
     centre = float((ea * z * stretch @ r.weights).sum()) / axial
     ei = float((ea * (z - centre) ** 2 * stretch @ r.weights).sum())
     flow = _from_bottom((ea * (z - centre) * stretch / ei)[None])[0]
-    there = ga > 0.0
-    angle = np.where(there, flow, 0.0) / np.where(there, ga, 1.0)
-    energy = float((angle * flow * stretch @ r.weights).sum())
-    peaks = np.where(width > 0.0, np.abs(angle), 0.0).max(axis=(1, 2)) * G
-    return ei, 1.0 / energy, peaks
+    part = Levels(np.empty(0), z[None], stretch[None], Widths(*(getattr(w, f)[:, s : s + 1, slabs] for f in _FIELDS)))
+    found = _energy(part, G[:, None], flow[None], ga[None])
+    return ei, float(found.GA[0]), found.peak[:, 0], found.level[:, 0]

@@ -23,13 +23,16 @@ class Written:
 
 def written(figure: Any) -> list[Written]:
     """Draw a figure and gather every text that came out."""
-    from fishbelly.cli.figures.paper import pens
     from matplotlib.backends.backend_agg import FigureCanvasAgg, RendererAgg
+
+    from fishbelly.cli.figures.paper import pens
 
     found: list[Written] = []
 
     class Recorder(RendererAgg):
-        def draw_text(self, gc: Any, x: float, y: float, s: str, prop: Any, angle: float, *args: Any, **more: Any) -> None:
+        def draw_text(
+            self, gc: Any, x: float, y: float, s: str, prop: Any, angle: float, *args: Any, **more: Any
+        ) -> None:
             mtext = more.get("mtext") or (args[-1] if args else None)
             box = mtext.get_window_extent(self)
             found.append(Written(s, box.x0, box.y0, box.x1, box.y1, prop.get_size_in_points()))
@@ -46,9 +49,7 @@ def faults(figure: Any) -> list[str]:
     """Say what is wrong with the letters of a figure; empty where nothing is."""
     texts = written(figure)
     width, height = figure.bbox.size
-    said = [
-        f"cut: {t.text!r}" for t in texts if t.left < 0 or t.bottom < 0 or t.right > width or t.top > height
-    ]
+    said = [f"cut: {t.text!r}" for t in texts if t.left < 0 or t.bottom < 0 or t.right > width or t.top > height]
     said += [f"small: {t.text!r} {t.size:g} pt" for t in texts if t.size < LEAST]
     for k, a in enumerate(texts):
         for b in texts[:k]:

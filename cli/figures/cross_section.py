@@ -10,7 +10,19 @@ import numpy as np
 from fishbelly.cli.figures import section_dimensions
 from fishbelly.cli.figures.letters import apart, shortened
 from fishbelly.cli.figures.looks import material_look, number_of
-from fishbelly.cli.figures.paper import GREY, LINE, MEDIUM, RIGHT, THIN, WIDTH, bare, own_panel, pens, size_of
+from fishbelly.cli.figures.paper import (
+    GREY,
+    LINE,
+    MEDIUM,
+    RIGHT,
+    THIN,
+    WIDTH,
+    bare,
+    own_panel,
+    pens,
+    size_of,
+    text_width,
+)
 from fishbelly.cli.figures.section_shapes import part_shapes
 from fishbelly.cli.figures.sheet_of_section import Sheet, scales
 from fishbelly.cli.figures.supports import white
@@ -87,7 +99,8 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         ax.set_ylim(0.0, height)
         side = f", {data['side']} side" if _at_break(job.member, data["x"]) else ""
         head = f"Cross-section at x = {place(data['x'], job.member.length, job.style)}{side}, {paper.words}"
-        head = shortened(f"{head}, hatched by material", width)
+        fuller = f"{head}, hatched by material"
+        head = fuller if text_width(fuller) <= width else shortened(head, width)
         ax.text(0.0, height + 0.8, head, ha="left", va="bottom", clip_on=False)
         for index, shape in shapes:
             _surface(ax, paper, shape, job.member, index)
@@ -115,7 +128,9 @@ def _surface(ax: Any, paper: Sheet, shape: Any, member: Member, index: int) -> N
         path = Path(np.concatenate(points), np.concatenate(codes))
         thin = min(np.ptp(points[0], axis=0)) < 0.5
         drawn = {"facecolor": "0.3"} if thin else look.drawn
-        ax.add_patch(PathPatch(path, edgecolor="black", lw=THIN if thin else MEDIUM, zorder=3, joinstyle="miter", **drawn))
+        ax.add_patch(
+            PathPatch(path, edgecolor="black", lw=THIN if thin else MEDIUM, zorder=3, joinstyle="miter", **drawn)
+        )
 
 
 def _numbers(ax: Any, paper: Sheet, member: Member, shapes: Sequence[tuple[int, Any]]) -> None:
@@ -136,7 +151,7 @@ def _numbers(ax: Any, paper: Sheet, member: Member, shapes: Sequence[tuple[int, 
 
 
 def _foot(paper: Sheet, shape: Any) -> tuple[float, float]:
-    """Return the point of a part that its number points at [mm]: in its leftmost piece, off the middle of its height."""
+    """Return the point of a part that its number points at [mm]: in its leftmost piece, off mid-height."""
     from shapely.geometry import LineString
 
     piece = min(getattr(shape, "geoms", (shape,)), key=lambda g: (round(g.bounds[0], 9), -g.area))
@@ -182,9 +197,7 @@ def _axes(ax: Any, paper: Sheet, data: Mapping[str, Any]) -> None:
         ax.text(right + 1.4, float(height), text, ha="left", va="center", zorder=8, bbox=white())
 
 
-def _across_box(
-    paper: Sheet, y: float, z: float, direction: float, box: tuple[float, float, float, float]
-) -> Any:
+def _across_box(paper: Sheet, y: float, z: float, direction: float, box: tuple[float, float, float, float]) -> Any:
     """Ends of a line through the centroid where it leaves a box [mm]."""
     step = np.array([np.cos(direction) * paper.by_y, np.sin(direction) * paper.by_z])
     step /= np.hypot(*step)
@@ -206,4 +219,3 @@ def _cross(ax: Any, y: float, z: float) -> None:
     ax.add_patch(Circle((y, z), 1.3, facecolor="white", edgecolor="black", lw=MEDIUM, zorder=7))
     for start in (0.0, 180.0):
         ax.add_patch(Wedge((y, z), 1.3, start, start + 90.0, facecolor="black", edgecolor="none", zorder=7.1))
-

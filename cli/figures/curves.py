@@ -44,9 +44,9 @@ def section_places(member: Member) -> Array:
 class Curves:
     """A solved member whose fields are drawn."""
 
-    def __init__(self, member: Member) -> None:
+    def __init__(self, member: Member, analysis: Analysis | None = None) -> None:
         self.member = member
-        self.analysis = Analysis.of(member)
+        self.analysis = Analysis.of(member) if analysis is None else analysis
         self.places = response_places(member)
         self._results: dict[str, Result] = {}
 

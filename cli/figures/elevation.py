@@ -13,9 +13,23 @@ from fishbelly.cli.figures import parts as parts_
 from fishbelly.cli.figures import supports as supports_
 from fishbelly.cli.figures.letters import lines_of
 from fishbelly.cli.figures.loads import LoadPlan
-from fishbelly.cli.figures.paper import GREY, LEFT, LINE, MEDIUM, RIGHT, THIN, WIDTH, bare, own_panel, pens, size_of, text_width
+from fishbelly.cli.figures.paper import (
+    GREY,
+    LEFT,
+    LINE,
+    MEDIUM,
+    RIGHT,
+    THIN,
+    WIDTH,
+    bare,
+    own_panel,
+    pens,
+    size_of,
+    text_width,
+)
 from fishbelly.cli.figures.scene import MARGIN, Scene, scale_words, scene
 from fishbelly.cli.figures.side_view import SideView, side_view
+from fishbelly.cli.figures.supports import Names, names_band
 from fishbelly.cli.figures.ticks import place
 from fishbelly.member.spans import spans
 
@@ -33,8 +47,8 @@ class Layout:
     dimension: float
     chain: float
     tags: float
-    stations: float
-    names: float
+    stations: Names
+    names: Names
     symbols: float
     loads: LoadPlan
     body: float = BODY
@@ -42,7 +56,7 @@ class Layout:
     @property
     def below(self) -> float:
         """Everything under the member."""
-        bands = (self.dimension, self.chain, self.tags, self.stations, self.names, self.symbols)
+        bands = (self.dimension, self.chain, self.tags, self.stations.height, self.names.height, self.symbols)
         return LINE * len(self.words) + sum(bands)
 
     @property
@@ -57,23 +71,33 @@ class Layout:
 
 
 def layout(
-    view: SideView, style: str, cases: Collection[str] | None = None, with_loads: bool = True, width: float | None = None
+    view: SideView,
+    style: str,
+    cases: Collection[str] | None = None,
+    with_loads: bool = True,
+    width: float | None = None,
 ) -> Layout:
     """Choose the bands of an elevation; `width` is that of the axes [mm]."""
     member = view.member
     across = (WIDTH - LEFT - RIGHT) if width is None else width
     planned = loads_.plan(member, style, across - 2.0 * MARGIN, cases if with_loads else ())
-    words = lines_of(loads_.words_of(planned), across, _MOST_WORDS)
     looked = scene(None, view, style, across, 0.0, BODY)
     tags = parts_.tags(looked)
+    stations = names_band(looked, [(s.at, s.name, "") for s in sorted(member.stations, key=lambda s: s.at)])
+    names = names_band(looked, supports_.names(looked))
+    said = [loads_.words_of(planned)]
+    for band, there, what in ((stations, member.stations, "named stations"), (names, member.supports, "supports")):
+        if there and not band.places:
+            said.append(f"{len(there)} {what}, too many to be named here")
+    words = lines_of("; ".join(filter(None, said)), across, _MOST_WORDS)
     rows = 1 + max((t.row for t in tags if not t.inside), default=-1)
     return Layout(
         words=tuple(words),
         dimension=_DIMENSION,
         chain=_DIMENSION if len(spans(member)) > 1 else 0.0,
         tags=rows * parts_.TAGS,
-        stations=LINE + 0.4 if member.stations else 0.0,
-        names=LINE + 0.4 if member.supports else 0.0,
+        stations=stations,
+        names=names,
         symbols=supports_.HEIGHT if member.supports else 1.0,
         loads=planned,
         body=float(np.ptp(looked.up(np.array(view.levels)))),
@@ -139,10 +163,11 @@ def _below(drawn: Scene, bands: Layout) -> None:
         y += bands.chain
     y += bands.tags
     parts_.draw_tags(drawn, parts_.tags(drawn), y)
-    if bands.stations:
-        _stations(drawn, y + 0.5 * LINE)
-        y += bands.stations
-    supports_.draw(drawn, y + 0.5 * LINE)
+    y += bands.stations.height
+    _stations(drawn, bands.stations, y)
+    y += bands.names.height
+    supports_.write_names(drawn, bands.names, y)
+    supports_.draw(drawn)
 
 
 def _dimension(drawn: Scene, start: float, end: float, height: float, text: str) -> None:
@@ -159,7 +184,7 @@ def _length(drawn: Scene, height: float) -> None:
     """Draw the length, with thin ticks where the cross-section breaks."""
     _dimension(drawn, 0.0, drawn.length, height, place(drawn.length, drawn.length, drawn.style))
     for x in drawn.view.breaks:
-        drawn.ax.plot([x, x], [height - 0.9, height + 0.9], color="black", lw=THIN)
+        drawn.ax.plot([x, x], [height - 0.9, height + 0.5], color="black", lw=THIN)
 
 
 def _chain(drawn: Scene, height: float) -> None:
@@ -173,13 +198,9 @@ def _chain(drawn: Scene, height: float) -> None:
         _dimension(drawn, piece.start, piece.end, height, text if fits else "")
 
 
-def _stations(drawn: Scene, height: float) -> None:
+def _stations(drawn: Scene, names: Names, height: float) -> None:
     """Mark named stations by an upright line down to their names."""
-    stations = sorted(drawn.view.member.stations, key=lambda s: s.at)
-    placed = supports_.placed_in_row(drawn, [(s.at, s.name, "") for s in stations])
-    for s in stations:
+    for s in drawn.view.member.stations:
         top = drawn.edges(s.at)[1] + 1.0
-        drawn.ax.plot([s.at, s.at], [height + 0.6 * LINE, top], color=GREY, lw=MEDIUM, ls=(0, (6, 1.5, 1, 1.5)), zorder=6)
-    for middle, text in placed:
-        drawn.write(middle, height, text, style="italic", bbox=supports_.white())
-
+        drawn.ax.plot([s.at, s.at], [height - 0.2, top], color=GREY, lw=MEDIUM, ls=(0, (6, 1.5, 1, 1.5)), zorder=6)
+    supports_.write_names(drawn, names, height, style="italic")

@@ -34,14 +34,24 @@ def frame(ax: Any, member: Member, style: str, labelled: bool) -> None:
         ax.axvline(at, color=GREY, lw=THIN, ls=(0, (1, 2)), zorder=1)
 
 
-def upright(ax: Any, values: Array, words: str, what: str, style: str, down: bool = False, from_zero: bool = True) -> None:
-    """Set up the vertical axis for values [SI]; `down`: positive downwards."""
+def upright(
+    ax: Any,
+    values: Array,
+    words: str,
+    what: str,
+    style: str,
+    down: bool = False,
+    from_zero: bool = True,
+    least: float = 1.0,
+) -> None:
+    """Set up the vertical axis for values [SI]; `down`: positive downwards; `least`: reach where all are zero."""
     low, high = float(np.nanmin(values)), float(np.nanmax(values))
     if from_zero:
         low, high = min(low, 0.0), max(high, 0.0)
     size = max(abs(low), abs(high))
+    low, high = (0.0 if abs(v) < 1e-9 * size else v for v in (low, high))
     if high - low <= 1e-9 * size:
-        low, high = (low - 0.05 * size, high + 0.05 * size) if size else (-1.0, 1.0)
+        low, high = (low - 0.05 * size, high + 0.05 * size) if size else (-least, least)
     room = _ROOM * (high - low)
     low, high = low - (0.0 if from_zero and low == 0.0 else room), high + (0.0 if from_zero and high == 0.0 else room)
     pad = 0.03 * (high - low)
@@ -62,9 +72,12 @@ def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, membe
     scale = max((abs(v) for v, _ in extremes), default=0.0)
     crowded: list[str] = []
     for number, at in extremes:
+        text = f"{exact(number, what, style, scale)} at {place(at, member.length, style)}"
+        if len(extremes) > 1 and not text.partition(" at ")[0].strip("-−0. ")[:1].isdigit():
+            # it would be written as zero
+            continue
         mm_x, mm_y = (at - x0) / (x1 - x0) * width, (number - y0) / (y1 - y0) * height
         ax.plot([at], [number], "o", ms=2.6, color="black", zorder=6, clip_on=False)
-        text = f"{exact(number, what, style, scale)} at {place(at, member.length, style)}"
         found = spots.find(text, float(mm_x), float(mm_y))
         if found is None:
             crowded.append(text)

@@ -93,6 +93,9 @@ def _reach(load: Distributed, member: Member, style: str, width: float) -> tuple
 
 def _block_words(load: Distributed, style: str) -> str:
     values = [v for _, v in load.stations]
+    if max(values) <= 0.0:
+        # the arrows show which way
+        values = [-v for v in values]
     low, high = min(values), max(values)
     text = value(high, "force per length", style)
     if high - low > 1e-9 * max(abs(low), abs(high)):
@@ -234,7 +237,10 @@ def _point_labels(scene: Scene, loads: Sequence[Point | Couple | Axial], top: fl
     kept = list(loads)
     for attempt in ("full", "value", "largest"):
         if attempt == "largest":
-            kept = [max((v for v in loads if type(v) is kind), key=lambda v: abs(v.value)) for kind in {type(v): 0 for v in loads}]
+            kept = [
+                max((v for v in loads if type(v) is kind), key=lambda v: abs(v.value))
+                for kind in {type(v): 0 for v in loads}
+            ]
         texts = [_point_words(v, scene.style, attempt == "full", attempt == "largest") for v in kept]
         wanted = [scene.mm(v.at) for v in kept]
         middles = apart(wanted, [text_width(t) for t in texts], 0.0, scene.width, 1.2)
@@ -242,7 +248,7 @@ def _point_labels(scene: Scene, loads: Sequence[Point | Couple | Axial], top: fl
             break
     else:
         return
-    for load, text, middle, at in zip(kept, texts, middles, wanted, strict=True):
+    for text, middle, at in zip(texts, middles, wanted, strict=True):
         reach = 0.5 * text_width(text) - 0.5
         scene.write(float(middle), top + 1.6 + 0.5 * LINE, text)
         if abs(float(middle) - at) > 0.3:
@@ -251,8 +257,7 @@ def _point_labels(scene: Scene, loads: Sequence[Point | Couple | Axial], top: fl
 
 def _point_words(load: Point | Couple | Axial, style: str, with_case: bool, largest: bool) -> str:
     what = "moment" if isinstance(load, Couple) else "force"
-    size = abs(load.value) if isinstance(load, (Couple, Axial)) else load.value
-    text = value(size, what, style)
+    text = value(abs(load.value), what, style)
     if isinstance(load, Point) and load.direction == "across":
         text += " across"
     if largest:
@@ -263,4 +268,3 @@ def _point_words(load: Point | Couple | Axial, style: str, with_case: bool, larg
 def words_of(planned: LoadPlan) -> str:
     """Say what acts besides what is drawn; empty where nothing does."""
     return f"Besides: {planned.words}" if planned.words else ""
-

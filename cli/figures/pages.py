@@ -17,7 +17,7 @@ from fishbelly.cli.figures import (
     stress_depth,
 )
 from fishbelly.cli.figures.curves import Curves, section_places
-from fishbelly.cli.figures.governing import governing_place, stress_bars
+from fishbelly.cli.figures.governing import bends_sideways, governing_place, stress_bars
 from fishbelly.cli.figures.letters import lines_of, one_line, shortened
 from fishbelly.cli.figures.paper import LEFT, LINE, RIGHT, WIDTH, page, panel, pens
 from fishbelly.cli.figures.section_shapes import part_shapes
@@ -62,7 +62,14 @@ class _Column:
         tall = self.y + _FOOT
         for k, line in enumerate(self.lines):
             weight = "bold" if k == 0 and self.titled else "normal"
-            figure.text(_SECTION_LEFT / WIDTH, 1.0 - (2.5 + (k + 0.5) * LINE) / tall, line, ha="left", va="center", weight=weight)
+            figure.text(
+                _SECTION_LEFT / WIDTH,
+                1.0 - (2.5 + (k + 0.5) * LINE) / tall,
+                line,
+                ha="left",
+                va="center",
+                weight=weight,
+            )
         figure.text(1.0 - RIGHT / WIDTH, 2.4 / tall, CAUTION, ha="right", va="center")
         return figure
 
@@ -177,7 +184,8 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
     factors = next(c.factors for c in member.combinations if c.name == name)
     cases = [case for case, factor in factors.items() if factor]
     x, why = governing_place(combination)
-    side, bars = stress_bars(curves.analysis, name, x)
+    sideways = bends_sideways(combination)
+    side, bars = stress_bars(curves.analysis, combination, x)
     section = section_at(member, x, side)
     with pens():
         column = _Column(member.title, _said(combination, factors, governs))
@@ -195,10 +203,12 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
         elevation.plot(job, cases, ax=panel(figure, LEFT, top, ACROSS, bands.height))
         for quantity, at in tops.items():
             ax = panel(figure, LEFT, at, ACROSS, heights[quantity])
-            fine = curves.along(combination, quantity)
-            response_lines.plot(job, combination, quantity, ax, quantity == "deflection", fine)
+            last = quantity == "deflection"
+            aside = curves.along(combination, "across") if last and sideways else None
+            response_lines.plot(job, combination, quantity, ax, last, curves.along(combination, quantity), aside)
         key.plot(job, panel(figure, LEFT, key_top, ACROSS, words))
-        row.draw(figure, bars, f"Stress there ({one_line(why)})")
+        where = " at mid-width" if sideways else ""
+        row.draw(figure, bars, f"Stress there{where} ({one_line(why)})")
         section_key.plot_materials(job, section, panel(figure, _SECTION_LEFT, materials_top, wide, materials))
     return figure
 
@@ -214,4 +224,3 @@ def _said(combination: Mapping[str, Any], factors: Mapping[str, float], governs:
     if combination.get("envelope"):
         text += "; lines and stress: all spans loaded, grey: every arrangement of pattern loads"
     return lines_of(text, WIDTH - 2.0 * _SECTION_LEFT, 2)
-

@@ -61,8 +61,11 @@ _PENS = {
     "pdf.fonttype": 42,
     "pdf.compression": 6,
 }
-_GROUPS = ("font.", "text.", "axes.", "figure.", "savefig.", "lines.", "patch.", "hatch.", "xtick.", "ytick.")
-_GROUPS += ("svg.", "pdf.", "path.", "agg.", "mathtext.", "image.", "markers.")
+_GROUPS = (
+    *("agg.", "axes.", "figure.", "font.", "hatch.", "image.", "lines.", "markers.", "mathtext."),
+    *("patch.", "path.", "pdf.", "savefig.", "svg.", "text.", "xtick.", "ytick."),
+)
+"""Settings that a user's own choice must not change."""
 
 
 @contextmanager
@@ -72,8 +75,8 @@ def pens() -> Iterator[None]:
 
     with warnings.catch_warnings():
         warnings.simplefilter("ignore")
-        own = {k: v for k, v in matplotlib.rcParamsDefault.items() if k.startswith(_GROUPS)}
-        context = matplotlib.rc_context({**own, **_PENS})
+        own: Any = {k: v for k, v in matplotlib.rcParamsDefault.items() if k.startswith(_GROUPS)}
+        context = matplotlib.rc_context(own | _PENS)
         context.__enter__()
     try:
         with warnings.catch_warnings():

@@ -1,4 +1,4 @@
-"""Parts in the elevation: surfaces with their hatch, hidden edges dashed, holes, and the numbers that name the parts."""
+"""Parts in the elevation: surfaces with their hatch, hidden edges dashed, holes, and numbers that name them."""
 
 from __future__ import annotations
 
@@ -11,7 +11,8 @@ from fishbelly.cli.figures.letters import Box, apart
 from fishbelly.cli.figures.looks import number_of, part_look
 from fishbelly.cli.figures.paper import GREY, LINE, MEDIUM, THIN, text_width
 from fishbelly.cli.figures.scene import Scene
-from fishbelly.cli.figures.side_view import Stretch
+from fishbelly.cli.figures.side_view import Hole, Stretch
+from fishbelly.member.loads import Axial, Couple
 
 Array = NDArray[np.float64]
 
@@ -50,7 +51,7 @@ def draw(scene: Scene) -> None:
         level = max(top_of[p] for p in hole.parts) + 0.001
         if hole.through:
             scene.ax.fill_between(x, low, high, facecolor="white", edgecolor="white", lw=0.2, zorder=level)
-        _hole_edges(scene, x, low, high, hole.through, level + 0.001)
+        _hole_edges(scene, hole, low, high, level + 0.001)
 
 
 def _surface(scene: Scene, run: list[Stretch], level: float) -> None:
@@ -71,14 +72,14 @@ def _surface(scene: Scene, run: list[Stretch], level: float) -> None:
         scene.ax.plot(closed_x, closed_z, color="black", lw=MEDIUM, ls=_DASHES, zorder=5.0)
 
 
-def _hole_edges(scene: Scene, x: Array, low: Array, high: Array, through: bool, level: float) -> None:
-    style = {"ls": "-", "zorder": level} if through else {"ls": _DASHES, "zorder": 5.0}
-    tiny = 1e-6 * scene.length
+def _hole_edges(scene: Scene, hole: Hole, low: Array, high: Array, level: float) -> None:
+    style = {"ls": "-", "zorder": level} if hole.seen else {"ls": _DASHES, "zorder": 5.0}
+    x, tiny = hole.x, 1e-6 * scene.length
     for edge in (low, high):
         scene.ax.plot(x, edge, color="black", lw=MEDIUM, **style)
-    holes = scene.view.holes
+    others = [h for h in scene.view.holes if h.key == hole.key]
     for k, end in ((0, -1), (-1, 0)):
-        joined = any(abs(float(h.x[end] - x[k])) < tiny and h.through == through for h in holes)
+        joined = any(abs(float(h.x[end] - x[k])) < tiny for h in others)
         if not joined and high[k] - low[k] > 0.05:
             scene.ax.plot([x[k], x[k]], [low[k], high[k]], color="black", lw=MEDIUM, **style)
 
@@ -88,6 +89,11 @@ def tags(scene: Scene) -> tuple[Tag, ...]:
     found: list[Tag] = []
     taken: list[Box] = [_around(scene, h.x, h.low, h.high) for h in scene.view.holes]
     taken += [Box(scene.mm(s.at) - 0.7, -1e3, scene.mm(s.at) + 0.7, 1e3) for s in scene.view.member.stations]
+    taken += [
+        Box(scene.mm(v.at) - 3.2, -1e3, scene.mm(v.at) + 3.2, 1e3)
+        for v in scene.view.member.loads
+        if isinstance(v, (Axial, Couple))
+    ]
     outside: list[int] = []
     for part in sorted({s.part for s in scene.view.stretches}):
         spot = _inside(scene, part, taken)

@@ -22,9 +22,10 @@ WORDS: Mapping[str, str] = {
     "moment": "M, drawn on the tension side, sagging positive",
     "shear": "V, positive where the part on the left pushes up",
     "slope": "slope, clockwise positive",
-    "deflection": "deflection, down positive and drawn downwards",
+    "deflection": "deflection, down positive, drawn downwards",
 }
-NEGLIGIBLE = 1e-9
+NEGLIGIBLE = 5e-4
+"""An extreme below this share of the other would be written as zero."""
 
 
 def plot(
@@ -34,6 +35,7 @@ def plot(
     ax: Any = None,
     labelled: bool = True,
     fine: tuple[Array, Array] | None = None,
+    across: tuple[Array, Array] | None = None,
 ) -> Any:
     """Draw one quantity of one combination.
 
@@ -51,39 +53,60 @@ def plot(
         Whether the horizontal axis has labels.
     fine : tuple of ndarray, optional
         Places [m] and values [SI] of the line, where it is known at more places than the stations.
+    across : tuple of ndarray, optional
+        Places [m] and deflection sideways [m], drawn dashed beside the deflection.
 
     Returns
     -------
     Axes
         In SI units; ticks in those of the job.
     """
-    key, what, down = QUANTITIES[quantity]
     with pens():
         if ax is None:
             ax = own_panel(26.0)
         stations = combination["stations"]
         x = np.array([s["x"] for s in stations])
+        key = QUANTITIES[quantity][0]
         y = np.array([np.nan if s[key] is None else s[key] for s in stations])
-        band = _band(combination, key)
-        places = x
-        if fine is not None:
-            x, y = fine
-        marks = _marks(combination, quantity, x, y)
-        every = np.concatenate((y, *(band or ()), [v for v, _ in marks]))
-        if not np.any(np.abs(np.nan_to_num(every)) > 0.0):
-            every = y = np.zeros(y.size)
-            marks = []
         lines.frame(ax, job.member, job.style, labelled)
-        lines.upright(ax, every, WORDS[quantity], what, job.style, down)
-        lines.zero(ax, job.member)
-        if band is not None:
-            ax.fill_between(places, *band, facecolor="0.88", edgecolor="0.4", lw=MEDIUM, ls="--", zorder=1.5)
-        else:
-            ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
-        ends_x, ends_y = _closed(x, y)
-        ax.plot(ends_x, ends_y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="round")
-        lines.mark(ax, ends_x, ends_y, marks, what, job.member, job.style)
+        _draw(ax, job, combination, quantity, fine or (x, y), across)
     return ax
+
+
+def _draw(
+    ax: Any,
+    job: Any,
+    combination: Mapping[str, Any],
+    quantity: str,
+    line: tuple[Array, Array],
+    across: tuple[Array, Array] | None,
+) -> None:
+    """Draw the line of a quantity with its band and its extremes."""
+    key, what, down = QUANTITIES[quantity]
+    (x, y), words = line, WORDS[quantity]
+    band = _band(combination, key)
+    marks = _marks(combination, quantity, x, y)
+    if across is not None:
+        words += "; dashed: across, towards +y positive"
+        side = combination["deflection"]["across"]
+        marks += [(float(side["value"]), float(side["at"]))]
+    every = np.concatenate((y, *(band or ()), [v for v, _ in marks]))
+    if not np.any(np.abs(np.nan_to_num(every)) > 0.0):
+        every = y = np.zeros(y.size)
+        marks = []
+    lines.upright(ax, every, words, what, job.style, down)
+    lines.zero(ax, job.member)
+    if band is not None:
+        places = np.array([s["x"] for s in combination["stations"]])
+        ax.fill_between(places, *band, facecolor="0.88", edgecolor="0.4", lw=MEDIUM, ls="--", zorder=1.5)
+    else:
+        ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
+    ends_x, ends_y = _closed(x, y)
+    ax.plot(ends_x, ends_y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="round")
+    if across is not None:
+        ax.plot(*across, color="black", lw=MEDIUM, ls=(0, (5, 2)), zorder=4)
+        ends_x, ends_y = np.concatenate((ends_x, across[0])), np.concatenate((ends_y, across[1]))
+    lines.mark(ax, ends_x, ends_y, marks, what, job.member, job.style)
 
 
 def _band(combination: Mapping[str, Any], key: str) -> tuple[Array, Array] | None:
@@ -111,9 +134,13 @@ def _marks(combination: Mapping[str, Any], quantity: str, x: Array, y: Array) ->
     else:
         if not np.any(np.isfinite(y)):
             return []
-        ends = [int(np.nanargmax(y)), int(np.nanargmin(y))]
+        tiny = 1e-6 * float(np.nanmax(y) - np.nanmin(y))
+        ends = [int(np.flatnonzero(y >= np.nanmax(y) - tiny)[0]), int(np.flatnonzero(y <= np.nanmin(y) + tiny)[0])]
         found = [{"value": float(y[k]), "at": float(x[k])} for k in ends]
     marks = [(float(f["value"]), float(f["at"])) for f in found if f is not None]
     top = max((abs(v) for v, _ in marks), default=0.0)
-    kept = [m for m in marks if abs(m[0]) > NEGLIGIBLE * top]
-    return list(dict.fromkeys(kept))
+    kept: list[Mark] = []
+    for m in marks:
+        if abs(m[0]) > NEGLIGIBLE * top and not any(abs(m[0] - k[0]) < 1e-6 * top for k in kept):
+            kept.append(m)
+    return kept

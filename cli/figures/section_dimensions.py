@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from typing import Any
 
@@ -31,7 +32,9 @@ def draw(ax: Any, paper: Sheet, shapes: Sequence[tuple[int, Any]], style: str) -
     _line(ax, (x0, 2.2), (x1, 2.2))
     for x in (x0, x1):
         ax.plot([x, x], [1.4, y0 - 1.0], color=GREY, lw=THIN)
-    ax.text(0.5 * (x0 + x1), 2.6 + 0.5 * LINE, size_words(right - left, style), ha="center", va="center", bbox=_ground())
+    ax.text(
+        0.5 * (x0 + x1), 2.6 + 0.5 * LINE, size_words(right - left, style), ha="center", va="center", bbox=_ground()
+    )
     _line(ax, (5.5, y0), (5.5, y1))
     for y in (y0, y1):
         ax.plot([4.7, x0 - 1.0], [y, y], color=GREY, lw=THIN, zorder=1)
@@ -66,10 +69,10 @@ def _chain(ax: Any, paper: Sheet, levels: list[float], style: str) -> None:
     if not 1 < links <= _MOST:
         return
     heights = [float(paper.up(v)) for v in levels]
-    texts = [size_words(b - a, style) for a, b in zip(levels[:-1], levels[1:], strict=True)]
+    texts = [size_words(b - a, style) for a, b in itertools.pairwise(levels)]
     widest = max(map(text_width, texts))
     x = paper.width - widest - 3.6
-    middles = [0.5 * (a + b) for a, b in zip(heights[:-1], heights[1:], strict=True)]
+    middles = [0.5 * (a + b) for a, b in itertools.pairwise(heights)]
     placed = apart(middles, [LINE] * links, 0.0, paper.height, 0.0)
     if placed is None:
         return

@@ -35,19 +35,26 @@ def _facts(data: Mapping[str, Any], style: str) -> str:
         f"EI_y {value(data['EI_y'], 'bending stiffness', style, 4)} about the horizontal axis y–y",
         f"EI_z {value(data['EI_z'], 'bending stiffness', style, 4)}",
     ]
-    principal = data.get("principal") or {}
-    angle = principal.get("angle")
-    big, small = principal.get("EI_1"), principal.get("EI_2")
-    if None not in (angle, big, small) and big - small > 1e-9 * big:
-        angle = abs(angle) if abs(abs(angle) - 0.5 * math.pi) < 1e-6 else angle
-        turned = value(angle, "angle", style, 3) if abs(angle) > 1e-6 else "0 deg"
-        words.append(f"principal axis 1 turned {turned} from y, EI_1 {value(big, 'bending stiffness', style, 4)}")
-        words.append(f"EI_2 {value(small, 'bending stiffness', style, 4)}")
-    unit = unit_label("length", style)  # type: ignore[arg-type]
+    words += _principal(data.get("principal") or {}, style)
+    unit = "inches" if style == "us" else unit_label("length", style)  # type: ignore[arg-type]
     to = data["transformed"]
     if len(to["n"]) > 1:
         words.append(f"n = E / E of {one_line(to['to'])}")
     return "; ".join([*words, f"dimensions in {unit}"])
+
+
+def _principal(axes: Mapping[str, Any], style: str) -> list[str]:
+    """Say how the principal axes lie and what they are worth; nothing where all axes are alike."""
+    big, small, angle = (axes.get(k) for k in ("EI_1", "EI_2", "angle"))
+    if big is None or small is None or angle is None or big - small <= 1e-9 * big:
+        return []
+    # upright is upright, whichever way it was turned
+    turn = abs(angle) if abs(abs(angle) - 0.5 * math.pi) < 1e-6 else angle
+    turned = value(turn, "angle", style, 3) if abs(turn) > 1e-6 else "0 deg"
+    return [
+        f"principal axis 1 turned {turned} from y, EI_1 {value(big, 'bending stiffness', style, 4)}",
+        f"EI_2 {value(small, 'bending stiffness', style, 4)}",
+    ]
 
 
 def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[tuple[str, str]]:
@@ -56,8 +63,7 @@ def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[tupl
     return [
         (
             name,
-            f"{one_line(name)}, E = {value(member.material(name).E, 'modulus', style, 4)}, "
-            f"n = {n[name]:.4g}",
+            f"{one_line(name)}, E = {value(member.material(name).E, 'modulus', style, 4)}, n = {n[name]:.4g}",
         )
         for name in n
     ]
@@ -70,7 +76,9 @@ def _parts(member: Member, shapes: Sequence[tuple[int, Any]], style: str) -> lis
         left, bottom, right, top = shape.bounds
         size = f"{size_words(right - left, style)} × {size_words(top - bottom, style)}"
         over = " over both" if part.pair else ""
-        found.append(f"{number_of(member, index)}  {one_line(part.name)}, {one_line(part.material or '')}, {size}{over}")
+        found.append(
+            f"{number_of(member, index)}  {one_line(part.name)}, {one_line(part.material or '')}, {size}{over}"
+        )
     return found
 
 
@@ -87,7 +95,8 @@ def height(job: Any, data: Mapping[str, Any], width: float) -> float:
     materials, parts = _materials(job.member, data, job.style), _parts(job.member, shapes, job.style)
     facts = lines_of(_facts(data, job.style), width, 5)
     rows = sum(
-        -(-len(texts) // _columns(texts, width, more)) for texts, more in (([m[1] for m in materials], 8.0), (parts, 3.0))
+        -(-len(texts) // _columns(texts, width, more))
+        for texts, more in (([m[1] for m in materials], 8.0), (parts, 3.0))
     )
     return len(facts) * LINE + rows * _ROW + 2.0 * _GAP
 

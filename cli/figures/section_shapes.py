@@ -54,7 +54,8 @@ def _polygon(outline: Outline) -> Any:
     from shapely.geometry import Polygon
     from shapely.ops import unary_union
 
-    outer, holes = [], []
+    outer: list[Any] = []
+    holes: list[Any] = []
     for first, stop in outline.loops:
         ring = _ring(outline, first, stop)
         y, z = ring[:, 0], ring[:, 1]

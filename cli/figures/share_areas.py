@@ -69,7 +69,27 @@ def _number(ax: Any, job: Any, k: int, x: Array, low: Array, high: Array) -> Non
     text = number_of(job.member, k)
     half = (0.5 * text_width(text) + 1.0) / width * (ax.get_xlim()[1] - ax.get_xlim()[0])
     best: tuple[float, float, float] | None = None
-    for share in (0.5, 0.45, 0.55, 0.4, 0.6, 0.35, 0.65, 0.3, 0.7, 0.25, 0.75, 0.2, 0.8, 0.15, 0.85, 0.1, 0.9, 0.06, 0.94):
+    for share in (
+        0.5,
+        0.45,
+        0.55,
+        0.4,
+        0.6,
+        0.35,
+        0.65,
+        0.3,
+        0.7,
+        0.25,
+        0.75,
+        0.2,
+        0.8,
+        0.15,
+        0.85,
+        0.1,
+        0.9,
+        0.06,
+        0.94,
+    ):
         at = share * job.member.length
         edges = np.array([at - half, at, at + half])
         window = (x >= edges[0]) & (x <= edges[2])

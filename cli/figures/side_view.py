@@ -52,13 +52,29 @@ class Stretch:
 
 @dataclass(frozen=True, eq=False)
 class Hole:
-    """An opening or a part that takes away, as seen: edges along x [m], what it cuts, whether one sees through."""
+    """An opening, a part that takes away or a notch from the side, between two breaks.
 
+    Parameters
+    ----------
+    key : str
+        What it is, the same on both sides of a break.
+    x, low, high : ndarray, shape (S,)
+        Places and the levels of its edges [m].
+    parts : tuple of int
+        What it cuts.
+    through : bool
+        Whether one sees through.
+    seen : bool
+        Whether its edges are seen; else they are hidden.
+    """
+
+    key: str
     x: Array
     low: Array
     high: Array
     parts: tuple[int, ...]
     through: bool
+    seen: bool
 
 
 @dataclass(frozen=True, eq=False)
@@ -209,7 +225,7 @@ def _openings(
         if rows:
             bottom = np.clip(level - half, low[rows].min(axis=0), high[rows].max(axis=0))
             top = np.clip(level + half, low[rows].min(axis=0), high[rows].max(axis=0))
-            found.append(Hole(x, bottom, top, tuple(placed.index[r] for r in rows), True))
+            found.append(Hole(f"opening {k}", x, bottom, top, tuple(placed.index[r] for r in rows), True, True))
     return found
 
 
@@ -219,10 +235,10 @@ def _cuts(
     """Parts that take away, and notches from the left or the right; what runs into an edge is seen there already."""
     found = []
     names = {member.parts[i].name for i in placed.index}
-    taking = sum(bool(names.intersection(member.parts[i].cuts)) for i in there[0])
-    notches = [member.notches[k].side for k in there[1] if member.notches[k].of in names]
-    for k, cut in enumerate(placed.cuts[: taking + len(notches)]):
-        if not cut.mass or (k >= taking and notches[k - taking] in ("top", "bottom")):
+    kinds = [("part", i) for i in there[0] if names.intersection(member.parts[i].cuts)]
+    kinds += [(member.notches[k].side, k) for k in there[1] if member.notches[k].of in names]
+    for (kind, number), cut in zip(kinds, placed.cuts, strict=False):
+        if not cut.mass or kind in ("top", "bottom"):
             continue
         box = Bounds.of(cut.outline)
         rows = list(cut.targets)
@@ -231,5 +247,6 @@ def _cuts(
         boxes = [Bounds.of(placed.outlines[r]) for r in rows]
         through = all(np.all((box.left <= b.left + 1e-9) & (box.right >= b.right - 1e-9)) for b in boxes)
         if np.all(top - bottom > 1e-9 * (high[rows].max() - low[rows].min())) or not through:
-            found.append(Hole(x, bottom, top, tuple(placed.index[r] for r in rows), through))
+            parts = tuple(placed.index[r] for r in rows)
+            found.append(Hole(f"{kind} {number}", x, bottom, top, parts, through, through or kind == "left"))
     return found

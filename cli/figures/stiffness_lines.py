@@ -52,7 +52,7 @@ def plot(job: Any, data: Mapping[str, Any], quantity: str, ax: Any = None, label
         if level:
             y = _clean(y, job)
         lines.frame(ax, job.member, job.style, labelled)
-        lines.upright(ax, y, words, what, job.style, from_zero=not level)
+        lines.upright(ax, y, words, what, job.style, from_zero=not level, least=0.005 * job.member.length)
         if not level:
             ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
         ax.plot(x, y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="miter")

@@ -130,4 +130,3 @@ def _values(ax: Any, bars: Sequence[Bar], style: str) -> None:
             near = edge - sign * (text_width(text) + 0.4)
             ax.plot([x, near], [z, float(middle)], color=GREY, lw=THIN, transform=_paper(ax), zorder=5)
             ax.text(edge, float(middle), text, transform=_paper(ax), ha="right" if sign > 0 else "left", va="center")
-

@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import math
+from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
 
-from fishbelly.cli.figures.letters import apart, shortened
+from fishbelly.cli.figures.letters import ELLIPSIS, apart, shortened
 from fishbelly.cli.figures.paper import LINE, MEDIUM, THIN, text_width
 from fishbelly.cli.figures.scene import Scene
 from fishbelly.cli.figures.ticks import value
@@ -15,6 +16,8 @@ from fishbelly.member.description import Support
 
 HEIGHT = 6.0
 """Room that symbols take under the member [mm]."""
+_UPRIGHT = 24.0
+"""Most length of a label written upright [mm]."""
 _OVER = 7
 """Drawing order: over parts and holes."""
 
@@ -32,14 +35,13 @@ def kind_of(support: Support) -> str:
     return "along" if support.along > 0.0 else "across"
 
 
-def draw(scene: Scene, label_height: float) -> None:
-    """Draw all supports and hinges, names with their middles at a height [mm] (several at one place: one name)."""
+def draw(scene: Scene) -> None:
+    """Draw all supports and hinges."""
     for support in scene.view.member.supports:
         _symbol(scene, support)
     for hinge in scene.view.member.hinges:
         low, high = scene.edges(hinge.at)
         _circle(scene, scene.mm(hinge.at), 0.5 * (low + high), 0.9, zorder=_OVER + 1)
-    _names(scene, label_height)
 
 
 def _symbol(scene: Scene, support: Support) -> None:
@@ -101,7 +103,9 @@ def _circle(scene: Scene, x: float, height: float, radius: float, zorder: float 
 
     width = 2.0 * radius * scene.per_mm
     scene.ax.add_patch(
-        Ellipse((scene.x(x), height), width, 2.0 * radius, facecolor="white", edgecolor="black", lw=MEDIUM, zorder=zorder)
+        Ellipse(
+            (scene.x(x), height), width, 2.0 * radius, facecolor="white", edgecolor="black", lw=MEDIUM, zorder=zorder
+        )
     )
 
 
@@ -148,33 +152,57 @@ def names(scene: Scene) -> list[tuple[float, str, str]]:
     return [(at, "; ".join(words), "".join(f", {m}" for m in more)) for at, (words, more) in found.items()]
 
 
-def _names(scene: Scene, height: float) -> None:
-    wanted = names(scene)
-    for place, text in placed_in_row(scene, wanted):
-        scene.write(place, height, text, bbox=white())
+@dataclass(frozen=True)
+class Names:
+    """Labels in a band under the member: middles [mm] and texts, level or upright, and the height they take [mm]."""
+
+    places: tuple[tuple[float, str], ...]
+    upright: bool
+    height: float
 
 
-def placed_in_row(scene: Scene, wanted: list[tuple[float, str, str]], most: float = 60.0) -> list[tuple[float, str]]:
-    """Labels of places [m] moved apart in one row: middles [mm] and texts, cut shorter until they fit.
+def names_band(scene: Scene, wanted: list[tuple[float, str, str]]) -> Names:
+    """Move labels of places [m] apart in one row; upright where they would be cut too short, none where even so.
 
-    Of each label the first text is cut, the second is kept.
+    Parameters
+    ----------
+    scene : Scene
+        Where.
+    wanted : list of (float, str, str)
+        Place, a name that may be cut, and what is said after it and is not cut.
     """
     if not wanted:
-        return []
+        return Names((), False, 0.0)
     places = [scene.mm(at) for at, _, _ in wanted]
-    room = scene.width + LINE
-    for limit in (most, 40.0, 28.0, 20.0, 15.0, 12.0, 9.5, 7.5, 6.0):
+    for limit in (60.0, 40.0, 28.0, 20.0, 15.0, 12.0, 9.5, 7.5):
         texts = [_brief(text, limit, more) for _, text, more in wanted]
-        middles = apart(places, [text_width(t) for t in texts], -0.5 * LINE, room - 0.5 * LINE, 1.2)
+        cut = any(ELLIPSIS in t and ELLIPSIS not in w for t, (_, w, _) in zip(texts, wanted, strict=True))
+        if limit < 20.0 and cut:
+            break
+        middles = apart(places, [text_width(t) for t in texts], -0.5 * LINE, scene.width + 0.5 * LINE, 1.2)
         if middles is not None:
-            return [(float(m), t) for m, t in zip(middles, texts, strict=True) if t]
-    return []
+            return Names(tuple((float(m), t) for m, t in zip(middles, texts, strict=True)), False, LINE + 0.4)
+    texts = [shortened(text + more, _UPRIGHT) for _, text, more in wanted]
+    middles = apart(places, [LINE] * len(texts), 0.0, scene.width, 0.1)
+    if middles is None:
+        return Names((), True, 0.0)
+    tall = max(map(text_width, texts)) + 1.0
+    return Names(tuple((float(m), t) for m, t in zip(middles, texts, strict=True)), True, tall)
+
+
+def write_names(scene: Scene, chosen: Names, top: float, **more: Any) -> None:
+    """Write labels in their band, whose upper edge is at a height [mm]."""
+    for place, text in chosen.places:
+        if chosen.upright:
+            scene.write(place, top - 0.4, text, rotation=90, va="top", bbox=white(), **more)
+        else:
+            scene.write(place, top - 0.5 * chosen.height, text, bbox=white(), **more)
 
 
 def _brief(text: str, limit: float, more: str) -> str:
-    if text_width(text) > limit and text.startswith("support "):
+    if text_width(text + more) > limit and text.startswith("support "):
         text = text.removeprefix("support ")
-    return shortened(text, limit - (text_width(more) if limit > 12.0 else 0.0)) + (more if limit > 12.0 else "")
+    return shortened(text, max(limit - text_width(more), 5.0)) + more
 
 
 def white() -> dict[str, Any]:

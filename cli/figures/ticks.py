@@ -1,4 +1,4 @@
-"""Axes in the units of the job: round steps, as few digits as tell the ticks apart, powers of a thousand beside the unit."""
+"""Axes in the units of the job: round steps, few digits, powers of a thousand beside the unit."""
 
 from __future__ import annotations
 
@@ -75,7 +75,7 @@ def ticks(low: float, high: float, what: str, style: str, most: int = 4) -> Tick
     scaled, step = shown / 10.0**power, step / 10.0**power
     if power:
         unit = f"10{str(power).translate(_RAISED)} {unit}".rstrip()
-    return Ticks(shown * size, [number(v, step, style) for v in scaled], unit)
+    return Ticks(np.asarray(shown * size, dtype=float), [number(v, step, style) for v in scaled], unit)
 
 
 def number(value: float, step: float, style: str) -> str:
@@ -99,7 +99,7 @@ def places(length: float, style: str, most: int) -> Ticks:
         return ticks(0.0, length, "position", style, most)
     inches = 3 if feet / most <= 0.25 else 6
     at = np.arange(0, int(feet * 12 / inches + 1e-6) + 1) * inches
-    return Ticks(at * _INCH, [f"{v // 12}'-{v % 12}\"" for v in at], "ft-in")
+    return Ticks(np.asarray(at * _INCH, dtype=float), [f"{v // 12}'-{v % 12}\"" for v in at], "ft-in")
 
 
 def place(x: float, length: float, style: str) -> str:

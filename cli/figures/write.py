@@ -13,7 +13,7 @@ COMMANDS = ("section", "stiffness", "deflect")
 """Commands whose results are drawn."""
 
 
-def write_figure(path: str, command: str, data: Mapping[str, Any], job: Any) -> None:
+def write_figure(path: str, command: str, data: Mapping[str, Any], job: Any, analysis: Any = None) -> None:
     """Draw the results of a command and write them to a file.
 
     Parameters
@@ -26,6 +26,8 @@ def write_figure(path: str, command: str, data: Mapping[str, Any], job: Any) -> 
         The results, SI units.
     job : Job
         The job: its member and its style of units.
+    analysis : Analysis, optional
+        The solved member, where the caller has it already.
 
     Raises
     ------
@@ -34,11 +36,11 @@ def write_figure(path: str, command: str, data: Mapping[str, Any], job: Any) -> 
     OSError
         When the file cannot be written.
     """
-    content = figure_bytes(Path(path).suffix, command, data, job)
+    content = figure_bytes(Path(path).suffix, command, data, job, analysis)
     Path(path).write_bytes(content)
 
 
-def figure_bytes(suffix: str, command: str, data: Mapping[str, Any], job: Any) -> bytes:
+def figure_bytes(suffix: str, command: str, data: Mapping[str, Any], job: Any, analysis: Any = None) -> bytes:
     """Draw the results of a command.
 
     A picture (PNG, SVG) of `deflect` shows the combination whose checks are used most; a PDF has a page for each.
@@ -47,7 +49,7 @@ def figure_bytes(suffix: str, command: str, data: Mapping[str, Any], job: Any) -
     ----------
     suffix : str
         ``".png"``, ``".svg"`` or ``".pdf"``.
-    command, data, job
+    command, data, job, analysis
         As for `write_figure`.
 
     Returns
@@ -62,7 +64,7 @@ def figure_bytes(suffix: str, command: str, data: Mapping[str, Any], job: Any) -
         raise ValueError(f"figures are written as {', '.join(FORMATS)}, not {suffix!r}")
     if command not in COMMANDS:
         raise ValueError(f"no figure is drawn for {command!r}, only for {', '.join(COMMANDS)}")
-    figures = _figures(command, data, job, every=suffix == ".pdf")
+    figures = _figures(command, data, job, suffix == ".pdf", analysis)
     title = job.member.title or command
     stream = BytesIO()
     with pens():
@@ -84,7 +86,7 @@ def _pdf(stream: BytesIO, figures: Iterator[Any], title: str) -> None:
             figure.savefig(pages, format="pdf")
 
 
-def _figures(command: str, data: Mapping[str, Any], job: Any, every: bool) -> Iterator[Any]:
+def _figures(command: str, data: Mapping[str, Any], job: Any, every: bool, analysis: Any = None) -> Iterator[Any]:
     """Draw the figures of a command, one after the other; the governing one alone unless `every` is wanted."""
     from fishbelly.cli.figures import pages
 
@@ -98,7 +100,7 @@ def _figures(command: str, data: Mapping[str, Any], job: Any, every: bool) -> It
 
         combinations = data["combinations"]
         governs = governing_combination(combinations)
-        curves = Curves(job.member)
+        curves = Curves(job.member, analysis)
         chosen = range(len(combinations)) if every else (governs,)
         for k in chosen:
             yield pages.deflect_page(job, curves, combinations[k], k == governs and len(combinations) > 1)
