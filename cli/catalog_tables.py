@@ -17,6 +17,10 @@ MOST_LIMITS = 60
 _EXPLAINED = 12
 """Up to so many limits are shown with the loads that they are for."""
 
+_OF_LIMITS = (
+    "L is the span, of a cantilever twice its own length; l is the own length of a cantilever. Of several the "
+    "smaller governs."
+)
 _STRESSES = ("cracking", "yield_strength")
 _WHAT = {"Pa": "modulus", "kg/m3": "density", "1/K": "expansion", "m": "length", "": "factor"}
 _MAIN = {
@@ -135,7 +139,7 @@ def listing(entries: Sequence[Entry], style: str, asked: str, everything: bool =
         if not own:
             continue
         lines.append(f"{title}: {len(own)} for “{asked}”" if asked else f"{title}: {len(own)}")
-        lines += _limits(own[:most]) if group == "limit" else _by_kind(own[:most], style, sources)
+        lines += _limits(own[:most], style) if group == "limit" else _by_kind(own[:most], style, sources)
         if len(own) > most:
             lines += paragraph(f"… and {len(own) - most} more: {_narrower(own, asked)}, or see --all", "  ")
         lines.append("")
@@ -149,7 +153,7 @@ def listing(entries: Sequence[Entry], style: str, asked: str, everything: bool =
 
 def _narrower(entries: Sequence[Entry], asked: str) -> str:
     """Say which words narrow a list."""
-    kinds = list(counts(entries))
+    kinds = [kind for kind in counts(entries) if kind.casefold() != asked.casefold()]
     if len(kinds) > 1:
         return f"narrow it with another word, such as {', '.join(kinds[:3])}"
     return f"narrow it with more of the name, such as {entries[len(entries) // 2].name}"
@@ -170,11 +174,17 @@ def _rows(entries: Sequence[Entry], style: str, sources: dict[str, int]) -> list
     rows = [["", *heads, ""], ["", *(_unit((label, 0.0, known[label]), style) for label in labels), ""]]
     for entry in entries:
         values = {value[0]: shown(value, style) for value in entry.values}
-        number = sources.setdefault(entry.source.partition(";")[0], len(sources) + 1)
+        number = sources.setdefault(_short(entry.source), len(sources) + 1)
         rows.append([entry.name, *(values.get(label, NOTHING) for label in labels), f"[{number}]"])
     rows = [row for row in rows if any(row)]
     widths = [max(shown_width(row[k]) for row in rows) for k in range(len(rows[0]))]
     return ["    " + _row(row, widths) for row in rows]
+
+
+def _short(source: str) -> str:
+    """Give where a thing is published without how its row was confirmed, but with "from memory"."""
+    short = source.partition(";")[0]
+    return f"{short}, from memory" if "from memory" in source and "from memory" not in short else short
 
 
 def _row(cells: Sequence[str], widths: Sequence[int]) -> str:
@@ -183,29 +193,29 @@ def _row(cells: Sequence[str], widths: Sequence[int]) -> str:
     return "  ".join([first, *rest]).rstrip()
 
 
-def _limits(entries: Sequence[Entry]) -> list[str]:
+def _limits(entries: Sequence[Entry], style: str) -> list[str]:
     """Write limits code by code: name, what is allowed, clause."""
     lines = []
-    allowed = {entry.name: _allowed(entry) for entry in entries}
-    names = max(len(name) for name in allowed)
-    widest = max(len(text) for text in allowed.values())
+    allowed = {entry.name: _allowed(entry, style) for entry in entries}
+    width = max(len(name) + len(text) for name, text in allowed.items()) + 2
     for code in dict.fromkeys(_sort(entry) for entry in entries):
         lines.append(f"  {code}")
         for entry in (entry for entry in entries if _sort(entry) == code):
             clause = entry.source.rpartition(", ")[2]
-            lines.append(f"    {entry.name:<{names}}  {allowed[entry.name]:<{widest}}  {clause}".rstrip())
+            lines.append(f"    {entry.name}{allowed[entry.name]:>{width - len(entry.name)}}  {clause}")
             if len(entries) <= _EXPLAINED:
                 lines += paragraph(entry.kind, "      ")
-    return lines
+    return [*lines, *paragraph(_OF_LIMITS, "  ")]
 
 
-def _allowed(entry: Entry) -> str:
+def _allowed(entry: Entry, style: str) -> str:
     values = {label: value for label, value, _ in entry.values}
     said = []
     if "span over" in values:
         said.append(f"L/{values['span over']:.4g}")
     if "cantilever over" in values:
-        said.append(f"l/{values['cantilever over']:.4g} *")
+        said.append(f"l/{values['cantilever over']:.4g}")
     if "absolute" in values:
-        said.append(f"{1e3 * values['absolute']:.4g} mm")
+        value = ("absolute", values["absolute"], "m")
+        said.append(f"{shown(value, style)} {_unit(value, style)}")
     return ", ".join(said)

@@ -5,13 +5,14 @@ from __future__ import annotations
 import errno
 import os
 from collections.abc import Callable, Sequence
+from functools import partial
 from pathlib import Path
 from typing import Any
 
-WORKING = (".csv", ".json", ".xlsx")
+FIGURES = (".png", ".svg", ".pdf")
+"""Suffixes of figures."""
+WORKING = (".csv", ".json", ".xlsx", *FIGURES)
 """Suffixes that are written."""
-LATER = (".pdf", ".png", ".svg")
-"""Suffixes that the tool will write one day."""
 
 
 class FileFault(Exception):
@@ -89,6 +90,10 @@ def _content(suffix: str) -> Callable[[str, dict[str, Any], Any], bytes]:
         from fishbelly.cli.files_xlsx import xlsx_bytes
 
         return xlsx_bytes
+    if suffix in FIGURES:
+        from fishbelly.cli.figures.write import figure_bytes
+
+        return partial(figure_bytes, suffix)
     return _json_bytes
 
 
@@ -127,8 +132,6 @@ def _check_suffix(path: str, shown: str) -> None:
     if suffix in WORKING:
         return
     known = f"{', '.join(WORKING[:-1])} and {WORKING[-1]}"
-    if suffix in LATER:
-        raise FileFault(f'"{shown}": {suffix} is not built yet for this command; {known} are')
     if not suffix:
         raise FileFault(f'"{shown}": the suffix says the format, and there is none; {known} are written')
     raise FileFault(f'"{shown}": the format {suffix} is not known; {known} are written')

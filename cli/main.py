@@ -126,7 +126,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
             "outputs",
             multiple=True,
             metavar="FILE",
-            help="Also write FILE: .csv, .json or .xlsx (repeatable).",
+            help="Also write FILE: .csv, .json, .xlsx, .png, .svg or .pdf (repeatable).",
         ),
         click.option("--force", is_flag=True, help="Overwrite an existing file."),
         click.option("--stage", expose_value=False, hidden=True, callback=_refused("--stage")),

@@ -152,3 +152,10 @@ def test_stations_jump_where_forces_do() -> None:
     close(left["V"] - right["V"], P, CLOSED)
     xs = [r["x"] for r in rows]
     assert xs == sorted(xs) and len(rows) >= 101
+
+
+@pytest.mark.parametrize("x", [0.3, math.nextafter(0.3, 1.0), math.nextafter(0.3, 0.0)])
+def test_a_place_one_bit_off_a_jump_shows_both_sides_of_it(x: float) -> None:
+    """A place typed in another unit than the load's differs by round-off from it and means the same place."""
+    rows = run(beam(Point(0.3, 1000.0)), x)["stations"]
+    assert [r["V"] for r in rows] == pytest.approx([950.0, -50.0])

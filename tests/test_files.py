@@ -208,17 +208,17 @@ def test_force_keeps_the_mode_and_follows_links(beam, tmp_path):
     assert real.stat().st_mode & 0o777 == 0o640
 
 
-@pytest.mark.parametrize("suffix", [".png", ".svg", ".pdf"])
-def test_formats_that_are_not_built(beam, tmp_path, suffix):
+@pytest.mark.parametrize(("suffix", "start"), [(".png", b"\x89PNG"), (".svg", b"<?xml"), (".pdf", b"%PDF")])
+def test_figures_are_written_by_their_suffix(beam, tmp_path, suffix, start):
     job, data = beam
-    with pytest.raises(FileFault, match=rf"\{suffix} is not built yet for this command; \.csv, \.json and \.xlsx are"):
-        write(str(tmp_path / f"o{suffix}"), "deflect", data, job, False)
+    write(str(tmp_path / f"o{suffix}"), "deflect", data, job, False)
+    assert (tmp_path / f"o{suffix}").read_bytes().startswith(start)
 
 
 @pytest.mark.parametrize(
     ("name", "words"),
     [
-        ("o.doc", r"the format \.doc is not known; \.csv, \.json and \.xlsx are written"),
+        ("o.doc", r"the format \.doc is not known; \.csv, \.json, \.xlsx, \.png, \.svg and \.pdf are written"),
         ("o", "the suffix says the format, and there is none"),
         ("gone/o.csv", 'there is no folder ".*gone"'),
         ("file/o.csv", 'file" is a file, not a folder'),
@@ -286,11 +286,11 @@ def test_the_job_file_is_never_overwritten(tmp_path):
 
 def test_all_targets_are_looked_at_before_anything_is_computed(tmp_path):
     (tmp_path / "there.csv").write_text("")
-    targets = [f"{tmp_path}/{name}" for name in ("there.csv", "o.png", "new.csv", "./new.csv")]
+    targets = [f"{tmp_path}/{name}" for name in ("there.csv", "o.doc", "new.csv", "./new.csv")]
     with pytest.raises(FileFault) as caught:
         check_targets(targets, False)
     lines = str(caught.value).splitlines()
     assert len(lines) == 3
-    assert "exists" in lines[0] and "not built" in lines[1] and "given twice" in lines[2]
+    assert "exists" in lines[0] and "not known" in lines[1] and "given twice" in lines[2]
     check_targets([targets[0], targets[2]], True)
     assert [p.name for p in tmp_path.iterdir()] == ["there.csv"]

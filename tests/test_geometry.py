@@ -490,3 +490,21 @@ def test_parabola_and_plate_follow_the_same_soffit() -> None:
     for x in (0.5, 2.0, 4.0, 7.0):
         depth = 0.6 - 0.3 * ((x - 4) / 4) ** 2
         assert box(m, "plate", x)[3] == pytest.approx(-depth, abs=NEAR)
+
+
+@pytest.mark.parametrize("far", [10.0, 1000.0])
+@pytest.mark.parametrize("kind", ["rectangle", "circle", "I"])
+def test_a_tapering_part_far_from_the_datum(kind: str, far: float) -> None:
+    """1 km off, coordinates lose 1e-13 m: nothing moves by more than 1e-9, and the grid does not grow without end."""
+    law = parabola([0.0, L / 2], [0.2, 0.16], [L / 2])
+    sizes = {
+        "rectangle": {"width": 0.1, "depth": law},
+        "circle": {"diameter": law},
+        "I": {"depth": law, "web": 0.01, "top_width": 0.1, "bottom_width": 0.1, "top_flange": 0.01, "bottom_flange": 0.01, "radius": 0.01},
+    }[kind]
+    found = []
+    for z in (0.0, -far):
+        where = Placing("position", position=(constant(0.0), constant(z)), anchor="middle")
+        piece = part("p", kind, L, place=where, **sizes)
+        found.append(run(member(piece, supports=simple(L), loads=(uniform(1e3, L),)), 4.0))
+    close(station(found[1], 4.0)["deflection"], station(found[0], 4.0)["deflection"], 1e-9)
