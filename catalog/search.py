@@ -80,9 +80,7 @@ def material_entry(material: CatalogMaterial) -> Entry:
 
 def section_entry(section: RolledSection) -> Entry:
     """Entry of a rolled section: its dimensions."""
-    values = tuple(
-        (label, value, "" if label == "slope" else "m") for label, value in section.dimensions.items()
-    )
+    values = tuple((label, value, "" if label == "slope" else "m") for label, value in section.dimensions.items())
     kind = _SECTION_KINDS.get(section.kind, section.kind)
     return Entry("rolled section", section.designation, kind, values, section.source, "")
 
@@ -106,11 +104,7 @@ def k_def_entries() -> list[Entry]:
             "creep of timber",
             row["product"],
             row["standard"],
-            tuple(
-                (f"k_def, service class {label}", float(row[label]), "")
-                for label in SERVICE_CLASSES
-                if row[label]
-            ),
+            tuple((f"k_def, service class {label}", float(row[label]), "") for label in SERVICE_CLASSES if row[label]),
             row["source"],
             row["note"],
         )

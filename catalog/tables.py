@@ -130,9 +130,7 @@ def folded(name: str) -> str:
     return "".join(name.split()).casefold()
 
 
-def nearest_names(
-    name: str, known: tuple[str, ...], count: int = 4, fold: Callable[[str], str] = folded
-) -> list[str]:
+def nearest_names(name: str, known: tuple[str, ...], count: int = 4, fold: Callable[[str], str] = folded) -> list[str]:
     """Names of the catalogue that look most like `name`, the best first.
 
     Names that go on where `name` ends come first, then those with the same letters and the nearest numbers

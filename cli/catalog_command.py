@@ -12,9 +12,43 @@ import click
 from fishbelly.catalog.search import Entry, everything, is_named, nearest, search
 
 _UNITS = "SI: m, N, Pa, rad, kg, K"
+_HELP = """\
+Find materials, sections and deflection limits by any word.
+
+Without a word: what there is. Examples:
+
+\b
+    fishbelly catalog IPE 300
+    fishbelly catalog glulam --units us
+    fishbelly catalog limits
+    fishbelly catalog IBC floor live --snippet >> my-beam.toml
+
+Sections and materials of your own stand in files beside the job, which names them:
+
+\b
+    [catalog]
+    files = ["my-sections.csv", "my-materials.toml"]
+
+Sections, csv: a column "designation", a column "kind" (rectangle, circle, tube, box, I, tee, channel, angle,
+trapezoid, regular polygon) and the dimensions of that outline, each with its unit in the header:
+
+\b
+    designation,kind,depth [mm],width [mm],web [mm],flange [mm],source
+    Girder 7,I,612,228,11.5,18,drawing 7 of 1931
+
+Materials, csv: a column "name" and keys as in [material.NAME] of a job, again with units: like, E, G, poisson,
+density, expansion, creep, yield, cracking, strength.
+
+\b
+    name,E [GPa],poisson,density [kg/m3],expansion [1e-6/K],creep,source
+    old iron,95,0.25,7150,11,0,tests 2019
+
+Materials, toml: tables [material.NAME] as in a job. All may have "source" and "note". Decimal commas are
+understood where columns are parted by semicolons. A name that the catalogue has already is refused.
+"""
 
 
-@click.command()
+@click.command(help=_HELP)
 @click.argument("words", nargs=-1, metavar="[WORD]...")
 @click.option("--units", type=click.Choice(["metric", "us"]), default="metric", show_default=True, help="Units shown.")
 @click.option("--snippet", is_flag=True, help="Print only the lines to paste into a job.")
@@ -40,39 +74,7 @@ def command(
     outputs: tuple[str, ...],
     force: bool,
 ) -> int:
-    """Find materials, sections and deflection limits by any word.
-
-    Without a word: what there is. Examples:
-
-    \b
-        fishbelly catalog IPE 300
-        fishbelly catalog glulam --units us
-        fishbelly catalog limits
-        fishbelly catalog IBC floor live --snippet >> my-beam.toml
-
-    Sections and materials of your own stand in files beside the job, which names them:
-
-    \b
-        [catalog]
-        files = ["my-sections.csv", "my-materials.toml"]
-
-    Sections, csv: a column "designation", a column "kind" (rectangle, circle, tube, box, I, tee, channel, angle,
-    trapezoid, regular polygon) and the dimensions of that outline, each with its unit in the header:
-
-    \b
-        designation,kind,depth [mm],width [mm],web [mm],flange [mm],source
-        Girder 7,I,612,228,11.5,18,drawing 7 of 1931
-
-    Materials, csv: a column "name" and keys as in [material.NAME] of a job, again with units: like, E, G, poisson,
-    density, expansion, creep, yield, cracking, strength.
-
-    \b
-        name,E [GPa],poisson,density [kg/m3],expansion [1e-6/K],creep,source
-        old iron,95,0.25,7150,11,0,tests 2019
-
-    Materials, toml: tables [material.NAME] as in a job. All may have "source" and "note". Decimal commas are
-    understood where columns are parted by semicolons. A name that the catalogue has already is refused.
-    """
+    """Run ``fishbelly catalog``; returns the status."""
     if outputs:
         from fishbelly.cli.files import check_targets
 

@@ -24,7 +24,7 @@ _OF_LIMITS = (
 _STRESSES = ("cracking", "yield_strength")
 _WHAT = {"Pa": "modulus", "kg/m3": "density", "1/K": "expansion", "m": "length", "": "factor"}
 _MAIN = {
-    "material": ("E", "G", "poisson", "density", "expansion"),
+    "material": ("E", "G", "poisson", "density"),
     "rolled section": ("depth", "width", "diameter", "wall", "thickness", "web", "flange", "radius"),
 }
 _GROUPS = {
@@ -46,14 +46,15 @@ def what_of(label: str, unit: str) -> str:
     return "stress" if label in _STRESSES else _WHAT[unit]
 
 
-def shown(value: Value, style: str) -> str:
-    """Write a value with up to six figures in the unit of a style, without the unit."""
+def shown(value: Value, style: str, digits: int = 6) -> str:
+    """Write a value with up to so many significant figures in the unit of a style, without the unit."""
     label, number, unit = value
     size = unit_size(what_of(label, unit), style)  # type: ignore[arg-type]
     scaled = number / size
     if unit == "1/K":
-        return f"{scaled * 1e6:.6g}e-6"
-    return f"{scaled:.6g}"
+        return f"{scaled * 1e6:.{digits}g}e-6"
+    rounded = float(f"{scaled:.{digits}g}")
+    return f"{rounded:.6g}"
 
 
 def _unit(value: Value, style: str) -> str:
@@ -173,7 +174,7 @@ def _rows(entries: Sequence[Entry], style: str, sources: dict[str, int]) -> list
     heads = [label.replace("k_def, service class", "class") for label in labels]
     rows = [["", *heads, ""], ["", *(_unit((label, 0.0, known[label]), style) for label in labels), ""]]
     for entry in entries:
-        values = {value[0]: shown(value, style) for value in entry.values}
+        values = {value[0]: shown(value, style, 5 if value[2] == "m" else 4) for value in entry.values}
         number = sources.setdefault(_short(entry.source), len(sources) + 1)
         rows.append([entry.name, *(values.get(label, NOTHING) for label in labels), f"[{number}]"])
     rows = [row for row in rows if any(row)]

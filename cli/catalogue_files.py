@@ -89,7 +89,7 @@ def read_files(paths: Mapping[str, Path], report: Report) -> Catalogue:
         try:
             found.append(_read(name, report.folder / name))
         except ValueFault as fault:
-            report.ills(path, fault)
+            report.ills(path, ValueFault(*(replace(i, path=()) for i in fault.ills)))
     return _merged(found, report.faults)
 
 
@@ -218,6 +218,13 @@ def _section(i: int, raw: dict[str, Any], report: Report) -> tuple[RolledSection
     dimensions = {key: value for key, value in raw.items() if key in DIMENSIONS}
     faults = len(report.faults)
     model = part_model(kind)
+    own = [key for key in keys_of(model) if key in DIMENSIONS]
+    for key in dimensions:
+        if key not in own:
+            text = f"an empty cell, as the dimensions of kind {kind} are {', '.join(own)}"
+            report.add((*path, key), text, as_written(dimensions[key]))
+    if len(report.faults) > faults:
+        return None, None
     table = read_table(model, {"name": raw["name"], "shape": kind} | dimensions, path, report)
     shape = None if table is None else written_shape(table, kind, 1.0, path, report)
     if table is None or shape is None or len(report.faults) > faults:

@@ -144,9 +144,7 @@ def _top_level(report: Report) -> JobTable | None:
             shown = f"[[{key}]]" if isinstance(report.data[key], list) else f'key "{key}"'
             report.place(report.line((key,)), "", f"{shown}: not built yet in this version", "", (key,))
     rest = {k: v for k, v in report.data.items() if k not in known and k not in NOT_BUILT[""]}
-    tables = [
-        key for key, value in rest.items() if isinstance(value, list | dict) and key not in keys_of(JobTable)
-    ]
+    tables = [key for key, value in rest.items() if isinstance(value, list | dict) and key not in keys_of(JobTable)]
     for key in tables:
         _unknown_table(key, report)
     top = read_table(JobTable, {k: v for k, v in rest.items() if k not in tables}, (), report)

@@ -56,9 +56,7 @@ def _unknown(path: Path, name: str, own: list[str], near: list[str], report: Rep
 
     mine = nearest(name, own)
     shown = [mine] if mine else near
-    hint = (
-        f"nearest {'is' if len(shown) == 1 else 'are'} " + ", ".join(f'"{n}"' for n in shown) if shown else ""
-    )
+    hint = f"nearest {'is' if len(shown) == 1 else 'are'} " + ", ".join(f'"{n}"' for n in shown) if shown else ""
     report.add(path, "a material of the job or the catalogue", as_written(name), hint)
 
 
@@ -108,6 +106,9 @@ def own_material(name: str, report: Report, model: type[MaterialTable] = Materia
         return None
     if table.G is not None or table.poisson is not None:
         values["G"] = values["poisson"] = None
+    elif table.E is not None and values.get("poisson") is not None:
+        # G follows an E of one's own, as Poisson's ratio has it
+        values["G"] = None
     written = {key: getattr(table, "yield_" if key == "yield_strength" else key) for key in _SAME}
     values |= {key: value for key, value in written.items() if value is not None}
     if values["E"] is None:

@@ -70,11 +70,7 @@ class Camber(Reader):
 
     def read(self, value: Any) -> Any:
         """Read a float or a pair of lists."""
-        return (
-            read_stations(value, Kind.LENGTH)
-            if isinstance(value, list)
-            else Quantity(Kind.LENGTH).read(value)
-        )
+        return read_stations(value, Kind.LENGTH) if isinstance(value, list) else Quantity(Kind.LENGTH).read(value)
 
 
 class JobTable(Table):

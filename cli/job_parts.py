@@ -63,7 +63,8 @@ def read_part(
     if len(report.faults) > faults or shape is None or place is None or cuts is None:
         return None
     if table.pair and _in_one_place(place):
-        report.warnings.append(f'part "{table.name}": both copies of the pair stand in one place')
+        report.add((*path, "pair"), "two copies that stand apart", "both in one place")
+        return None
     return Part(
         name=table.name,
         material=None if table.material is None else materials.get(table.material, table.material),
@@ -153,9 +154,7 @@ def _shape(
     return rolled_shape(section.kind, section.dimensions, path, report)
 
 
-def _placing(
-    i: int, table: PartTable, top: JobTable, end: float, path: Path, report: Report
-) -> Placing | None:
+def _placing(i: int, table: PartTable, top: JobTable, end: float, path: Path, report: Report) -> Placing | None:
     faults = len(report.faults)
     relation = either(table, (*RELATIONS, "position"), path, report, at_least=0)
     if len(report.faults) > faults:
@@ -172,13 +171,9 @@ def _placing(
                 needs = "`under`, `over`, `left_of` or `right_of`"
             report.about((*path, key), f"`{key}` needs {needs}")
     if i == 0 and relation == "position" and top.datum is not None:
-        report.about(
-            ("datum",), "datum and the first part's `position` both say where it is", "leave one out"
-        )
+        report.about(("datum",), "datum and the first part's `position` both say where it is", "leave one out")
     gap = _law(table.gap, end, (*path, "gap"), report)
-    shift = tuple(
-        _law(v, end, (*path, "shift", k), report) for k, v in enumerate(table.shift or (None, None))
-    )
+    shift = tuple(_law(v, end, (*path, "shift", k), report) for k, v in enumerate(table.shift or (None, None)))
     position = None
     if table.position is not None:
         position = tuple(_law(v, end, (*path, "position", k), report) for k, v in enumerate(table.position))

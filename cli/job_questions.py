@@ -25,9 +25,7 @@ def read_combinations(report: Report) -> list[Combination | None]:
     result: list[Combination | None] = []
     for i, raw in enumerate(list_of_tables("combination", report)):
         table = read_table(CombinationTable, raw, ("combination", i), report)
-        result.append(
-            None if table is None else Combination(table.name, table.factors, table.sustained, table.for_)
-        )
+        result.append(None if table is None else Combination(table.name, table.factors, table.sustained, table.for_))
     return result
 
 

@@ -10,8 +10,8 @@ from typing import Any
 
 from fishbelly.catalog.materials import CatalogMaterial
 from fishbelly.cli.faults import Fault, as_written, suggest
-from fishbelly.cli.own_catalogue import Catalogue
 from fishbelly.cli.job_types import Path, ValueFault
+from fishbelly.cli.own_catalogue import Catalogue
 from fishbelly.cli.toml_lines import Lines
 from fishbelly.member.draft import Problem
 

@@ -54,9 +54,7 @@ def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tupl
     if ills:
         raise ValueFault(*ills)
     if len(rows) < 3:
-        raise ValueFault(
-            Ill(("file",), "at least two rows below the header", str(len(rows) - 1), file=path.name)
-        )
+        raise ValueFault(Ill(("file",), "at least two rows below the header", str(len(rows) - 1), file=path.name))
     signs: tuple[Sign, Sign] = ("any", sign)
     found: list[tuple[int, float | None, float | None]] = []
     for line, cells in rows[1:]:
@@ -91,17 +89,11 @@ def read_rows(path: Path) -> tuple[list[Row], bool]:
         text = path.read_text(encoding="utf-8-sig")
     except FileNotFoundError:
         near = suggest(path.name, sorted(p.name for p in path.parent.glob("*.csv")))
-        raise ValueFault(
-            Ill(("file",), "", f"{as_written(path.name)}: no such file beside the job", near)
-        ) from None
+        raise ValueFault(Ill(("file",), "", f"{as_written(path.name)}: no such file beside the job", near)) from None
     except (OSError, UnicodeDecodeError, ValueError):
         raise ValueFault(Ill(("file",), "a text file with columns", as_written(path.name))) from None
     lines = text.splitlines()
-    kept = [
-        (k, line)
-        for k, line in enumerate(lines, 1)
-        if line.strip(" \t;,") and not line.lstrip().startswith("#")
-    ]
+    kept = [(k, line) for k, line in enumerate(lines, 1) if line.strip(" \t;,") and not line.lstrip().startswith("#")]
     head = kept[0][1] if kept else ""
     delimiter = next((d for d in (";", "\t") if d in head), ",")
     cells = csv.reader((line for _, line in kept), delimiter=delimiter, skipinitialspace=True)
@@ -114,9 +106,7 @@ def _column(
     """Find a column by its name, and its unit."""
     parted = [split_header(cell) for cell in header]
     wanted = " ".join(name.split())
-    hits = [
-        k for k, (word, _) in enumerate(parted) if word == wanted or " ".join(header[k].split()) == wanted
-    ]
+    hits = [k for k, (word, _) in enumerate(parted) if word == wanted or " ".join(header[k].split()) == wanted]
     if len(hits) != 1:
         what = "no column" if not hits else "more than one column"
         hint = suggest(name, [word for word, _ in parted if word]) if not hits else ""
@@ -153,11 +143,7 @@ def _cell(
             "above zero": "a number above 0",
             "zero or more": "a number of 0 or more",
         }[sign]
-        ills.append(
-            Ill(
-                (), bound, as_written(text) if text else "an empty cell", file=path.name, line=line, key=title
-            )
-        )
+        ills.append(Ill((), bound, as_written(text) if text else "an empty cell", file=path.name, line=line, key=title))
         return None
 
 
@@ -166,9 +152,7 @@ def _order(path: Path, found: list[tuple[int, float | None, float | None]]) -> l
     known = [(line, x) for line, x, _ in found if x is not None]
     for (_, before), (line, x) in pairwise(known):
         if x == before:
-            ills.append(
-                Ill((), "each station once", f"the station at {x:.6g} m again", file=path.name, line=line)
-            )
+            ills.append(Ill((), "each station once", f"the station at {x:.6g} m again", file=path.name, line=line))
         elif x < before:
             text = f"{x:.6g} m after {before:.6g} m"
             ills.append(Ill((), "stations in order of x", text, file=path.name, line=line))

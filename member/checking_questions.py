@@ -25,6 +25,8 @@ def question_problems(draft: Draft) -> Iterator[Problem]:
     for i, limit in enumerate(draft.limits):
         if limit is not None:
             yield from _limit(draft, limit, ("limit", i), spans)
+            if limit.net and draft.camber is None:
+                yield Problem(("limit", i, "net"), "a job with `camber`, which `net` subtracts", "none")
     if isinstance(draft.camber, Law) and draft.camber.knots.size:
         yield from within(draft, float(draft.camber.knots[0]), ("camber",), "ordinates")
         yield from within(draft, float(draft.camber.knots[-1]), ("camber",), "ordinates")

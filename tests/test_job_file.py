@@ -8,6 +8,7 @@ import time
 import numpy as np
 import pytest
 
+from fishbelly.cli.faults import JobFaults
 from fishbelly.cli.job_file import read_job
 from fishbelly.member.laws import Law
 from fishbelly.member.loads import (
@@ -29,9 +30,7 @@ density = "7850 kg/m3"
 expansion = "12e-6 /K"
 creep = 0.0
 """
-BEAM = (
-    '\n[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
-)
+BEAM = '\n[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
 
 
 def job(text, head='length = "6 m"\n', materials=STEEL):
@@ -125,9 +124,7 @@ def test_outline_dimensions():
         "flange": 0.008,
         "inner_radius": 0.008,
     }
-    i = dims(
-        'shape = "I"\ndepth = "300 mm"\nweb = "7 mm"\nwidth = "150 mm"\nflange = "10 mm"\nbottom_width = "200 mm"'
-    )
+    i = dims('shape = "I"\ndepth = "300 mm"\nweb = "7 mm"\nwidth = "150 mm"\nflange = "10 mm"\nbottom_width = "200 mm"')
     assert (i["top_width"], i["bottom_width"], i["top_flange"], i["bottom_flange"]) == (0.15, 0.2, 0.01, 0.01)
     assert i["radius"] == 0.0
     assert "width" not in i and "flange" not in i
@@ -196,9 +193,7 @@ E = "10 GPa"
 G = "1 GPa"
 strength = { tension = "20 N/mm2", shear = "2 N/mm2" }
 """
-    m = member(
-        '\n[[part]]\nname = "a"\nmaterial = "C24"\nshape = "circle"\ndiameter = "1 in"\n', materials=text
-    )
+    m = member('\n[[part]]\nname = "a"\nmaterial = "C24"\nshape = "circle"\ndiameter = "1 in"\n', materials=text)
     mine, other, timber = m.materials
     assert (mine.E, mine.G, mine.poisson, mine.density, mine.yield_strength) == (
         205e9,
@@ -278,10 +273,7 @@ flush = "top"
 
 
 def test_cut_of_the_only_other_part():
-    text = (
-        BEAM
-        + '\n[[part]]\nname = "g"\nshape = "circle"\ndiameter = "10 mm"\ncut = true\ncentred_on = "beam"\n'
-    )
+    text = BEAM + '\n[[part]]\nname = "g"\nshape = "circle"\ndiameter = "10 mm"\ncut = true\ncentred_on = "beam"\n'
     assert member(text).parts[1].cuts == ("beam",)
 
 
@@ -515,7 +507,8 @@ name = "turn"
 slope = "1 mrad"
 from = "1 m"
 to = "2 m"
-"""
+""",
+        head='length = "6 m"\ncamber = "10 mm"\n',
     )
     assert m.cases == ("dead", "settlement")
     final, strong = m.combinations
@@ -541,9 +534,23 @@ def test_ends_in_other_units_are_the_ends():
     assert m.parts[0].end == 6.0
 
 
-def test_a_pair_in_one_place_is_a_warning():
+def test_a_pair_in_one_place_is_refused():
     plate = BEAM.replace('"beam"', '"plates"') + 'under = "beam"\npair = true\n'
-    assert job(BEAM + plate).warnings == ('part "plates": both copies of the pair stand in one place',)
+    with pytest.raises(JobFaults, match='part "plates", pair: expected two copies that stand apart, got both'):
+        job(BEAM + plate)
+
+
+def test_a_modulus_of_ones_own_beside_like_keeps_poissons_ratio():
+    own = '[material.softer]\nlike = "S275"\nE = "100 GPa"\n'
+    (softer,) = member(BEAM.replace('"steel"', '"softer"'), materials=own).materials
+    assert softer.shear_modulus == pytest.approx(100e9 / 2.6)
+
+
+def test_net_needs_a_camber():
+    text = BEAM + '[[support]]\nat = "0 m"\nkind = "pin"\n[[support]]\nat = "4 m"\nkind = "roller"\n'
+    limit = '[[limit]]\nname = "sag"\nspan_over = 300\nnet = true\n'
+    with pytest.raises(JobFaults, match='limit "sag", net: expected a job with `camber`'):
+        job(text + limit)
 
 
 def test_ten_thousand_stations_are_read_in_time():
