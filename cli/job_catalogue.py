@@ -6,6 +6,7 @@ from fishbelly.cli.faults import JobFaults
 from fishbelly.cli.job_models import CatalogTable
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_tables import read_table
+from fishbelly.cli.job_types import Path
 from fishbelly.cli.own_catalogue import Catalogue
 
 
@@ -35,7 +36,7 @@ def read_catalogue(report: Report) -> Catalogue:
         raise JobFaults(report.faults)
     from fishbelly.cli.catalogue_files import read_files
 
-    paths = {name: ("catalog", "files", k) for k, name in enumerate(table.files)}
+    paths: dict[str, Path] = {name: ("catalog", "files", k) for k, name in enumerate(table.files)}
     if len(paths) == 1 and isinstance(report.value(("catalog", "files")), str):
         paths = dict.fromkeys(paths, ("catalog", "files"))
     found = read_files(paths, report)

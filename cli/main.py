@@ -13,6 +13,8 @@ from typing import Any
 
 import click
 
+from fishbelly.cli.command_group import LazyGroup
+
 DONE, NOT_MET, WRONG, CANNOT = 0, 1, 2, 3
 
 NOT_BUILT = {
@@ -28,35 +30,9 @@ NOT_BUILT = {
 }
 """Commands that are not built yet; each is refused by its name."""
 
-LATER = {
-    "catalog": ("fishbelly.cli.catalog_command", "Find materials, sections and deflection limits by any word."),
-}
-"""Commands that stand in modules of their own, imported when called: the module, and the line for --help."""
 
-
-class _Group(click.Group):
+class _Group(LazyGroup):
     """The group of commands: names those that are not built yet, suggests the nearest one otherwise."""
-
-    def list_commands(self, ctx: click.Context) -> list[str]:
-        return sorted({*self.commands, *LATER})
-
-    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
-        if cmd_name in LATER and cmd_name not in self.commands:
-            from importlib import import_module
-
-            command: click.Command = import_module(LATER[cmd_name][0]).command
-            command.name = cmd_name
-            return command
-        return super().get_command(ctx, cmd_name)
-
-    def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
-        rows = []
-        for name in self.list_commands(ctx):
-            known = self.commands.get(name)
-            if known is None or not known.hidden:
-                rows.append((name, LATER[name][1] if known is None else known.get_short_help_str(60)))
-        with formatter.section("Commands"):
-            formatter.write_dl(rows)
 
     def resolve_command(self, ctx: click.Context, args: list[str]) -> Any:
         name = args[0] if args else ""

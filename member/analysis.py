@@ -213,8 +213,11 @@ class Analysis:
 
     def round_off(self, total: Response) -> float:
         """Deflection below which a combination's is nothing but round-off [m]."""
-        stiffest = float(np.nanmax(self.profile.stiffness(self.moduli(ModuliKey())).EI_y))
-        return 1e-12 * float(np.abs(total.M).max()) / stiffest * self.member.length**2
+        s = self.profile.stiffness(self.moduli(ModuliKey()))
+        k = int(np.argmax(s.EI_y))
+        size = float(np.sqrt(s.EI_y[k] / s.EA[k]))
+        moment = float(np.abs(total.M).max()) + size * float(np.abs(total.N).max())
+        return 1e-12 * moment / float(s.EI_y[k]) * self.member.length**2
 
     def _patterns(self, combination: Combination) -> tuple[NDArray[np.bool_], ...]:
         """Atoms of `pattern` loads, those of one span and case together."""

@@ -94,8 +94,12 @@ class Panels:
         return np.asarray(2.0 * u - 1.0)
 
     def find(self, x: Array, side: str = "right") -> NDArray[np.intp]:
-        """Return the panels in which places lie; at a border the one on the given side."""
-        panel = np.searchsorted(self.b, x, side="right" if side == "right" else "left")
+        """Return the panels in which places lie; at a border, or a round-off beside it, the one on the given side."""
+        close = 1e-11 * float(self.b[-1])
+        if side == "right":
+            panel = np.searchsorted(self.b, np.asarray(x) + close, side="right")
+        else:
+            panel = np.searchsorted(self.b, np.asarray(x) - close, side="left")
         return np.asarray(np.clip(panel, 0, self.count - 1))
 
     def border(self, x: float) -> int:

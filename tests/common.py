@@ -7,6 +7,7 @@ from collections.abc import Callable, Sequence
 from typing import Any
 
 import mpmath as mp
+
 from fishbelly.member.description import Combination, Material, Member, Part, Placing, Shape, Support
 from fishbelly.member.laws import Law, constant
 from fishbelly.member.loads import Distributed

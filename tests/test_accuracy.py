@@ -1,5 +1,6 @@
 """Deflections, slopes and reactions against integrals of 30 digits and exact sums."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -34,6 +35,7 @@ from common import (
     unit_shear,
     work,
 )
+
 from fishbelly.member.description import Haunch, Member, Placing, Support
 from fishbelly.member.faults import NoStiffness
 from fishbelly.member.laws import parabola, steps, straight
@@ -156,7 +158,9 @@ def test_haunched_between_fixed_ends(law: str) -> None:
     beam = part("b", "rectangle", length, width=width, depth=thin)
     haunches = (Haunch("b", 0.0, extra, (0.0, reach), law), Haunch("b", length, extra, (reach, 0.0), law))
     supports = (fixed("A", 0.0, along=INF), fixed("B", length))
-    member = Member(length, (beam,), (STEEL,), haunches=haunches, supports=supports, loads=(uniform(Q, length),), shear=False)
+    member = Member(
+        length, (beam,), (STEEL,), haunches=haunches, supports=supports, loads=(uniform(Q, length),), shear=False
+    )
     power = 1 if law == "straight" else 2
 
     def depth(x: mp.mpf) -> mp.mpf:
@@ -181,7 +185,9 @@ def test_thrust_of_a_haunched_beam_held_along_at_both_ends() -> None:
     beam = part("b", "rectangle", length, width=0.3, depth=0.45)
     haunches = (Haunch("b", 0.0, 0.45, (0.0, 1.8), "parabola"), Haunch("b", length, 0.45, (1.8, 0.0), "parabola"))
     supports = (fixed("A", 0.0, along=INF), fixed("B", length, along=INF))
-    member = Member(length, (beam,), (STEEL,), haunches=haunches, supports=supports, loads=(uniform(Q, length),), shear=False)
+    member = Member(
+        length, (beam,), (STEEL,), haunches=haunches, supports=supports, loads=(uniform(Q, length),), shear=False
+    )
     places = (0, reach, length / 2, length - reach, length)
     depth = lambda x: thin + extra * max(0, 1 - min(x, length - x) / reach) ** 2
     EI, EA = rectangle_EI(depth, 0.3), lambda x: E * width * depth(x)
@@ -206,7 +212,9 @@ def test_parabolic_soffit_of_two_materials() -> None:
     depth_law = parabola([0.0, 3.0], [0.9, 0.45], [3.0])
     timber = part("timber", "rectangle", length, material="timber", width=0.2, depth=depth_law)
     plate = part("plate", "rectangle", 6.5, start=1.5, width=0.18, depth=0.012, place=Placing("under", "timber"))
-    member = Member(length, (timber, plate), (STEEL, TIMBER), supports=simple(length), loads=(uniform(Q, length),), shear=False)
+    member = Member(
+        length, (timber, plate), (STEEL, TIMBER), supports=simple(length), loads=(uniform(Q, length),), shear=False
+    )
 
     def EI(x: mp.mpf) -> mp.mpf:
         h = mp.mpf(0.45) + mp.mpf(0.45) * (max(0, mp.mpf(3) - x) / 3) ** 2
@@ -232,10 +240,22 @@ def test_pair_of_timbers_with_steel_between() -> None:
     law = straight([0.0, length], [0.30, 0.15])
     steel = part("steel", "rectangle", 4.0, start=1.0, width=0.012, depth=0.14)
     core = part("packing", "rectangle", length, material="timber", width=0.012, depth=0.14)
-    timber = part("timber", "rectangle", length, material="timber", width=0.05, depth=law, place=Placing("left_of", "packing", flush="top"))
+    timber = part(
+        "timber",
+        "rectangle",
+        length,
+        material="timber",
+        width=0.05,
+        depth=law,
+        place=Placing("left_of", "packing", flush="top"),
+    )
     timber = type(timber)(**{f: getattr(timber, f) for f in timber.__dataclass_fields__} | {"pair": True})
-    steel = type(steel)(**{f: getattr(steel, f) for f in steel.__dataclass_fields__} | {"place": Placing("centred_on", "packing")})
-    member = Member(length, (core, timber, steel), (STEEL, TIMBER), supports=simple(length), loads=(Point(2.0, 8e3),), shear=False)
+    steel = type(steel)(
+        **{f: getattr(steel, f) for f in steel.__dataclass_fields__} | {"place": Placing("centred_on", "packing")}
+    )
+    member = Member(
+        length, (core, timber, steel), (STEEL, TIMBER), supports=simple(length), loads=(Point(2.0, 8e3),), shear=False
+    )
     t = mp.mpf(0.14)
 
     def EI(x: mp.mpf) -> mp.mpf:
@@ -292,7 +312,9 @@ def test_tapered_tube_mast() -> None:
     height = 12.0
     outer, wall = line(0, 0.5, height, 0.15), mp.mpf(0.006)
     mast = part("mast", "tube", height, diameter=straight([0.0, height], [0.5, 0.15]), wall=0.006)
-    member = Member(height, (mast,), (STEEL,), supports=cantilever(), loads=(SelfWeight(), Point(height, 3e3)), shear=False)
+    member = Member(
+        height, (mast,), (STEEL,), supports=cantilever(), loads=(SelfWeight(), Point(height, 3e3)), shear=False
+    )
     EI = lambda x: E * mp.pi / 64 * (outer(x) ** 4 - (outer(x) - 2 * wall) ** 4)
     weight = lambda x: mp.mpf(9.80665) * 7850 * mp.pi * wall * (outer(x) - wall)
     # the weight is linear in x: moment from tip, exactly
@@ -311,7 +333,9 @@ def _trapezoid(s: mp.mpf, root: mp.mpf, tip: mp.mpf) -> mp.mpf:
 def test_plan_that_runs_out_to_a_point_has_finite_slope() -> None:
     blade = part("b", "rectangle", L, width=straight([0.0, L], [0.2, 0.0]), depth=0.05)
     EI0 = 210e9 * 0.2 * 0.05**3 / 12
-    tip = run(Member(L, (blade,), (STEEL,), supports=cantilever(), loads=(Point(L, 100.0),), shear=False), L)["ends"]["right"]
+    tip = run(Member(L, (blade,), (STEEL,), supports=cantilever(), loads=(Point(L, 100.0),), shear=False), L)["ends"][
+        "right"
+    ]
     close(tip["deflection"], 100.0 * L**3 / (2 * EI0), PROMISED)
     close(tip["slope"], 100.0 * L**2 / EI0, PROMISED)
     spread = Member(L, (blade,), (STEEL,), supports=cantilever(), loads=(uniform(100.0, L),))
@@ -414,7 +438,10 @@ def test_two_hundred_spans(loaded: set[int]) -> None:
     beam = part("b", "rectangle", length, width=0.1, depth=0.2)
     supports = tuple(roller(f"S{k}", k * span) if k else pin("S0", 0.0) for k in range(count + 1))
     loads = tuple(uniform(Q, (k + 1) * span, k * span) for k in sorted(loaded))
-    found = run(Member(length, (beam,), (STEEL,), supports=supports, loads=loads, shear=False), *(k * span for k in range(count + 1)))
+    found = run(
+        Member(length, (beam,), (STEEL,), supports=supports, loads=loads, shear=False),
+        *(k * span for k in range(count + 1)),
+    )
     m = [float(v) for v in moments_of_equal_spans(count, loaded)]
     largest = max(abs(v) for v in m) * Q * span**2
     for k in range(count + 1):

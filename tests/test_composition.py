@@ -1,5 +1,6 @@
 """What each part really contributes where parts overlap, lie in each other or are cut."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -7,6 +8,7 @@ import math
 import numpy as np
 import pytest
 from common import CLOSED, close
+
 from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon
@@ -38,7 +40,12 @@ def lens(r: float, s: float, gap: float) -> float:
     """Area that two circles have in common (radii r and s, centres `gap` apart)."""
     p = (gap * gap + r * r - s * s) / (2 * gap)
     q = gap - p
-    return r * r * math.acos(p / r) - p * math.sqrt(r * r - p * p) + s * s * math.acos(q / s) - q * math.sqrt(s * s - q * q)
+    return (
+        r * r * math.acos(p / r)
+        - p * math.sqrt(r * r - p * p)
+        + s * s * math.acos(q / s)
+        - q * math.sqrt(s * s - q * q)
+    )
 
 
 def segment(r: float, level: float) -> tuple[float, float, float]:
@@ -136,7 +143,9 @@ def test_the_same_outline_twice() -> None:
 
 
 def test_outlines_that_share_an_edge_do_not_overlap() -> None:
-    one = make("I", depth=0.3, web=0.01, top_width=0.1, top_flange=0.01, bottom_width=0.1, bottom_flange=0.01, radius=0.012)
+    one = make(
+        "I", depth=0.3, web=0.01, top_width=0.1, top_flange=0.01, bottom_width=0.1, bottom_flange=0.01, radius=0.012
+    )
     m = net(one, plate(0.1, 0.02, 0.0, 0.16), plate(0.145, 0.02, 0.0775, 0.0))
     close(m.area[1, 0], 0.002, CLOSED)
     close(m.area[0, 0], 0.002 + 0.01 * 0.28 + (4 - math.pi) * 0.012**2, CLOSED)

@@ -1,5 +1,6 @@
 """Largest deflections, moments and shear forces, and the places where they are, against closed forms."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -7,6 +8,7 @@ import math
 import numpy as np
 import pytest
 from common import CLOSED, INF, STEEL, cantilever, close, fixed, part, pin, roller, run, simple, uniform
+
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.description import Hinge, Member
 from fishbelly.member.extremes import largest, values_at
@@ -21,7 +23,9 @@ PLACE = 1e-7
 
 def beam(*loads: object, supports: tuple = (), length: float = L, **more: object) -> Member:
     piece = part("b", "rectangle", length, width=0.1, depth=0.2)
-    return Member(length, (piece,), (STEEL,), supports=supports or simple(length), loads=loads, **({"shear": False} | more))
+    return Member(
+        length, (piece,), (STEEL,), supports=supports or simple(length), loads=loads, **({"shear": False} | more)
+    )
 
 
 def peak(found: dict, value: float, at: float, smooth: bool = True) -> None:
@@ -133,7 +137,9 @@ def test_extremes_against_a_dense_table() -> None:
         # half a step off a parabola's top
         assert w.max() >= best * (1 - 1e-6)
         one = largest(panels, sign * total.deflection[0])
-        assert one.value == best and float(values_at(panels, sign * total.deflection[0], np.array([one.at]))[0]) == pytest.approx(best, rel=1e-12)
+        assert one.value == best and float(
+            values_at(panels, sign * total.deflection[0], np.array([one.at]))[0]
+        ) == pytest.approx(best, rel=1e-12)
 
 
 def test_nothing_moves() -> None:

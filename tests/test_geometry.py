@@ -1,5 +1,6 @@
 """Where parts stand at any x: placing, followers, pairs, turning, haunches, notches and openings."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -8,6 +9,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from common import CLOSED, PROMISED, STEEL, TIMBER, close, part, run, simple, station, uniform
+
 from fishbelly.member.description import Haunch, Member, Notch, Opening, Part, Placing, Shape
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.laws import constant, parabola, steps, straight
@@ -327,7 +329,13 @@ def test_notch_cuts_from_each_side() -> None:
 
 def test_notch_reach_takes_stiffness_and_leaves_mass() -> None:
     m = member(HOST, notches=(Notch("host", constant(0.05), 3.0, 4.0, reach=0.5),))
-    for x, cut, light in ((2.4, False, False), (2.6, True, False), (3.5, True, True), (4.4, True, False), (4.6, False, False)):
+    for x, cut, light in (
+        (2.4, False, False),
+        (2.6, True, False),
+        (3.5, True, True),
+        (4.4, True, False),
+        (4.6, False, False),
+    ):
         found = section_at(m, x)
         close(found["EI_y"], 210e9 * 0.2 * (0.35 if cut else 0.4) ** 3 / 12, CLOSED)
         close(found["mass"], 7850 * 0.2 * (0.35 if light else 0.4), CLOSED)
@@ -346,7 +354,9 @@ def test_notch_that_deepens_along_a_law_and_its_reach() -> None:
 
 
 def test_weight_of_a_notched_beam_counts_the_notch_alone() -> None:
-    m = member(HOST, notches=(Notch("host", constant(0.05), 3.0, 4.0, reach=0.5),), supports=simple(L), loads=(SelfWeight(),))
+    m = member(
+        HOST, notches=(Notch("host", constant(0.05), 3.0, 4.0, reach=0.5),), supports=simple(L), loads=(SelfWeight(),)
+    )
     found = run(m)
     total = sum(s["vertical"] for s in found["supports"])
     close(total, 9.80665 * 7850 * 0.2 * (0.4 * L - 0.05 * 1.0), CLOSED)
@@ -360,7 +370,13 @@ def test_a_follower_ignores_the_notch() -> None:
 def test_a_short_notch_is_not_missed() -> None:
     """A notch of 1 % of the length: hand integral of the extra curvature."""
     w = 0.08
-    m = member(HOST, notches=(Notch("host", constant(0.2), 4.0 - w / 2, 4.0 + w / 2),), supports=simple(L), loads=(uniform(1e4, L),), shear=False)
+    m = member(
+        HOST,
+        notches=(Notch("host", constant(0.2), 4.0 - w / 2, 4.0 + w / 2),),
+        supports=simple(L),
+        loads=(uniform(1e4, L),),
+        shear=False,
+    )
     plain = 210e9 * 0.2 * 0.4**3 / 12
     thin = plain / 8
     nodes, weights = np.polynomial.legendre.leggauss(6)
@@ -420,7 +436,13 @@ def test_pieces_over_an_opening_share_the_shear_angle() -> None:
 def test_deflection_over_a_round_opening() -> None:
     """Root-like ends of the hole: the extra curvature integrated over the circle by its own angle."""
     d, at_x = 0.24, 3.0
-    m = member(HOST, openings=(Opening(at_x, ("host",), diameter=d),), supports=simple(L), loads=(uniform(1e4, L),), shear=False)
+    m = member(
+        HOST,
+        openings=(Opening(at_x, ("host",), diameter=d),),
+        supports=simple(L),
+        loads=(uniform(1e4, L),),
+        shear=False,
+    )
     nodes, weights = np.polynomial.legendre.leggauss(80)
     angle = 0.5 * np.pi * nodes
     x, hole = at_x + d / 2 * np.sin(angle), d * np.cos(angle)
@@ -436,7 +458,15 @@ def test_deflection_over_a_round_opening() -> None:
 
 def test_groove_takes_from_its_part_alone() -> None:
     groove = replace(
-        part("groove", "rectangle", L, material=None, width=0.05, depth=0.1, place=Placing("centred_on", "host", flush="bottom")),
+        part(
+            "groove",
+            "rectangle",
+            L,
+            material=None,
+            width=0.05,
+            depth=0.1,
+            place=Placing("centred_on", "host", flush="bottom"),
+        ),
         cuts=("host",),
         start=2.0,
         end=3.0,
@@ -468,7 +498,11 @@ def test_parts_that_begin_to_overlap_along_the_member() -> None:
     def EI(x: np.ndarray) -> np.ndarray:
         top = -0.5 + 0.2 * x / L
         over = np.clip(top + 0.4, 0.0, 0.02)
-        pieces = ((11e9 * 0.2, -0.4, 0.0), (210e9 * 0.1, top - 0.02, top), (-11e9 * 0.1, -0.4 + np.maximum(top - 0.02 + 0.4, 0.0), -0.4 + np.maximum(top - 0.02 + 0.4, 0) + over))
+        pieces = (
+            (11e9 * 0.2, -0.4, 0.0),
+            (210e9 * 0.1, top - 0.02, top),
+            (-11e9 * 0.1, -0.4 + np.maximum(top - 0.02 + 0.4, 0.0), -0.4 + np.maximum(top - 0.02 + 0.4, 0) + over),
+        )
         ea = sum(e * (b - a) for e, a, b in pieces)
         es = sum(e * (b**2 - a**2) / 2 for e, a, b in pieces)
         return sum(e * (b**3 - a**3) / 3 for e, a, b in pieces) - es**2 / ea
@@ -500,7 +534,15 @@ def test_a_tapering_part_far_from_the_datum(kind: str, far: float) -> None:
     sizes = {
         "rectangle": {"width": 0.1, "depth": law},
         "circle": {"diameter": law},
-        "I": {"depth": law, "web": 0.01, "top_width": 0.1, "bottom_width": 0.1, "top_flange": 0.01, "bottom_flange": 0.01, "radius": 0.01},
+        "I": {
+            "depth": law,
+            "web": 0.01,
+            "top_width": 0.1,
+            "bottom_width": 0.1,
+            "top_flange": 0.01,
+            "bottom_flange": 0.01,
+            "radius": 0.01,
+        },
     }[kind]
     found = []
     for z in (0.0, -far):

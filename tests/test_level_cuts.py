@@ -7,11 +7,12 @@ import math
 import numpy as np
 import pytest
 from common import CLOSED, close
+from test_outlines import ALL
+
 from fishbelly.sections.area_moments import area_moments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.level_cuts import events, pieces, widths
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon
-from test_outlines import ALL
 
 
 def make(kind: str, y: float = 0.0, z: float = 0.0, **dimensions: float) -> Outline:
@@ -88,7 +89,9 @@ def test_integrated_widths_are_the_area_moments(kind: str, turn: float) -> None:
     close(float((first * weight).sum()), float(exact.area[0] * exact.y[0]), tolerance, area * 0.1)
     close(float((w * z * z * weight).sum()), float(exact.zz[0] + exact.area[0] * exact.z[0] ** 2), tolerance, size)
     close(float((second * weight).sum()), float(exact.yy[0] + exact.area[0] * exact.y[0] ** 2), tolerance, size)
-    close(float((first * z * weight).sum()), float(exact.yz[0] + exact.area[0] * exact.y[0] * exact.z[0]), tolerance, size)
+    close(
+        float((first * z * weight).sum()), float(exact.yz[0] + exact.area[0] * exact.y[0] * exact.z[0]), tolerance, size
+    )
 
 
 def test_bars_that_touch_leave_no_gap_and_no_overlap() -> None:

@@ -7,6 +7,7 @@ import math
 import numpy as np
 import pytest
 from common import CLOSED, close
+
 from fishbelly.sections.area_moments import AreaMoments, area_moments
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon
 
@@ -100,7 +101,7 @@ def test_i_shape(radius: float) -> None:
         check(m, *sum_of_rectangles(*rectangles))
         return
     a, c, own = spandrel(radius)
-    area, zz, yy, y, z, _ = sum_of_rectangles(*rectangles)
+    area, zz, yy, _, z, _ = sum_of_rectangles(*rectangles)
     corners = [(s * (w / 2 + c), e) for s in (-1, 1) for e in (low + c, high - c)]
     total = area + 4 * a
     z_all = (area * z + sum(a * e for _, e in corners)) / total
@@ -113,7 +114,9 @@ def test_tee_channel_and_angle_with_sharp_corners() -> None:
     h, b, w, f = 0.3, 0.2, 0.012, 0.018
     tee = moments("tee", depth=h, width=b, web=w, flange=f, radius=0.0)
     check(tee, *sum_of_rectangles((-w / 2, -h / 2, w / 2, h / 2 - f), (-b / 2, h / 2 - f, b / 2, h / 2)))
-    channel = moments("channel", depth=h, width=b, web=w, flange=f, radius=0.0, toe_radius=0.0, slope=0.0, flange_at=0.0)
+    channel = moments(
+        "channel", depth=h, width=b, web=w, flange=f, radius=0.0, toe_radius=0.0, slope=0.0, flange_at=0.0
+    )
     check(channel, *sum_of_rectangles((0, -h / 2, w, h / 2), (w, -h / 2, b, -h / 2 + f), (w, h / 2 - f, b, h / 2)))
     angle = moments("angle", depth=h, width=b, web=w, flange=f, radius=0.0, toe_radius=0.0)
     check(angle, *sum_of_rectangles((0, 0, w, h), (w, 0, b, f)))
@@ -170,7 +173,9 @@ def test_regular_polygon(sides: int) -> None:
     inner_area, inner = second(flat / 2 - wall)
     check(hollow, area - inner_area, i - inner, i - inner)
     # it stands on a flat
-    left, bottom, right, top = (float(v[0]) for v in outline("regular polygon", sides=sides, across_flats=flat, wall=0.0).bounds())
+    left, bottom, right, top = (
+        float(v[0]) for v in outline("regular polygon", sides=sides, across_flats=flat, wall=0.0).bounds()
+    )
     assert bottom == pytest.approx(-flat / 2, rel=1e-14)
     assert right == pytest.approx(-left, rel=1e-12)
     assert top == pytest.approx(flat / 2 if sides % 2 == 0 else flat / 2 / math.cos(math.pi / sides), rel=1e-12)
@@ -199,9 +204,15 @@ ALL = {
     "circle": {"diameter": 0.3},
     "tube": {"diameter": 0.3, "wall": 0.02},
     "box": {"width": 0.2, "depth": 0.3, "web": 0.01, "flange": 0.02, "radius": 0.02, "inner_radius": 0.01},
-    "I": {"depth": 0.4, "web": 0.01, "top_width": 0.2, "top_flange": 0.02, "bottom_width": 0.1, "bottom_flange": 0.01, "radius": 0.02},
+    "I": {
+        "depth": 0.4, "web": 0.01, "top_width": 0.2, "top_flange": 0.02, "bottom_width": 0.1, "bottom_flange": 0.01,
+        "radius": 0.02,
+    },
     "tee": {"depth": 0.3, "width": 0.2, "web": 0.01, "flange": 0.02, "radius": 0.015},
-    "channel": {"depth": 0.3, "width": 0.1, "web": 0.01, "flange": 0.02, "radius": 0.015, "toe_radius": 0.006, "slope": 0.05, "flange_at": 0.05},
+    "channel": {
+        "depth": 0.3, "width": 0.1, "web": 0.01, "flange": 0.02, "radius": 0.015, "toe_radius": 0.006, "slope": 0.05,
+        "flange_at": 0.05,
+    },
     "angle": {"depth": 0.2, "width": 0.1, "web": 0.02, "flange": 0.015, "radius": 0.015, "toe_radius": 0.006},
     "trapezoid": {"top_width": 0.2, "bottom_width": 0.3, "depth": 0.1},
     "regular polygon": {"sides": 7, "across_flats": 0.2, "wall": 0.01},

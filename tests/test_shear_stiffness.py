@@ -1,5 +1,6 @@
 """Shear stiffness by level cuts: closed forms where the cuts are exact, their own integral where they are not."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -8,6 +9,7 @@ from dataclasses import replace
 import mpmath as mp
 import pytest
 from common import CLOSED, CONCRETE, STEEL, TIMBER, close, part
+
 from fishbelly.member.description import Member, Opening, Placing
 from fishbelly.member.laws import constant
 from fishbelly.member.section_results import section_at
@@ -63,7 +65,10 @@ def test_sandwich() -> None:
 def test_timbers_with_steel_of_the_same_depth_between() -> None:
     """Side by side and equally deep: the same parabola over the depth, stiffnesses add."""
     steel = part("steel", "rectangle", L, width=0.01, depth=0.2)
-    timber = replace(part("timber", "rectangle", L, material="timber", width=0.05, depth=0.2, place=Placing("left_of", "steel")), pair=True)
+    timber = replace(
+        part("timber", "rectangle", L, material="timber", width=0.05, depth=0.2, place=Placing("left_of", "steel")),
+        pair=True,
+    )
     close(section(steel, timber)["GA_z"], 5 / 6 * 0.2 * (G_STEEL * 0.01 + G_TIMBER * 0.1), CLOSED)
 
 
@@ -154,5 +159,7 @@ def test_shear_stiffness_stays_where_the_member_is_written_differently() -> None
 
 def test_no_shear_modulus_no_value() -> None:
     loose = replace(STEEL, name="loose", G=None)
-    found = section_at(Member(L, (part("b", "rectangle", L, material="loose", width=0.1, depth=0.1),), (loose,), shear=False), 1.0)
+    found = section_at(
+        Member(L, (part("b", "rectangle", L, material="loose", width=0.1, depth=0.1),), (loose,), shear=False), 1.0
+    )
     assert found["GA_z"] is None

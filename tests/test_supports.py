@@ -30,6 +30,7 @@ from common import (
     station,
     uniform,
 )
+
 from fishbelly.member.description import Combination, Hinge, Material, Member, Part, Placing, Station, Support
 from fishbelly.member.faults import CannotCompute, Mechanism, NoStiffness
 from fishbelly.member.laws import Law, constant, straight
@@ -46,7 +47,9 @@ BEAM = part("beam", "rectangle", L, width=B, depth=H)
 
 def beam(*loads: object, supports: tuple[Support, ...] = (), length: float = L, **more: object) -> Member:
     piece = replace(BEAM, end=length)
-    return Member(length, (piece,), (STEEL,), supports=supports or simple(length), loads=loads, **({"shear": False} | more))
+    return Member(
+        length, (piece,), (STEEL,), supports=supports or simple(length), loads=loads, **({"shear": False} | more)
+    )
 
 
 # springs and guides
@@ -175,7 +178,9 @@ def test_ends_held_at_different_levels() -> None:
     close(reaction(found, "B"), Q * L / 3 + N * H / L, CLOSED)
 
 
-@pytest.mark.parametrize("level, up", [("centroid", 0.0), ("top", H / 2), ("bottom", -H / 2), ("datum", H / 2), (-0.16, -0.06)])
+@pytest.mark.parametrize(
+    "level, up", [("centroid", 0.0), ("top", H / 2), ("bottom", -H / 2), ("datum", H / 2), (-0.16, -0.06)]
+)
 def test_axial_force_off_the_centroid_bends(level: str | float, up: float) -> None:
     found = run(beam(Axial(L, P, level=level), supports=cantilever()), 3.0, L)
     close(station(found, 3.0)["N"], P, CLOSED)
@@ -189,7 +194,9 @@ def test_axial_force_through_the_centroid_does_not_bend_beyond_round_off(level: 
     """Two tubes one over the other, the datum line between them: deflections are round-off, and that is no fault."""
     lower = part("lower", "tube", L, diameter=0.1, wall=0.01)
     upper = part("upper", "tube", L, diameter=0.1, wall=0.01, place=Placing("over", "lower"))
-    member = Member(L, (lower, upper), (STEEL,), supports=cantilever(), loads=(Axial(3.75, P, level=level),), shear=False)
+    member = Member(
+        L, (lower, upper), (STEEL,), supports=cantilever(), loads=(Axial(3.75, P, level=level),), shear=False
+    )
     assert abs(station(run(member, L), L)["deflection"]) < 1e-15
 
 
@@ -285,7 +292,9 @@ def test_several_bearings_of_a_long_beam_lift() -> None:
             assert s["vertical"] > 0.0 and abs(w) < 1e-12
         else:
             assert s["vertical"] == 0.0 and w < 0.0
-    without = run(beam(Point(2.5 * L, P), supports=tuple(s for s in supports if s.name in stays), length=n * L), 2.5 * L)
+    without = run(
+        beam(Point(2.5 * L, P), supports=tuple(s for s in supports if s.name in stays), length=n * L), 2.5 * L
+    )
     close(found["deflection"]["down"]["value"], without["deflection"]["down"]["value"], CLOSED)
 
 
@@ -402,7 +411,9 @@ def test_weight_along_an_inclined_member_bends_by_the_centroid_of_mass() -> None
     """A heavy pad with hardly any stiffness on top of an upright pole bends it."""
     pad = Material("pad", 1.0, poisson=0.0, density=2000.0)
     top = part("pad", "rectangle", L, material="pad", width=B, depth=0.1, place=Placing("over", "beam"))
-    member = Member(L, (BEAM, top), (STEEL, pad), supports=cantilever(), loads=(SelfWeight(),), rises=math.pi / 2, shear=False)
+    member = Member(
+        L, (BEAM, top), (STEEL, pad), supports=cantilever(), loads=(SelfWeight(),), rises=math.pi / 2, shear=False
+    )
     found = run(member, 0.0)
     weight = 2000.0 * B * 0.1 * 9.80665
     # weight acts towards -x at 0.15 m above the centroid: sagging
@@ -454,7 +465,7 @@ def test_temperature_over_a_stretch() -> None:
     k = HOT * 30.0 / H
     found = run(beam(Temperature(1.0, 3.0, top=30.0)), 0.0, 3.0)
     # a kink spread over 2 m, centred at 2 m: w(3) by virtual work of the unit moment
-    unit = (0.25 * (3.0**2 - 1.0**2))
+    unit = 0.25 * (3.0**2 - 1.0**2)
     close(station(found, 3.0)["deflection"], -k * unit, CLOSED)
     close(station(found, 0.0)["slope"], -k * 2.0 * 4.0 / 6.0, CLOSED)
 
@@ -657,7 +668,18 @@ HELD_ALONG = Support("X", 0.0, along=INF)
         ((pin("A", 0.0), roller("B", L, across=0.0)), (), Point(3.0, P, direction="across")),
         ((pin("A", 2.0), roller("B", 4.0)), (Hinge(1.0),), Point(0.5, P)),
     ],
-    ids=["nothing", "one pin", "along", "only along", "hinge", "two hinges", "guides", "one spring", "sideways", "loose end"],
+    ids=[
+        "nothing",
+        "one pin",
+        "along",
+        "only along",
+        "hinge",
+        "two hinges",
+        "guides",
+        "one spring",
+        "sideways",
+        "loose end",
+    ],
 )
 def test_mechanisms_are_told_with_their_place(supports: tuple, hinges: tuple, load: object) -> None:
     member = Member(L, (BEAM,), (STEEL,), supports=supports, hinges=hinges, loads=(load,), shear=False)
@@ -708,7 +730,9 @@ def test_beam_pointed_over_its_middle_support_with_a_hinge_there() -> None:
     pieces = in_two_pieces(3.0, 3.0, width=straight([0, 3, L], [B, 0.0, B]))
     supports = (pin("A", 0.0), roller("C", 3.0), roller("B", L))
     loads = (uniform(Q, L),)
-    found = run(Member(L, pieces, (STEEL,), supports=supports, hinges=(Hinge(3.0),), loads=loads, shear=False), 0.0, 3.0)
+    found = run(
+        Member(L, pieces, (STEEL,), supports=supports, hinges=(Hinge(3.0),), loads=loads, shear=False), 0.0, 3.0
+    )
     close(reaction(found, "C"), Q * 3.0, CLOSED)
     # M / EI = q s (a - s) / 2 / (EI s / a) with s from the middle, a = 3: a straight line
     k = Q * 3.0 / (2 * EI)

@@ -3,6 +3,7 @@
 Ratios hold on one machine in one run: both sides are timed one after the other, the best of several.
 """
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -15,7 +16,9 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from common import INF, STEEL, fixed, part, roller, simple, uniform
+from common import INF, STEEL, fixed, part, simple, uniform
+from test_imports import JOB
+
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.description import Haunch, Member
 from fishbelly.member.extremes import values_at
@@ -24,7 +27,6 @@ from fishbelly.member.laws import straight
 from fishbelly.member.moduli import moduli
 from fishbelly.member.profile import group_places
 from fishbelly.member.results import deflect
-from test_imports import JOB
 
 Q, L, B, E = 1.0e4, 6.0, 0.1, 210e9
 
@@ -61,7 +63,9 @@ def by_sections(member: Member) -> Callable:
     return EI
 
 
-def by_boundary_values(breaks: list[float], EI: Callable, clamped: bool, tolerance: float) -> tuple[float, float, float]:
+def by_boundary_values(
+    breaks: list[float], EI: Callable, clamped: bool, tolerance: float
+) -> tuple[float, float, float]:
     """Midspan deflection, slope at the left end and time of scipy's solver, one system for every piece between breaks.
 
     EI takes places of shape (pieces, points).
@@ -76,7 +80,7 @@ def by_boundary_values(breaks: list[float], EI: Callable, clamped: bool, toleran
     def right(s: np.ndarray, y: np.ndarray) -> np.ndarray:
         y = y.reshape(n, 4, -1)
         x = a[:, None] + h[:, None] * s
-        w, t, M, V = (y[:, k] * scale[k] for k in range(4))
+        t, M, V = (y[:, k] * scale[k] for k in (1, 2, 3))
         d = np.stack((t, -M / EI(x), V, np.full_like(V, -Q)), axis=1) / scale[None, :, None]
         return (d * h[:, None, None]).reshape(4 * n, -1)
 
@@ -160,7 +164,7 @@ def test_whole_process(benchmark: object, tmp_path: Path, arguments: list[str], 
     ours = process([*COMMAND, *arguments], tmp_path)
     bare = process([sys.executable, "-c", beside], tmp_path)
     benchmark.pedantic(lambda: process([*COMMAND, *arguments], tmp_path), rounds=1)
-    print(f"\nfishbelly {' '.join(arguments)}: {ours * 1e3:.0f} ms, {beside}: {bare * 1e3:.0f} ms, ratio {ours / bare:.2f}")
+    print(f"\nfishbelly {arguments[0]}: {ours * 1e3:.0f} ms, {beside}: {bare * 1e3:.0f} ms, ratio {ours / bare:.2f}")
     assert ours <= 2.0 * bare
 
 
@@ -169,10 +173,13 @@ def test_peak_memory(benchmark: object, tmp_path: Path) -> None:
     (tmp_path / "job.toml").write_text(JOB, encoding="utf-8")
     script = (
         "import resource, subprocess, sys\n"
-        "subprocess.run([sys.executable, '-c', sys.argv[1], 'deflect', 'job.toml'], check=True, stdout=subprocess.DEVNULL)\n"
+        "command = [sys.executable, '-c', sys.argv[1], 'deflect', 'job.toml']\n"
+        "subprocess.run(command, check=True, stdout=subprocess.DEVNULL)\n"
         "print(resource.getrusage(resource.RUSAGE_CHILDREN).ru_maxrss)\n"
     )
-    ask = lambda: subprocess.run([sys.executable, "-c", script, COMMAND[2]], cwd=tmp_path, capture_output=True, text=True, check=True)
+    ask = lambda: subprocess.run(
+        [sys.executable, "-c", script, COMMAND[2]], cwd=tmp_path, capture_output=True, text=True, check=True
+    )
     done = benchmark.pedantic(ask, rounds=1)
     peak = int(done.stdout) / 1024.0
     print(f"\npeak memory of fishbelly deflect: {peak:.0f} MB")

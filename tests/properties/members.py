@@ -8,10 +8,11 @@ from typing import Any
 
 import numpy as np
 from common import CONCRETE, INF, STEEL, TIMBER, fixed, part, pin, roller, run
+from hypothesis import strategies as st
+
 from fishbelly.member.description import Hinge, Member, Part, Placing, Shape, Support
 from fishbelly.member.laws import Law, constant, parabola, steps, straight
 from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
-from hypothesis import strategies as st
 
 MATERIALS = (STEEL, TIMBER, CONCRETE)
 SPAN = 6.0
@@ -78,19 +79,35 @@ def part_lists(draw: st.DrawFn, most: int = 3) -> tuple[Part, ...]:
         # outlines that vary side by side take long where they cross: two of them are enough
         kind, dimensions = draw(shapes(constant_sizes=k > 1))
         relation = draw(st.sampled_from(["under", "over", "left_of", "right_of", "centred_on"]))
-        flush = draw(st.sampled_from(["left", "middle", "right"] if relation in ("under", "over") else ["top", "middle", "bottom"]))
+        flush = draw(
+            st.sampled_from(
+                ["left", "middle", "right"] if relation in ("under", "over") else ["top", "middle", "bottom"]
+            )
+        )
         start, end = 0.0, SPAN
         if draw(st.booleans()):
             start, end = sorted(draw(st.lists(places, min_size=2, max_size=2, unique=True)))
-        place = Placing(relation, draw(st.sampled_from([p.name for p in found if p.end - p.start == SPAN])), flush=flush)
-        one = part(f"p{k}", kind, end, start=start, material=draw(st.sampled_from(["steel", "timber"])), place=place, **dimensions)
+        place = Placing(
+            relation, draw(st.sampled_from([p.name for p in found if p.end - p.start == SPAN])), flush=flush
+        )
+        one = part(
+            f"p{k}",
+            kind,
+            end,
+            start=start,
+            material=draw(st.sampled_from(["steel", "timber"])),
+            place=place,
+            **dimensions,
+        )
         turn = draw(st.sampled_from([0.0, 0.0, 0.5 * np.pi, 0.3]))
         found.append(replace(one, turn=turn, pair=relation in ("left_of", "right_of") and draw(st.booleans())))
     return tuple(found)
 
 
 @st.composite
-def support_lists(draw: st.DrawFn, level: str = "datum", settles: bool = False) -> tuple[tuple[Support, ...], tuple[Hinge, ...]]:
+def support_lists(
+    draw: st.DrawFn, level: str = "datum", settles: bool = False
+) -> tuple[tuple[Support, ...], tuple[Hinge, ...]]:
     """Supports, with a hinge where they are more than enough."""
     kind = draw(st.sampled_from(["simple", "cantilever", "propped", "fixed", "spans", "springs", "overhang", "hinged"]))
     a, b = sorted(draw(st.lists(places, min_size=2, max_size=2, unique=True)))
@@ -134,19 +151,25 @@ def loads(draw: st.DrawFn, case: str = "load", level: str = "datum", along: bool
 
 
 @st.composite
-def members(draw: st.DrawFn, most: int = 3, count: int = 2, shear: bool | None = None, level: str = "datum", **how: bool) -> Member:
+def members(
+    draw: st.DrawFn, most: int = 3, count: int = 2, shear: bool | None = None, level: str = "datum", **how: bool
+) -> Member:
     """A random member with loads, all of one case."""
     supports, hinges = draw(support_lists(level))
     acting = tuple(draw(loads(level=level, **how)) for _ in range(count))
     with_shear = draw(st.booleans()) if shear is None else shear
-    return Member(SPAN, draw(part_lists(most)), MATERIALS, supports=supports, hinges=hinges, loads=acting, shear=with_shear)
+    return Member(
+        SPAN, draw(part_lists(most)), MATERIALS, supports=supports, hinges=hinges, loads=acting, shear=with_shear
+    )
 
 
 KEYS = ("M", "V", "N", "rotation", "slope", "deflection", "across")
 GRID = tuple(SPAN * k / 12 for k in range(13))
 
 
-def table(member: Member, places_: tuple[float, ...] = GRID, combination: int = 0) -> dict[tuple[float, str], dict[str, float]]:
+def table(
+    member: Member, places_: tuple[float, ...] = GRID, combination: int = 0
+) -> dict[tuple[float, str], dict[str, float]]:
     """Values at places by (x, side); where nothing jumps both sides are the same."""
     found: dict[tuple[float, str], dict[str, float]] = {}
     for row in run(member, *places_, combination=combination)["stations"]:
@@ -187,7 +210,9 @@ def same(
     for place, row in one.items():
         for key in KEYS:
             gap = abs(row[key] - change(key, other[place][key]))
-            assert gap <= tolerance * size[key], f"{key} at {place}: {row[key]} and {other[place][key]}, {gap / size[key]:.1e}"
+            assert gap <= tolerance * size[key], (
+                f"{key} at {place}: {row[key]} and {other[place][key]}, {gap / size[key]:.1e}"
+            )
 
 
 def reversed_law(law: Law, length: float) -> Law:

@@ -1,5 +1,6 @@
 """Random overlapping outlines: what is left of each against polygon booleans with fine chords, and against sums."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 import math
@@ -8,11 +9,12 @@ import numpy as np
 import pytest
 import shapely
 from common import CLOSED, close
-from fishbelly.sections.composition import Composition
-from fishbelly.sections.outlines import OUTLINES, Outline, arcs
 from hypothesis import given
 from hypothesis import strategies as st
 from members import shapes
+
+from fishbelly.sections.composition import Composition
+from fishbelly.sections.outlines import OUTLINES, Outline, arcs
 
 CHORDS = 400
 """Chords to an edge. Inscribed chords of an angle d lose d²/6 of a disc's area: 3e-6 of a quarter at 400."""
@@ -68,11 +70,15 @@ def raw_moments(shape: shapely.Geometry) -> np.ndarray:
     return total
 
 
-def compare(section: Composition, shapes_left: list[shapely.Geometry], gross: list[shapely.Geometry], tolerance: float) -> None:
+def compare(
+    section: Composition, shapes_left: list[shapely.Geometry], gross: list[shapely.Geometry], tolerance: float
+) -> None:
     m = section.moments
     for k, left in enumerate(shapes_left):
         a, y, z = (float(v[k, 0]) for v in (m.area, m.y, m.z))
-        found = np.array([a, a * y, a * z, m.zz[k, 0] + a * z * z, m.yy[k, 0] + a * y * y, m.yz[k, 0] + a * y * z], dtype=float)
+        found = np.array(
+            [a, a * y, a * z, m.zz[k, 0] + a * z * z, m.yy[k, 0] + a * y * y, m.yz[k, 0] + a * y * z], dtype=float
+        )
         whole = np.abs(raw_moments(gross[k]))
         reach = max(abs(v) for v in gross[k].bounds)
         size = whole[0] * np.array([1.0, reach, reach, reach**2, reach**2, reach**2])
@@ -80,7 +86,9 @@ def compare(section: Composition, shapes_left: list[shapely.Geometry], gross: li
         assert gap.max() <= tolerance, f"part {k}: {gap}"
 
 
-def left_of(gross: list[shapely.Geometry], cuts: list[tuple[shapely.Geometry, tuple[int, ...]]]) -> list[shapely.Geometry]:
+def left_of(
+    gross: list[shapely.Geometry], cuts: list[tuple[shapely.Geometry, tuple[int, ...]]]
+) -> list[shapely.Geometry]:
     """Each part less all later ones and less the cuts that aim at it."""
     result = []
     for k, shape in enumerate(gross):

@@ -1,15 +1,13 @@
 """What must hold for any member, whatever it is made of: equilibrium, linearity, reciprocity, and no dependence on
 how the same member is written down."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
 from dataclasses import replace
 
 import pytest
 from common import ROUND_OFF, case, part, reaction, run
-from fishbelly.member.description import Member, Part, Placing, Shape, Station
-from fishbelly.member.laws import constant
-from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
 from hypothesis import given
 from hypothesis import strategies as st
 from members import (
@@ -31,6 +29,10 @@ from members import (
     support_lists,
     table,
 )
+
+from fishbelly.member.description import Member, Part, Placing, Shape, Station
+from fishbelly.member.laws import constant
+from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
 
 
 def resultants(load: Load) -> tuple[float, float, float, float]:
@@ -89,7 +91,10 @@ def test_reciprocity(member: Member, a: float, b: float, turn_a: bool, turn_b: b
     by_two = second[a, "left"]["rotation" if turn_a else "deflection"]
     by_one = first[b, "left"]["rotation" if turn_b else "deflection"]
     # what both loads do under themselves bounds what they do to each other
-    own = first[a, "left"]["rotation" if turn_a else "deflection"], second[b, "left"]["rotation" if turn_b else "deflection"]
+    own = (
+        first[a, "left"]["rotation" if turn_a else "deflection"],
+        second[b, "left"]["rotation" if turn_b else "deflection"],
+    )
     assert abs(by_two - by_one) <= ROUND_OFF * (abs(own[0] * own[1]) ** 0.5 + abs(by_one)) + 1e-300
 
 
@@ -103,7 +108,9 @@ def from_the_other_end(member: Member) -> Member:
         return replace(flipped, value=-load.value) if isinstance(load, Couple | Axial) else flipped
 
     change = lambda law: reversed_law(law, SPAN)
-    parts = tuple(replace(p, start=SPAN - p.end, end=SPAN - p.start, shape=map_laws(p.shape, change)) for p in member.parts)
+    parts = tuple(
+        replace(p, start=SPAN - p.end, end=SPAN - p.start, shape=map_laws(p.shape, change)) for p in member.parts
+    )
     supports = tuple(replace(s, at=SPAN - s.at) for s in member.supports)
     hinges = tuple(replace(h, at=SPAN - h.at) for h in member.hinges)
     return replace(member, parts=parts, supports=supports, hinges=hinges, loads=tuple(map(turned, member.loads)))
@@ -143,7 +150,9 @@ def test_cutting_the_last_part_in_two_along_x(member: Member, x: float) -> None:
 def test_cutting_a_part_in_two_over_its_depth(member: Member, width: float, depth: object, share: float) -> None:
     whole = part("whole", "rectangle", SPAN, width=width, depth=depth)
     upper = part("upper", "rectangle", SPAN, width=width, depth=depth.times(share))
-    lower = part("lower", "rectangle", SPAN, width=width, depth=depth.times(1.0 - share), place=Placing("under", "upper"))
+    lower = part(
+        "lower", "rectangle", SPAN, width=width, depth=depth.times(1.0 - share), place=Placing("under", "upper")
+    )
     same(table(replace(member, parts=(whole,))), table(replace(member, parts=(upper, lower))), ROUND_OFF)
 
 
@@ -171,7 +180,10 @@ def test_naming_stations_moves_nothing(member: Member, more: list[float]) -> Non
 def test_splitting_a_load(member: Member, q: float, x: float, share: float) -> None:
     whole = Distributed(((0.0, q), (SPAN, q)))
     along = (Distributed(((0.0, q), (x, q))), Distributed(((x, q), (SPAN, q))))
-    shares = (Distributed(((0.0, share * q), (SPAN, share * q))), Distributed(((0.0, (1 - share) * q), (SPAN, (1 - share) * q))))
+    shares = (
+        Distributed(((0.0, share * q), (SPAN, share * q))),
+        Distributed(((0.0, (1 - share) * q), (SPAN, (1 - share) * q))),
+    )
     one = table(replace(member, loads=(whole,)))
     for pieces in (along, shares):
         same(one, table(replace(member, loads=pieces)), ROUND_OFF)
@@ -205,6 +217,7 @@ def test_scaling_every_modulus(member: Member, factor: float) -> None:
 @given(part_lists(3), loads(across=False, along=False))
 def test_a_stiff_spring_is_a_support_and_a_soft_one_is_none(parts: tuple[Part, ...], load: Load) -> None:
     from common import INF, fixed
+
     from fishbelly.member.description import Support
 
     held = (fixed("A", 0.0, along=INF),)
@@ -214,7 +227,9 @@ def test_a_stiff_spring_is_a_support_and_a_soft_one_is_none(parts: tuple[Part, .
     R, w = reaction(rigid, "S"), abs(free["ends"]["right"]["deflection"])
     size = abs(R) + 1e-3
     assert reaction(stiff, "S") == pytest.approx(R, abs=1e-6 * size)  # 1e16 N/m is 1e-7 of soft members and less
-    assert soft["ends"]["right"]["deflection"] == pytest.approx(free["ends"]["right"]["deflection"], abs=1e-6 * w + 1e-12)
+    assert soft["ends"]["right"]["deflection"] == pytest.approx(
+        free["ends"]["right"]["deflection"], abs=1e-6 * w + 1e-12
+    )
 
 
 def test_shape_is_kept_by_the_helper_that_maps_laws() -> None:

@@ -1,11 +1,13 @@
 """The same job in millimetres and kilonewtons or in inches and kips, through the text of the job file."""
 
+# ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
-from fishbelly.cli.job_file import read_job
 from hypothesis import given
 from hypothesis import strategies as st
 from members import GRID, same, table
+
+from fishbelly.cli.job_file import read_job
 
 INCH, KIP, FOOT = 0.0254, 4.4482216152605, 0.3048
 """Metres to an inch and a foot, kilonewtons to a kip: exact by definition (NIST SP 811, 2008, B.8)."""
