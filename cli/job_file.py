@@ -103,6 +103,7 @@ def _job(report: Report, text: str) -> Job:
     report.data.update({kind: list_of_tables(kind, report) for kind in TABLES if kind in report.data})
     top = _top_level(report)
     length = None if top is None else top.length
+    report.length = length
     report.catalogue = read_catalogue(report)
     materials, material_names = read_materials(report)
     sizes: dict[str, str] = {}

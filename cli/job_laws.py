@@ -201,7 +201,7 @@ def _out_of_order(xs: list[float], value: list[Any], increasing: bool) -> list[I
     return ills
 
 
-def finish(written: WrittenLaw, folder: FilePath, end: float | None) -> Law:
+def finish(written: WrittenLaw, folder: FilePath, end: float | None, length: float | None = None) -> Law:
     """Give the law itself, once the part's end and the job's folder are known.
 
     Parameters
@@ -212,6 +212,8 @@ def finish(written: WrittenLaw, folder: FilePath, end: float | None) -> Law:
         Where the job lies.
     end : float or None
         Where the part ends [m]; None where it is not known.
+    length : float or None
+        Length of the member [m], for stations of a file.
 
     Raises
     ------
@@ -229,7 +231,8 @@ def finish(written: WrittenLaw, folder: FilePath, end: float | None) -> Law:
             )
         return written.law
     if isinstance(written, Columns):
-        xs, values = read_columns(folder / written.file, written.x, written.value, written.kind, written.sign)
+        where = folder / written.file
+        xs, values = read_columns(where, written.x, written.value, written.kind, written.sign, length)
         return straight(xs, values)
     return written
 

@@ -81,7 +81,7 @@ def written_shape(table: PartTable, kind: str, end: float, path: Path, report: R
 def finished(value: Any, end: float | None, path: Path, report: Report) -> Law | None:
     """Return the law itself, or note why it cannot be had."""
     try:
-        return finish(value, report.folder, end)
+        return finish(value, report.folder, end, report.length)
     except ValueFault as fault:
         report.ills(path, fault)
         return None

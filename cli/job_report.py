@@ -48,6 +48,8 @@ class Report:
         Where its keys stand.
     folder : Path
         Folder of the job, for files beside it.
+    length : float or None
+        Length of the member [m], once it is known.
     named_at : dict of str to tuple
         Where the job first names a material of the catalogue.
     published : dict of str to CatalogMaterial
@@ -60,6 +62,7 @@ class Report:
     data: dict[str, Any]
     lines: Lines
     folder: FilePath
+    length: float | None = None
     faults: list[Fault] = field(default_factory=list)
     warnings: list[str] = field(default_factory=list)
     named_at: dict[str, Path] = field(default_factory=dict)

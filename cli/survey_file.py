@@ -1,7 +1,8 @@
-"""Columns of a survey: stations and values from a csv file beside the job.
+"""Columns of a survey: stations and values from a csv file or a workbook beside the job.
 
 Comma, semicolon or tab between columns; decimal commas where it is not the comma; a byte order mark, blank
-lines and lines that begin with ``#`` are passed over. The first line left is the header, with units.
+lines and lines that begin with ``#`` are passed over. The first line left is the header, with units. Of a workbook
+the sheet that was open when it was saved is read, with the values its formulas had.
 """
 
 from __future__ import annotations
@@ -18,7 +19,9 @@ from fishbelly.cli.units import unit_factor
 Row = tuple[int, list[str]]
 
 
-def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tuple[list[float], list[float]]:
+def read_columns(
+    path: Path, x: str, value: str, kind: Kind, sign: Sign, length: float | None = None
+) -> tuple[list[float], list[float]]:
     """Read stations and values.
 
     Parameters
@@ -31,6 +34,8 @@ def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tupl
         What the values are.
     sign : str
         Which signs will do for them.
+    length : float, optional
+        Length of the member [m]; stations outside it are faults.
 
     Returns
     -------
@@ -63,32 +68,29 @@ def read_columns(path: Path, x: str, value: str, kind: Kind, sign: Sign) -> tupl
             pair.append(_cell(path, line, cells, column, header[column], unit, of, one_sign, comma, ills))
         found.append((line, pair[0], pair[1]))
     ills += _order(path, found)
+    if length is not None:
+        ills += _outside(path, found, length)
     if ills:
         raise ValueFault(*ills)
     return [row[1] or 0.0 for row in found], [row[2] or 0.0 for row in found]
 
 
 def read_rows(path: Path) -> tuple[list[Row], bool]:
-    """Read the rows of a csv file that hold something, with their line numbers, and whether commas are decimal.
+    """Read the rows that hold something, with their line numbers, and whether commas are decimal.
 
     Raises
     ------
     ValueFault
         Where the file is not there or is no text.
     """
-    if path.suffix.lower() in (".xlsx", ".xlsm", ".xls", ".ods"):
-        raise ValueFault(
-            Ill(
-                ("file",),
-                "",
-                f"{as_written(path.name)}: workbooks are not built yet in this version",
-                "save it as .csv",
-            )
-        )
+    if path.suffix.lower() in (".xls", ".ods"):
+        raise ValueFault(Ill(("file",), "a .csv or .xlsx file", as_written(path.name), "save it as one of these"))
     try:
+        if path.suffix.lower() in (".xlsx", ".xlsm"):
+            return _sheet_rows(path), False
         text = path.read_text(encoding="utf-8-sig")
     except FileNotFoundError:
-        near = suggest(path.name, sorted(p.name for p in path.parent.glob("*.csv")))
+        near = suggest(path.name, sorted(p.name for p in path.parent.iterdir() if p.suffix in (".csv", ".xlsx")))
         raise ValueFault(Ill(("file",), "", f"{as_written(path.name)}: no such file beside the job", near)) from None
     except (OSError, UnicodeDecodeError, ValueError):
         raise ValueFault(Ill(("file",), "a text file with columns", as_written(path.name))) from None
@@ -98,6 +100,28 @@ def read_rows(path: Path) -> tuple[list[Row], bool]:
     delimiter = next((d for d in (";", "\t") if d in head), ",")
     cells = csv.reader((line for _, line in kept), delimiter=delimiter, skipinitialspace=True)
     return [(k, row) for (k, _), row in zip(kept, cells, strict=False)], delimiter != ","
+
+
+def _sheet_rows(path: Path) -> list[Row]:
+    """Rows of the active sheet of a workbook, cells as text; numbers keep all their digits."""
+    from zipfile import BadZipFile
+
+    from openpyxl import load_workbook
+    from openpyxl.utils.exceptions import InvalidFileException
+
+    try:
+        book = load_workbook(path, read_only=True, data_only=True)
+    except (BadZipFile, InvalidFileException, KeyError) as error:
+        raise ValueError(path.name) from error
+    try:
+        rows: list[Row] = []
+        for line, row in enumerate(book.active.iter_rows(values_only=True), 1):
+            cells = ["" if cell is None else str(cell).strip() for cell in row]
+            if any(cells) and not cells[0].startswith("#"):
+                rows.append((line, cells))
+        return rows
+    finally:
+        book.close()
 
 
 def _column(
@@ -145,6 +169,15 @@ def _cell(
         }[sign]
         ills.append(Ill((), bound, as_written(text) if text else "an empty cell", file=path.name, line=line, key=title))
         return None
+
+
+def _outside(path: Path, found: list[tuple[int, float | None, float | None]], length: float) -> list[Ill]:
+    slack = 1e-9 * length
+    return [
+        Ill((), f"a station on the member, 0 to {length:.6g} m", f"{x:.6g} m", file=path.name, line=line)
+        for line, x, _ in found
+        if x is not None and not -slack <= x <= length + slack
+    ]
 
 
 def _order(path: Path, found: list[tuple[int, float | None, float | None]]) -> list[Ill]:

@@ -595,11 +595,3 @@ def test_survey_file(tmp_path, monkeypatch, content, message):
     with pytest.raises(JobFaults) as caught:
         read_job("j.toml")
     assert [str(f) for f in caught.value.faults] == [message]
-
-
-def test_workbooks_are_refused_by_name():
-    text = BASE.replace('"200 mm"', '{ file = "s.xlsx", x = "x", value = "d" }')
-    assert (
-        only_fault(text)
-        == ':10: part "beam", depth.file: "s.xlsx": workbooks are not built yet in this version; save it as .csv'
-    )
