@@ -14,8 +14,7 @@ from typing import Any
 import click
 
 from fishbelly.cli.command_group import LazyGroup
-
-DONE, NOT_MET, WRONG, CANNOT = 0, 1, 2, 3
+from fishbelly.cli.last_net import DONE, NOT_MET, WRONG, caught, discard_stdout
 
 NOT_BUILT = {
     "steps": "the fewest prismatic pieces that stand for the member in a frame model",
@@ -168,11 +167,7 @@ def section(
     read, at = _read(job, places, outputs, force)
     from fishbelly.member.section_results import section_at
 
-    if to is not None and to not in [m.name for m in read.member.materials]:
-        from fishbelly.cli.faults import suggest
-
-        hint = suggest(to, [m.name for m in read.member.materials])
-        raise click.UsageError(f'--to: no part is of material "{to}"' + (f"; {hint}" if hint else ""))
+    _known_material(to, read.member)
     data = section_at(read.member, at[0], side, to)
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
@@ -186,17 +181,45 @@ def section(
     metavar="X",
     help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
 )
+@click.option("--equal", type=click.IntRange(1, 10_000), metavar="N", help="List N equal steps instead.")
+@click.option("--breaks", is_flag=True, help="List the breaks alone.")
+@click.option("--to", metavar="MATERIAL", help="Also give A, I, W and the axis, transformed to one material.")
 @_outputs
-def stiffness(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+def stiffness(
+    job: str,
+    at: tuple[str, ...],
+    equal: int | None,
+    breaks: bool,
+    to: str | None,
+    as_json: bool,
+    outputs: tuple[str, ...],
+    force: bool,
+) -> int:
     """Show the EI(x) table: stiffness, centroid and mass along the member, every break shown.
 
-    Example: fishbelly stiffness my-beam.toml -o ei.csv
+    Where anything jumps there are two rows, left and right of the jump. For a frame model:
+    fishbelly stiffness my-beam.toml --equal 12 --to steel -o frame.csv
     """
+    if (bool(at) + breaks + (equal is not None)) > 1:
+        raise click.UsageError("expected one of --at, --equal and --breaks, got more")
     read, places = _read(job, at, outputs, force)
+    _known_material(to, read.member)
+    from fishbelly.member.places import places_along
     from fishbelly.member.section_results import stiffness as table
 
-    data = table(read.member, places or None)
+    if equal is not None or breaks:
+        places = places_along(read.member, equal)
+    data = table(read.member, places or None, to)
     return _finish("stiffness", data, read, as_json, outputs, force, listed=bool(places))
+
+
+def _known_material(to: str | None, member: Any) -> None:
+    names = [m.name for m in member.materials]
+    if to is not None and to not in names:
+        from fishbelly.cli.faults import suggest
+
+        hint = suggest(to, names)
+        raise click.UsageError(f'--to: no part is of material "{to}"' + (f"; {hint}" if hint else ""))
 
 
 @cli.command()
@@ -333,44 +356,7 @@ def run(arguments: Sequence[str] | None = None) -> int:
         click.echo("fishbelly: stopped", err=True)
         return 130
     except BrokenPipeError:
-        _discard_stdout()
+        discard_stdout()
         return DONE
     except Exception as error:
-        return _caught(error)
-
-
-def _discard_stdout() -> None:
-    """Send what is still buffered for standard output to nowhere, so that leaving does not fail on it again."""
-    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-
-
-def _caught(error: Exception) -> int:
-    """Turn what the rooms raise into words; whatever is left falls into the last net."""
-    from fishbelly.cli.faults import JobFaults
-    from fishbelly.cli.files import FileFault
-    from fishbelly.member.faults import CannotCompute
-
-    if isinstance(error, JobFaults):
-        click.echo(str(error), err=True)
-        return WRONG
-    if isinstance(error, FileFault):
-        click.echo(f"fishbelly: {error}", err=True)
-        return WRONG
-    if isinstance(error, CannotCompute):
-        click.echo(f"fishbelly: {error}", err=True)
-        return CANNOT
-    if isinstance(error, OSError) and error.filename is None:
-        click.echo(f"fishbelly: cannot write the result: {error.strerror}", err=True)
-        _discard_stdout()
-        return WRONG
-    if os.environ.get("FISHBELLY_TRACE"):
-        import traceback
-
-        traceback.print_exc()
-    click.echo(
-        f"fishbelly: stopped on something it did not expect ({type(error).__name__}: {error}).\n"
-        "Nothing was written. Please report this with the job file and the command; setting\n"
-        "FISHBELLY_TRACE=1 shows where it happened.",
-        err=True,
-    )
-    return CANNOT
+        return caught(error)

@@ -135,6 +135,9 @@ def stiffness_grid(data: Row) -> Grid:
     EI = max((abs(r[k]) for r in rows for k in ("EI_y", "EI_z") if r[k] is not None), default=0.0)
     levels = max((abs(r[k]) for r in rows for k in ("z_c", "y_c") if r[k] is not None), default=0.0)
 
+    if "transformed" in data:
+        return _transformed_grid(data, levels)
+
     def relative(row: Row) -> Any:
         return None if row["EI_y"] is None or first is None else row["EI_y"] / first
 
@@ -153,4 +156,27 @@ def stiffness_grid(data: Row) -> Grid:
             column(rows, "y_c", "length", optional=True, scale=levels),
             Column("side", TEXT, tuple(sides(rows)), optional=True),
         ),
+    )
+
+
+def _transformed_grid(data: Row, levels: float) -> Grid:
+    """Write the section of one material that stands for the member, as frame models want it."""
+    rows, to = data["stations"], data["transformed"]
+
+    def of(key: str) -> Any:
+        return lambda row: row["transformed"][key]
+
+    return Grid(
+        f"Stiffness along the member, transformed to {to['to']}",
+        (
+            column(rows, "x", "position"),
+            column(rows, "A", "area", of("A")),
+            column(rows, "I_y", "second moment", of("I_y")),
+            column(rows, "W_top", "section modulus", of("W_top")),
+            column(rows, "W_bottom", "section modulus", of("W_bottom")),
+            column(rows, "axis z_c", "length", "z_c", scale=levels),
+            column(rows, "I_z", "second moment", of("I_z")),
+            Column("side", TEXT, tuple(sides(rows)), optional=True),
+        ),
+        "W: section modulus, elastic, of the top and of the bottom; z_c: level of the axis above the datum line",
     )

@@ -22,6 +22,13 @@ def default_places(member: Member) -> Array:
     return merged([*np.linspace(0.0, member.length, EVEN).tolist(), *breakpoints(member).tolist()], member.length)
 
 
+def places_along(member: Member, equal: int | None) -> list[float]:
+    """Borders of equal steps, or the breaks alone where no number of steps is given [m]."""
+    if equal is not None:
+        return [float(x) for x in np.linspace(0.0, member.length, equal + 1)]
+    return [float(x) for x in breakpoints(member)]
+
+
 def force_jumps(member: Member) -> list[float]:
     """Places of supports, hinges, and loads that act at a point [m]."""
     places = [s.at for s in member.supports] + [h.at for h in member.hinges]

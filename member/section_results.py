@@ -20,7 +20,7 @@ from fishbelly.sections.stiffness import SectionStiffness, principal_axes
 Array = NDArray[np.float64]
 Data = dict[str, Any]
 
-COLUMNS = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass")
+COLUMNS = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass", "z_top", "z_bottom")
 
 
 def section_at(member: Member, x: float, side: str = "right", to: str | None = None) -> Data:
@@ -149,7 +149,7 @@ def _transformed(member: Member, group: Group, s: SectionStiffness, to: str | No
     }
 
 
-def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
+def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None = None) -> Data:
     """Stiffness along the member, as `fishbelly stiffness` lists it.
 
     Parameters
@@ -158,11 +158,14 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
         The description.
     at : iterable of float, optional
         Places to list instead of an even 101 and every break [m].
+    to : str, optional
+        Material to which the section is also transformed, as frame models want it.
 
     Returns
     -------
     dict
-        Stations with values in SI units; two where anything jumps, the left one first.
+        Stations with values in SI units; two where anything jumps, the left one first. With `to` each has
+        `transformed`: A, I_y, I_z, W_top and W_bottom of that material alone.
     """
     places = default_places(member) if at is None else np.unique(np.fromiter(at, dtype=float))
     every, sides = two_sided(places, places, member.length)
@@ -178,7 +181,29 @@ def stiffness(member: Member, at: Iterable[float] | None = None) -> Data:
         | {"break": bool(np.abs(breaks - every[k]).min() < 1e-9 * member.length)}
         for k in np.flatnonzero(keep)
     ]
-    return {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all", "stations": rows}
+    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all"}
+    if to is not None:
+        material = member.material(to)
+        data["transformed"] = {"to": material.name, "E": material.E}
+        for row in rows:
+            row["transformed"] = _referred(row, material.E)
+    return data | {"stations": rows}
+
+
+def _referred(row: Data, E: float) -> Data:
+    """Area, second moments and section moduli of a section of one material that is as stiff."""
+    if row["EI_y"] is None:
+        return dict.fromkeys(("A", "I_y", "I_z", "W_top", "W_bottom"))
+    I_y, z = row["EI_y"] / E, row["z_c"]
+    with np.errstate(all="ignore"):
+        above, below = np.float64(I_y) / (row["z_top"] - z), np.float64(I_y) / (z - row["z_bottom"])
+    return {
+        "A": row["EA"] / E,
+        "I_y": I_y,
+        "I_z": row["EI_z"] / E,
+        "W_top": _number(above),
+        "W_bottom": _number(below),
+    }
 
 
 def _jumps(left: Array, right: Array, table: Array) -> bool:
@@ -188,7 +213,7 @@ def _jumps(left: Array, right: Array, table: Array) -> bool:
 
 
 def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
-    """Columns of `COLUMNS` at places, each seen from one side, shape (8, X); NaN where there is none."""
+    """Columns of `COLUMNS` at places, each seen from one side, shape (10, X); NaN where there is none."""
     geometry, short, density = Geometry(member), moduli(member), _densities(member)
     table = np.full((len(COLUMNS), x.size), np.nan)
     for side in ("left", "right"):
@@ -202,5 +227,7 @@ def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
                 mass = np.full(g.rows.size, np.nan)
                 if density is not None:
                     mass = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total().area
-                table[:, which[g.rows]] = (s.EA, s.EI_y, s.EI_z, s.EI_yz, ga, s.z_c, s.y_c, mass)
+                low, high = g.composition.extent
+                edges = (np.nanmax(high, axis=0), np.nanmin(low, axis=0))
+                table[:, which[g.rows]] = (s.EA, s.EI_y, s.EI_z, s.EI_yz, ga, s.z_c, s.y_c, mass, *edges)
     return table

@@ -11,7 +11,8 @@ from pathlib import Path
 import pytest
 
 from fishbelly.cli import main as command_line
-from fishbelly.cli.main import CANNOT, DONE, NOT_BUILT, NOT_MET, WRONG, cli, run
+from fishbelly.cli.last_net import CANNOT, DONE, NOT_MET, WRONG
+from fishbelly.cli.main import NOT_BUILT, cli, run
 
 JOB = """
 title = "Simple beam"
@@ -180,3 +181,51 @@ def test_notes_stand_on_stderr_and_in_the_object(job: Path) -> None:
     notes = json.loads(done.stdout)["notes"]
     assert notes
     assert all(f"note: {note}" in done.stderr for note in notes)
+
+
+TWO = """
+[[part]]
+name = "plate"
+material = "steel"
+shape = "rectangle"
+width = "100 mm"
+depth = "20 mm"
+under = "beam"
+from = "2 m"
+to = "4 m"
+"""
+
+
+def test_stiffness_in_the_form_frame_models_take(job: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    job.write_text(JOB + TWO)
+    assert run(["stiffness", str(job), "--breaks", "--to", "steel", "--json"]) == DONE
+    data = json.loads(capsys.readouterr().out)
+    assert [s["x"] for s in data["stations"]] == [0.0, 2.0, 2.0, 4.0, 4.0, 6.0]
+    left, right = data["stations"][1:3]
+    # a rectangle 100 x 200, and one of 100 x 220 with the plate
+    assert left["transformed"]["I_y"] == pytest.approx(0.1 * 0.2**3 / 12, rel=1e-12)
+    assert right["transformed"]["I_y"] == pytest.approx(0.1 * 0.22**3 / 12, rel=1e-12)
+    assert right["transformed"]["W_bottom"] == pytest.approx(0.1 * 0.22**2 / 6, rel=1e-12)
+    assert right["z_c"] == pytest.approx(-0.11, rel=1e-12)
+
+
+def test_stiffness_by_equal_steps(job: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    job.write_text(JOB + TWO)
+    assert run(["stiffness", str(job), "--equal", "4", "--json"]) == DONE
+    places = [s["x"] for s in json.loads(capsys.readouterr().out)["stations"]]
+    assert places == [0.0, 1.5, 3.0, 4.5, 6.0]
+
+
+@pytest.mark.parametrize(
+    ("options", "words"),
+    [
+        (("--equal", "4", "--breaks"), "expected one of --at, --equal and --breaks"),
+        (("--to", "stele"), 'no part is of material "stele"; did you mean "steel"?'),
+        (("--equal", "0"), "0 is not in the range"),
+    ],
+)
+def test_stiffness_asked_in_a_way_that_cannot_be(
+    options: tuple[str, ...], words: str, job: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    assert run(["stiffness", str(job), *options]) == WRONG
+    assert words in capsys.readouterr().err

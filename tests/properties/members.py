@@ -99,8 +99,11 @@ def part_lists(draw: st.DrawFn, most: int = 3) -> tuple[Part, ...]:
             place=place,
             **dimensions,
         )
-        turn = draw(st.sampled_from([0.0, 0.0, 0.5 * np.pi, 0.3]))
-        found.append(replace(one, turn=turn, pair=relation in ("left_of", "right_of") and draw(st.booleans())))
+        # rows of bars at an angle beside what varies are right and take seconds a member: not in these tests
+        turn = 0.0 if kind == "bars" else draw(st.sampled_from([0.0, 0.0, 0.5 * np.pi, 0.3]))
+        found.append(
+            replace(one, turn=turn, pair=kind != "bars" and relation in ("left_of", "right_of") and draw(st.booleans()))
+        )
     return tuple(found)
 
 
@@ -157,7 +160,7 @@ def members(
     """A random member with loads, all of one case."""
     supports, hinges = draw(support_lists(level))
     acting = tuple(draw(loads(level=level, **how)) for _ in range(count))
-    with_shear = draw(st.booleans()) if shear is None else shear
+    with_shear = draw(st.sampled_from([False, False, True])) if shear is None else shear
     return Member(
         SPAN, draw(part_lists(most)), MATERIALS, supports=supports, hinges=hinges, loads=acting, shear=with_shear
     )
