@@ -29,14 +29,14 @@ Sections and materials of your own stand in files beside the job, which names th
     [catalog]
     files = ["my-sections.csv", "my-materials.toml"]
 
-Sections, csv: a column "designation", a column "kind" (rectangle, circle, tube, box, I, tee, channel, angle,
+Sections, csv or xlsx: a column "designation", a column "kind" (rectangle, circle, tube, box, I, tee, channel, angle,
 trapezoid, regular polygon) and the dimensions of that outline, each with its unit in the header:
 
 \b
     designation,kind,depth [mm],width [mm],web [mm],flange [mm],source
     Girder 7,I,612,228,11.5,18,drawing 7 of 1931
 
-Materials, csv: a column "name" and keys as in [material.NAME] of a job, again with units: like, E, G, poisson,
+Materials, csv or xlsx: a column "name" and keys as in [material.NAME] of a job, again with units: like, E, G, poisson,
 density, expansion, creep, yield, cracking, strength.
 
 \b

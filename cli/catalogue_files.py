@@ -1,4 +1,4 @@
-"""Files that add sections and materials to the catalogue: csv, or toml for materials.
+"""Files that add sections and materials to the catalogue: csv or xlsx, or toml for materials.
 
 A csv with a column ``designation`` holds sections: ``designation``, ``kind`` (an outline such as ``I`` or ``box``)
 and that outline's dimensions, each with its unit in the header, ``depth [mm]``. A csv with a column ``name`` holds

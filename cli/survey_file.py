@@ -90,7 +90,7 @@ def read_rows(path: Path) -> tuple[list[Row], bool]:
             return _sheet_rows(path), False
         text = path.read_text(encoding="utf-8-sig")
     except FileNotFoundError:
-        near = suggest(path.name, sorted(p.name for p in path.parent.iterdir() if p.suffix in (".csv", ".xlsx")))
+        near = suggest(path.name, sorted(p.name for p in path.parent.glob("*") if p.suffix in (".csv", ".xlsx")))
         raise ValueFault(Ill(("file",), "", f"{as_written(path.name)}: no such file beside the job", near)) from None
     except (OSError, UnicodeDecodeError, ValueError):
         raise ValueFault(Ill(("file",), "a text file with columns", as_written(path.name))) from None

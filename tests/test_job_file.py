@@ -1,6 +1,6 @@
 """A job file becomes the description it stands for, in SI units."""
 
-# ruff: noqa: E501 (a job and its message stand side by side, unbroken, as they are written)
+
 
 import math
 import time

@@ -101,6 +101,17 @@ def test_units_of_columns_and_names_in_quotes(tmp_path: Path) -> None:
     assert read_job(str(path)).member.parts[0].shape.kind == "rectangle"
 
 
+def test_a_workbook_is_read_as_a_csv_is(tmp_path: Path) -> None:
+    from openpyxl import Workbook
+
+    book = Workbook()
+    for row in (["designation", "kind", "width [mm]", "depth [in]"], ["Girder 7", "rectangle", 62.5, 6]):
+        book.active.append(row)
+    book.save(tmp_path / "s.xlsx")
+    dimensions = read_job(written(tmp_path, '["s.xlsx", "m.csv"]')).member.parts[0].shape.dimensions
+    assert dimensions["width"].value == 0.0625 and dimensions["depth"].value == 0.1524
+
+
 def test_like_starts_from_an_own_material(tmp_path: Path) -> None:
     path = Path(written(tmp_path, '["s.csv", "m.toml"]'))
     table = '[material.mine]\nlike = "OLD IRON"\ndensity = "7000 kg/m3"\n[[part]]'
@@ -197,7 +208,8 @@ def test_two_files_may_not_have_one_name(tmp_path: Path, capsys: pytest.CaptureF
     [
         ('["s.csv", "n.csv"]', r'job.toml:4: catalog.files, item 2: "n.csv": no such file beside the job; did you'),
         ('"n.toml"', r'job.toml:4: catalog.files: expected a file beside the job, got "n.toml"; did you mean'),
-        ('["s.xlsx"]', r"job.toml:4: catalog.files, item 1: .*workbooks are not built yet"),
+        ('["s.ods"]', r'job.toml:4: catalog.files, item 1: expected a .csv or .xlsx file, got "s.ods"'),
+        ('["none/s.csv"]', r'job.toml:4: catalog.files, item 1: "s.csv": no such file beside the job'),
         ("[]", r"job.toml:4: catalog.files: expected a list of files"),
         ('["s.csv"]\nfile = "m.csv"', r'job.toml:5: unknown key "file"; did you mean "files"\?'),
     ],

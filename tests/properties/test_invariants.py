@@ -216,9 +216,6 @@ def test_scaling_every_modulus(member: Member, factor: float) -> None:
 
 @given(part_lists(3), loads(across=False, along=False))
 def test_a_stiff_spring_is_a_support_and_a_soft_one_is_none(parts: tuple[Part, ...], load: Load) -> None:
-    from common import INF, fixed
-
-    from fishbelly.member.description import Support
 
     held = (fixed("A", 0.0, along=INF),)
     make = lambda k: Member(
