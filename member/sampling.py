@@ -25,6 +25,8 @@ RESOLVED = 1e-13
 """Last Chebyshev coefficients against the largest value: stiffness is resolved."""
 SHEAR_RESOLVED = 1e-10
 """The same for 1/GA, whose share of a deflection is small and whose level cuts are good to about this."""
+SHEAR_JUMP = 1e-8
+"""Share of the length to which the place of a jump of GA inside a panel is found."""
 MOST_ROUNDS = 44
 MOST_PANELS = 20_000
 APEX = 1e-6
@@ -156,7 +158,9 @@ def _tails(
     crossed = unresolved[5] * np.abs(v[5]).max(axis=-1)
     done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
     if shear:
-        done &= unresolved[6:8].max(axis=0) < SHEAR_RESOLVED
+        # where a piece comes loose GA jumps; its place is then known to a small share of the member
+        narrow = batch.b - batch.a < SHEAR_JUMP * geometry.member.length
+        done &= (unresolved[6:8].max(axis=0) < SHEAR_RESOLVED) | narrow
     width = (batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a))
     done |= width < 1e-12
     EI = 1.0 / v[1]

@@ -97,6 +97,24 @@ class Composition:
         return False
 
     @cached_property
+    def meeting(self) -> tuple[tuple[int, int], ...]:
+        """Pairs of outlines that may cross: those not apart, cuts among themselves, copies that overlap."""
+        if not self.crossing:
+            return ()
+        n = len(self.outlines)
+        cuts = [(n + a, n + b) for b in range(len(self.cuts)) for a in range(b)]
+        copies = [(k, k) for k, o in enumerate(self.outlines) if _copies_meet(o)]
+        later = {j for _, j in self.relations}
+        removers = [(i, j) for i in later for j in later if i < j < n]
+        return (
+            *self.relations,
+            *cuts,
+            *copies,
+            *removers,
+            *((i, n + c) for i in later if i < n for c in range(len(self.cuts))),
+        )
+
+    @cached_property
     def overlaps_itself(self) -> bool:
         """Whether an outline has copies whose boxes overlap, as a pair set too close."""
         return any(_copies_meet(o) for o in self.outlines)
@@ -118,7 +136,7 @@ class Composition:
     def moments(self) -> AreaMoments:
         """Moments of what works of each part, shape (P, S)."""
         if self.crossing:
-            edges = events(self.pieces, True, self.overlaps_itself)
+            edges = events(self.pieces, self.meeting)
             return slab_moments(self.pieces, edges, len(self.outlines), [c[1] for c in self.cuts])
         return self._subtracted(self.relations)
 
@@ -148,7 +166,7 @@ class Composition:
     def levels(self) -> Levels:
         """Level cuts of the whole section."""
         targets = [c[1] for c in self.cuts]
-        return level_cuts(self.pieces, len(self.outlines), targets, self.crossing, self.overlaps_itself)
+        return level_cuts(self.pieces, len(self.outlines), targets, self.meeting)
 
     @cached_property
     def extent(self) -> tuple[Array, Array]:
@@ -166,19 +184,18 @@ class Composition:
         return Composition(tuple(o.turned(0.5 * np.pi) for o in self.outlines), cuts)
 
 
-def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], crossing: bool, itself: bool = False) -> Levels:
+def level_cuts(p: Pieces, parts: int, targets: Sequence[Sequence[int]], meeting: Sequence[tuple[int, int]]) -> Levels:
     """Cut the section between its events: Chebyshev levels, crowded to the events where edges are curved."""
-    edges = events(p, crossing, itself)
+    edges = events(p, meeting)
     curved = bool(np.any(p.branch))
     r = rule(_CURVED_POINTS if curved else _STRAIGHT_POINTS)
     half = 0.5 * np.diff(edges, axis=1)[..., None]
     # a level z = middle + half sin(pi s / 2) takes the square root out of the ends of an arc
     angle = 0.5 * np.pi * r.points
     shape, slope = (np.sin(angle), 0.5 * np.pi * np.cos(angle)) if curved else (r.points, np.ones(r.points.size))
-    z = 0.5 * (edges[:, 1:] + edges[:, :-1])[..., None] + half * shape
-    flat = widths(p, z.reshape(z.shape[0], -1), parts, targets)
-    cut = Widths(*(getattr(flat, f).reshape(parts, *z.shape) for f in ("width", "first", "second", "left", "right")))
-    return Levels(edges, z, half * slope, cut)
+    middle = 0.5 * (edges[:, 1:] + edges[:, :-1])
+    z = middle[..., None] + half * shape
+    return Levels(edges, z, half * slope, widths(p, middle, z, parts, targets))
 
 
 def _copies_meet(outline: Outline) -> bool:

@@ -8,7 +8,7 @@ outlines that touch or coincide need no care.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -126,21 +126,19 @@ def _curved(
             flags.append((branch * float(np.sign(turn[0, e])), branch, owner))
 
 
-def events(p: Pieces, crossing: bool, itself: bool = False) -> Array:
+def events(p: Pieces, meeting: Collection[tuple[int, int]]) -> Array:
     """Levels at which anything begins, ends or crosses, sorted, shape (S, K).
 
     Parameters
     ----------
     p : Pieces
         Boundary pieces.
-    crossing : bool
-        Whether outlines may cross each other; crossings are then found.
-    itself : bool
-        Whether an outline may cross itself, as the copies of a pair that overlap.
+    meeting : collection of (int, int)
+        Owners, the lower first, that may cross each other; an owner with itself where its copies overlap.
     """
     levels = [np.where(np.isfinite(p.low), p.low, np.nan), np.where(np.isfinite(p.high), p.high, np.nan)]
-    if crossing:
-        levels.append(_crossings(p, itself))
+    if meeting:
+        levels.append(_crossings(p, meeting))
     z = np.sort(np.concatenate(levels, axis=1), axis=1)
     top = np.nanmax(z, axis=1, keepdims=True)
     z = np.where(np.isnan(z), top, z)
@@ -150,10 +148,13 @@ def events(p: Pieces, crossing: bool, itself: bool = False) -> Array:
     return np.asarray(z[:, np.concatenate(([True], apart))])
 
 
-def _crossings(p: Pieces, itself: bool) -> Array:
-    """Levels where pieces of different outlines meet, NaN elsewhere, shape (S, C)."""
+def _crossings(p: Pieces, meeting: Collection[tuple[int, int]]) -> Array:
+    """Levels where pieces of outlines that may cross meet, NaN elsewhere, shape (S, C)."""
     i, j = np.triu_indices(p.owner.size, 1)
-    keep = (p.owner[i] != p.owner[j]) | itself
+    allowed = np.zeros((p.owner.max() + 1,) * 2, dtype=bool)
+    for a, b in meeting:
+        allowed[a, b] = allowed[b, a] = True
+    keep = allowed[p.owner[i], p.owner[j]]
     i, j = i[keep], j[keep]
     low, high = np.maximum(p.low[:, i], p.low[:, j]), np.minimum(p.high[:, i], p.high[:, j])
     keep = np.any(high > low, axis=0)
@@ -204,7 +205,7 @@ def _arc_arc(p: Pieces, i: NDArray[np.intp], j: NDArray[np.intp]) -> tuple[Array
 
 @dataclass(frozen=True, eq=False)
 class Widths:
-    """What level lines meet, shape (P, S, L): width [m], ∫y dy [m2], ∫y² dy [m3], leftmost and rightmost y [m].
+    """What level lines meet, shape (P, S, K, n): width [m], ∫y dy [m2], ∫y² dy [m3], leftmost and rightmost y [m].
 
     Where a part is not met, width and integrals are zero and the extremes are NaN.
     """
@@ -216,15 +217,17 @@ class Widths:
     right: Array
 
 
-def widths(p: Pieces, levels: Array, parts: int, targets: Sequence[Sequence[int]] = ()) -> Widths:
+def widths(p: Pieces, middle: Array, levels: Array, parts: int, targets: Sequence[Sequence[int]] = ()) -> Widths:
     """Widths of every part on level lines, later parts displacing earlier ones, cuts taken off.
 
     Parameters
     ----------
     p : Pieces
         Pieces of the parts' outlines (owners 0 .. parts-1), then of the cuts' outlines.
-    levels : ndarray, shape (S, L)
-        Level lines, none of them at an event [m].
+    middle : ndarray, shape (S, K)
+        A level inside each slab between two events, where the order of the pieces is read [m].
+    levels : ndarray, shape (S, K, n)
+        Level lines of each slab [m].
     parts : int
         How many owners are parts.
     targets : sequence
@@ -234,11 +237,21 @@ def widths(p: Pieces, levels: Array, parts: int, targets: Sequence[Sequence[int]
     -------
     Widths
     """
-    order, last, met = owners(p, levels, parts, targets)
-    y = np.where(met, np.take_along_axis(p.at(levels), order, axis=2), 0.0)
+    order, last, met = owners(p, middle, parts, targets)
+    y = np.where(met[..., None], _at(p, order, levels), 0.0)
     # the stretch to the right of the last piece is outside everything
     end = np.concatenate((y[:, :, 1:], y[:, :, -1:]), axis=2)
     return _collect(np.where(met, last, -1), y, end, parts)
+
+
+def _at(p: Pieces, order: NDArray[np.intp], levels: Array) -> Array:
+    """Return y of the pieces met in each slab, in their order, at its levels, shape (S, K, m, n)."""
+    row = np.arange(order.shape[0])[:, None, None]
+    y0, z0, slope, radius = (v[row, order][..., None] for v in (p.y0, p.z0, p.slope, p.radius))
+    dz = levels[:, :, None, :] - z0
+    branch = p.branch[order][..., None]
+    root = np.sqrt(np.maximum((radius - dz) * (radius + dz), 0.0)) if np.any(p.branch) else 0.0
+    return np.asarray(y0 + slope * dz + branch * root)
 
 
 def owners(
@@ -274,12 +287,13 @@ def owners(
 
 
 def _collect(last: NDArray[np.int_], y: Array, end: Array, parts: int) -> Widths:
-    shape = (parts, *y.shape[:2])
+    shape = (parts, *y.shape[:2], y.shape[3])
     out = [np.zeros(shape) for _ in range(3)]
     left, right = np.full(shape, np.inf), np.full(shape, -np.inf)
-    length = end - y
     for k in range(parts):
-        mine = (last == k) & (length > 0.0)
+        mine = (last == k)[..., None] & (end > y)
+        if not mine.any():
+            continue
         a, b = np.where(mine, y, 0.0), np.where(mine, end, 0.0)
         out[0][k] = (b - a).sum(axis=2)
         out[1][k] = (0.5 * (b - a) * (a + b)).sum(axis=2)

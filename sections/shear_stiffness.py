@@ -141,49 +141,43 @@ def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
 
 
 def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStiffness:
-    """Sections in pieces one above the other, station by station."""
-    stations = gaps.shape[0]
-    total, peak, level = np.empty(stations), np.zeros(G.shape), np.zeros(G.shape)
-    for s in range(stations):
-        group = np.cumsum(gaps[s])
-        ei, ga, peaks, places = [], [], [], []
-        for g in np.unique(group):
-            slabs = np.flatnonzero((group == g) & ~gaps[s])
-            piece = _piece(levels, E[:, s], G[:, s], s, slabs)
-            if piece is not None:
-                ei.append(piece[0])
-                ga.append(piece[1])
-                peaks.append(piece[2])
-                places.append(piece[3])
-        stiff, soft = np.array(ei), np.array(ga)
+    """Sections in pieces one above the other; stations with the same gaps are taken together."""
+    total, peak, level = np.empty(gaps.shape[0]), np.zeros(G.shape), np.zeros(G.shape)
+    patterns, which = np.unique(gaps, axis=0, return_inverse=True)
+    for k, pattern in enumerate(patterns):
+        rows = np.flatnonzero(np.ravel(which) == k)
+        group = np.cumsum(pattern)
+        slabs = [np.flatnonzero((group == g) & ~pattern) for g in np.unique(group)]
+        pieces = [_piece(levels, E[:, rows], G[:, rows], rows, mine) for mine in slabs]
+        ei, soft, peaks, places = (np.stack(v) for v in zip(*pieces, strict=True))
         if share_angle:
-            total[s] = soft.sum()
-            shares = soft / soft.sum()
+            total[rows] = soft.sum(axis=0)
+            shares = soft / total[rows]
         else:
-            total[s] = stiff.sum() ** 2 / (stiff**2 / soft).sum()
-            shares = stiff / stiff.sum()
-        each = np.array(peaks) * shares[:, None]
+            # a piece that stops short of nothing takes no part: its EI is zero
+            total[rows] = ei.sum(axis=0) ** 2 / (ei**2 / np.where(soft > 0.0, soft, np.inf)).sum(axis=0)
+            shares = ei / ei.sum(axis=0)
+        each = peaks * shares[:, None]
         highest = each.argmax(axis=0)
-        peak[:, s] = each.max(axis=0)
-        level[:, s] = np.array(places)[highest, np.arange(G.shape[0])]
+        peak[:, rows] = each.max(axis=0)
+        level[:, rows] = np.take_along_axis(places, highest[None], axis=0)[0]
     return ShearStiffness(total, peak, level)
 
 
 def _piece(
-    levels: Levels, E: Array, G: Array, s: int, slabs: NDArray[np.intp]
-) -> tuple[float, float, Array, Array] | None:
-    """EI, GA, peaks and their levels of the slabs of one piece, bending about its own centroid."""
-    r = rule(levels.z.shape[-1])
-    z, stretch = levels.z[s, slabs], levels.stretch[s, slabs]
-    w = levels.widths
-    width = w.width[:, s, slabs]
-    ea, ga = np.tensordot(E, width, 1), np.tensordot(G, width, 1)
-    axial = float((ea * stretch @ r.weights).sum())
-    if axial <= 0.0:
-        return None
-    centre = float((ea * z * stretch @ r.weights).sum()) / axial
-    ei = float((ea * (z - centre) ** 2 * stretch @ r.weights).sum())
-    flow = _from_bottom((ea * (z - centre) * stretch / ei)[None])[0]
-    part = Levels(np.empty(0), z[None], stretch[None], Widths(*(getattr(w, f)[:, s : s + 1, slabs] for f in _FIELDS)))
-    found = _energy(part, G[:, None], flow[None], ga[None])
-    return ei, float(found.GA[0]), found.peak[:, 0], found.level[:, 0]
+    levels: Levels, E: Array, G: Array, rows: NDArray[np.intp], slabs: NDArray[np.intp]
+) -> tuple[Array, Array, Array, Array]:
+    """EI, GA, peaks and their levels of the slabs of one piece at some stations, bending about its own centroid."""
+    weights = rule(levels.z.shape[-1]).weights
+    at = np.ix_(rows, slabs)
+    z, stretch = levels.z[at], levels.stretch[at]
+    widths = Widths(*(getattr(levels.widths, f)[:, at[0], at[1]] for f in _FIELDS))
+    ea = np.einsum("ps,pskn->skn", E, widths.width)
+    ga = np.einsum("ps,pskn->skn", G, widths.width)
+    axial = (ea * stretch @ weights).sum(axis=1)
+    safe = np.where(axial > 0.0, axial, 1.0)
+    arm = z - ((ea * z * stretch @ weights).sum(axis=1) / safe)[:, None, None]
+    ei = (ea * arm**2 * stretch @ weights).sum(axis=1)
+    flow = _from_bottom(ea * arm * stretch / np.where(ei > 0.0, ei, 1.0)[:, None, None])
+    found = _energy(Levels(np.empty(0), z, stretch, widths), G, flow, ga)
+    return ei, np.where(ei > 0.0, found.GA, 0.0), found.peak, found.level

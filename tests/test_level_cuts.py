@@ -22,8 +22,8 @@ def make(kind: str, y: float = 0.0, z: float = 0.0, **dimensions: float) -> Outl
 def cut(outlines: list[Outline], level: float, parts: int | None = None, targets: tuple = ()) -> tuple:
     """Width, first and second integral over y, and ends, of every part on one level."""
     count = len(outlines) if parts is None else parts
-    w = widths(pieces(outlines), np.array([[level]]), count, targets)
-    return tuple(np.array(getattr(w, f))[:, 0, 0] for f in ("width", "first", "second", "left", "right"))
+    w = widths(pieces(outlines), np.array([[level]]), np.array([[[level]]]), count, targets)
+    return tuple(np.array(getattr(w, f))[:, 0, 0, 0] for f in ("width", "first", "second", "left", "right"))
 
 
 def test_width_of_a_disc() -> None:
@@ -59,11 +59,11 @@ def test_comb_is_met_in_several_stretches() -> None:
 
 def test_events_of_a_disc_beside_a_plate_hold_their_crossings() -> None:
     p = pieces([make("circle", diameter=0.2), make("rectangle", 0.1, 0.0, width=0.1, depth=0.3)])
-    z = events(p, True)[0]
+    z = events(p, ((0, 1),))[0]
     for level in (-0.15, -0.1, 0.0, 0.1, 0.15, math.sqrt(0.1**2 - 0.05**2)):
         assert np.abs(z - level).min() < 1e-14, level
     # without crossings only corners and the tops of arcs
-    assert np.abs(events(p, False)[0] - math.sqrt(0.0075)).min() > 1e-3
+    assert np.abs(events(p, ())[0] - math.sqrt(0.0075)).min() > 1e-3
 
 
 @pytest.mark.parametrize("kind", ALL)
