@@ -167,9 +167,7 @@ def unknown_key(file: str, line: int | None, where: str, word: str, choices: Seq
     return Fault(file, line, where, "", "", f'unknown key "{word}"', suggest(word, choices))
 
 
-def unknown_word(
-    file: str, line: int | None, where: str, key: str, word: object, choices: Sequence[str]
-) -> Fault:
+def unknown_word(file: str, line: int | None, where: str, key: str, word: object, choices: Sequence[str]) -> Fault:
     """Make the fault of a value that is not one of the words allowed there.
 
     Examples
@@ -209,9 +207,5 @@ def _written(value: object) -> str:
     if isinstance(value, (list, tuple)):
         return f"[{', '.join(_written(item) for item in value[:_LONGEST_SHOWN])}]"
     if isinstance(value, dict):
-        return (
-            "{}"
-            if not value
-            else f"{{ {', '.join(f'{key} = {_written(item)}' for key, item in value.items())} }}"
-        )
+        return "{}" if not value else f"{{ {', '.join(f'{key} = {_written(item)}' for key, item in value.items())} }}"
     return str(value)

@@ -246,9 +246,7 @@ def format_value(
     return number if value is None or not label else f"{number} {label}"
 
 
-def format_column(
-    values: Iterable[float | None], what: str, style: StyleName | Style, digits: int = 4
-) -> list[str]:
+def format_column(values: Iterable[float | None], what: str, style: StyleName | Style, digits: int = 4) -> list[str]:
     """Write the values of a column, all with the decimals that its largest needs.
 
     Examples

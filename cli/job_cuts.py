@@ -64,17 +64,13 @@ def read_openings(report: Report) -> tuple[list[Opening | None], list[int]]:
     everything = tuple(cut_names(report)[0])
     for i, raw in enumerate(list_of_tables("opening", report)):
         table = read_table(OpeningTable, raw, ("opening", i), report)
-        row: list[Opening | None] = (
-            [None] if table is None else _row(table, everything, ("opening", i), report)
-        )
+        row: list[Opening | None] = [None] if table is None else _row(table, everything, ("opening", i), report)
         openings += row
         tables += [i] * len(row)
     return openings, tables
 
 
-def _row(
-    table: OpeningTable, everything: tuple[str, ...], path: Path, report: Report
-) -> list[Opening | None]:
+def _row(table: OpeningTable, everything: tuple[str, ...], path: Path, report: Report) -> list[Opening | None]:
     faults = len(report.faults)
     rectangle = [key for key in ("length", "depth", "radius") if getattr(table, key) is not None]
     if table.diameter is not None and rectangle:

@@ -242,9 +242,7 @@ def minus(a: Law, b: Law, factor: float = 1.0) -> Law:
     knots = np.union1d(a.knots, b.knots)
     origins = np.concatenate((knots[:1] if knots.size else [0.0], knots))
     inside = (
-        np.concatenate((knots[:1] - 1.0, 0.5 * (knots[1:] + knots[:-1]), knots[-1:] + 1.0))
-        if knots.size
-        else origins
+        np.concatenate((knots[:1] - 1.0, 0.5 * (knots[1:] + knots[:-1]), knots[-1:] + 1.0)) if knots.size else origins
     )
     total = np.zeros((origins.size, 3))
     for law, sign in ((a, factor), (b, -factor)):
@@ -259,9 +257,7 @@ def minus(a: Law, b: Law, factor: float = 1.0) -> Law:
 def _only(value: dict[str, Any], *known: str) -> None:
     unknown = [key for key in value if key not in known]
     if unknown:
-        raise ValueFault(
-            *(Ill((key,), "", f'unknown key "{key}" in a law with {known[0]}') for key in unknown)
-        )
+        raise ValueFault(*(Ill((key,), "", f'unknown key "{key}" in a law with {known[0]}') for key in unknown))
 
 
 def _pairs_schema() -> dict[str, Any]:

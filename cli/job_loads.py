@@ -110,9 +110,7 @@ def _load(
     return Shrinkage(table.part, table.strain, start, end, table.creep, table.case)
 
 
-def _distributed(
-    table: UniformTable | VaryingTable, length: float, path: Path, report: Report
-) -> Distributed | None:
+def _distributed(table: UniformTable | VaryingTable, length: float, path: Path, report: Report) -> Distributed | None:
     if isinstance(table, UniformTable):
         value, kind = table.value
         start = 0.0 if table.from_ is None else snapped(table.from_, length)

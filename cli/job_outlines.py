@@ -165,9 +165,7 @@ def _sound_polygon(points: Any, holes: Any, path: Path, report: Report) -> bool:
             text = _reason(is_valid_reason(loop))
             report.add((*path, "holes", k), "a hole that does not cross or touch itself", text)
         elif not outer.contains_properly(loop):
-            report.add(
-                (*path, "holes", k), "a hole inside the outline", "one that reaches its edge or beyond"
-            )
+            report.add((*path, "holes", k), "a hole inside the outline", "one that reaches its edge or beyond")
         elif any(loop.intersects(Polygon(other)) for other in holes[:k]):
             report.add((*path, "holes", k), "holes apart from each other", "one that meets another")
     return len(report.faults) == faults

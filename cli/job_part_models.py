@@ -79,9 +79,7 @@ _OUTLINES: dict[str, dict[str, Any]] = {
     | dict.fromkeys(("wall", "web", "flange"), MaybeSize)
     | dict.fromkeys(("radius", "inner_radius"), MaybeRadius),
     "I": {"depth": Size, "web": Size}
-    | dict.fromkeys(
-        ("width", "flange", "top_width", "top_flange", "bottom_width", "bottom_flange"), MaybeSize
-    )
+    | dict.fromkeys(("width", "flange", "top_width", "top_flange", "bottom_width", "bottom_flange"), MaybeSize)
     | {"radius": MaybeRadius},
     "tee": {"depth": Size, "width": Size, "web": Size, "flange": Size, "radius": MaybeRadius},
     "channel": {"depth": Size, "width": Size, "web": Size, "flange": Size}

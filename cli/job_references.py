@@ -62,8 +62,6 @@ def _of_table(kind: str, i: int, table: dict[str, Any]) -> Iterator[Reference]:
         if isinstance(value, str) and value.strip():
             yield Reference(path, what, value)
         elif isinstance(value, list):
-            yield from (
-                Reference((*path, k), what, name) for k, name in enumerate(value) if isinstance(name, str)
-            )
+            yield from (Reference((*path, k), what, name) for k, name in enumerate(value) if isinstance(name, str))
         elif isinstance(value, dict):
             yield from (Reference((*path, name), what, name) for name in value)

@@ -120,9 +120,7 @@ def either(table: Table, keys: tuple[str, ...], path: Path, report: Report, at_l
     given = [key for key in keys if getattr(table, key) is not None]
     words = " or ".join(f"`{key}`" for key in keys)
     if len(given) > 1:
-        report.add(
-            (*path, given[1]), f"only one of {', '.join(f'`{k}`' for k in keys)}", f"also `{given[0]}`"
-        )
+        report.add((*path, given[1]), f"only one of {', '.join(f'`{k}`' for k in keys)}", f"also `{given[0]}`")
     elif len(given) < at_least:
         report.add(path, words, "")
     return given[0] if len(given) == 1 else None

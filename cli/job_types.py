@@ -116,11 +116,18 @@ class Quantity(Reader):
     def __init__(self, kind: Kind, sign: Sign = "any") -> None:
         self.kind, self.sign = kind, sign
         self.words = f'{kind.words} such as "{kind.example}"'
-        self.schema = {"type": "string", "description": kind.words, "examples": [kind.example]}
+        self.schema = {
+            "type": ["string", "number"] if kind.value.bare else "string",
+            "description": kind.words,
+            "examples": [kind.example],
+        }
 
     def read(self, value: Any) -> float:
         """Read the quantity."""
         return quantity(value, self.kind, self.sign)
+
+
+_BOUNDS = {"above": "exclusiveMinimum", "at_least": "minimum", "below": "exclusiveMaximum", "at_most": "maximum"}
 
 
 class Factor(Reader):
@@ -128,7 +135,7 @@ class Factor(Reader):
 
     def __init__(self, words: str, **bounds: float) -> None:
         self.words, self.bounds = words, bounds
-        self.schema = {"type": "number", "description": words}
+        self.schema = {"type": "number", "description": words} | {_BOUNDS[k]: v for k, v in bounds.items()}
 
     def read(self, value: Any) -> float:
         """Read the number."""
@@ -160,10 +167,9 @@ class Count(Reader):
 class Text(Reader):
     """A text; a name may not be empty."""
 
-    schema = {"type": "string"}
-
     def __init__(self, words: str = "a text", may_be_empty: bool = False) -> None:
         self.words, self.may_be_empty = words, may_be_empty
+        self.schema = {"type": "string"} if may_be_empty else {"type": "string", "minLength": 1}
 
     def read(self, value: Any) -> str:
         """Read the text."""

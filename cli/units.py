@@ -48,9 +48,7 @@ class Kind(Enum):
     PRESSURE = STRESS
     MODULUS = _Meaning("a modulus", "210 GPa", "N/m2", is_force=True)
     STIFFNESS = _Meaning("a stiffness (force per length)", "3.2 kN/mm", "N/m", is_force=True)
-    JOINT_STIFFNESS = _Meaning(
-        "a joint stiffness (force per length per length)", "40 N/mm/mm", "N/m2", is_force=True
-    )
+    JOINT_STIFFNESS = _Meaning("a joint stiffness (force per length per length)", "40 N/mm/mm", "N/m2", is_force=True)
     ROTATIONAL_STIFFNESS = _Meaning(
         "a rotational stiffness (moment per angle)",
         "500 kNm/rad",
@@ -125,10 +123,7 @@ _LOOKALIKES = str.maketrans(
         "°": "deg",
         "℃": "degC",
         "℉": "degF",
-        **{
-            char: f" {text}"
-            for char, text in zip("¼½¾⅛⅜⅝⅞", "1/4 1/2 3/4 1/8 3/8 5/8 7/8".split(), strict=True)
-        },
+        **{char: f" {text}" for char, text in zip("¼½¾⅛⅜⅝⅞", "1/4 1/2 3/4 1/8 3/8 5/8 7/8".split(), strict=True)},
     }
 )
 

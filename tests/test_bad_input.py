@@ -9,9 +9,7 @@ from fishbelly.cli.job_file import read_job
 
 HEAD = 'length = "6 m"\n'
 STEEL = '[material.steel]\nE = "210 GPa"\npoisson = 0.3\n'
-BEAM = (
-    '[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
-)
+BEAM = '[[part]]\nname = "beam"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "100 mm"\ndepth = "200 mm"\n'
 BASE = HEAD + STEEL + BEAM
 PINS = '[[support]]\nat = "0 m"\nkind = "pin"\n[[support]]\nat = "6 m"\nkind = "roller"\n'
 
@@ -285,9 +283,7 @@ BAD = {
         ':10: part "beam", depth.flat_at: the piece from 0 m to 5 m is flat at neither end, expected one',
     ),
     "flat elsewhere": (
-        BASE.replace(
-            '"200 mm"', '{ law = "parabola", stations = [["0 m", "2 m"], ["5 m", "1 m"]], flat_at = "4 m" }'
-        ),
+        BASE.replace('"200 mm"', '{ law = "parabola", stations = [["0 m", "2 m"], ["5 m", "1 m"]], flat_at = "4 m" }'),
         ':10: part "beam", depth.flat_at: expected the x of one of its stations, got "4 m"',
     ),
     "negative at the far end": (
@@ -315,9 +311,7 @@ BAD = {
         ':13: notch 1, depth: expected less than the width of "beam" at x = 0 m, 0.1 m, got "150 mm"',
     ),
     "haunch of a circle": (
-        shape(
-            'shape = "circle"\ndiameter = "1 m"\n[[haunch]]\nof = "a"\nat = "0 m"\ndepth = "1 m"\nreach = "1 m"'
-        ),
+        shape('shape = "circle"\ndiameter = "1 m"\n[[haunch]]\nof = "a"\nat = "0 m"\ndepth = "1 m"\nreach = "1 m"'),
         ':11: haunch 1, of: expected a part with a depth, got "a", a circle',
     ),
     "haunch of a turned part": (
@@ -469,9 +463,7 @@ BAD = {
         ':20: limit "a", span: expected a span of this member (1), got 2',
     ),
     "span at a station": (
-        BASE
-        + PINS
-        + '[[station]]\nname = "s"\nat = "1 m"\n[[limit]]\nname = "a"\nspan_over = 360\nat = "s"\n',
+        BASE + PINS + '[[station]]\nname = "s"\nat = "1 m"\n[[limit]]\nname = "a"\nspan_over = 360\nat = "s"\n',
         ':23: limit "a", at: a limit at a station needs `absolute` or `slope`: a station has no span',
     ),
     "unknown station": (

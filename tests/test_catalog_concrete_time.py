@@ -83,9 +83,7 @@ def test_shrinkage_with_time_by_hand() -> None:
     assert hundred.autogenous / final.autogenous == pytest.approx(0.86466, abs=1e-5)
 
 
-@pytest.mark.parametrize(
-    ("size", "k_h"), [(0.05, 1), (0.1, 1), (0.15, 0.925), (0.3, 0.75), (0.4, 0.725), (2, 0.7)]
-)
+@pytest.mark.parametrize(("size", "k_h"), [(0.05, 1), (0.1, 1), (0.15, 0.925), (0.3, 0.75), (0.4, 0.725), (2, 0.7)])
 def test_size_factor_of_table_3_3(size: float, k_h: float) -> None:
     found = shrinkage(math.inf, 3, 30e6, 0.5, size).drying / basic_drying_shrinkage(30e6, 0.5)
     assert found == pytest.approx(k_h, rel=1e-12)

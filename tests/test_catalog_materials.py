@@ -83,9 +83,7 @@ def test_names_do_not_collide() -> None:
 
 
 def test_unknown_material_names_the_nearest() -> None:
-    with pytest.raises(
-        UnknownMaterial, match=r'no material "C25" in the catalogue; nearest: C25/30'
-    ) as caught:
+    with pytest.raises(UnknownMaterial, match=r'no material "C25" in the catalogue; nearest: C25/30') as caught:
         find_material("C25")
     assert caught.value.name == "C25"
     assert caught.value.nearest[0] == "C25/30"
@@ -124,9 +122,7 @@ def test_k_def_of_a_service_class_not_allowed() -> None:
 
 
 def test_k_def_of_an_unknown_product() -> None:
-    with pytest.raises(
-        UnknownProduct, match=r'no k_def for "OSB" in the catalogue; nearest: OSB/2'
-    ) as caught:
+    with pytest.raises(UnknownProduct, match=r'no k_def for "OSB" in the catalogue; nearest: OSB/2') as caught:
         k_def("OSB", 1)
     assert caught.value.product == "OSB"
 
@@ -186,8 +182,6 @@ def test_every_limit_is_complete() -> None:
 
 
 def test_unknown_limit_names_the_nearest() -> None:
-    with pytest.raises(
-        UnknownLimit, match=r'no limit "IBC floor" in the catalogue; nearest: IBC floor live'
-    ) as caught:
+    with pytest.raises(UnknownLimit, match=r'no limit "IBC floor" in the catalogue; nearest: IBC floor live') as caught:
         find_limit("IBC floor")
     assert caught.value.name == "IBC floor"

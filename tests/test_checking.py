@@ -48,9 +48,7 @@ def test_a_sound_member_has_one_combination():
 
 
 def test_all_problems_at_once():
-    got = problems(
-        parts=(replace(BEAM, end=7.0), under("plate", host="bean")), stations=(Station("s", -1.0),)
-    )
+    got = problems(parts=(replace(BEAM, end=7.0), under("plate", host="bean")), stations=(Station("s", -1.0),))
     assert got == [
         'part[1].under: expected the name of a part, got "bean"',
         "part[0].to: expected a place within the member, 0 to 6 m, got 7 m",
@@ -102,9 +100,7 @@ def test_shrinkage_with_its_own_creep_needs_no_other():
     combination = Combination("final", {"load": 1.0}, {"load": 1.0})
     own = Shrinkage("beam", 1e-4, 0.0, 6.0, creep=2.0)
     assert member(loads=(own,), combinations=(combination,)).loads == (own,)
-    assert problems(loads=(own, Point(1.0, 1.0)), combinations=(combination,))[0].startswith(
-        "material.steel.creep"
-    )
+    assert problems(loads=(own, Point(1.0, 1.0)), combinations=(combination,))[0].startswith("material.steel.creep")
 
 
 def test_a_taper_may_run_to_a_point():

@@ -22,9 +22,7 @@ def test_fault_reads_file_line_place_expected_and_found():
 
 
 def test_hint_follows_a_semicolon():
-    fault = Fault(
-        "a.toml", 1, "load 1", "value", 'a force such as "12 kN"', '"5 kg", which is a mass', "kgf?"
-    )
+    fault = Fault("a.toml", 1, "load 1", "value", 'a force such as "12 kN"', '"5 kg", which is a mass', "kgf?")
     assert str(fault) == (
         'a.toml:1: load 1, value: expected a force such as "12 kN", got "5 kg", which is a mass; kgf?'
     )
@@ -101,10 +99,7 @@ def test_unknown_word_lists_what_is_allowed():
     assert str(fault) == (
         'roof.toml:3: datum: expected "top", "middle" or "bottom", got "midle"; did you mean "middle"?'
     )
-    assert (
-        str(unknown_word("roof.toml", 3, "", "datum", 5, ["top"]))
-        == 'roof.toml:3: datum: expected "top", got 5'
-    )
+    assert str(unknown_word("roof.toml", 3, "", "datum", 5, ["top"])) == 'roof.toml:3: datum: expected "top", got 5'
 
 
 def test_unknown_word_of_many_is_not_listed():

@@ -57,9 +57,7 @@ NOT_READ = {"area": 2, "section modulus": 3, "second moment": 4}
 @pytest.mark.parametrize("style", ["metric", "us"])
 @pytest.mark.parametrize("what", LABELS)
 def test_labels_say_the_factor_used(what, style):
-    assert unit_size(what, style) == pytest.approx(
-        unit_factor(unit_label(what, style), LABELS[what]), rel=1e-15
-    )
+    assert unit_size(what, style) == pytest.approx(unit_factor(unit_label(what, style), LABELS[what]), rel=1e-15)
 
 
 @pytest.mark.parametrize(("what", "power"), NOT_READ.items())
@@ -145,9 +143,7 @@ def test_columns_are_right_to_their_last_digit_and_never_minus_zero(values, digi
     shown = format_column(values, "force", "metric", digits)
     scale = max((abs(value) for value in values), default=0.0) / 1e3
     for value, text in zip(values, shown, strict=True):
-        assert (
-            abs(float(text.replace(" ", "")) - value / 1e3) <= 0.5001 * 10.0 ** (1 - digits) * scale + 1e-300
-        )
+        assert abs(float(text.replace(" ", "")) - value / 1e3) <= 0.5001 * 10.0 ** (1 - digits) * scale + 1e-300
         assert not re.fullmatch(r"-0(\.0*)?", text)
 
 

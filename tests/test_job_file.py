@@ -1,7 +1,5 @@
 """A job file becomes the description it stands for, in SI units."""
 
-
-
 import math
 import time
 

@@ -119,9 +119,7 @@ def test_what_is_written_in_feet_and_sixteenths_reads_back(sixteenths):
 
 @given(
     st.floats(-1e4, 1e4).filter(lambda value: abs(value) > 1e-6),
-    st.sampled_from(
-        [("length", Kind.LENGTH), ("moment", Kind.MOMENT), ("stress", Kind.STRESS), ("slope", Kind.ANGLE)]
-    ),
+    st.sampled_from([("length", Kind.LENGTH), ("moment", Kind.MOMENT), ("stress", Kind.STRESS), ("slope", Kind.ANGLE)]),
 )
 def test_what_is_written_in_metric_reads_back_to_its_digits(number, quantity):
     what, kind = quantity
@@ -210,13 +208,9 @@ REFUSED = [
 ]
 
 
-@pytest.mark.parametrize(
-    ("value", "kind", "words"), REFUSED, ids=[ascii(value)[:30] for value, _, _ in REFUSED]
-)
+@pytest.mark.parametrize(("value", "kind", "words"), REFUSED, ids=[ascii(value)[:30] for value, _, _ in REFUSED])
 def test_refusals_say_what_is_wrong(value, kind, words):
-    with pytest.raises(
-        QuantityError, match=f"{re.escape(words)}$" if ";" in words else re.escape(words)
-    ) as caught:
+    with pytest.raises(QuantityError, match=f"{re.escape(words)}$" if ";" in words else re.escape(words)) as caught:
         parse_quantity(value, kind)
     assert str(caught.value).startswith(f'expected {kind.words} such as "{kind.example}", got ')
 

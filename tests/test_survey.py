@@ -98,7 +98,7 @@ def test_what_is_wrong_in_a_survey(rows: list[list[object]], words: str, tmp_pat
 
 def test_a_file_that_is_no_workbook(tmp_path: Path) -> None:
     (tmp_path / "survey.xlsx").write_text("station [mm],depth left [mm]\n0,8\n2700,7\n")
-    with pytest.raises(JobFaults, match="survey.xlsx"):
+    with pytest.raises(JobFaults, match=r"survey\.xlsx"):
         read_job(str(_job(tmp_path, "survey.xlsx")))
 
 
@@ -142,7 +142,12 @@ def _EI(x: np.ndarray) -> np.ndarray:
     """By hand: four rectangles, the flange's inner face stays where it was built."""
     t, b, w = (np.interp(x, STATION, v) for v in (FLANGE, BREADTH, LOW_WEB))
     one = np.ones_like(x)
-    pieces = [(B * one, T, -T / 2), (W * one, 0.124, -T - 0.062), (w, 0.036, -T - 0.124 - 0.018), (b, t, -0.169 - t / 2)]
+    pieces = [
+        (B * one, T, -T / 2),
+        (W * one, 0.124, -T - 0.062),
+        (w, 0.036, -T - 0.124 - 0.018),
+        (b, t, -0.169 - t / 2),
+    ]
     A = [width * depth for width, depth, _ in pieces]
     z = sum(a * p[2] for a, p in zip(A, pieces, strict=True)) / sum(A)
     return E * sum(a * (p[1] ** 2 / 12 + (p[2] - z) ** 2) for a, p in zip(A, pieces, strict=True))

@@ -136,13 +136,9 @@ UNITS = [
 ]
 
 
-@pytest.mark.parametrize(
-    ("unit", "kind", "size"), UNITS, ids=[f"{kind.name} {unit}" for unit, kind, _ in UNITS]
-)
+@pytest.mark.parametrize(("unit", "kind", "size"), UNITS, ids=[f"{kind.name} {unit}" for unit, kind, _ in UNITS])
 def test_every_unit_has_its_size(unit, kind, size):
-    assert parse_quantity(f"7.3 {unit}", kind) == pytest.approx(
-        float(Fraction("7.3") * size), rel=LAST_DIGITS
-    )
+    assert parse_quantity(f"7.3 {unit}", kind) == pytest.approx(float(Fraction("7.3") * size), rel=LAST_DIGITS)
     if unit not in "'\"″":  # marks for feet and inches are for numbers, not for headers
         assert unit_factor(unit, kind) == pytest.approx(float(size), rel=LAST_DIGITS)
 

@@ -111,9 +111,9 @@ def test_row(row: dict[str, Any]) -> None:
         stated = abs((row["rel_diff"] or {}).get(name, 0)) * printed * 1.02
         assert abs(found[name] - printed) <= max(half_of_last_digit(text), stated) * (1 + 1e-9), name
         if name in row["computed"]:
-            assert found[name] == pytest.approx(
-                row["computed"][name], rel=SAME_AS_COMPUTED.get(section.kind, 1e-6)
-            ), name
+            assert found[name] == pytest.approx(row["computed"][name], rel=SAME_AS_COMPUTED.get(section.kind, 1e-6)), (
+                name
+            )
     assert compared
 
 
