@@ -114,6 +114,8 @@ class Analysis:
 
     def moduli(self, key: ModuliKey) -> Moduli:
         """Return a set of moduli, always the same object for the same key."""
+        if key == ModuliKey():
+            return self.profile.short
         if key not in self._moduli:
             self._moduli[key] = moduli(self.member, key.band, key.long_term, dict(key.own))
         return self._moduli[key]

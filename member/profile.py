@@ -37,20 +37,23 @@ class Group:
     composition: Composition
     over_opening: bool
     _sheared: dict[tuple[int, bool], tuple[Moduli, ShearStiffness]] = field(default_factory=dict, repr=False)
+    _stiff: dict[int, tuple[Moduli, SectionStiffness]] = field(default_factory=dict, repr=False)
 
     def modulus(self, values: Array) -> Array:
         """Moduli of the parts of this group at its stations, run-in counted, shape (P, S)."""
         return np.asarray(values[list(self.placed.index)][:, None] * self.placed.run_in)
 
     def stiffness(self, moduli: Moduli) -> SectionStiffness:
-        """Section stiffness for a set of moduli, fields of shape (S,)."""
-        return section_stiffness(self.composition.moments, self.modulus(moduli.E))
+        """Section stiffness for a set of moduli, fields of shape (S,); computed once."""
+        if id(moduli) not in self._stiff:
+            # the moduli are kept beside the result, so that their identity stays theirs
+            self._stiff[id(moduli)] = (moduli, section_stiffness(self.composition.moments, self.modulus(moduli.E)))
+        return self._stiff[id(moduli)][1]
 
     def shear(self, moduli: Moduli, across: bool = False) -> ShearStiffness:
         """Shear stiffness along z, or along y, for a set of moduli; computed once."""
         key = (id(moduli), across)
         if key not in self._sheared:
-            # the moduli are kept beside the result, so that their identity stays theirs
             self._sheared[key] = (moduli, self._shear(moduli, across))
         return self._sheared[key][1]
 
@@ -88,6 +91,8 @@ class Profile:
         Sampled places by the parts present.
     rows : int
         How many places were sampled.
+    short : Moduli
+        Short-term moduli, with which it was sampled.
     """
 
     geometry: Geometry
@@ -95,6 +100,7 @@ class Profile:
     row: NDArray[np.intp]
     groups: tuple[Group, ...]
     rows: int
+    short: Moduli
     _cache: dict[tuple[str, int], object] = field(default_factory=dict, repr=False)
 
     @property

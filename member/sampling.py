@@ -105,7 +105,7 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
             break
     if batch.a.size:
         raise CannotCompute(f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved")
-    return _assembled(geometry, kept, groups, rows)
+    return _assembled(geometry, kept, groups, rows, short)
 
 
 def _start(member: Member, geometry: Geometry, breaks: Array) -> _Batch:
@@ -241,7 +241,7 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
 
 
 def _assembled(
-    geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int
+    geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int, short: Moduli
 ) -> Profile:
     a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
     anchor = np.concatenate([k.anchor for k, _ in kept])
@@ -249,4 +249,4 @@ def _assembled(
     order = np.argsort(a, kind="stable")
     a, b = a[order], b[order]
     b[:-1] = a[1:]
-    return Profile(geometry, Panels(a, b, anchor[order]), row[order], tuple(groups), rows)
+    return Profile(geometry, Panels(a, b, anchor[order]), row[order], tuple(groups), rows, short)

@@ -22,6 +22,9 @@ Array = NDArray[np.float64]
 def crossing_places(geometry: Geometry, grid: Panels) -> list[float]:
     """Places [m] inside panels where a corner of an outline passes an edge of another that it overlaps."""
     a, b = grid.a, grid.b
+    member = geometry.member
+    if len(member.parts) == 1 and not member.notches and not member.openings:
+        return []
     places: list[float] = []
     for k in range(a.size):
         placed = geometry.place(grid.x[k], "right", geometry.present(float(0.5 * (a[k] + b[k]))))
