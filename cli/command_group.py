@@ -6,6 +6,7 @@ import click
 
 LATER = {
     "catalog": ("fishbelly.cli.catalog_command", "Find materials, sections and deflection limits by any word."),
+    "start": ("fishbelly.cli.start_command", "List the worked jobs, or print one to edit."),
 }
 """By name: the module, whose `command` it is, and the line for --help."""
 

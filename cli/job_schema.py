@@ -55,7 +55,7 @@ def _place(kinds: list[JobTableKind]) -> Schema:
     table, several = kinds[0].table, len(kinds) > 1
     item = {"oneOf": [_reference(_name(t)) for t in kinds]} if several else _reference(_name(kinds[0]))
     if table == "catalog":
-        return item
+        return {"description": "[catalog]"} | item
     if table == "material":
         return {"type": "object", "additionalProperties": item, "description": "[material.NAME]"}
     return {"type": "array", "items": item, "description": f"[[{table}]]"} | (

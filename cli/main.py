@@ -29,12 +29,25 @@ NOT_BUILT = {
 }
 """Commands that are not built yet; each is refused by its name."""
 
+_HELP = """\
+State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
+
+A job is one TOML file: parts with shape, material and place, supports, loads, limits. Begin with
+`fishbelly start`, which lists worked jobs, then
+
+\b
+    fishbelly start flitch-beam > my-beam.toml
+    fishbelly deflect my-beam.toml
+"""
+
 
 class _Group(LazyGroup):
     """The group of commands: names those that are not built yet, suggests the nearest one otherwise."""
 
     def resolve_command(self, ctx: click.Context, args: list[str]) -> Any:
         name = args[0] if args else ""
+        if ctx.resilient_parsing:  # completing, not running
+            return super().resolve_command(ctx, args)
         if name in NOT_BUILT:
             raise click.UsageError(f'command "{name}" ({NOT_BUILT[name]}) is not built yet in this version')
         if name and self.get_command(ctx, name) is None and not name.startswith("-"):
@@ -61,7 +74,7 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
         ctx.exit()
 
 
-@click.group(cls=_Group, context_settings={"help_option_names": ["-h", "--help"]})
+@click.group(cls=_Group, help=_HELP, context_settings={"help_option_names": ["-h", "--help"]})
 @click.option(
     "--cautions",
     is_flag=True,
@@ -72,15 +85,14 @@ def _version(ctx: click.Context, _: click.Parameter, value: bool) -> None:
 )
 @click.option("--version", is_flag=True, is_eager=True, expose_value=False, callback=_version, help="Version.")
 def cli() -> None:
-    r"""State the EI(x) of a member whose cross-section changes or mixes materials, and what it deflects.
+    """Run ``fishbelly``."""
 
-    A job is one TOML file: parts with shape, material and place, supports, loads, limits. Begin with
-    `fishbelly start`, which lists worked jobs, then
 
-    \b
-        fishbelly start flitch-beam > my-beam.toml
-        fishbelly deflect my-beam.toml
-    """
+def _files(*_: Any) -> list[Any]:
+    """Complete the name of a file."""
+    from click.shell_completion import CompletionItem
+
+    return [CompletionItem("", type="file")]
 
 
 def _refused(option: str) -> Callable[[click.Context, click.Parameter, Any], None]:
@@ -101,6 +113,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
             "outputs",
             multiple=True,
             metavar="FILE",
+            shell_complete=_files,
             help="Also write FILE: .csv, .json, .xlsx, .png, .svg or .pdf (repeatable).",
         ),
         click.option("--force", is_flag=True, help="Overwrite an existing file."),
@@ -112,37 +125,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
 
 
 @cli.command()
-@click.argument("name", required=False)
-def start(name: str | None) -> None:
-    """List the worked jobs, or print one to edit.
-
-    Example: fishbelly start flitch-beam > my-beam.toml
-    """
-    from fishbelly.catalog.worked_jobs import worked_jobs
-
-    jobs = {j.name: j for j in worked_jobs()}
-    if name is None:
-        width = max(map(len, jobs))
-        click.echo("Worked jobs; `fishbelly start NAME` prints one to edit:\n")
-        for job in jobs.values():
-            click.echo(_wrapped(f"  {job.name:<{width}}  ", job.shows))
-        return
-    if name not in jobs:
-        from fishbelly.cli.faults import suggest
-
-        hint = suggest(name, list(jobs))
-        raise click.UsageError(f'no worked job "{name}"' + (f"; {hint}" if hint else ""))
-    click.echo(jobs[name].text, nl=False)
-
-
-def _wrapped(head: str, text: str) -> str:
-    import textwrap
-
-    return textwrap.fill(text, 80, initial_indent=head, subsequent_indent=" " * len(head))
-
-
-@cli.command()
-@click.argument("job")
+@click.argument("job", shell_complete=_files)
 @click.option(
     "--at", "places", required=True, multiple=True, metavar="X", help='Place along the member, such as "1.2 m".'
 )
@@ -173,7 +156,7 @@ def section(
 
 
 @cli.command()
-@click.argument("job")
+@click.argument("job", shell_complete=_files)
 @click.option(
     "--at",
     "at",
@@ -223,7 +206,7 @@ def _known_material(to: str | None, member: Any) -> None:
 
 
 @cli.command()
-@click.argument("job")
+@click.argument("job", shell_complete=_files)
 @click.option(
     "--at",
     "at",
@@ -348,6 +331,14 @@ def run(arguments: Sequence[str] | None = None) -> int:
         return int(error.exit_code)
     except click.ClickException as error:
         context = getattr(error, "ctx", None)
+        if isinstance(error, getattr(click.exceptions, "NoArgsIsHelpError", ())):
+            click.echo(error.format_message(), err=True)
+            return WRONG
+        if isinstance(error, click.MissingParameter) and error.param is not None and error.param.name == "job":
+            from fishbelly.cli.start_command import how_to_begin
+
+            click.echo(how_to_begin(str(context.info_name if context else "deflect")), err=True)
+            return WRONG
         click.echo(f"fishbelly: {error.format_message()}", err=True)
         if context is not None:
             click.echo(f"see `{context.command_path} --help`", err=True)

@@ -63,6 +63,16 @@ def _extreme(words: str, unit: str, more: dict[str, Schema] | None = None, maybe
     return _maybe(found) if maybe else found
 
 
+_TRANSFORMED = {
+    "A": _maybe(_number("area", "m2")),
+    "I_y": _maybe(_number("second moment of area about y", "m4")),
+    "I_z": _maybe(_number("second moment of area about z", "m4")),
+    "W_top": _maybe(_number("elastic section modulus of the top", "m3")),
+    "W_bottom": _maybe(_number("elastic section modulus of the bottom", "m3")),
+}
+_TO = {"to": _text("material to which the section is transformed"), "E": _number("its modulus", "Pa")}
+
+
 def _section() -> Schema:
     per_moment = _object(
         "stress for a moment of 1 N m",
@@ -82,18 +92,8 @@ def _section() -> Schema:
         "stress_per_moment": per_moment,
         "stress_per_force": _maybe(_number("stress for an axial force of 1 N", "Pa/N")),
     }
-    transformed = {
-        "to": _text("material to which areas are transformed"),
-        "E": _number("its modulus", "Pa"),
-        "A": _maybe(_number("area", "m2")),
-        "I_y": _maybe(_number("second moment of area about y", "m4")),
-        "I_z": _maybe(_number("second moment of area about z", "m4")),
-        "W_top": _maybe(_number("elastic section modulus of the top", "m3")),
-        "W_bottom": _maybe(_number("elastic section modulus of the bottom", "m3")),
-        "n": {"type": "object", "description": "ratio of moduli by material", "additionalProperties": _number("ratio")},
-        "top": _number("level of the section's top", "m"),
-        "bottom": _number("level of its bottom", "m"),
-    }
+    ratios = {"type": "object", "description": "ratio of moduli by material", "additionalProperties": _number("ratio")}
+    levels = {"top": _number("level of the section's top", "m"), "bottom": _number("level of its bottom", "m")}
     principal = {
         "EI_1": _maybe(_number("largest bending stiffness", "N m2")),
         "EI_2": _maybe(_number("smallest", "N m2")),
@@ -109,18 +109,22 @@ def _section() -> Schema:
         | {
             "principal": _object("principal axes", principal),
             "parts": _list("parts there", _object("a part", part)),
-            "transformed": _object("properties transformed to one material", transformed),
+            "transformed": _object(
+                "properties transformed to one material", _TO | _TRANSFORMED | {"n": ratios} | levels
+            ),
         },
         {"notes": _NOTES},
     )
 
 
 def _stiffness() -> Schema:
-    station = {"x": _AT} | _STIFFNESS | {"GA_z": _GA_Z} | _CENTROID | {"break": _BREAK}
+    ends = {f"z_{k}": _maybe(_number(f"level of the section's {k}", "m")) for k in ("top", "bottom")}
+    station = {"x": _AT} | _STIFFNESS | {"GA_z": _GA_Z} | _CENTROID | ends | {"break": _BREAK}
+    single = {"transformed": _object("section of that one material that is as stiff, with --to", _TRANSFORMED)}
     return _object(
         "Stiffness along the member; two stations at one x where it jumps, the left one first.",
-        _HEAD | {"stage": _STAGE, "stations": _list("stations by x", _object("a station", station))},
-        {"notes": _NOTES},
+        _HEAD | {"stage": _STAGE, "stations": _list("stations by x", _object("a station", station, single))},
+        {"transformed": _object("with --to", _TO), "notes": _NOTES},
     )
 
 
@@ -156,7 +160,7 @@ def _stress() -> Schema:
                 "max": _extreme("largest", "Pa", peak),
                 "min": _extreme("smallest", "Pa", peak),
             },
-            {"shear": _extreme("largest shear stress, without sign", "Pa", maybe=False)},
+            {"shear": _extreme("largest shear stress, without sign", "Pa", {"z": _maybe(peak["z"])}, maybe=False)},
         ),
     )
 
@@ -329,7 +333,29 @@ def _deflect() -> Schema:
     )
 
 
-RESULTS = {"section": _section, "stiffness": _stiffness, "deflect": _deflect}
+def _catalog() -> Schema:
+    values = {"type": "object", "description": "values by name", "additionalProperties": {"type": ["number", "string"]}}
+    entry = {
+        "group": {"enum": ["material", "rolled section", "limit", "creep of timber"], "description": "what it is"},
+        "name": _text("name by which a job asks for it"),
+        "kind": _text("what kind of it"),
+        "values": values,
+        "source": _text("where it is published"),
+        "note": _text("what to know about it"),
+        "snippet": _text("lines to paste into a job"),
+    }
+    return _object(
+        "Entries of the catalogue.",
+        {
+            "units": _text("SI base units: m, N, Pa, rad, kg, K"),
+            "asked": _text("words asked for"),
+            "count": {"type": "integer", "description": "number of entries"},
+            "entries": _list("entries, the best first", _object("an entry", entry)),
+        },
+    )
+
+
+RESULTS = {"catalog": _catalog, "section": _section, "stiffness": _stiffness, "deflect": _deflect}
 """What makes the schema of a command's results."""
 
 

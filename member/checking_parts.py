@@ -61,11 +61,11 @@ def _placing(draft: Draft, i: int, part: Part, path: Path) -> Iterator[Problem]:
         if i > 0:
             yield Problem(path, "", "a part after the first needs a placing: under, over, left_of, right_of, "
                           "centred_on or position")  # fmt: skip
-        yield from one_of(place.anchor, _LEVELS, ("datum",))
+        yield from one_of(place.anchor or "top", _LEVELS, ("datum",))
         if part.pair:
             yield Problem((*path, "pair"), "", "a pair needs a placing: both copies would stand in one place")
     elif place.relation == "position":
-        yield from one_of(place.anchor, ANCHORS, (*path, "anchor"))
+        yield from one_of(place.anchor or "middle", ANCHORS, (*path, "anchor"))
         if place.position is None:
             yield Problem((*path, "position"), "a pair (y, z)", "")
     elif place.relation not in FLUSH:

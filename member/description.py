@@ -108,7 +108,8 @@ class Placing:
     position : tuple of Law
         (y, z) of the anchor [m], for ``"position"``.
     anchor : str
-        Point of the bounding box that `position` fixes, such as ``"middle"`` or ``"top left"``.
+        Point of the bounding box that `position` fixes, such as ``"middle"`` (default) or ``"top left"``; for
+        ``"datum"`` the edge on the datum line, default ``"top"``.
     flush : str
         Which edges are aligned with the host's.
     gap : Law
@@ -120,7 +121,7 @@ class Placing:
     relation: str = "datum"
     host: str = ""
     position: tuple[Law, Law] | None = None
-    anchor: str = "top"
+    anchor: str = ""
     flush: str = "middle"
     gap: Law = field(default_factory=lambda: constant(0.0))
     shift: tuple[Law, Law] = field(default_factory=lambda: (constant(0.0), constant(0.0)))

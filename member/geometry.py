@@ -264,11 +264,11 @@ def _offset(part: Part, box: Bounds, stands: dict[str, _Stand], x: Array, side: 
     zero = np.zeros(x.size)
     dy0, dz0 = place.shift[0](x, side), place.shift[1](x, side)
     if place.relation == "datum":
-        dy, dz = anchored(box, place.anchor, 0.0, 0.0)
+        dy, dz = anchored(box, place.anchor or "top", 0.0, 0.0)
         return dy + dy0, dz + dz0, zero
     if place.relation == "position":
         assert place.position is not None
-        dy, dz = anchored(box, place.anchor, place.position[0](x, side), place.position[1](x, side))
+        dy, dz = anchored(box, place.anchor or "middle", place.position[0](x, side), place.position[1](x, side))
         return dy + dy0, dz + dz0, zero
     host = stands[place.host]
     dy, dz = against(box, host.box, place.relation, place.flush, place.gap(x, side))

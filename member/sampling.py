@@ -27,6 +27,8 @@ SHEAR_RESOLVED = 1e-10
 """The same for 1/GA, whose share of a deflection is small and whose level cuts are good to about this."""
 SHEAR_JUMP = 1e-8
 """Share of the length to which the place of a jump of GA inside a panel is found."""
+MOST_FOR_SHEAR = 24
+"""So many panels at once may be halved for the sake of GA alone."""
 MOST_ROUNDS = 44
 MOST_PANELS = 20_000
 APEX = 1e-6
@@ -157,12 +159,15 @@ def _tails(
     offset = unresolved[levels] * np.abs(v[levels]).max(axis=-1) / largest
     crossed = unresolved[5] * np.abs(v[5]).max(axis=-1)
     done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
+    bent = done | (width_of(batch) < 1e-12)
     if shear:
         # where a piece comes loose GA jumps; its place is then known to a small share of the member
         narrow = batch.b - batch.a < SHEAR_JUMP * geometry.member.length
         done &= (unresolved[6:8].max(axis=0) < SHEAR_RESOLVED) | narrow
-    width = (batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a))
-    done |= width < 1e-12
+    done |= width_of(batch) < 1e-12
+    if (bent & ~done).sum() > MOST_FOR_SHEAR:
+        # where parts touch at a point alone, level cuts give a GA that no panel resolves
+        done |= bent
     EI = 1.0 / v[1]
     r = rule(POINTS)
     lowest = APEX * EI.max(axis=-1)
@@ -209,6 +214,11 @@ def _vanishes(geometry: Geometry, short: Moduli, a: float, b: float, apex: int) 
             for x in (end, 0.5 * (a + b))
         )
     return not there > 1e-13 * inside
+
+
+def width_of(batch: _Batch) -> Array:
+    """Width of panels against their distance from the left end."""
+    return np.asarray((batch.b - batch.a) / np.maximum(np.abs(batch.b), np.abs(batch.a)))
 
 
 def _noise(v: Array, batch: _Batch) -> Array:

@@ -24,7 +24,7 @@ from fishbelly.sections.slab_moments import slab_moments
 
 Array = NDArray[np.float64]
 
-_CURVED_POINTS, _STRAIGHT_POINTS = 16, 6
+_CURVED_POINTS, _STRAIGHT_POINTS = 24, 12
 
 
 @dataclass(frozen=True, eq=False)

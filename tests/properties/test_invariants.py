@@ -30,6 +30,7 @@ from members import (
     table,
 )
 
+from fishbelly.member.breakpoints import geometry_breaks
 from fishbelly.member.description import Member, Part, Placing, Shape, Station, Support
 from fishbelly.member.laws import constant
 from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
@@ -120,6 +121,9 @@ def from_the_other_end(member: Member) -> Member:
 def test_seen_from_the_other_end(member: Member) -> None:
     if any(isinstance(v, Couple) and v.at in [h.at for h in member.hinges] for v in member.loads):
         return  # a couple at a hinge acts on its left side
+    pushed = {v.at for v in member.loads if isinstance(v, Axial)} | {s.at for s in member.supports if s.along}
+    if any(0.0 < x < SPAN and x in pushed for x in geometry_breaks(member)):
+        return  # a force along x acts at the centroid's y to the right of a break
     one, back = table(member), table(from_the_other_end(member))
     side = {"left": "right", "right": "left"}
     other = {(x, s): back[min(GRID, key=lambda g: abs(g - (SPAN - x))), side[s]] for x, s in one}
