@@ -175,7 +175,7 @@ def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None 
         if every[k] == every[k + 1] and not _jumps(table[:, k], table[:, k + 1], table):
             keep[k] = False
     breaks = breakpoints(member)
-    rows = [
+    rows: list[Data] = [
         {"x": float(every[k])}
         | {name: _number(v) for name, v in zip(COLUMNS, table[:, k], strict=True)}
         | {"break": bool(np.abs(breaks - every[k]).min() < 1e-9 * member.length)}
