@@ -271,12 +271,12 @@ def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
         other = analysis.combine(combined.combination, band)
         loading = loadings(analysis, other)
         p = pieces(analysis, loading)
-        bands[band] = (
-            deflections(analysis, other, p),
-            _checks(analysis, other, p, part_stresses(analysis, loading)),
-        )
+        asked = any(m.strength is not None for m in analysis.member.materials)
+        stresses = part_stresses(analysis, loading) if asked else ()
+        bands[band] = (deflections(analysis, other, p), _checks(analysis, other, p, stresses))
     for name, entry in data["deflection"].items():
         if entry is not None:
             entry["band"] = {b: (v[0][name] or {}).get("value") for b, v in bands.items()}
-    for k, entry in enumerate(data["checks"]):
-        entry["band"] = {b: v[1][k].found for b, v in bands.items()}
+    found = {b: {c.limit: c.found for c in v[1]} for b, v in bands.items()}
+    for entry in data["checks"]:
+        entry["band"] = {b: checks.get(entry["limit"]) for b, checks in found.items()}

@@ -12,6 +12,10 @@ from fishbelly.sections.outlines import arcs
 Array = NDArray[np.float64]
 
 
+_EVERY = 4
+"""Of the levels in a slab so many stand for a curved side of a part that is cut and bends both ways."""
+
+
 def fibres(section: Composition, part: int, planar: bool) -> tuple[Array, Array]:
     """Corner points of one part; tangent points of its arcs come from `arc_data`.
 
@@ -59,9 +63,10 @@ def _on_levels(section: Composition, part: int) -> tuple[Array, Array]:
     z_ends = np.stack((levels.edges[:, :-1], levels.edges[:, 1:]), axis=-1)
     y, z = [], []
     for side in (levels.widths.left[part], levels.widths.right[part]):
+        # straight sides need their corners alone; some levels between stand for curved ones
         corners = np.stack((side @ r.left, side @ r.right), axis=-1)
-        y += [side, corners]
-        z += [levels.z, z_ends]
+        y += [side[..., ::_EVERY], corners]
+        z += [levels.z[..., ::_EVERY], z_ends]
     points_y, points_z = np.concatenate(y, axis=-1), np.concatenate(z, axis=-1)
     points_z = np.where(np.isnan(points_y), np.nan, points_z)
     shape = (points_y.shape[0], -1)
