@@ -151,7 +151,10 @@ def section(
     from fishbelly.member.section_results import section_at
 
     _known_material(to, read.member)
-    data = section_at(read.member, at[0], side, to)
+    from fishbelly.cli.patience import patience
+
+    with patience("cutting the section"):
+        data = section_at(read.member, at[0], side, to)
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
 
@@ -192,7 +195,10 @@ def stiffness(
 
     if equal is not None or breaks:
         places = places_along(read.member, equal)
-    data = table(read.member, places or None, to)
+    from fishbelly.cli.patience import patience
+
+    with patience("sampling the member"):
+        data = table(read.member, places or None, to)
     return _finish("stiffness", data, read, as_json, outputs, force, listed=bool(places))
 
 
@@ -223,9 +229,11 @@ def deflect(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ..
     """
     read, places = _read(job, at, outputs, force)
     from fishbelly.cli.format_quantity import format_value
+    from fishbelly.cli.patience import patience
     from fishbelly.member.results import deflect as solve
 
-    data = solve(read.member, places or None)
+    with patience("solving the member"):
+        data = solve(read.member, places or None)
     said = [note.say(lambda value, what: format_value(value, what, read.style)) for note in data["notes"]]
     data["notes"] = [*read.warnings, *said]
     status = _finish("deflect", data, read, as_json, outputs, force, listed=bool(places))
@@ -271,9 +279,11 @@ def _finish(
     """Print the table or the JSON object, say the notes, write the files."""
     if outputs:
         from fishbelly.cli import files
+        from fishbelly.cli.patience import patience
 
         for path in outputs:
-            files.write(path, command, data, job, force)
+            with patience(f"writing {path}"):
+                files.write(path, command, data, job, force)
     if as_json:
         import json
 
