@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 
-from fishbelly.catalog.tables import nearest_names, read_table
+from fishbelly.catalog.tables import UnknownName, folded, nearest_names, read_table
 
 
 @dataclass(frozen=True)
@@ -48,22 +48,10 @@ class PublishedLimit:
         return f"{self.code}, {self.clause}"
 
 
-class UnknownLimit(LookupError):
-    """No limit of that name is in the catalogue.
+class UnknownLimit(UnknownName):
+    """No limit of that name is in the catalogue; `name` is what was asked for, `nearest` what looks most like it."""
 
-    Attributes
-    ----------
-    name : str
-        What was asked for.
-    nearest : list of str
-        Names that look most like it, the best first; may be empty.
-    """
-
-    def __init__(self, name: str, nearest: list[str]) -> None:
-        self.name = name
-        self.nearest = nearest
-        hint = f"; nearest: {', '.join(nearest)}" if nearest else ""
-        super().__init__(f'no limit "{name}" in the catalogue{hint}')
+    what = "limit"
 
 
 def _limit(row: dict[str, str]) -> PublishedLimit:
@@ -112,8 +100,8 @@ def find_limit(name: str) -> PublishedLimit:
     >>> find_limit("ibc floor live").span_over
     360.0
     """
-    wanted = "".join(name.split()).casefold()
+    wanted = folded(name)
     for row in read_table("limits.csv"):
-        if "".join(row["name"].split()).casefold() == wanted:
+        if folded(row["name"]) == wanted:
             return _limit(row)
     raise UnknownLimit(name, nearest_names(name, limit_names()))

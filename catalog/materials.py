@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from functools import cache
 
 from fishbelly.catalog.k_def import k_def_by_class
-from fishbelly.catalog.tables import data_files, nearest_names, numbers, read_table
+from fishbelly.catalog.tables import UnknownName, data_files, folded, nearest_names, numbers, read_table
 
 
 @dataclass(frozen=True)
@@ -67,22 +67,10 @@ class CatalogMaterial:
     kind: str = ""
 
 
-class UnknownMaterial(LookupError):
-    """No material of that name is in the catalogue.
+class UnknownMaterial(UnknownName):
+    """No material of that name is in the catalogue; `name` is what was asked for, `nearest` what looks most like it."""
 
-    Attributes
-    ----------
-    name : str
-        What was asked for.
-    nearest : list of str
-        Names that look most like it, the best first; may be empty.
-    """
-
-    def __init__(self, name: str, nearest: list[str]) -> None:
-        self.name = name
-        self.nearest = nearest
-        hint = f"; nearest: {', '.join(nearest)}" if nearest else ""
-        super().__init__(f'no material "{name}" in the catalogue{hint}')
+    what = "material"
 
 
 def _material(row: dict[str, str]) -> CatalogMaterial:
@@ -107,13 +95,9 @@ def _material(row: dict[str, str]) -> CatalogMaterial:
     )
 
 
-def _folded(name: str) -> str:
-    return "".join(name.split()).casefold()
-
-
 @cache
 def _rows_by_folded_name(file: str) -> dict[str, dict[str, str]]:
-    return {_folded(row["name"]): row for row in read_table(file)}
+    return {folded(row["name"]): row for row in read_table(file)}
 
 
 def find_material(name: str) -> CatalogMaterial:
@@ -139,7 +123,7 @@ def find_material(name: str) -> CatalogMaterial:
     >>> find_material("gl 28h").E
     12600000000.0
     """
-    wanted = _folded(name)
+    wanted = folded(name)
     for file in data_files("materials_"):
         row = _rows_by_folded_name(file).get(wanted)
         if row is not None:

@@ -130,6 +130,28 @@ def folded(name: str) -> str:
     return "".join(name.split()).casefold()
 
 
+class UnknownName(LookupError):
+    """No entry of that name is in the catalogue; the base of one error for each kind of entry.
+
+    Attributes
+    ----------
+    what : str
+        Kind of entry, in the message.
+    name : str
+        What was asked for.
+    nearest : list of str
+        Names that look most like it, the best first; may be empty.
+    """
+
+    what = "entry"
+
+    def __init__(self, name: str, nearest: list[str]) -> None:
+        self.name = name
+        self.nearest = nearest
+        hint = f"; nearest: {', '.join(nearest)}" if nearest else ""
+        super().__init__(f'no {self.what} "{name}" in the catalogue{hint}')
+
+
 def nearest_names(name: str, known: tuple[str, ...], count: int = 4, fold: Callable[[str], str] = folded) -> list[str]:
     """Names of the catalogue that look most like `name`, the best first.
 

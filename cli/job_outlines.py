@@ -81,10 +81,23 @@ def written_shape(table: PartTable, kind: str, end: float, path: Path, report: R
 def finished(value: Any, end: float | None, path: Path, report: Report) -> Law | None:
     """Return the law itself, or note why it cannot be had."""
     try:
-        return finish(value, report.folder, end, report.length)
+        law = finish(value, report.folder, end, report.length)
     except ValueFault as fault:
         report.ills(path, fault)
         return None
+    if isinstance(value, Columns):
+        _warn_of_ends(value, law, end, path, report)
+    return law
+
+
+def _warn_of_ends(value: Columns, law: Law, end: float | None, path: Path, report: Report) -> None:
+    """Say where a survey does not reach the ends of what it describes: its last values go on."""
+    first, last = float(law.knots[0]), float(law.knots[-1])
+    stretch = report.data[path[0]][path[1]] if len(path) > 1 else {}
+    if end is not None and last < end * (1.0 - 1e-9):
+        report.warnings.append(f"{value.file} ends at x = {last:.6g} m: its last value is used up to {end:.6g} m")
+    if "from" not in stretch and first > 1e-9 * last:
+        report.warnings.append(f"{value.file} begins at x = {first:.6g} m: its first value is used from 0")
 
 
 def rolled_shape(kind: str, dimensions: Mapping[str, float], path: Path, report: Report) -> Shape | None:

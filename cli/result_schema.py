@@ -103,6 +103,7 @@ def _section() -> Schema:
         "The cross-section at one place.",
         _HEAD
         | {"x": _AT, "side": {"enum": ["left", "right"], "description": "side of a break"}, "stage": _STAGE}
+        | {"break": {"type": "boolean", "description": "whether something begins, ends or changes its law there"}}
         | _STIFFNESS
         | {"GA_y": _maybe(_number("shear stiffness sideways", "N")), "GA_z": _GA_Z}
         | _CENTROID

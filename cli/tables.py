@@ -55,7 +55,8 @@ def section_table(data: Mapping[str, Any], style: str) -> str:
         Lines of at most 80 columns.
     """
     place = format_position(data["x"], style)  # type: ignore[arg-type]
-    lines = [*_title(data, f"Cross-section at x = {place}, as it is just to the {data.get('side', 'right')} of it")]
+    side = f", as it is just to the {data.get('side', 'right')} of it" if data.get("break", True) else ""
+    lines = [*_title(data, f"Cross-section at x = {place}{side}")]
     lines += [*paragraph(SECTION_AXES), ""]
     for heading, values in section_lines(data):
         if all(value is None for *_, value in values):

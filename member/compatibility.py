@@ -90,7 +90,7 @@ def redundants(frame: Frame, layout: Layout, law: ElasticLaw, planes: int) -> Re
         When the member can move without straining.
     """
     if not layout.nodes:
-        raise Mechanism("there is no support")
+        raise Mechanism("there is no support: the member is held nowhere")
     movable = movements(layout, planes)
     states = unit_states(layout, planes)
     rigid = {d for d in movable if layout.nodes[d[0]].held(HELD_BY[d[1]])[1]}

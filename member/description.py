@@ -265,12 +265,16 @@ class Station:
 
 @dataclass(frozen=True)
 class Combination:
-    """Load cases with factors; `sustained` is the share of each factor that acts on long-term moduli."""
+    """Load cases with factors; `sustained` is the share of each factor that acts on long-term moduli.
+
+    `implied`: no combination was given, and this one takes every case with factor 1.
+    """
 
     name: str
     factors: Mapping[str, float]
     sustained: Mapping[str, float] = field(default_factory=dict)
     purpose: str = "deflection"
+    implied: bool = False
 
 
 @dataclass(frozen=True)
@@ -374,7 +378,8 @@ class Member:
 
         check(self)
         if not self.combinations:
-            everything = Combination("all", MappingProxyType(dict.fromkeys(self.cases, 1.0)))
+            factors = MappingProxyType(dict.fromkeys(self.cases, 1.0))
+            everything = Combination("all", factors, implied=True)
             object.__setattr__(self, "combinations", (everything,))
 
     @property

@@ -168,7 +168,7 @@ def _plane(
         return full + a.m[p]
 
     if seg.left is None and seg.right is None:
-        raise Mechanism("there is no support")
+        raise Mechanism("there is no support: the member is held nowhere")
     if seg.left is None:
         v = _forward(panels, first, stop, float(P[0]), q, P)
         m = _forward(panels, first, stop, float(C[0]), density(v), C)

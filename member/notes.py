@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, ModuliKey
+from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
 from fishbelly.member.shortcuts import shortcuts
@@ -30,7 +31,7 @@ def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
 
 def _cases(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     member = analysis.member
-    if len(member.combinations) == 1 and member.combinations[0].name == "all" and len(member.cases) > 1:
+    if member.combinations[0].implied and len(member.cases) > 1:
         yield Note(f"no combination given: cases {', '.join(member.cases)} are taken together, each with factor 1")
     used = {case for c in member.combinations for case, f in c.factors.items() if f}
     unused = [c for c in member.cases if c not in used]
@@ -85,7 +86,7 @@ def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
         k = int(np.argmax(together / np.where(own > 0.0, own, np.inf)))
         joined = len(touching_groups(section.outlines, k)) == 1
         if worst is None or together[k] / own[k] > worst[1] / worst[2]:
-            worst = (float(group.placed.x[k]), float(together[k]), float(own[k]), names, joined)
+            worst = (_break_near(analysis, float(group.placed.x[k])), float(together[k]), float(own[k]), names, joined)
     if worst is not None and worst[1] > worst[2] * (1.0 + 1e-9):
         at, together_k, own_k, names, joined = worst
         how = (
@@ -99,6 +100,13 @@ def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
                 "at": (at, "position"),
             },
         )
+
+
+def _break_near(analysis: Analysis, x: float) -> float:
+    """The break of the geometry that a sampled place stands for, where one is within a hundredth of the length."""
+    breaks = breakpoints(analysis.member)
+    nearest = float(breaks[int(np.argmin(np.abs(breaks - x)))])
+    return nearest if abs(nearest - x) < 0.01 * analysis.member.length else x
 
 
 def _listed(names: Sequence[str]) -> str:

@@ -207,9 +207,18 @@ def _referred(row: Data, E: float) -> Data:
 
 
 def _jumps(left: Array, right: Array, table: Array) -> bool:
-    size = np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1)
+    """Whether any column jumps by more than round-off of its kind: what vanishes is measured by its companions."""
+    size = dict(zip(COLUMNS, np.abs(np.where(np.isfinite(table), table, 0.0)).max(axis=1), strict=True))
+    bending = max(size["EI_y"], size["EI_z"])
+    depth = float(np.nanmax(table[COLUMNS.index("z_top")] - table[COLUMNS.index("z_bottom")], initial=0.0))
+    kinds = {"EI_y": bending, "EI_z": bending, "EI_yz": bending} | dict.fromkeys(
+        ("z_c", "y_c", "z_top", "z_bottom"), depth
+    )
+    scale = np.array([kinds.get(name, size[name]) for name in COLUMNS])
     gap = np.abs(left - right)
-    return bool(np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-6 * size) or np.any(np.isnan(left) != np.isnan(right)))
+    return bool(
+        np.any(np.where(np.isfinite(gap), gap, 0.0) > 1e-6 * scale) or np.any(np.isnan(left) != np.isnan(right))
+    )
 
 
 def profile_at(member: Member, x: Array, sides: list[str]) -> Array:

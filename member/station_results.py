@@ -82,21 +82,48 @@ def _columns(analysis: Analysis, p: Pieces, x: Array, sides: Sequence[str]) -> d
     stack = np.stack(list(fields.values()))
     left, right = (values_at(panels, stack, x, side) for side in ("left", "right"))
     chosen = np.where(np.array(sides) == "left", left, right)
-    # what is 1e-14 of the largest of its kind is round-off where nothing should be
-    chosen = np.where(np.abs(chosen) <= 1e-14 * np.abs(stack).max(axis=(1, 2))[:, None], 0.0, chosen)
+    # what is round-off against the largest of its kind, in either plane, is where nothing should be
+    nothing = round_off(analysis, p)
+    floor = np.array([nothing[name] for name in fields])[:, None]
+    chosen = np.where(np.abs(chosen) <= floor, 0.0, chosen)
     return dict(zip(fields, chosen, strict=True))
+
+
+def round_off(analysis: Analysis, p: Pieces) -> dict[str, float]:
+    """Values of each column of the stations that are nothing but round-off.
+
+    Forces are measured by the largest force or reaction, moments by those times the length too; rotations and
+    deflections by the largest of either plane.
+    """
+    length = analysis.member.length
+    force = max(float(np.abs(f).max()) for f in (p.V, p.N, p.reactions[:, :, [0, 1, 3]])) if p.reactions.size else 0.0
+    moment = max(
+        float(np.abs(p.M).max()), float(np.abs(p.reactions[:, :, [2, 4]]).max(initial=0.0)), 1e-3 * force * length
+    )
+    moved = float(np.abs(p.deflection).max())
+    turned = max(float(np.abs(p.rotation + p.shear).max()), moved / length)
+    sizes = {"M": moment, "M_datum": moment, "V": force, "N": force, "slope": turned, "rotation": turned}
+    sizes |= {"deflection": moved, "across": moved}
+    return {name: 1e-13 * size for name, size in sizes.items()}
 
 
 def _jumps(analysis: Analysis, p: Pieces) -> list[float]:
     """Borders at which any listed value jumps [m]."""
     panels = analysis.profile.panels
+    nothing = round_off(analysis, p)
     found: set[int] = set()
-    fields = (p.M, p.M_datum, p.V, p.N, p.rotation[0] + p.shear[0], p.rotation[0], p.deflection[0])
-    for field in fields:
-        total = field.sum(axis=0)
-        left, right = panels.ends(total)
-        size = np.abs(total).max()
-        found.update(np.flatnonzero(np.abs(left[1:] - right[:-1]) > 1e-9 * size) + 1)
+    fields = {
+        "M": p.M,
+        "M_datum": p.M_datum,
+        "V": p.V,
+        "N": p.N,
+        "slope": p.rotation[0] + p.shear[0],
+        "rotation": p.rotation[0],
+        "deflection": p.deflection[0],
+    }
+    for name, field in fields.items():
+        left, right = panels.ends(field.sum(axis=0))
+        found.update(np.flatnonzero(np.abs(left[1:] - right[:-1]) > 1e4 * nothing[name]) + 1)
     return [float(panels.a[k]) for k in sorted(found)]
 
 

@@ -17,6 +17,29 @@ LBF = 0.45359237 * 9.80665
 KSI = 1000 * LBF / INCH**2
 KLF = 1000 * LBF / FOOT
 
+SIMPLE_BEAM = """
+length = "6 m"
+shear = false
+[material.steel]
+E = "210 GPa"
+[[part]]
+name = "beam"
+material = "steel"
+shape = "rectangle"
+width = "100 mm"
+depth = "200 mm"
+[[support]]
+at = "0 m"
+kind = "pin"
+[[support]]
+at = "6 m"
+kind = "roller"
+[[load]]
+kind = "uniform"
+value = "10 kN/m"
+"""
+"""A uniformly loaded steel beam on two supports, bending alone, without a limit."""
+
 
 def command(name: str, text: str, *options: str) -> Any:
     """JSON result of ``fishbelly NAME JOB --json OPTIONS``; the job must be sound (status 0 or 1)."""

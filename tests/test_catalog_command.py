@@ -10,36 +10,15 @@ import tomllib
 from pathlib import Path
 
 import pytest
-from commands import command, deflect
+from commands import SIMPLE_BEAM, changed, command, deflect
 
 from fishbelly.catalog.limits import limits
 from fishbelly.catalog.search import everything
 from fishbelly.cli.catalog_snippets import snippet
 from fishbelly.cli.main import DONE, WRONG, run
 
-BEAM = """
-length = "6 m"
-shear = false
-[material.steel]
-E = "210 GPa"
-[[part]]
-name = "beam"
-material = "steel"
-shape = "rectangle"
-width = "100 mm"
-depth = "200 mm"
-[[support]]
-at = "0 m"
-kind = "pin"
-[[support]]
-at = "{end}"
-kind = "roller"
-[[load]]
-kind = "uniform"
-value = "10 kN/m"
-"""
-WHOLE = BEAM.format(end="6 m")
-OVERHANG = BEAM.format(end="4 m")
+WHOLE = SIMPLE_BEAM
+OVERHANG = changed(SIMPLE_BEAM, ('at = "6 m"', 'at = "4 m"'))
 
 
 def said(capsys: pytest.CaptureFixture[str], *words: str, status: int = DONE) -> str:

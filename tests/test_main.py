@@ -9,33 +9,14 @@ import sys
 from pathlib import Path
 
 import pytest
+from commands import SIMPLE_BEAM
 
 from fishbelly.cli import main as command_line
 from fishbelly.cli.last_net import CANNOT, DONE, NOT_MET, WRONG
 from fishbelly.cli.main import NOT_BUILT, cli, run
 
-JOB = """
-title = "Simple beam"
-length = "6 m"
-shear = false
-[material.steel]
-E = "210 GPa"
-[[part]]
-name = "beam"
-material = "steel"
-shape = "rectangle"
-width = "100 mm"
-depth = "200 mm"
-[[support]]
-at = "0 m"
-kind = "pin"
-[[support]]
-at = "6 m"
-kind = "roller"
-[[load]]
-kind = "uniform"
-value = "10 kN/m"
-[[limit]]
+JOB = f"""
+title = "Simple beam"{SIMPLE_BEAM}[[limit]]
 name = "L/300"
 span_over = 300
 """

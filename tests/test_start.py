@@ -13,7 +13,7 @@ from typing import Any
 import pytest
 from click.shell_completion import BashComplete
 from jsonschema import Draft202012Validator
-from worked_answers import answer
+from worked_run import answer
 
 from fishbelly.catalog.worked_jobs import reference_text, worked_jobs
 from fishbelly.cli.all_keys import all_keys, place_of

@@ -172,3 +172,12 @@ def test_corroded_lintel_end_to_end(tmp_path: Path, capsys: pytest.CaptureFixtur
     assert checks["L/600"]["allowed"] == pytest.approx(0.0045)
     assert status == (0 if all(c["ok"] for c in checks.values()) else 1)
     assert (tmp_path / "lintel.xlsx").exists()
+
+
+def test_a_survey_that_stops_short_is_said(tmp_path: Path) -> None:
+    (tmp_path / "survey.csv").write_text("station [mm],depth left [mm]\n200,8.6\n1350,5.4\n")
+    warnings = read_job(str(_job(tmp_path, "survey.csv"))).warnings
+    assert warnings == (
+        "survey.csv ends at x = 1.35 m: its last value is used up to 2.7 m",
+        "survey.csv begins at x = 0.2 m: its first value is used from 0",
+    )

@@ -10,7 +10,8 @@ from typing import Any
 
 import pytest
 from commands import INCH, KN, MM, MPA, changed, deflect, down, prints
-from worked_answers import ANSWERS, answer
+from worked_answers import ANSWERS
+from worked_run import answer
 
 from fishbelly.catalog.worked_jobs import worked_jobs
 from fishbelly.cli.main import run

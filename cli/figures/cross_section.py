@@ -17,10 +17,9 @@ from fishbelly.cli.figures.paper import (
     RIGHT,
     THIN,
     WIDTH,
-    bare,
+    in_millimetres,
     own_panel,
     pens,
-    size_of,
     text_width,
 )
 from fishbelly.cli.figures.section_shapes import part_shapes
@@ -92,11 +91,8 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         shapes = part_shapes(job.member, data["x"], data["side"])
         if ax is None:
             ax = own_panel(sheet(shapes, WIDTH - MARGIN_LEFT - RIGHT).height, left=MARGIN_LEFT, foot=2.0)
-        bare(ax)
-        width, height = size_of(ax)
+        width, height = in_millimetres(ax)
         paper = sheet(shapes, width, max(height - TOP - FOOT, 6.0))
-        ax.set_xlim(0.0, width)
-        ax.set_ylim(0.0, height)
         side = f", {data['side']} side" if _at_break(job.member, data["x"]) else ""
         head = f"Cross-section at x = {place(data['x'], job.member.length, job.style)}{side}, {paper.words}"
         fuller = f"{head}, hatched by material"

@@ -6,7 +6,7 @@ from typing import Any
 
 from fishbelly.cli.figures.letters import one_line, shortened
 from fishbelly.cli.figures.looks import number_of, part_look
-from fishbelly.cli.figures.paper import LEFT, LINE, MEDIUM, RIGHT, WIDTH, bare, own_panel, pens, size_of, text_width
+from fishbelly.cli.figures.paper import LEFT, LINE, MEDIUM, RIGHT, WIDTH, in_millimetres, own_panel, pens, text_width
 from fishbelly.cli.figures.ticks import place
 from fishbelly.member.description import Member, Part
 
@@ -57,10 +57,7 @@ def plot(job: Any, ax: Any = None) -> Any:
     with pens():
         if ax is None:
             ax = own_panel(height(member, job.style), foot=2.0)
-        bare(ax)
-        width, tall = size_of(ax)
-        ax.set_xlim(0.0, width)
-        ax.set_ylim(0.0, tall)
+        width, tall = in_millimetres(ax)
         count = columns(member, job.style, width)
         rows, wide = -(-len(member.parts) // count), width / count
         for k, part in enumerate(member.parts):

@@ -138,3 +138,12 @@ def bare(ax: Any) -> None:
     ax.patch.set_alpha(0.0)
     for spine in ax.spines.values():
         spine.set_visible(False)
+
+
+def in_millimetres(ax: Any) -> tuple[float, float]:
+    """Make axes a bare sheet with both directions in mm of paper from the lower left; returns width and height."""
+    bare(ax)
+    width, height = size_of(ax)
+    ax.set_xlim(0.0, width)
+    ax.set_ylim(0.0, height)
+    return width, height

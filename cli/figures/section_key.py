@@ -8,7 +8,7 @@ from typing import Any
 
 from fishbelly.cli.figures.letters import lines_of, one_line, shortened
 from fishbelly.cli.figures.looks import material_look, number_of
-from fishbelly.cli.figures.paper import LINE, MEDIUM, bare, own_panel, pens, size_of, text_width
+from fishbelly.cli.figures.paper import LINE, MEDIUM, in_millimetres, own_panel, pens, text_width
 from fishbelly.cli.figures.section_dimensions import size_words
 from fishbelly.cli.figures.section_shapes import part_shapes
 from fishbelly.cli.figures.ticks import value
@@ -110,39 +110,18 @@ def materials_height(job: Any, data: Mapping[str, Any], width: float) -> float:
 def plot_materials(job: Any, data: Mapping[str, Any], ax: Any) -> Any:
     """Write the key of the materials alone, in axes as for `plot`."""
     with pens():
-        bare(ax)
-        width, tall = size_of(ax)
-        ax.set_xlim(0.0, width)
-        ax.set_ylim(0.0, tall)
+        width, tall = in_millimetres(ax)
         materials = _materials(job.member, data, job.style)
         _table(ax, [m[1] for m in materials], tall, width, _SWATCH + 2.0, job.member, [m[0] for m in materials])
     return ax
 
 
 def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
-    """Write the words that belong to a cross-section.
-
-    Parameters
-    ----------
-    job : Job
-        The job.
-    data : mapping
-        Results of `fishbelly section`.
-    ax : Axes, optional
-        Where to draw; default axes of a new figure.
-
-    Returns
-    -------
-    Axes
-        In mm of paper.
-    """
+    """Write the words that belong to a cross-section, in axes in mm of paper; arguments as of `cross_section.plot`."""
     with pens():
         if ax is None:
             ax = own_panel(height(job, data, 149.0), left=6.0, foot=2.0)
-        bare(ax)
-        width, tall = size_of(ax)
-        ax.set_xlim(0.0, width)
-        ax.set_ylim(0.0, tall)
+        width, tall = in_millimetres(ax)
         y = tall
         for line in lines_of(_facts(data, job.style), width, 5):
             ax.text(0.0, y - 0.5 * LINE, line, ha="left", va="center")
