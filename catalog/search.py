@@ -33,6 +33,8 @@ class Entry:
         Where it is published.
     note : str
         What to know before use; may be empty.
+    outline : str
+        Of a section: `RolledSection.kind`; else empty.
     """
 
     group: str
@@ -41,6 +43,7 @@ class Entry:
     values: tuple[Value, ...]
     source: str
     note: str
+    outline: str = ""
 
 
 _MATERIAL_UNITS = {
@@ -52,8 +55,11 @@ _MATERIAL_UNITS = {
     "creep": "",
     "E_05": "Pa",
     "cracking": "Pa",
-    "yield_strength": "Pa",
+    "yield": "Pa",
 }
+"""Units by label; labels are keys of a job where it has one for it."""
+_FIELDS = {"yield": "yield_strength"}
+"""Attributes of `CatalogMaterial` that differ from the label."""
 
 
 _SECTION_KINDS = {
@@ -67,9 +73,9 @@ _SECTION_KINDS = {
 def material_entry(material: CatalogMaterial) -> Entry:
     """Entry of a material; values that its source does not give are left out."""
     values = [
-        (label, float(getattr(material, label)), unit)
+        (label, float(value), unit)
         for label, unit in _MATERIAL_UNITS.items()
-        if getattr(material, label) is not None
+        if (value := getattr(material, _FIELDS.get(label, label))) is not None
     ]
     if material.band is not None:
         values += [("E lowest", material.band[0], "Pa"), ("E highest", material.band[1], "Pa")]
@@ -82,7 +88,7 @@ def section_entry(section: RolledSection) -> Entry:
     """Entry of a rolled section: its dimensions."""
     values = tuple((label, value, "" if label == "slope" else "m") for label, value in section.dimensions.items())
     kind = _SECTION_KINDS.get(section.kind, section.kind)
-    return Entry("rolled section", section.designation, kind, values, section.source, "")
+    return Entry("rolled section", section.designation, kind, values, section.source, "", section.kind)
 
 
 def limit_entry(limit: PublishedLimit) -> Entry:

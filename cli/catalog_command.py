@@ -128,6 +128,7 @@ def data_of(found: Sequence[Entry], asked: str) -> dict[str, Any]:
     asked : str
         The words asked for.
     """
+    from fishbelly.cli.catalog_properties import data_of_section
     from fishbelly.cli.catalog_snippets import snippet
 
     entries = [
@@ -136,6 +137,7 @@ def data_of(found: Sequence[Entry], asked: str) -> dict[str, Any]:
             "name": entry.name,
             "kind": entry.kind,
             "values": {_key(label): value for label, value, _ in entry.values},
+            **data_of_section(entry),
             "source": entry.source,
             "note": entry.note,
             "snippet": snippet(entry),
@@ -159,12 +161,12 @@ def _own_entries(files: Sequence[str]) -> list[Entry]:
 
     catalogue = read_alone(files)
     entries = [section_entry(section) for section in catalogue.sections.values()]
-    units = {"E": "Pa", "G": "Pa", "density": "kg/m3", "expansion": "1/K", "cracking": "Pa", "yield_strength": "Pa"}
+    units = {"E": "Pa", "G": "Pa", "density": "kg/m3", "expansion": "1/K", "cracking": "Pa", "yield": "Pa"}
     for material in catalogue.materials.values():
         values = [
             (key, float(value), units.get(key, ""))
-            for key in ("E", "G", "poisson", "density", "expansion", "creep", "cracking", "yield_strength")
-            if (value := getattr(material, key)) is not None
+            for key in ("E", "G", "poisson", "density", "expansion", "creep", "cracking", "yield")
+            if (value := getattr(material, "yield_strength" if key == "yield" else key)) is not None
         ]
         source = catalogue.sources[material.name]
         entries.append(Entry("material", material.name, "of your own", tuple(values), source, ""))
@@ -176,10 +178,17 @@ def _write(found: Sequence[Entry], style: str, outputs: Sequence[str], force: bo
     from pathlib import Path
 
     from fishbelly.cli import files
+    from fishbelly.cli.catalog_properties import MEANINGS, properties
     from fishbelly.cli.catalog_tables import what_of
     from fishbelly.cli.grid import TEXT, Column, Grid, unit_of
 
-    rows = [(entry, label, number, what_of(label, unit)) for entry in found for label, number, unit in entry.values]
+    rows = []
+    for entry in found:
+        rows += [(entry, label, number, what_of(label, unit)) for label, number, unit in entry.values]
+        rows += [
+            (entry, f"{symbol}, computed from the dimensions: {MEANINGS[symbol]}", number, what)
+            for symbol, number, what in properties(entry)
+        ]
     grid = Grid(
         "Catalogue",
         (

@@ -6,6 +6,7 @@ from collections import Counter
 from collections.abc import Iterable, Sequence
 
 from fishbelly.catalog.search import Entry, Value
+from fishbelly.cli.catalog_properties import MEANINGS, basis, properties
 from fishbelly.cli.catalog_snippets import snippet
 from fishbelly.cli.format_quantity import NOTHING, unit_label, unit_size
 from fishbelly.cli.text_table import paragraph, shown_width
@@ -17,11 +18,16 @@ MOST_LIMITS = 60
 _EXPLAINED = 12
 """Up to so many limits are shown with the loads that they are for."""
 
+_BRIEF = ("A", "I_y", "W_y")
+"""Computed properties that a list of sections shows."""
+_WIDTH = 80
+"""Columns of a terminal; computed properties that do not fit are left to the section in full."""
+_OF_BRIEF = "A, I_y and W_y (elastic) are computed from the dimensions."
 _OF_LIMITS = (
     "L is the span, of a cantilever twice its own length; l is the own length of a cantilever. Of several the "
     "smaller governs."
 )
-_STRESSES = ("cracking", "yield_strength")
+_STRESSES = ("cracking", "yield")
 _WHAT = {"Pa": "modulus", "kg/m3": "density", "1/K": "expansion", "m": "length", "": "factor"}
 _MAIN = {
     "material": ("E", "G", "poisson", "density"),
@@ -107,8 +113,30 @@ def detail(entry: Entry, style: str) -> str:
     lines += paragraph(entry.source, f"  {'source':<{width}}")
     if entry.note:
         lines += paragraph(entry.note, f"  {'note':<{width}}")
+    lines += _computed(entry, style)
     pasted = [f"    {line}" for line in snippet(entry).splitlines()]
     return "\n".join([*lines, "", "In a job:", "", *pasted])
+
+
+def _computed(entry: Entry, style: str) -> list[str]:
+    """Write what follows from the dimensions of a section, with what each is."""
+    found = properties(entry)
+    if not found:
+        return []
+    cells = [(symbol, _property(value, what, style), MEANINGS[symbol]) for symbol, value, what in found]
+    widths = [max(len(cell[k]) for cell in cells) + 2 for k in range(2)]
+    rows = [f"    {symbol:<{widths[0]}}{text:<{widths[1]}}{said}" for symbol, text, said in cells]
+    return ["", f"  Computed from {basis(entry)}", *rows]
+
+
+def _property(value: float, what: str, style: str) -> str:
+    """Write a computed value with four figures and its unit."""
+    return f"{_four(value / unit_size(what, style))} {unit_label(what, style)}"  # type: ignore[arg-type]
+
+
+def _four(number: float) -> str:
+    """Write four significant figures, digits before the point never rounded away."""
+    return f"{number:.0f}" if abs(number) >= 1e3 else f"{number:.4g}"
 
 
 def _limit_value(entry: Entry, value: Value, style: str) -> str:
@@ -143,6 +171,8 @@ def listing(entries: Sequence[Entry], style: str, asked: str, everything: bool =
         lines += _limits(own[:most], style) if group == "limit" else _by_kind(own[:most], style, sources)
         if len(own) > most:
             lines += paragraph(f"… and {len(own) - most} more: {_narrower(own, asked)}, or see --all", "  ")
+        if group == "rolled section":
+            lines += ["", *paragraph(_OF_BRIEF, "  ")]
         lines.append("")
     if sources:
         lines.append("Sources")
@@ -172,14 +202,38 @@ def _rows(entries: Sequence[Entry], style: str, sources: dict[str, int]) -> list
     known = {label: unit for e in entries for label, _, unit in e.values}
     labels = tuple(label for label in labels if label in known)
     heads = [label.replace("k_def, service class", "class") for label in labels]
-    rows = [["", *heads, ""], ["", *(_unit((label, 0.0, known[label]), style) for label in labels), ""]]
+    units = [_unit((label, 0.0, known[label]), style) for label in labels]
+    rows = [["", *heads], ["", *units]]
     for entry in entries:
         values = {value[0]: shown(value, style, 5 if value[2] == "m" else 4) for value in entry.values}
-        number = sources.setdefault(_short(entry.source), len(sources) + 1)
-        rows.append([entry.name, *(values.get(label, NOTHING) for label in labels), f"[{number}]"])
-    rows = [row for row in rows if any(row)]
-    widths = [max(shown_width(row[k]) for row in rows) for k in range(len(rows[0]))]
-    return ["    " + _row(row, widths) for row in rows]
+        rows.append([entry.name, *(values.get(label, NOTHING) for label in labels)])
+    ends = ["", "", *(f"[{sources.setdefault(_short(e.source), len(sources) + 1)}]" for e in entries)]
+    for column in _brief(entries, style):
+        wider = [[*row, cell] for row, cell in zip(rows, column, strict=True)]
+        if max(map(len, _aligned(wider, ends))) <= _WIDTH:
+            rows = wider
+    return _aligned(rows, ends)
+
+
+def _aligned(rows: Sequence[Sequence[str]], ends: Sequence[str]) -> list[str]:
+    """Set rows in columns, each with its end; rows without a word are left out."""
+    whole = [[*row, end] for row, end in zip(rows, ends, strict=True)]
+    whole = [row for row in whole if any(row)]
+    widths = [max(shown_width(row[k]) for row in whole) for k in range(len(whole[0]))]
+    return ["    " + _row(row, widths) for row in whole]
+
+
+def _brief(entries: Sequence[Entry], style: str) -> list[list[str]]:
+    """Columns of computed properties of a list of sections: head, unit, values."""
+    computed = [{symbol: (value, what) for symbol, value, what in properties(entry)} for entry in entries]
+    columns = []
+    for symbol in _BRIEF:
+        what = next((own[symbol][1] for own in computed if symbol in own), None)
+        if what is not None:
+            size = unit_size(what, style)  # type: ignore[arg-type]
+            cells = [_four(own[symbol][0] / size) if symbol in own else NOTHING for own in computed]
+            columns.append([symbol, unit_label(what, style), *cells])  # type: ignore[arg-type]
+    return columns
 
 
 def _short(source: str) -> str:

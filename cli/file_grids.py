@@ -12,6 +12,12 @@ from fishbelly.cli.section_grids import section_parts, section_stresses
 
 Row = Mapping[str, Any]
 
+OF_STATIONS = (
+    "M is about the E-weighted centroid, M_datum about the datum line z = 0: M_datum = M where there is no axial "
+    "force; slope is that of the deflected line, rotation that of the section, apart by the shear deformation"
+)
+"""What the heads of the stations mean, for files."""
+
 
 def joined(title: str, pairs: Sequence[tuple[str, Grid]]) -> Grid:
     """Put the grids of several combinations below each other, with the combination as the first column.
@@ -28,7 +34,8 @@ def joined(title: str, pairs: Sequence[tuple[str, Grid]]) -> Grid:
     for same in zip(*(grid.columns for _, grid in pairs), strict=True):
         settled = [c.values if c.is_text else c.settled() for c in same]
         columns.append(replace(same[0], values=tuple(v for values in settled for v in values), noise=0.0, scale=0.0))
-    return Grid(title, tuple(columns))
+    notes = {grid.note for _, grid in pairs}
+    return Grid(title, tuple(columns), notes.pop() if len(notes) == 1 else "")
 
 
 def per_combination(data: Row, title: str, make: Callable[[Row, grids.Noise], Grid]) -> Grid:
@@ -38,7 +45,10 @@ def per_combination(data: Row, title: str, make: Callable[[Row, grids.Noise], Gr
 
 
 def answers(data: Row) -> Grid:
-    """Write one row a combination: largest deflections, moments and shears with their places, and checks."""
+    """Write one row a combination: largest deflections, moments and shears with their places, and checks.
+
+    What no combination has is left out, so that the sheet stays narrow.
+    """
     rows = data["combinations"]
 
     def entry(group: str, name: str, key: str) -> Callable[[Row], Any]:
@@ -64,7 +74,10 @@ def answers(data: Row) -> Grid:
         ("V max", "force", "shear", "max"),
         ("V min", "force", "shear", "min"),
     ):
-        columns.append(column(rows, title, what, entry(group, name, "value")))
+        value = column(rows, title, what, entry(group, name, "value"))
+        if all(v is None for v in value.values):
+            continue
+        columns.append(value)
         columns.append(column(rows, f"{title} at x", "position", entry(group, name, "at")))
     columns += grids.summary(data).columns[3:]
     return Grid("Answer", tuple(columns))
@@ -88,7 +101,17 @@ def stations(data: Row) -> Grid:
         return replace(grid, columns=(*grid.columns, *extra))
 
     patterned = next((c for c in data["combinations"] if c.get("envelope")), None)
-    return per_combination(data, "Stations", make)
+    return replace(per_combination(data, "Stations", make), note=OF_STATIONS)
+
+
+def stress(data: Row) -> Grid:
+    """Write the largest and smallest stresses of all combinations, every head once."""
+    grid = per_combination(data, "Stress", grids.stress)
+    columns, which = [], ""
+    for one in grid.columns:
+        which = one.title if one.title in ("max", "min") else which
+        columns.append(replace(one, title=f"{one.title} of {which}") if one.title in ("at x", "z") else one)
+    return replace(grid, columns=tuple(columns))
 
 
 def _no_envelope(count: int, patterned: Row | None) -> tuple[Column, ...]:

@@ -71,9 +71,36 @@ def write(path: str, command: str, data: dict[str, Any], job: Any, force: bool) 
     FileFault
         When the format is not written or the file cannot be. What stood there is then as it was.
     """
-    target = _checked(path, force, job.name)
-    content = _content(target.suffix.lower())(command, data, job)
-    _replace(path, target, content)
+    write_all([path], command, data, job, force)
+
+
+def write_all(paths: Sequence[str], command: str, data: dict[str, Any], job: Any, force: bool) -> None:
+    """Write results to several files: all of them, or none.
+
+    Parameters
+    ----------
+    paths : sequence of str
+        The files.
+    command, data, job, force
+        As for `write`.
+
+    Raises
+    ------
+    FileFault
+        When one of them cannot be written. What stood there is then as it was.
+    """
+    staged: list[tuple[str, Path, Path]] = []
+    try:
+        for path in paths:
+            target = _checked(path, force, job.name)
+            content = _content(target.suffix.lower())(command, data, job)
+            staged.append((path, target, _stage(path, target, content)))
+        for path, target, beside in staged:
+            _put(path, target, beside)
+    except BaseException:
+        for _, _, beside in staged:
+            beside.unlink(missing_ok=True)
+        raise
 
 
 def write_bytes(path: str, content: bytes, force: bool) -> None:
@@ -148,6 +175,16 @@ def _check_folder(shown: str, folder: Path) -> None:
 
 def _replace(path: str, target: Path, content: bytes) -> None:
     """Write to a file beside the target, then put it in the target's place in one step."""
+    beside = _stage(path, target, content)
+    try:
+        _put(path, target, beside)
+    except BaseException:
+        beside.unlink(missing_ok=True)
+        raise
+
+
+def _stage(path: str, target: Path, content: bytes) -> Path:
+    """Write what shall stand in a file beside it, and return where."""
     beside = target.parent / f".fishbelly-{os.getpid()}-{os.urandom(4).hex()}.tmp"
     try:
         handle = os.open(beside, os.O_WRONLY | os.O_CREAT | os.O_EXCL | getattr(os, "O_BINARY", 0), 0o666)
@@ -156,12 +193,20 @@ def _replace(path: str, target: Path, content: bytes) -> None:
                 stream.write(content)
                 stream.flush()
                 os.fsync(stream.fileno())
-            if target.exists():
-                os.chmod(beside, target.stat().st_mode & 0o777)
-            os.replace(beside, target)
         except BaseException:
             beside.unlink(missing_ok=True)
             raise
+    except OSError as error:
+        raise FileFault(_words(path, error)) from error
+    return beside
+
+
+def _put(path: str, target: Path, beside: Path) -> None:
+    """Put a file that stands beside its target in the target's place, in one step."""
+    try:
+        if target.exists():
+            os.chmod(beside, target.stat().st_mode & 0o777)
+        os.replace(beside, target)
     except OSError as error:
         raise FileFault(_words(path, error)) from error
 

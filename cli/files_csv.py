@@ -7,7 +7,7 @@ import io
 from typing import Any
 
 from fishbelly.cli.cautions import LINE
-from fishbelly.cli.file_grids import section_details, stations
+from fishbelly.cli.file_grids import OF_STATIONS, section_details, stations
 from fishbelly.cli.grid import Grid, unit_of
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
 
@@ -38,8 +38,9 @@ def csv_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
     if command == "section":
         rows = _section(data, style)
     else:
-        rows = _rows(stations(data) if command == "deflect" else stiffness_grid(data), style)
-    rows += [[], *(["note", _harmless(str(note))] for note in (*data.get("notes", ()), LINE))]
+        rows = _rows(stations(data) if command == "deflect" else stiffness_grid(data, full=True), style)
+    said = [OF_STATIONS] if command == "deflect" else []
+    rows += [[], *(["note", _harmless(str(note))] for note in (*data.get("notes", ()), *said, LINE))]
     out = io.StringIO()
     csv.writer(out).writerows(rows)
     return out.getvalue().encode("utf-8")

@@ -6,11 +6,12 @@ import io
 import math
 from dataclasses import replace
 from datetime import datetime
+from textwrap import wrap
 from typing import Any
 
 from fishbelly.cli import deflect_grids
 from fishbelly.cli.cautions import FULL
-from fishbelly.cli.file_grids import answers, checks, per_combination, section_details, stations
+from fishbelly.cli.file_grids import answers, checks, per_combination, section_details, stations, stress
 from fishbelly.cli.files_csv import head
 from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
@@ -22,6 +23,14 @@ _CREATED = datetime(2000, 1, 1)
 """Date in the file's properties, always the same so that the same job gives the same file."""
 _MOST_TEXT = 32767
 """Characters that a cell holds."""
+_OWN_RANGE = 1e-3
+"""With figures of its own, a number shows no finer than one of this share of the column's largest would."""
+_LINE = 15
+"""Height of a line of text [pt]."""
+_TEXT_WIDTH = 100
+"""Width of sheets of text [characters]."""
+_A4, _LETTER = 9, 1
+"""Numbers of paper sizes in the file format."""
 _WIDEST = 60
 _NARROWEST = 9
 _AXES = {"deflect": AXES, "stiffness": STIFFNESS_AXES, "section": SECTION_AXES}
@@ -83,14 +92,14 @@ def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
         per_combination(data, "Supports", deflect_grids.supports),
         per_combination(data, "Spans", deflect_grids.spans),
         per_combination(data, "Ends", deflect_grids.ends),
-        per_combination(data, "Stress", deflect_grids.stress),
+        stress(data),
         stations(data),
         replace(stiffness_grid(table), title="EI"),
     ]
 
 
 def _stiffness(data: dict[str, Any], _: Any) -> list[Grid]:
-    return [replace(stiffness_grid(data), title="EI")]
+    return [replace(stiffness_grid(data, full=True), title="EI")]
 
 
 def _section(data: dict[str, Any], job: Any) -> list[Grid]:
@@ -123,7 +132,8 @@ def _notes(command: str, data: dict[str, Any], job: Any) -> list[str]:
         if check is not None and check.get("difference") is not None:
             lines.append(f"Second method, {c['name']}: {check['method']}, difference {check['difference']:.1e}")
     lines += [str(note) for note in data.get("notes", ())]
-    return [*lines, "", *FULL.splitlines()]
+    paragraphs = (" ".join(paragraph.split()) for paragraph in FULL.split("\n\n"))
+    return [*lines, "", "\n\n".join(paragraphs)]
 
 
 class _Pen:
@@ -136,37 +146,52 @@ class _Pen:
         self.formats: dict[tuple[str, bool], Any] = {}
 
     def grid(self, grid: Grid) -> None:
-        """Write a grid as a sheet: frozen bold heads, numbers, and rows at a jump shaded."""
+        """Write a grid as a sheet: frozen bold heads, numbers, rows at a jump shaded, and its note below."""
         sheet = self.book.add_worksheet(grid.title[:31])
         jumps = next((c.values for c in grid.columns if c.title == "side"), ())
         columns = [c for c in grid.columns if not (c.optional and c.empty)]
+        lines = 1
         for k, column in enumerate(columns):
             title = head(column.title, column.unit(self.style))
             sheet.write_string(0, k, title, self.bold)
             numbers = [] if column.is_text else column.numbers(self.style)
             texts = [str(v or "") for v in column.values] if column.is_text else []
             longest = max((len(t) for t in texts), default=0)
-            sheet.set_column(k, k, min(max(len(title) + 2, longest + 1, _NARROWEST), _WIDEST))
-            pattern = "General" if column.is_text else _pattern(column, numbers)
+            width = min(max(max(map(len, title.split())) + 2, longest + 1, _NARROWEST), _WIDEST)
+            lines = max(lines, len(wrap(title, width - 1)))
+            sheet.set_column(k, k, width)
+            patterns = [] if column.is_text else _patterns(column, numbers)
             for row in range(grid.count):
-                look = self._format(pattern, bool(jumps and jumps[row]))
+                look = self._format(patterns[row] if patterns else "General", bool(jumps and jumps[row]))
                 if texts and texts[row]:
                     sheet.write_string(row + 1, k, texts[row][:_MOST_TEXT], look)
                 elif numbers and numbers[row] is not None:
                     sheet.write_number(row + 1, k, numbers[row], look)
                 else:
                     sheet.write_blank(row + 1, k, None, look)
+        if grid.note:
+            sheet.write_string(grid.count + 2, 0, f"Note: {grid.note}")
+        sheet.set_row(0, _LINE * lines)
         sheet.freeze_panes(1, 0)
-        sheet.set_landscape()
-        sheet.fit_to_pages(1, 0)
         sheet.repeat_rows(0)
+        self._page(sheet)
+        sheet.set_landscape()
 
     def lines(self, name: str, lines: list[str], plain: bool = False) -> None:
         """Write lines of text as a sheet of one column."""
         sheet = self.book.add_worksheet(name)
-        sheet.set_column(0, 0, 100)
+        sheet.set_column(0, 0, _TEXT_WIDTH)
         for row, line in enumerate(lines):
             sheet.write_string(row, 0, line[:_MOST_TEXT], None if plain else self.words)
+            rows = sum(max(len(wrap(part, _TEXT_WIDTH)), 1) for part in line.split("\n"))
+            if not plain and rows > 1:
+                sheet.set_row(row, _LINE * rows)
+        self._page(sheet)
+
+    def _page(self, sheet: Any) -> None:
+        """Fit a sheet to the width of a page: A4, or letter for US units."""
+        sheet.set_paper(_LETTER if self.style == "us" else _A4)
+        sheet.fit_to_pages(1, 0)
 
     def _format(self, pattern: str, shaded: bool) -> Any:
         key = (pattern, shaded)
@@ -176,17 +201,32 @@ class _Pen:
         return self.formats[key]
 
 
-def _pattern(column: Column, numbers: list[float | None]) -> str:
-    """Choose how a spreadsheet shows a column: about five figures of its largest number."""
+def _patterns(column: Column, numbers: list[float | None]) -> list[str]:
+    """Choose how a spreadsheet shows a column: about five figures of its largest number, or of each.
+
+    Numbers of one column that are of several quantities, or bare, are shown as they are where they are short.
+    """
     if column.what == PERCENT:
-        return "0.0"
+        return ["0.0"] * len(numbers)
     if column.what == "position":
-        return "0.000"
+        return ["0.000"] * len(numbers)
     top = max((abs(n) for n in numbers if n is not None), default=0.0)
-    if top == 0.0:
+    if not column.own:
+        return [_pattern(top)] * len(numbers)
+    bare = column.what == "factor"
+    patterns = []
+    for number in numbers:
+        short = number is None or (bare and float(f"{number:.6g}") == number)
+        patterns.append("General" if short else _pattern(max(abs(number or 0.0), 0.0 if bare else _OWN_RANGE * top)))
+    return patterns
+
+
+def _pattern(size: float) -> str:
+    """Show about five figures of a number of that size."""
+    if size == 0.0:
         return "0"
-    exponent = math.floor(math.log10(top))
-    if column.own or not -4 <= exponent < 9:
-        return "General" if column.own else "0.0000E+00"
+    exponent = math.floor(math.log10(size))
+    if not -4 <= exponent < 9:
+        return "0.0000E+00"
     decimals = max(4 - exponent, 0)
     return f"0.{'0' * decimals}" if decimals else "0"

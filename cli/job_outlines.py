@@ -11,32 +11,11 @@ from fishbelly.cli.job_laws import Columns, Steps, finish, minus
 from fishbelly.cli.job_part_models import DIMENSIONS, PartTable
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_types import Path, ValueFault
+from fishbelly.cli.outline_rules import RADII, SHARED
 from fishbelly.member.description import Shape
 from fishbelly.member.laws import Law, constant
 
 Laws = dict[str, Law]
-
-_RADII = {
-    "box": ("radius",),
-    "I": ("radius",),
-    "tee": ("radius",),
-    "channel": ("radius", "toe_radius", "slope", "flange_at"),
-    "angle": ("radius", "toe_radius"),
-    "regular polygon": ("wall",),
-}
-"""Dimensions that are nothing where they are not given."""
-
-_SHARED = {
-    "box": {"web": "wall", "flange": "wall"},
-    "angle": {"web": "thickness", "flange": "thickness"},
-    "I": {
-        "top_width": "width",
-        "bottom_width": "width",
-        "top_flange": "flange",
-        "bottom_flange": "flange",
-    },
-}
-"""Dimensions that share one key where they do not have their own."""
 
 
 def written_shape(table: PartTable, kind: str, end: float, path: Path, report: Report) -> Shape | None:
@@ -109,19 +88,21 @@ def full_shape(kind: str, laws: Laws, path: Path, report: Report) -> Shape | Non
     """Give every dimension that the outline has; those left out by their rule."""
     laws = dict(laws)
     missing = []
-    for own, shared in _SHARED.get(kind, {}).items():
+    for own, shared in SHARED.get(kind, {}).items():
         if own not in laws and shared in laws:
             laws[own] = laws[shared]
         elif own not in laws:
             missing.append((own, shared))
     for shared in dict.fromkeys(shared for _, shared in missing):
+        if any((*path, key) in report.meant for key in (shared, *(own for own, s in missing if s == shared))):
+            continue  # its misspelling has been noted
         owns = [f"`{own}`" for own, s in missing if s == shared]
         report.add((*path, shared), f"a length, or {' and '.join(owns)} instead", "")
     if missing:
         return None
-    for shared in set(_SHARED.get(kind, {}).values()):
+    for shared in set(SHARED.get(kind, {}).values()):
         laws.pop(shared, None)
-    for key in _RADII.get(kind, ()):
+    for key in RADII.get(kind, ()):
         laws.setdefault(key, constant(0.0))
     if kind == "box" and "inner_radius" not in laws:
         inner = _inner_radius(laws)

@@ -10,9 +10,11 @@ from typing import Any
 
 from fishbelly.catalog.materials import CatalogMaterial
 from fishbelly.cli.faults import Fault, as_written, suggest
+from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.job_types import Path, ValueFault
 from fishbelly.cli.own_catalogue import Catalogue
 from fishbelly.cli.toml_lines import Lines
+from fishbelly.member.checking_parts import FLUSH
 from fishbelly.member.draft import Problem
 
 _ALSO = {
@@ -32,6 +34,21 @@ _ALSO = {
 
 _ITEMS = {"of": "item", "parts": "item", "span": "item", "holds": "item", "points": "point", "holes": "hole"}
 _BARE = re.compile(r"[-+.\de]+(inf)?( \S+)?")
+_METRES = re.compile(r"""("[^"]*")|(?<![\w.])(-?\d+(?:\.\d+)?(?:e[-+]?\d+)?) m(?![\w/])""")
+"""Something in quotes, or a number of metres."""
+_SIXTEENTH = 0.0254 / 16.0
+
+
+def _feet(match: re.Match[str]) -> str:
+    """Write a number of metres, as exact as it was written, in inches below a foot, else in feet and inches."""
+    if match[1]:
+        return match[1]
+    x = float(match[2])
+    near = round(x / _SIXTEENTH) * _SIXTEENTH
+    x = near if f"{near:.6g}" == f"{x:.6g}" else x
+    if x == 0.0:
+        return "0 ft"
+    return f"{x / 0.0254:.5g} in" if abs(x) < 0.3048 - 1e-9 else format_position(x, "us")
 
 
 @dataclass
@@ -56,6 +73,8 @@ class Report:
         Materials of the job that come from the catalogue, or start from it.
     catalogue : Catalogue
         The catalogue, with sections and materials of the job's own files.
+    meant : set of tuple
+        Paths of keys that were probably meant by unknown ones: they are not also reported missing.
     """
 
     name: str
@@ -68,6 +87,7 @@ class Report:
     named_at: dict[str, Path] = field(default_factory=dict)
     published: dict[str, CatalogMaterial] = field(default_factory=dict)
     catalogue: Catalogue = field(default_factory=Catalogue)
+    meant: set[Path] = field(default_factory=set)
     _paths: set[Path] = field(default_factory=set)
 
     def add(self, path: Path, expected: str, found: str, hint: str = "") -> None:
@@ -100,7 +120,7 @@ class Report:
                 key = ill.key or ("" if not ill.path else str(ill.path[-1]))
                 self.faults.append(Fault(ill.file, ill.line, place, key, ill.expected, ill.found, ill.hint))
             else:
-                self.add((*path, *ill.path), ill.expected, ill.found, ill.hint)
+                self.add((*path, *ill.path), self._in_style(ill.expected), ill.found, ill.hint)
 
     def faulty(self, path: Path) -> bool:
         """Whether a fault stands at a path or below it."""
@@ -112,13 +132,18 @@ class Report:
             path = self._as_written(problem.path)
             if path in self._paths or (len(path) > 2 and self.faulty(path)):
                 continue
+            if path in self.meant or any((*path, key) in self.meant for key in (*FLUSH, "position")):
+                continue  # the fault is that of an unknown key
+            if path == ("support",):
+                self.place(None, "", f"no [[support]]: {problem.found}", "", path)
+                continue
             hint = ""
             if problem.among:
                 word = problem.found.strip('"')
                 hint = suggest(word, tuple(dict.fromkeys(name for name in problem.among if name)))
             elif path[0] == "material" and not problem.found and path[1] in self.published:
                 hint = self._way_out(str(path[1]), str(path[-1]))
-            self.add(path, problem.expected, self._found(path, problem.found), hint)
+            self.add(path, self._in_style(problem.expected), self._found(path, problem.found), hint)
 
     def _way_out(self, name: str, key: str) -> str:
         """Say how a property that the catalogue does not give is had."""
@@ -154,7 +179,13 @@ class Report:
 
     def _found(self, path: Path, found: str) -> str:
         value = self.value(path)
-        return as_written(value) if isinstance(value, str) and _BARE.fullmatch(found) else found
+        if isinstance(value, str) and _BARE.fullmatch(found):
+            return as_written(value)
+        return self._in_style(found)
+
+    def _in_style(self, text: str) -> str:
+        """Write metres, outside quotes, as a job in US units has lengths."""
+        return _METRES.sub(_feet, text) if self.value(("units",)) == "us" else text
 
     def where(self, path: Path) -> str:
         """Words for the table that a path leads through: ``part "arm"``, ``load 2``."""

@@ -6,13 +6,23 @@ from typing import Any, TypeVar
 
 from pydantic import BaseModel, ValidationError
 
-from fishbelly.cli.faults import as_written, nearest, suggest
+from fishbelly.cli.faults import as_written, join_words, nearest, suggest
 from fishbelly.cli.job_models import NOT_BUILT, JobTable, Table
 from fishbelly.cli.job_part_models import DIMENSIONS, SHAPES, part_model
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_types import Path, Reader, ValueFault
 
 Model = TypeVar("Model", bound=BaseModel)
+
+
+_OTHER_WORDS = {
+    "part": {
+        **dict.fromkeys(("below", "beneath", "underneath"), ("under",)),
+        **dict.fromkeys(("above", "on", "on_top_of"), ("over",)),
+        **dict.fromkeys(("beside", "next_to"), ("left_of", "right_of")),
+    }
+}
+"""Keys that people write by table, and what the job has for them."""
 
 
 def keys_of(model: type[BaseModel]) -> list[str]:
@@ -48,6 +58,7 @@ def read_table(model: type[Model], table: Any, path: Path, report: Report) -> Mo
         errors = error.errors(include_url=False)
     unknown = [str(e["loc"][0]) for e in errors if e["type"] == "extra_forbidden"]
     meant = {_unknown_key(model, key, path, report) for key in unknown}
+    report.meant.update((*path, key) for key in meant if key is not None)
     others = [e for e in errors if e["type"] != "extra_forbidden"]
     for e in others:
         key = str(e["loc"][0])
@@ -79,13 +90,16 @@ def _unknown_key(model: type[BaseModel], key: str, path: Path, report: Report) -
         report.place(report.line((*path, key)), report.where((*path, key)), text, "", (*path, key))
         return None
     known = keys_of(model)
-    meant = nearest(key, known)
+    other = _OTHER_WORDS.get(kind, {}).get(key.casefold())
+    meant = other[0] if other else nearest(key, known)
     # the line is the key's, the place in words is the table's
     line, where = report.line((*path, key)), report.where((*path, key))
-    hint = suggest(key, known) if meant else ""
+    hint = suggest(key, known) if meant and not other else ""
     text = f'unknown key "{key}"'
     if meant is None and path and key in (*keys_of(JobTable), *NOT_BUILT[""]):
         hint = "it belongs at the top of the file, before the first table"
+    elif other:
+        hint = f"did you mean {join_words(other)}?"
     elif kind == "part" and key in DIMENSIONS:
         text, hint = _strange_dimension(model, key)
     elif not hint:

@@ -24,7 +24,7 @@ KEYS: dict[str, dict[str, str]] = {
         "shear": "whether shear deformation counts; its share is shown apart",
         "camber": "height in the middle of each span, a parabola, or ordinates; upwards; used by limits with `net`",
     },
-    "catalog": {"files": "csv or toml files beside the job with sections and materials of your own"},
+    "catalog": {"files": "csv, xlsx or toml files beside the job with sections and materials of your own"},
     "material": {
         "like": "name in the catalogue that gives what is not written here",
         "E": "modulus of elasticity along the member, short-term mean",

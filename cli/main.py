@@ -114,7 +114,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
             multiple=True,
             metavar="FILE",
             shell_complete=_files,
-            help="Also write FILE: .csv, .json, .xlsx, .png, .svg or .pdf (repeatable).",
+            help="Also write FILE: .csv (the table along x), .json, .xlsx, .png, .svg or .pdf (repeatable).",
         ),
         click.option("--force", is_flag=True, help="Overwrite an existing file."),
         click.option("--stage", expose_value=False, hidden=True, callback=_refused("--stage")),
@@ -250,11 +250,11 @@ def _read(job: str, at: Sequence[str], outputs: Sequence[str], force: bool) -> t
 
         check_targets(outputs, force)
     read = read_job(job)
-    return read, [_place(text, read.member.length) for text in at]
+    return read, [_place(text, read.member.length, read.style) for text in at]
 
 
-def _place(text: str, length: float) -> float:
-    from fishbelly.cli.format_quantity import format_value
+def _place(text: str, length: float, style: Any) -> float:
+    from fishbelly.cli.format_quantity import format_position
     from fishbelly.cli.quantities import Kind, QuantityError, parse_quantity
 
     try:
@@ -262,7 +262,7 @@ def _place(text: str, length: float) -> float:
     except QuantityError as error:
         raise click.UsageError(f"--at: {error}") from None
     if not -1e-9 * length <= x <= length * (1.0 + 1e-9):
-        limit = format_value(length, "length", "metric")
+        limit = format_position(length, style)
         raise click.UsageError(f'--at: expected a place on the member, 0 to {limit}, got "{text}"')
     return min(max(x, 0.0), length)
 
@@ -281,9 +281,8 @@ def _finish(
         from fishbelly.cli import files
         from fishbelly.cli.patience import patience
 
-        for path in outputs:
-            with patience(f"writing {path}"):
-                files.write(path, command, data, job, force)
+        with patience(f"writing {', '.join(outputs)}"):
+            files.write_all(outputs, command, data, job, force)
     if as_json:
         import json
 

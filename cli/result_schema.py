@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from fishbelly.cli.catalog_properties import MEANINGS
 from fishbelly.cli.job_schema import DIALECT
 
 Schema = dict[str, Any]
@@ -345,13 +346,17 @@ def _catalog() -> Schema:
         "note": _text("what to know about it"),
         "snippet": _text("lines to paste into a job"),
     }
+    units = {"A": "m2", "I": "m4", "W": "m3", "m": "kg/m", "y": "m", "z": "m"}
+    computed = {symbol: _number(words, units[symbol[0]]) for symbol, words in MEANINGS.items()}
+    computed["steel_density"] = _number("density that the mass is for", "kg/m3")
+    section = {"computed": _object("properties of a section", {"from": _text("what they are computed from")}, computed)}
     return _object(
         "Entries of the catalogue.",
         {
             "units": _text("SI base units: m, N, Pa, rad, kg, K"),
             "asked": _text("words asked for"),
             "count": {"type": "integer", "description": "number of entries"},
-            "entries": _list("entries, the best first", _object("an entry", entry)),
+            "entries": _list("entries, the best first", _object("an entry", entry, section)),
         },
     )
 

@@ -122,13 +122,15 @@ def section_stresses(data: Row) -> Grid:
     )
 
 
-def stiffness_grid(data: Row) -> Grid:
+def stiffness_grid(data: Row, full: bool = False) -> Grid:
     """Write the stiffness along the member.
 
     Parameters
     ----------
     data : mapping
         Results of `fishbelly stiffness`.
+    full : bool
+        For files: stiffness and mass beside properties transformed to one material.
     """
     rows = data["stations"]
     first = next((r["EI_y"] for r in rows if r["EI_y"]), None)
@@ -136,7 +138,7 @@ def stiffness_grid(data: Row) -> Grid:
     levels = max((abs(r[k]) for r in rows for k in ("z_c", "y_c") if r[k] is not None), default=0.0)
 
     if "transformed" in data:
-        return _transformed_grid(data, levels)
+        return _transformed_grid(data, levels, full)
 
     def relative(row: Row) -> Any:
         return None if row["EI_y"] is None or first is None else row["EI_y"] / first
@@ -159,13 +161,20 @@ def stiffness_grid(data: Row) -> Grid:
     )
 
 
-def _transformed_grid(data: Row, levels: float) -> Grid:
+def _transformed_grid(data: Row, levels: float, full: bool) -> Grid:
     """Write the section of one material that stands for the member, as frame models want it."""
     rows, to = data["stations"], data["transformed"]
 
     def of(key: str) -> Any:
         return lambda row: row["transformed"][key]
 
+    beside = (
+        column(rows, "EI_y", "bending stiffness"),
+        column(rows, "EI_z", "bending stiffness"),
+        column(rows, "EA", "axial stiffness"),
+        column(rows, "GA_z", "shear stiffness"),
+        column(rows, "mass", "mass per length"),
+    )
     return Grid(
         f"Stiffness along the member, transformed to {to['to']}",
         (
@@ -176,6 +185,7 @@ def _transformed_grid(data: Row, levels: float) -> Grid:
             column(rows, "W_bottom", "section modulus", of("W_bottom")),
             column(rows, "axis z_c", "length", "z_c", scale=levels),
             column(rows, "I_z", "second moment", of("I_z")),
+            *(beside if full else ()),
             Column("side", TEXT, tuple(sides(rows)), optional=True),
         ),
         "W: section modulus, elastic, of the top and of the bottom; z_c: level of the axis above the datum line",

@@ -191,7 +191,7 @@ class Analysis:
         shares = self.shares(combination, band)
         patterns = self._patterns(combination)
         if any(s.only_up for s in self.member.supports):
-            lifted = self._bearing(shares)
+            lifted = self.bearing(shares)
         else:
             lifted = frozenset[str]()
         return Combined(combination, shares, lifted, patterns, self.superposed(shares, lifted))
@@ -231,7 +231,7 @@ class Analysis:
                 masks.append(mask)
         return tuple(masks)
 
-    def _bearing(self, shares: tuple[Share, ...]) -> frozenset[str]:
+    def bearing(self, shares: tuple[Share, ...]) -> frozenset[str]:
         """Which bearings have lifted: none pulls, none sinks into its seat."""
         lifted: frozenset[str] = frozenset()
         seen = {lifted}

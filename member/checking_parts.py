@@ -94,14 +94,16 @@ def _host(draft: Draft, i: int, part: Part, path: Path) -> Iterator[Problem]:
     host = draft.find_part(name)
     if host is None:
         return
+    # what lies off the member is a fault of the part's own
+    start, end = max(part.start, 0.0), part.end if draft.length is None else min(part.end, draft.length)
     gaps = []
-    if host.start > part.start + draft.slack:
-        gaps.append(f"{part.start:.6g} m to {min(host.start, part.end):.6g} m")
-    if host.end < part.end - draft.slack:
-        gaps.append(f"{max(host.end, part.start):.6g} m to {part.end:.6g} m")
+    if host.start > start + draft.slack:
+        gaps.append(f"{start:.6g} m to {min(host.start, end):.6g} m")
+    if host.end < end - draft.slack:
+        gaps.append(f"{max(host.end, start):.6g} m to {end:.6g} m")
     if gaps:
         stretches = " and ".join(gaps)
-        yield Problem(path, f'a part present from {part.start:.6g} m to {part.end:.6g} m',
+        yield Problem(path, f'a part present from {start:.6g} m to {end:.6g} m',
                       f'"{name}", absent from {stretches}')  # fmt: skip
 
 

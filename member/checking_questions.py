@@ -22,6 +22,10 @@ def question_problems(draft: Draft) -> Iterator[Problem]:
             if not 0.0 <= share <= 1.0:
                 yield Problem(("combination", i, "sustained", case), "a share from 0 to 1", f"{share:g}")
     spans = existing_spans(draft)
+    if not draft.supports and any(_needs_span(limit) for limit in draft.limits if limit is not None):
+        # the cause alone: what every such limit would say is its consequence
+        yield Problem(("support",), "", "limits on spans need supports that hold down")
+        spans = None
     for i, limit in enumerate(draft.limits):
         if limit is not None:
             yield from _limit(draft, limit, ("limit", i), spans)
@@ -45,6 +49,12 @@ def existing_spans(draft: Draft) -> tuple[int | str, ...] | None:
     spans: list[int | str] = ["left"] if places[0] > draft.slack else []
     spans += range(1, len(places))
     return (*spans, "right") if places[-1] < draft.length - draft.slack else tuple(spans)
+
+
+def _needs_span(limit: Limit) -> bool:
+    """Whether a limit is one on spans or overhangs."""
+    shares = limit.span_over is not None or limit.cantilever_over is not None
+    return limit.at is None and (shares or limit.spans is not None)
 
 
 def _limit(draft: Draft, limit: Limit, path: Path, spans: tuple[int | str, ...] | None) -> Iterator[Problem]:

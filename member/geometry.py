@@ -12,7 +12,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.description import Member, Part
+from fishbelly.member.description import Member, Opening, Part
 from fishbelly.member.openings import grown, half_length, notch_depth, notch_span, opening_depth
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon, rectangle
 from fishbelly.sections.placing import Bounds, against, anchored
@@ -24,12 +24,14 @@ Array = NDArray[np.float64]
 class Cut:
     """An outline that takes material away from some parts.
 
-    `targets` are indices into the parts of the same `PlacedParts`; `mass` tells whether mass is taken too.
+    `targets` are indices into the parts of the same `PlacedParts`; `mass` tells whether mass is taken too;
+    `opening` is the opening it belongs to, if any.
     """
 
     outline: Outline
     targets: tuple[int, ...]
     mass: bool = True
+    opening: Opening | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -235,7 +237,7 @@ class Geometry:
         right = np.max([b.right for b in boxes], axis=0) + 1.0
         half = 0.5 * opening_depth(opening, x)
         level = self.opening_levels[k]
-        return [Cut(_box_outline(left, level - half, right, level + half), targets)]
+        return [Cut(_box_outline(left, level - half, right, level + half), targets, opening=opening)]
 
 
 def _box_outline(left: Array, bottom: Array, right: Array, top: Array) -> Outline:

@@ -15,6 +15,7 @@ from fishbelly.member.note import Note
 from fishbelly.member.shortcuts import shortcuts
 from fishbelly.member.spans import spans
 from fishbelly.sections.composition import Composition
+from fishbelly.sections.overlap import relation
 from fishbelly.sections.touching import touching_groups
 
 Array = NDArray[np.float64]
@@ -228,7 +229,19 @@ def _cantilevers(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
 
 
 def _openings(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
-    if any(g.over_opening for g in analysis.profile.groups):
+    member, geometry = analysis.member, analysis.profile.geometry
+    cutting = False
+    for opening in member.openings:
+        side = "left" if opening.at >= member.length else "right"
+        placed = geometry.place(np.array([opening.at]), side)
+        mine = [c for c in placed.cuts if c.opening and abs(c.opening.at - opening.at) < geometry.tolerance]
+        meets = any(relation(placed.outlines[t], c.outline) != "apart" for c in mine for t in c.targets)
+        cutting |= meets
+        if not meets:
+            yield Note(
+                "the opening at x = {at} cuts nothing: it lies beside the parts", {"at": (opening.at, "position")}
+            )
+    if cutting:
         yield Note(
             "over an opening the pieces above and below act together in bending and share the shear angle; "
             "bending of the pieces over the opening's length is not included"

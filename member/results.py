@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.apex import Apexes, judge
+from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Member
@@ -19,6 +20,7 @@ from fishbelly.member.moduli import has_band
 from fishbelly.member.notes import notes
 from fishbelly.member.panels import Panels
 from fishbelly.member.pieces import Pieces, pieces
+from fishbelly.member.places import default_places
 from fishbelly.member.spans import spans
 from fishbelly.member.station_results import envelope_rows, station_rows
 from fishbelly.member.stresses import PartStress, loadings, part_stresses
@@ -80,6 +82,19 @@ def _in_range(analysis: Analysis) -> None:
 
 
 def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | None) -> Data:
+    if bearings_change(analysis, combined):
+        cases = arrangements(analysis, combined)
+        at = wanted if wanted is not None else [float(x) for x in default_places(analysis.member)]
+        data = merged([_one(analysis, c, at, check=k == 0) for k, c in enumerate(cases)])
+    else:
+        data = _one(analysis, combined, wanted)
+    if has_band(analysis.member):
+        _add_band(analysis, combined, data)
+    return data
+
+
+def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, check: bool = True) -> Data:
+    """Results of one combination or arrangement; `check` asks the second method too."""
     loading = loadings(analysis, combined)
     p = pieces(analysis, loading)
     apexes = judge(analysis.profile.panels, combined.total)
@@ -98,15 +113,13 @@ def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | N
         "stress": [_stress(s) for s in stresses],
         "joints": [],
     }
-    data["cross_check"] = cross_check(analysis, combined, data["deflection"])
+    data["cross_check"] = cross_check(analysis, combined, data["deflection"]) if check else None
     stations = station_rows(analysis, p, apexes, wanted)
     data["stations"] = stations
     if combined.patterns:
         data["envelope"] = envelope_rows(analysis, p, stations)
     if combined.lifted:
         data["lifted"] = sorted(combined.lifted)
-    if has_band(analysis.member):
-        _add_band(analysis, combined, data)
     return data
 
 
@@ -269,14 +282,28 @@ def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
     bands = {}
     for band in ("low", "high"):
         other = analysis.combine(combined.combination, band)
-        loading = loadings(analysis, other)
-        p = pieces(analysis, loading)
-        asked = any(m.strength is not None for m in analysis.member.materials)
-        stresses = part_stresses(analysis, loading) if asked else ()
-        bands[band] = (deflections(analysis, other, p), _checks(analysis, other, p, stresses))
+        cases = arrangements(analysis, other) if bearings_change(analysis, other) else [other]
+        found = [_deflections_and_checks(analysis, c) for c in cases]
+        entries = {k: _widest([d[k] for d, _ in found]) for k in data["deflection"]}
+        checks: dict[str, float] = {}
+        for c in (c for _, each in found for c in each):
+            checks[c.limit] = max(c.found, checks.get(c.limit, -np.inf))
+        bands[band] = (entries, checks)
     for name, entry in data["deflection"].items():
         if entry is not None:
             entry["band"] = {b: (v[0][name] or {}).get("value") for b, v in bands.items()}
-    found = {b: {c.limit: c.found for c in v[1]} for b, v in bands.items()}
     for entry in data["checks"]:
-        entry["band"] = {b: checks.get(entry["limit"]) for b, checks in found.items()}
+        entry["band"] = {b: v[1].get(entry["limit"]) for b, v in bands.items()}
+
+
+def _widest(entries: Sequence[Data | None]) -> Data | None:
+    known = [e for e in entries if e is not None]
+    return max(known, key=lambda e: abs(e["value"])) if known else None
+
+
+def _deflections_and_checks(analysis: Analysis, combined: Combined) -> tuple[Data, list[Check]]:
+    loading = loadings(analysis, combined)
+    p = pieces(analysis, loading)
+    asked = any(m.strength is not None for m in analysis.member.materials)
+    stresses = part_stresses(analysis, loading) if asked else ()
+    return deflections(analysis, combined, p), _checks(analysis, combined, p, stresses)

@@ -59,6 +59,7 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
         "side": side,
         "stage": "all",
     }
+    data["break"] = bool(np.abs(breakpoints(member) - x).min() < 1e-9 * member.length)
     data |= {k: _number(getattr(s, k)[0]) for k in ("EA", "EI_y", "EI_z", "EI_yz")}
     data |= {"GA_y": _shear(member, group, short, True), "GA_z": _shear(member, group, short, False)}
     data |= {"y_c": _number(s.y_c[0]), "z_c": _number(s.z_c[0]), "mass": _mass(member, group)}

@@ -148,7 +148,7 @@ def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], shar
         rows = np.flatnonzero(np.ravel(which) == k)
         group = np.cumsum(pattern)
         slabs = [np.flatnonzero((group == g) & ~pattern) for g in np.unique(group)]
-        pieces = [_piece(levels, E[:, rows], G[:, rows], rows, mine) for mine in slabs]
+        pieces = [_piece(levels, E[:, rows], G[:, rows], rows, mine) for mine in slabs if mine.size]
         ei, soft, peaks, places = (np.stack(v) for v in zip(*pieces, strict=True))
         if share_angle:
             total[rows] = soft.sum(axis=0)

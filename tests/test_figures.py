@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import functools
+import itertools
 import math
 import os
 import subprocess
@@ -13,12 +14,13 @@ from typing import Any
 import matplotlib
 import numpy as np
 import pytest
-from figure_boxes import faults
+from figure_boxes import faults, written
 from figure_jobs import JOBS
 
 from fishbelly.cli.figures import (
     cross_section,
     elevation,
+    key,
     pages,
     response_lines,
     share_areas,
@@ -27,11 +29,13 @@ from fishbelly.cli.figures import (
 )
 from fishbelly.cli.figures.curves import Curves
 from fishbelly.cli.figures.governing import governing_combination, governing_place, stress_bars
-from fishbelly.cli.figures.letters import apart, lines_of, shortened
+from fishbelly.cli.figures.letters import Spots, apart, lines_of, shortened
 from fishbelly.cli.figures.paper import text_width
 from fishbelly.cli.figures.scene import exaggeration
 from fishbelly.cli.figures.side_view import side_view
+from fishbelly.cli.figures.ticks import place as place_words
 from fishbelly.cli.figures.ticks import places, step_for, ticks
+from fishbelly.cli.figures.worth_drawing import quantities
 from fishbelly.cli.figures.write import figure_bytes, write_figure
 from fishbelly.cli.job_file import Job, read_job
 from fishbelly.member.analysis import Analysis
@@ -302,3 +306,70 @@ def test_ticks_have_round_steps_and_few_digits() -> None:
 def test_the_depth_is_drawn_larger_by_round_factors() -> None:
     assert exaggeration(0.3, 6.0, 136.0, 19.0) == 3.0
     assert math.isclose(exaggeration(1.5, 0.5, 136.0, 19.0), 0.05)
+
+
+SIDEWAYS = """
+length = "4 m"
+material.steel = { E = "210 GPa", poisson = 0.3 }
+[[part]]
+name = "arm"
+material = "steel"
+shape = "tube"
+diameter = "200 mm"
+wall = "8 mm"
+[[support]]
+at = "0 m"
+kind = "fixed"
+[[load]]
+kind = "point"
+value = "2 kN"
+at = "3 m"
+direction = "across"
+"""
+
+
+def test_round_off_is_not_drawn_and_a_sentence_says_what_is_zero() -> None:
+    arm = read_job("-", SIDEWAYS)
+    curves, combination = Curves(arm.member), deflect(arm.member)["combinations"][0]
+    drawn, words = quantities(curves, combination)
+    assert drawn == ["moment across", "across"]
+    assert "M, V, slope and deflection" in words
+    figure = pages.deflect_page(arm, curves, combination, False)
+    assert any(t.text == words for t in written(figure))
+    checked(figure)
+    # 2 kN at 3 m from the wall pushes to +y and pulls at the other side
+    moment = curves.along(combination, "moment across")[1]
+    assert moment[0] == pytest.approx(-6e3, rel=ROUND_OFF)
+    upright = results("plated")["combinations"][0]
+    assert quantities(Curves(job("plated").member), upright) == (["moment", "shear", "slope", "deflection"], "")
+
+
+def test_a_part_has_one_fill_in_all_drawings_of_a_page() -> None:
+    def fills(ax: Any) -> set[tuple[Any, Any]]:
+        return {(p.get_facecolor(), p.get_hatch()) for p in ax.patches if p.get_hatch()}
+
+    section = cross_section.plot(job("flitch"), section_at(job("flitch").member, 2.4))
+    assert fills(section)
+    assert fills(section) <= fills(key.plot(job("flitch")))
+    assert fills(section) <= fills(elevation.plot(job("flitch")))
+
+
+def test_lengths_between_breaks_are_written_where_they_have_room() -> None:
+    words = [t.get_text() for t in elevation.plot(job("plated")).texts]
+    ends = side_view(job("plated").member).breaks
+    assert len(ends) > 2
+    assert {f"{b - a:.3f}" for a, b in itertools.pairwise(ends)} <= set(words)
+
+
+def test_labels_stand_by_their_own_dot_and_off_the_line_of_zero() -> None:
+    free = np.empty(0)
+    spots = Spots(100.0, 30.0, free, free, zero=15.0, dots=[(50.0, 14.0), (55.0, 6.0)])
+    x, y = spots.find("some words", 50.0, 14.0) or (0.0, 0.0)
+    assert not y - 1.5 < 15.0 < y + 1.5
+    assert math.hypot(x - 50.0, y - 14.0) < math.hypot(x - 55.0, y - 6.0)
+
+
+def test_the_left_end_is_written_in_feet_and_inches() -> None:
+    assert place_words(0.0, 12.5 * 0.3048, "us") == "0'-0\""
+    assert place_words(0.0, 0.5, "us") == "0 in"
+    assert place_words(0.0, 4.0, "metric") == "0 m"

@@ -9,6 +9,7 @@ import os
 import pytest
 
 from fishbelly.cli import cautions, files
+from fishbelly.cli.file_grids import OF_STATIONS
 from fishbelly.cli.files import FileFault, check_targets, write
 from fishbelly.cli.job_file import read_job
 from fishbelly.member.results import deflect
@@ -86,7 +87,7 @@ def test_csv_of_deflect(beam, tmp_path):
     jump = [r for r in first if r["combination"] == "q + wheel" and r["x [m]"] == "2"]
     assert [r["side"] for r in jump] == ["left", "right"]
     assert float(jump[0]["V [kN]"]) - float(jump[1]["V [kN]"]) == pytest.approx(8.0, abs=1e-8)
-    assert notes == [["note", "a note, with a comma"], ["note", "grün"], ["note", cautions.LINE]]
+    assert notes == [["note", "a note, with a comma"], ["note", "grün"], ["note", OF_STATIONS], ["note", cautions.LINE]]
 
 
 def test_csv_in_us_units(tmp_path):
@@ -150,15 +151,41 @@ def test_workbook(beam, tmp_path):
     ]
     down = data["combinations"][1]["deflection"]["down"]
     assert answer[1]["down [mm]"] == pytest.approx(down["value"] * 1e3, rel=1e-12)
-    assert answer[1]["M hogging [kNm]"] is None
+    assert "M hogging [kNm]" not in answer[1]  # no combination has any
     stations = book["Stations"]
-    assert stations.max_row == 1 + sum(len(c["stations"]) for c in data["combinations"])
+    count = sum(len(c["stations"]) for c in data["combinations"])
+    assert stations.cell(count + 1, 1).value == "q + wheel" and stations.cell(count + 2, 1).value is None
+    assert stations.max_row == count + 3 and "M_datum about the datum line" in stations.cell(count + 3, 1).value
     shaded = [r[1].value for r in stations.iter_rows(min_row=2) if r[1].fill.fgColor.rgb == "FFEDEDED"]
     assert shaded == [2, 2, 2, 2]
     assert book["Stress"]["B2"].value == "=beam" and book["Stress"]["B2"].data_type == "s"
     said = [r[0].value for r in book["Notes"].iter_rows()]
     assert "grün" in said and "Beam" in said
     assert [r[0].value or "" for r in book["Job file"].iter_rows()] == job.text.splitlines()
+
+
+def test_a_workbook_reads_and_prints_well(beam, tmp_path):
+    import openpyxl
+
+    job, data = beam
+    write(str(tmp_path / "o.xlsx"), "deflect", data, job, False)
+    book = openpyxl.load_workbook(tmp_path / "o.xlsx")
+    for sheet in book.worksheets[:-2]:
+        heads = [cell.value for cell in sheet[1]]
+        assert len(set(heads)) == len(heads), sheet.title
+        assert sum(sheet.column_dimensions[cell.column_letter].width for cell in sheet[1]) < 200, sheet.title
+        assert sheet.sheet_properties.pageSetUpPr.fitToPage
+        for row in sheet.iter_rows(min_row=2):
+            for cell in row:
+                digits = len(repr(cell.value).replace(".", "").strip("0"))
+                assert cell.number_format != "General" or not isinstance(cell.value, float) or digits <= 7, cell
+    assert [c.value for c in book["Stress"][1]][2:8] == [
+        "max [MPa]", "at x of max [m]", "z of max [mm]", "min [MPa]", "at x of min [m]", "z of min [mm]",
+    ]  # fmt: skip
+    assert book["Limits of deflection"]["F2"].number_format == "0.000"
+    cautioned = [r[0] for r in book["Notes"].iter_rows() if str(r[0].value).startswith("Cautions")]
+    assert len(cautioned) == 1 and "ductility in earthquakes." in cautioned[0].value
+    assert cautioned[0].alignment.wrap_text
 
 
 @pytest.mark.parametrize("command", ["section", "stiffness"])

@@ -1,4 +1,4 @@
-"""The cross-section at one place: materials hatched, dimensions, E-weighted centroid, principal axes, datum line."""
+"""The cross-section at one place: parts with their fills, dimensions, centroid, principal axes, datum line."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ import numpy as np
 
 from fishbelly.cli.figures import section_dimensions
 from fishbelly.cli.figures.letters import apart, shortened
-from fishbelly.cli.figures.looks import material_look, number_of
+from fishbelly.cli.figures.looks import number_of, part_look
 from fishbelly.cli.figures.paper import (
     GREY,
     LINE,
@@ -20,7 +20,6 @@ from fishbelly.cli.figures.paper import (
     in_millimetres,
     own_panel,
     pens,
-    text_width,
 )
 from fishbelly.cli.figures.section_shapes import part_shapes
 from fishbelly.cli.figures.sheet_of_section import Sheet, scales
@@ -31,7 +30,7 @@ from fishbelly.member.description import Member
 
 MARGIN_LEFT = 6.0
 """Left edge of the drawing [mm]."""
-DIMENSIONS, BESIDE, CHAIN = 9.0, 11.0, 13.0
+DIMENSIONS, BESIDE, CHAIN = 9.0, 14.0, 13.0
 """Bands for the overall depth, for labels of axes, for the chain of depths [mm]."""
 TOP, FOOT = 5.5, 9.0
 """Bands over and under the cross-section [mm]."""
@@ -94,12 +93,10 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         width, height = in_millimetres(ax)
         paper = sheet(shapes, width, max(height - TOP - FOOT, 6.0))
         side = f", {data['side']} side" if _at_break(job.member, data["x"]) else ""
-        head = f"Cross-section at x = {place(data['x'], job.member.length, job.style)}{side}, {paper.words}"
-        fuller = f"{head}, hatched by material"
-        head = fuller if text_width(fuller) <= width else shortened(head, width)
-        ax.text(0.0, height + 0.8, head, ha="left", va="bottom", clip_on=False)
+        head = f"Cross-section at x = {place(data['x'], job.member.length, job.style)}{side}{paper.words}"
+        ax.text(0.0, height + 0.8, shortened(head, width), ha="left", va="bottom", clip_on=False)
         for index, shape in shapes:
-            _surface(ax, paper, shape, job.member, index)
+            _surface(ax, paper, shape, index)
         _numbers(ax, paper, job.member, shapes)
         _axes(ax, paper, data)
         section_dimensions.draw(ax, paper, shapes, job.style)
@@ -112,11 +109,11 @@ def _at_break(member: Member, x: float) -> bool:
     return tiny < x < member.length - tiny and any(abs(b - x) < tiny for b in geometry_breaks(member))
 
 
-def _surface(ax: Any, paper: Sheet, shape: Any, member: Member, index: int) -> None:
+def _surface(ax: Any, paper: Sheet, shape: Any, index: int) -> None:
     from matplotlib.patches import PathPatch
     from matplotlib.path import Path
 
-    look = material_look(member, member.parts[index].material or "")
+    look = part_look(index)
     for piece in getattr(shape, "geoms", (shape,)):
         rings = [np.array(r.coords) for r in (piece.exterior, *piece.interiors)]
         points = [np.column_stack((paper.across(r[:, 0]), paper.up(r[:, 1]))) for r in rings]
@@ -172,7 +169,7 @@ def _axes(ax: Any, paper: Sheet, data: Mapping[str, Any]) -> None:
     big, small, angle = (principal.get(k) for k in ("EI_1", "EI_2", "angle"))
     even = big is None or small is None or big - small <= 1e-9 * big
     turn = 0.0 if even or angle is None else float(angle)
-    names = ("", "") if even else ("1", "2")
+    names = ("", "") if even else ("axis 1", "axis 2")
     labels = []
     for k, direction in enumerate((turn, turn + 0.5 * np.pi)):
         ends = _across_box(paper, y, z, direction, (left, bottom, right, top))

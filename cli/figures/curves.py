@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.description import Member
+from fishbelly.member.extremes import values_at
 from fishbelly.member.places import default_places
 from fishbelly.member.profile import varies
 from fishbelly.member.solved import Result, Solved
@@ -50,14 +51,18 @@ class Curves:
         self.places = response_places(member)
         self._results: dict[str, Result] = {}
 
-    def along(self, combination: Mapping[str, Any], quantity: str) -> tuple[Array, Array]:
-        """Places [m] and values [SI] of a quantity of a combination of the results; every place twice, left first."""
+    def result(self, combination: Mapping[str, Any]) -> Result:
+        """Solve a combination of the results, once."""
         name = str(combination["name"])
         if name not in self._results:
             self._results[name] = Solved(self.analysis).combination(name)
-        result = self._results[name]
+        return self._results[name]
+
+    def along(self, combination: Mapping[str, Any], quantity: str) -> tuple[Array, Array]:
+        """Places [m] and values [SI] of a quantity of a combination of the results; every place twice, left first."""
+        result = self.result(combination)
         x = np.repeat(self.places, 2)[1:-1]
-        left, right = (result.at(quantity, self.places, side) for side in ("left", "right"))
+        left, right = (_at(result, quantity, self.places, side) for side in ("left", "right"))
         y = np.empty(2 * self.places.size)
         y[0::2], y[1::2] = left, right
         y = y[1:-1]
@@ -65,3 +70,11 @@ class Curves:
             if quantity == "slope" and combination["ends"][end]["slope"] is None:
                 y[k] = np.nan
         return x, y
+
+
+def _at(result: Result, quantity: str, places: Array, side: str) -> Array:
+    """Values at places; besides the quantities of a result the moment of the sideways plane, of which +y is below."""
+    if quantity != "moment across":
+        return result.at(quantity, places, side)
+    field = result.response.M[1] + result.response.N * result.analysis.frame.centre[1]
+    return values_at(result.analysis.profile.panels, field, places, side)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Collection
 from dataclasses import dataclass
 from typing import Any
@@ -31,12 +32,14 @@ from fishbelly.cli.figures.scene import MARGIN, Scene, scale_words, scene
 from fishbelly.cli.figures.side_view import SideView, side_view
 from fishbelly.cli.figures.supports import Names, names_band
 from fishbelly.cli.figures.ticks import place
+from fishbelly.member.description import Member, Station
 from fishbelly.member.spans import spans
 
 BODY = 19.0
 """Height that the member's depth is drawn with, at most [mm]."""
 _DIMENSION = 5.2
 _MOST_WORDS = 3
+_MOST_BREAKS = 13
 
 
 @dataclass(frozen=True, eq=False)
@@ -46,6 +49,7 @@ class Layout:
     words: tuple[str, ...]
     dimension: float
     chain: float
+    breaks: float
     tags: float
     stations: Names
     names: Names
@@ -56,7 +60,15 @@ class Layout:
     @property
     def below(self) -> float:
         """Everything under the member."""
-        bands = (self.dimension, self.chain, self.tags, self.stations.height, self.names.height, self.symbols)
+        bands = (
+            self.dimension,
+            self.chain,
+            self.breaks,
+            self.tags,
+            self.stations.height,
+            self.names.height,
+            self.symbols,
+        )
         return LINE * len(self.words) + sum(bands)
 
     @property
@@ -83,10 +95,11 @@ def layout(
     planned = loads_.plan(member, style, across - 2.0 * MARGIN, cases if with_loads else ())
     looked = scene(None, view, style, across, 0.0, BODY)
     tags = parts_.tags(looked)
-    stations = names_band(looked, [(s.at, s.name, "") for s in sorted(member.stations, key=lambda s: s.at)])
+    named = _named(member)
+    stations = names_band(looked, [(s.at, s.name, "") for s in named])
     names = names_band(looked, supports_.names(looked))
     said = [loads_.words_of(planned)]
-    for band, there, what in ((stations, member.stations, "named stations"), (names, member.supports, "supports")):
+    for band, there, what in ((stations, named, "named stations"), (names, member.supports, "supports")):
         if there and not band.places:
             said.append(f"{len(there)} {what}, too many to be named here")
     words = lines_of("; ".join(filter(None, said)), across, _MOST_WORDS)
@@ -95,6 +108,7 @@ def layout(
         words=tuple(words),
         dimension=_DIMENSION,
         chain=_DIMENSION if len(spans(member)) > 1 else 0.0,
+        breaks=_DIMENSION if _break_texts(looked) else 0.0,
         tags=rows * parts_.TAGS,
         stations=stations,
         names=names,
@@ -161,6 +175,9 @@ def _below(drawn: Scene, bands: Layout) -> None:
     if bands.chain:
         _chain(drawn, y + 1.2)
         y += bands.chain
+    if bands.breaks:
+        _links(drawn, drawn.view.breaks.tolist(), _break_texts(drawn), y + 1.2)
+        y += bands.breaks
     y += bands.tags
     parts_.draw_tags(drawn, parts_.tags(drawn), y)
     y += bands.stations.height
@@ -181,10 +198,8 @@ def _dimension(drawn: Scene, start: float, end: float, height: float, text: str)
 
 
 def _length(drawn: Scene, height: float) -> None:
-    """Draw the length, with thin ticks where the cross-section breaks."""
+    """Draw the length."""
     _dimension(drawn, 0.0, drawn.length, height, place(drawn.length, drawn.length, drawn.style))
-    for x in drawn.view.breaks:
-        drawn.ax.plot([x, x], [height - 0.9, height + 0.5], color="black", lw=THIN)
 
 
 def _chain(drawn: Scene, height: float) -> None:
@@ -193,9 +208,38 @@ def _chain(drawn: Scene, height: float) -> None:
     texts = [place(p.length, drawn.length, drawn.style) for p in pieces]
     if any(text_width(t) > drawn.mm(p.end) - drawn.mm(p.start) - 0.6 for t, p in zip(texts, pieces, strict=True)):
         texts = [t.split(" ")[0] for t in texts] if drawn.style != "us" else texts
-    for piece, text in zip(pieces, texts, strict=True):
-        fits = text_width(text) <= drawn.mm(piece.end) - drawn.mm(piece.start) - 0.6
-        _dimension(drawn, piece.start, piece.end, height, text if fits else "")
+    _links(drawn, [0.0, *(p.end for p in pieces)], texts, height)
+
+
+def _links(drawn: Scene, ends: list[float], texts: list[str], height: float) -> None:
+    """Draw a chain of dimensions between places [m], each with its text where that has room."""
+    for start, end, text in zip(ends[:-1], ends[1:], texts, strict=True):
+        fits = text_width(text) <= drawn.mm(end) - drawn.mm(start) - 0.6
+        _dimension(drawn, start, end, height, text if fits else "")
+
+
+def _break_texts(drawn: Scene) -> list[str]:
+    """Lengths between the places where the cross-section breaks; none where half of them have no room."""
+    breaks = drawn.view.breaks.tolist()
+    if not 2 < len(breaks) <= _MOST_BREAKS:
+        return []
+    lengths = [b - a for a, b in itertools.pairwise(breaks)]
+    texts = [place(v, drawn.length, drawn.style) for v in lengths]
+    if drawn.style != "us":
+        texts = [t.split(" ")[0] for t in texts]
+    room = [drawn.mm(b) - drawn.mm(a) - 0.6 for a, b in itertools.pairwise(breaks)]
+    return texts if 2 * sum(text_width(t) > r for t, r in zip(texts, room, strict=True)) < len(texts) else []
+
+
+def _named(member: Member) -> list[Station]:
+    """Stations by place; those left out that say no more than the name of a support at the same place."""
+    tiny = 1e-9 * member.length
+
+    def said(station: Station) -> bool:
+        here = [s.name for s in member.supports if abs(s.at - station.at) <= tiny]
+        return any(name in station.name or station.name in name for name in here)
+
+    return sorted((s for s in member.stations if not said(s)), key=lambda s: s.at)
 
 
 def _stations(drawn: Scene, names: Names, height: float) -> None:

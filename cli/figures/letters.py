@@ -15,6 +15,8 @@ from fishbelly.cli.figures.paper import LINE, text_width
 Array = NDArray[np.float64]
 
 ELLIPSIS = "…"
+_ON_ZERO, _BY_ANOTHER = 20.0, 15.0
+"""What it costs to stand on the line of zero, or nearer to the dot of another label [mm]."""
 _MOST_COVERED = 8
 """Points of a line, half a millimetre apart, that a label may hide."""
 
@@ -117,6 +119,10 @@ class Box:
         above = self.bottom - gap >= other.top or other.bottom - gap >= self.top
         return not (aside or above)
 
+    def distance(self, x: float, y: float) -> float:
+        """Distance of a point from the rectangle, 0 inside [mm]."""
+        return math.hypot(max(self.left - x, x - self.right, 0.0), max(self.bottom - y, y - self.top, 0.0))
+
 
 @dataclass
 class Spots:
@@ -128,12 +134,18 @@ class Spots:
         Size of the panel.
     curve_x, curve_y : ndarray
         Points of the line drawn in it, which labels keep off where they can.
+    zero : float, optional
+        Height of the line of zero, which labels rather do not stand on.
+    dots : sequence of (float, float)
+        All points that labels belong to: a label stands nearest to its own.
     """
 
     width: float
     height: float
     curve_x: Array
     curve_y: Array
+    zero: float | None = None
+    dots: Sequence[tuple[float, float]] = ()
     taken: list[Box] = field(default_factory=list)
 
     def find(self, text: str, x: float, y: float) -> tuple[float, float] | None:
@@ -162,7 +174,12 @@ class Spots:
         if any(box.meets(other) for other in self.taken):
             return math.inf
         far = math.hypot(0.5 * (box.left + box.right) - x, 0.5 * (box.bottom + box.top) - y)
-        return far + 6.0 * min(self._covered(box), 10)
+        if self.zero is not None and box.bottom - 0.3 < self.zero < box.top + 0.3:
+            far += _ON_ZERO
+        own = box.distance(x, y)
+        if any(box.distance(*dot) < own + 1.0 for dot in self.dots if dot != (x, y)):
+            far += _BY_ANOTHER
+        return far + 2.0 * own + 6.0 * min(self._covered(box), 10)
 
     def _covered(self, box: Box) -> int:
         """How many points of the line a box hides."""

@@ -19,8 +19,8 @@ Array = NDArray[np.float64]
 Mark = tuple[float, float]
 """Value and place of an extreme, SI units."""
 
-_ROOM = 0.24
-"""Share of the reach left free over and under a line, for the values of its extremes."""
+_ROOM, _LABEL = 0.2, 4.8
+"""Room over and under a line for the values of its extremes: share of the reach at least, and [mm]."""
 
 
 def frame(ax: Any, member: Member, style: str, labelled: bool) -> None:
@@ -52,7 +52,9 @@ def upright(
     low, high = (0.0 if abs(v) < 1e-9 * size else v for v in (low, high))
     if high - low <= 1e-9 * size:
         low, high = (low - 0.05 * size, high + 0.05 * size) if size else (-least, least)
-    room = _ROOM * (high - low)
+    ends = 2 - (from_zero and low == 0.0) - (from_zero and high == 0.0)
+    share = _LABEL / size_of(ax)[1]
+    room = max(_ROOM, share / max(1.0 - ends * share - 0.03, 0.2)) * (high - low)
     low, high = low - (0.0 if from_zero and low == 0.0 else room), high + (0.0 if from_zero and high == 0.0 else room)
     pad = 0.03 * (high - low)
     low, high = low - (pad if low == 0.0 else 0.0), high + (pad if high == 0.0 else 0.0)
@@ -60,7 +62,9 @@ def upright(
     set_values(ax, words, what, style, size_of(ax)[1])
 
 
-def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, member: Member, style: str) -> None:
+def mark(
+    ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, member: Member, style: str, digits: int = 3
+) -> None:
     """Mark extremes with a dot, their value and their place, off the line and off each other.
 
     Those without a free spot are written over the panel, at its right.
@@ -68,17 +72,18 @@ def mark(ax: Any, x: Array, y: Array, extremes: Sequence[Mark], what: str, membe
     width, height = size_of(ax)
     (x0, x1), (y0, y1) = ax.get_xlim(), ax.get_ylim()
     fine_x, fine_y = _dense((x - x0) / (x1 - x0) * width, (y - y0) / (y1 - y0) * height)
-    spots = Spots(width, height, fine_x, fine_y)
+    paper = [(float((at - x0) / (x1 - x0) * width), float((v - y0) / (y1 - y0) * height)) for v, at in extremes]
+    nought = float(-y0 / (y1 - y0) * height)
+    spots = Spots(width, height, fine_x, fine_y, nought if 0.0 < nought < height else None, paper)
     scale = max((abs(v) for v, _ in extremes), default=0.0)
     crowded: list[str] = []
-    for number, at in extremes:
-        text = f"{exact(number, what, style, scale)} at {place(at, member.length, style)}"
+    for (number, at), dot in zip(extremes, paper, strict=True):
+        text = f"{exact(number, what, style, scale, digits)} at {place(at, member.length, style)}"
         if len(extremes) > 1 and not text.partition(" at ")[0].strip("-−0. ")[:1].isdigit():
             # it would be written as zero
             continue
-        mm_x, mm_y = (at - x0) / (x1 - x0) * width, (number - y0) / (y1 - y0) * height
         ax.plot([at], [number], "o", ms=2.6, color="black", zorder=6, clip_on=False)
-        found = spots.find(text, float(mm_x), float(mm_y))
+        found = spots.find(text, *dot)
         if found is None:
             crowded.append(text)
         else:

@@ -134,7 +134,7 @@ def _said(load: Load, member: Member, style: str) -> str:
         assert isinstance(load, Prestress)
         size = value(load.force, "force", style) if load.force is not None else f"strain {load.strain:g}"
         text = f"prestress {size} in {one_line(load.part)}"
-    return _with_case(text, load.case)
+    return text if load.case == "load" else f"{text} (case {shortened(load.case, 30.0)})"
 
 
 def draw(scene: Scene, planned: LoadPlan, base: float) -> None:

@@ -1,4 +1,4 @@
-"""How parts and materials are told apart without colour: each its own grey and hatch."""
+"""How parts are told apart without colour: each its own grey and hatch, the same in every drawing of a page."""
 
 from __future__ import annotations
 
@@ -9,8 +9,6 @@ from fishbelly.member.description import Member
 
 _HATCHES = ("", "////", "....", "\\\\\\\\", "xxxx", "----", "||||", "++++", "oo", "//..", "\\\\--", "**")
 _GREYS = ("0.93", "1.0", "0.80", "0.87")
-_MATERIALS = ("/////", "", ".....", "\\\\\\\\\\", "xxxxx", "----", "||||", "+++++", "ooo", "//..")
-_MATERIAL_GREYS = ("1.0", "0.88", "0.96", "0.8")
 
 
 @dataclass(frozen=True)
@@ -30,14 +28,6 @@ def part_look(index: int) -> Look:
     """Grey and hatch of a part by its number in the job, from 0."""
     rounds = index // len(_HATCHES)
     return Look(_GREYS[(index + rounds) % len(_GREYS)], _HATCHES[index % len(_HATCHES)])
-
-
-def material_look(member: Member, name: str) -> Look:
-    """Grey and hatch of a material: in the order in which parts first use them."""
-    used = list(dict.fromkeys(p.material for p in member.parts if p.material))
-    k = used.index(name)
-    rounds = k // len(_MATERIALS)
-    return Look(_MATERIAL_GREYS[(k + rounds) % len(_MATERIAL_GREYS)], _MATERIALS[k % len(_MATERIALS)])
 
 
 def number_of(member: Member, index: int) -> str:

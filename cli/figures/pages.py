@@ -24,13 +24,18 @@ from fishbelly.cli.figures.section_shapes import part_shapes
 from fishbelly.cli.figures.side_view import side_view
 from fishbelly.cli.figures.stress_depth import Bar
 from fishbelly.cli.figures.ticks import pretty
+from fishbelly.cli.figures.worth_drawing import quantities
 from fishbelly.cli.format_quantity import unit_label, unit_size
 from fishbelly.member.section_results import section_at, stiffness
 
 ACROSS = WIDTH - LEFT - RIGHT
 _HEAD, _AXIS, _FOOT = 4.6, 8.5, 5.0
 """Heights of a panel's caption, of the labels of a horizontal axis, of the last line [mm]."""
-_MOMENT, _SHEAR, _SLOPE, _DEFLECTION = 26.0, 21.0, 18.0, 24.0
+_HEIGHTS = {
+    **{"moment": 26.0, "moment across": 26.0, "shear": 23.0, "slope": 22.0},
+    **{"deflection": 25.0, "across": 25.0},
+}
+"""Heights of the panels of responses [mm]."""
 _STIFFNESS, _SHARES = 22.0, 30.0
 _STRESS = 54.0
 """Width of stresses beside a cross-section [mm]."""
@@ -183,16 +188,16 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
     member, name = job.member, str(combination["name"])
     factors = next(c.factors for c in member.combinations if c.name == name)
     cases = [case for case, factor in factors.items() if factor]
+    chosen, zeros = quantities(curves, combination)
     x, why = governing_place(combination)
     sideways = bends_sideways(combination)
     side, bars = stress_bars(curves.analysis, combination, x)
     section = section_at(member, x, side)
     with pens():
-        column = _Column(member.title, _said(combination, factors, governs))
+        column = _Column(member.title, _said(combination, factors, governs) + [zeros] * bool(zeros))
         bands = elevation.layout(side_view(member), job.style, cases)
-        heights = {"moment": _MOMENT, "shear": _SHEAR, "slope": _SLOPE, "deflection": _DEFLECTION}
         top = column.room(bands.height)
-        tops = {q: column.room(h, _HEAD + 1.0) for q, h in heights.items()}
+        tops = {q: column.room(_HEIGHTS[q], _HEAD + 1.0) for q in chosen}
         words = key.height(member, job.style)
         key_top = column.room(words, _AXIS + 1.0)
         row = _SectionRow(job, section, _SMALL, column)
@@ -202,9 +207,9 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
         figure = column.figure()
         elevation.plot(job, cases, ax=panel(figure, LEFT, top, ACROSS, bands.height))
         for quantity, at in tops.items():
-            ax = panel(figure, LEFT, at, ACROSS, heights[quantity])
-            last = quantity == "deflection"
-            aside = curves.along(combination, "across") if last and sideways else None
+            ax = panel(figure, LEFT, at, ACROSS, _HEIGHTS[quantity])
+            last = quantity == chosen[-1]
+            aside = curves.along(combination, "across") if quantity == "deflection" and sideways else None
             response_lines.plot(job, combination, quantity, ax, last, curves.along(combination, quantity), aside)
         key.plot(job, panel(figure, LEFT, key_top, ACROSS, words))
         where = " at mid-width" if sideways else ""

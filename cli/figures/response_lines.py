@@ -16,6 +16,8 @@ QUANTITIES: Mapping[str, tuple[str, str, bool]] = {
     "shear": ("V", "force", False),
     "slope": ("slope", "slope", False),
     "deflection": ("deflection", "deflection", True),
+    "moment across": ("M across", "moment", True),
+    "across": ("across", "deflection", True),
 }
 """By name: the key of stations, the quantity of its unit, whether positive values are drawn downwards."""
 WORDS: Mapping[str, str] = {
@@ -23,9 +25,13 @@ WORDS: Mapping[str, str] = {
     "shear": "V, positive where the part on the left pushes up",
     "slope": "slope, clockwise positive",
     "deflection": "deflection, down positive, drawn downwards",
+    "moment across": "M about the upright axis, positive with tension on the +y side, drawn downwards",
+    "across": "deflection across, towards +y positive, drawn downwards",
 }
 NEGLIGIBLE = 5e-4
 """An extreme below this share of the other would be written as zero."""
+_END = 0.1
+"""Least share of the largest moment that a moment at an end is marked with."""
 
 
 def plot(
@@ -45,8 +51,8 @@ def plot(
         The job.
     combination : mapping
         One of the combinations of `fishbelly deflect`, with stations all along the member.
-    quantity : {"moment", "shear", "slope", "deflection"}
-        Which.
+    quantity : {"moment", "shear", "slope", "deflection", "moment across", "across"}
+        Which; the moment across needs `fine`.
     ax : Axes, optional
         Where to draw; default axes of a new figure.
     labelled : bool
@@ -67,7 +73,7 @@ def plot(
         stations = combination["stations"]
         x = np.array([s["x"] for s in stations])
         key = QUANTITIES[quantity][0]
-        y = np.array([np.nan if s[key] is None else s[key] for s in stations])
+        y = np.array([np.nan if s.get(key) is None else s[key] for s in stations])
         lines.frame(ax, job.member, job.style, labelled)
         _draw(ax, job, combination, quantity, fine or (x, y), across)
     return ax
@@ -131,6 +137,8 @@ def _marks(combination: Mapping[str, Any], quantity: str, x: Array, y: Array) ->
     elif quantity == "deflection":
         up = combination["deflection"]["up"]
         found = [combination["deflection"]["down"], up and {"value": -up["value"], "at": up["at"]}]
+    elif quantity == "across":
+        found = [combination["deflection"]["across"]]
     else:
         if not np.any(np.isfinite(y)):
             return []
@@ -139,8 +147,13 @@ def _marks(combination: Mapping[str, Any], quantity: str, x: Array, y: Array) ->
         found = [{"value": float(y[k]), "at": float(x[k])} for k in ends]
     marks = [(float(f["value"]), float(f["at"])) for f in found if f is not None]
     top = max((abs(v) for v, _ in marks), default=0.0)
+    if quantity in ("moment", "moment across"):
+        # moments at held ends, which the largest does not tell
+        marks += [(float(y[k]), float(x[k])) for k in (0, -1) if abs(y[k]) > _END * top]
     kept: list[Mark] = []
+    near = 1e-6 * float(x[-1] - x[0])
     for m in marks:
-        if abs(m[0]) > NEGLIGIBLE * top and not any(abs(m[0] - k[0]) < 1e-6 * top for k in kept):
+        twice = any(abs(m[0] - k[0]) < 1e-6 * top and (quantity != "moment" or abs(m[1] - k[1]) < near) for k in kept)
+        if abs(m[0]) > NEGLIGIBLE * top and not twice:
             kept.append(m)
     return kept

@@ -14,6 +14,8 @@ from fishbelly.cli.figures.sheet_of_section import Sheet
 from fishbelly.cli.figures.ticks import trimmed
 from fishbelly.cli.format_quantity import format_number
 
+_BESIDE = 13.9
+"""Distance of the chain from the section, so that names of axes stand between [mm]."""
 _MOST = 14
 """Most links that a chain is drawn with."""
 
@@ -71,13 +73,16 @@ def _chain(ax: Any, paper: Sheet, levels: list[float], style: str) -> None:
     heights = [float(paper.up(v)) for v in levels]
     texts = [size_words(b - a, style) for a, b in itertools.pairwise(levels)]
     widest = max(map(text_width, texts))
-    x = paper.width - widest - 3.6
+    edge = float(paper.across(paper.box[2]))
+    # beside the names of the axes, with lines from the section's edge
+    x = min(edge + _BESIDE, paper.width - widest - 3.6)
     middles = [0.5 * (a + b) for a, b in itertools.pairwise(heights)]
     placed = apart(middles, [LINE] * links, 0.0, paper.height, 0.0)
     if placed is None:
         return
     ax.plot([x, x], [heights[0], heights[-1]], color="black", lw=THIN)
     for y in heights:
+        ax.plot([edge + 1.0, x + 0.7], [y, y], color=GREY, lw=THIN, zorder=1)
         ax.plot([x - 0.7, x + 0.7], [y - 0.7, y + 0.7], color="black", lw=MEDIUM)
     for text, middle, at in zip(texts, middles, placed, strict=True):
         if abs(float(at) - middle) > 0.3:

@@ -7,7 +7,7 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from fishbelly.cli.figures.letters import lines_of, one_line, shortened
-from fishbelly.cli.figures.looks import material_look, number_of
+from fishbelly.cli.figures.looks import number_of, part_look
 from fishbelly.cli.figures.paper import LINE, MEDIUM, in_millimetres, own_panel, pens, text_width
 from fishbelly.cli.figures.section_dimensions import size_words
 from fishbelly.cli.figures.section_shapes import part_shapes
@@ -17,6 +17,8 @@ from fishbelly.member.description import Member
 
 _ROW = LINE + 0.5
 _SWATCH = 5.0
+_BEFORE = 10.2
+"""Room for the number and the fill of a part [mm]."""
 _GAP = 1.5
 
 
@@ -57,15 +59,11 @@ def _principal(axes: Mapping[str, Any], style: str) -> list[str]:
     ]
 
 
-def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[tuple[str, str]]:
-    """Name and words of the materials at the section."""
+def _materials(member: Member, data: Mapping[str, Any], style: str) -> list[str]:
+    """Words of the materials at the section."""
     n = data["transformed"]["n"]
     return [
-        (
-            name,
-            f"{one_line(name)}, E = {value(member.material(name).E, 'modulus', style, 4)}, n = {n[name]:.4g}",
-        )
-        for name in n
+        f"{one_line(name)}: E = {value(member.material(name).E, 'modulus', style, 4)}, n = {n[name]:.4g}" for name in n
     ]
 
 
@@ -76,9 +74,7 @@ def _parts(member: Member, shapes: Sequence[tuple[int, Any]], style: str) -> lis
         left, bottom, right, top = shape.bounds
         size = f"{size_words(right - left, style)} × {size_words(top - bottom, style)}"
         over = " over both" if part.pair else ""
-        found.append(
-            f"{number_of(member, index)}  {one_line(part.name)}, {one_line(part.material or '')}, {size}{over}"
-        )
+        found.append(f"{one_line(part.name)}, {one_line(part.material or '')}, {size}{over}")
     return found
 
 
@@ -95,24 +91,22 @@ def height(job: Any, data: Mapping[str, Any], width: float) -> float:
     materials, parts = _materials(job.member, data, job.style), _parts(job.member, shapes, job.style)
     facts = lines_of(_facts(data, job.style), width, 5)
     rows = sum(
-        -(-len(texts) // _columns(texts, width, more))
-        for texts, more in (([m[1] for m in materials], 8.0), (parts, 3.0))
+        -(-len(texts) // _columns(texts, width, more)) for texts, more in ((materials, 3.0), (parts, _BEFORE + 1.0))
     )
     return len(facts) * LINE + rows * _ROW + 2.0 * _GAP
 
 
 def materials_height(job: Any, data: Mapping[str, Any], width: float) -> float:
     """Height that the key of the materials alone takes in a width [mm]."""
-    texts = [m[1] for m in _materials(job.member, data, job.style)]
-    return -(-len(texts) // _columns(texts, width, _SWATCH + 3.0)) * _ROW
+    texts = _materials(job.member, data, job.style)
+    return -(-len(texts) // _columns(texts, width, 3.0)) * _ROW
 
 
 def plot_materials(job: Any, data: Mapping[str, Any], ax: Any) -> Any:
     """Write the key of the materials alone, in axes as for `plot`."""
     with pens():
         width, tall = in_millimetres(ax)
-        materials = _materials(job.member, data, job.style)
-        _table(ax, [m[1] for m in materials], tall, width, _SWATCH + 2.0, job.member, [m[0] for m in materials])
+        _table(ax, _materials(job.member, data, job.style), tall, width, job.member)
     return ax
 
 
@@ -126,27 +120,26 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         for line in lines_of(_facts(data, job.style), width, 5):
             ax.text(0.0, y - 0.5 * LINE, line, ha="left", va="center")
             y -= LINE
-        materials = _materials(job.member, data, job.style)
-        y = _table(ax, [m[1] for m in materials], y - _GAP, width, _SWATCH + 2.0, job.member, [m[0] for m in materials])
+        y = _table(ax, _materials(job.member, data, job.style), y - _GAP, width, job.member)
         shapes = part_shapes(job.member, data["x"], data["side"])
-        _table(ax, _parts(job.member, shapes, job.style), y - _GAP, width, 0.0, job.member, [])
+        _table(ax, _parts(job.member, shapes, job.style), y - _GAP, width, job.member, [index for index, _ in shapes])
     return ax
 
 
-def _table(
-    ax: Any, texts: Sequence[str], top: float, width: float, indent: float, member: Member, swatches: Sequence[str]
-) -> float:
-    """Write texts in columns, with the hatch of materials before them; returns where the next begins."""
+def _table(ax: Any, texts: Sequence[str], top: float, width: float, member: Member, parts: Sequence[int] = ()) -> float:
+    """Write texts in columns, with number and fill of parts before them; returns where the next begins."""
     from matplotlib.patches import Rectangle
 
-    count = _columns(texts, width, indent + (1.0 if indent else 3.0))
+    indent = _BEFORE if parts else 0.0
+    count = _columns(texts, width, indent + (1.0 if parts else 3.0))
     rows, wide = -(-len(texts) // count), width / count
     for k, text in enumerate(texts):
         x, y = k // rows * wide, top - (k % rows + 0.5) * _ROW
-        if swatches:
-            look = material_look(member, swatches[k])
+        if parts:
+            ax.text(x + 3.4, y, number_of(member, parts[k]), ha="right", va="center")
+            swatch = (x + 4.2, y - 0.42 * LINE)
             ax.add_patch(
-                Rectangle((x + 0.2, y - 0.42 * LINE), _SWATCH, 0.84 * LINE, edgecolor="black", lw=MEDIUM, **look.drawn)
+                Rectangle(swatch, _SWATCH, 0.84 * LINE, edgecolor="black", lw=MEDIUM, **part_look(parts[k]).drawn)
             )
         ax.text(x + indent, y, shortened(text, wide - indent - 1.0), ha="left", va="center")
     return top - rows * _ROW

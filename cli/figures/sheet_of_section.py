@@ -57,17 +57,12 @@ class Sheet:
 
     @property
     def words(self) -> str:
-        """Say the scale."""
+        """Say how width and depth compare where they are not alike; a picture is pasted at any width, so no scale."""
         if abs(self.by_y - self.by_z) < 1e-9 * self.by_y:
-            return f"scale {_ratio(self.by_y)}"
-        return f"width {_ratio(self.by_y)}, depth {_ratio(self.by_z)}"
-
-
-def _ratio(by: float) -> str:
-    """Write millimetres per metre as a scale."""
-    if by >= 999.999:
-        return f"{by / 1000.0:.4g}:1"
-    return f"1:{1000.0 / by:.4g}"
+            return ""
+        if self.by_y > self.by_z:
+            return f", width drawn {self.by_y / self.by_z:.3g} times as large as depth"
+        return f", depth drawn {self.by_z / self.by_y:.3g} times as large as width"
 
 
 def round_scale(most: float) -> float:

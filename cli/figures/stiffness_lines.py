@@ -56,7 +56,7 @@ def plot(job: Any, data: Mapping[str, Any], quantity: str, ax: Any = None, label
         if not level:
             ax.fill_between(x, y, 0.0, facecolor="0.94", edgecolor="none", zorder=1.5)
         ax.plot(x, y, color="black", lw=HEAVY, zorder=4, solid_joinstyle="miter")
-        lines.mark(ax, x, y, _marks(x, y), what, job.member, job.style)
+        lines.mark(ax, x, y, _marks(x, y), what, job.member, job.style, digits=4)
     return ax
 
 
@@ -71,6 +71,9 @@ def _marks(x: Array, y: Array) -> list[Mark]:
     if y[high] - y[low] <= _EQUAL * size:
         # the same everywhere: once, in the middle
         return [(float(y[high]), float(x[np.argmin(np.abs(x - 0.5 * x[-1]))]))]
+    # the first place of several that are alike, whichever of them round-off makes the largest
+    high = int(np.flatnonzero(y >= y[high] - _EQUAL * size)[0])
+    low = int(np.flatnonzero(y <= y[low] + _EQUAL * size)[0])
     return [(float(y[k]), _middle(x, y, k, _EQUAL * size)) for k in (high, low)]
 
 

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from fishbelly.cli.figures.letters import apart
-from fishbelly.cli.figures.looks import material_look
+from fishbelly.cli.figures.looks import part_look
 from fishbelly.cli.figures.paper import GREY, HEAVY, LINE, MEDIUM, THIN, own_panel, pens, size_of, text_width
 from fishbelly.cli.figures.ticks import ticks
 from fishbelly.cli.format_quantity import format_number
@@ -63,7 +63,7 @@ def plot(job: Any, bars: Sequence[Bar], words: str, levels: tuple[float, float] 
         ax.patch.set_alpha(0.0)
         ax.plot([0.0, 0.0], [low, high], color="black", lw=MEDIUM, zorder=4)
         for bar in bars:
-            look = material_look(job.member, job.member.parts[bar.part].material or "")
+            look = part_look(bar.part)
             x, z = (0.0, *bar.stress, 0.0), (bar.z[0], *bar.z, bar.z[1])
             ax.fill(x, z, edgecolor="black", lw=THIN, zorder=3, **look.drawn)
             ax.plot(bar.stress, bar.z, color="black", lw=HEAVY, zorder=4, solid_capstyle="butt")

@@ -104,6 +104,8 @@ def places(length: float, style: str, most: int) -> Ticks:
 
 def place(x: float, length: float, style: str) -> str:
     """Write a place along a member of a length [m], with its unit."""
+    if x == 0.0 and style == "us" and length >= _SHORT_US:
+        return "0'-0\""
     if x == 0.0:
         return f"0 {places(length, style, 5).unit.split('-')[0]}"
     if style == "us" or length >= _SHORT_METRIC:
@@ -113,9 +115,9 @@ def place(x: float, length: float, style: str) -> str:
     return f"{trimmed(format_number(x, 'length', 'metric', 5, length))} mm"
 
 
-def exact(number_: float, what: str, style: str, scale: float) -> str:
-    """Write a value with its unit and the decimals that a largest value beside it has with three figures."""
-    text = format_number(number_, what, style, 3, scale).replace("-", "−")  # type: ignore[arg-type]
+def exact(number_: float, what: str, style: str, scale: float, digits: int = 3) -> str:
+    """Write a value with its unit and the decimals that a largest value beside it has with `digits` figures."""
+    text = format_number(number_, what, style, digits, scale).replace("-", "−")  # type: ignore[arg-type]
     return f"{text} {pretty(unit_label(what, style))}".rstrip()  # type: ignore[arg-type]
 
 
