@@ -26,9 +26,6 @@ MEANINGS = {
 }
 """What each property is."""
 
-SIMPLER = ("toe_radius", "web_toe_radius", "slope")
-"""Dimensions of a rolled tee that its outline, here as in a job, does without."""
-
 _UNSYMMETRIC = 1e-6
 """Share of the size by which a centroid has to be off the middle, to be shown."""
 
@@ -75,13 +72,6 @@ def properties(entry: Entry) -> tuple[Property, ...]:
     return tuple(found)
 
 
-def basis(entry: Entry) -> str:
-    """Say from what the properties of a section are computed."""
-    if entry.outline == "tee" and any(label in SIMPLER and value for label, value, _ in entry.values):
-        return "the dimensions, as in a job without slopes and toe radii"
-    return "the dimensions"
-
-
 def data_of_section(entry: Entry) -> dict[str, object]:
     """Return the properties of a section as data in SI units, under "computed"; nothing for anything else."""
     found = properties(entry)
@@ -89,7 +79,7 @@ def data_of_section(entry: Entry) -> dict[str, object]:
         return {}
     values = {symbol: value for symbol, value, _ in found}
     density = {"steel_density": STEEL} if "mass" in values else {}
-    return {"computed": {"from": basis(entry), **values, **density}}
+    return {"computed": {"from": "the dimensions", **values, **density}}
 
 
 def _full(kind: str, dimensions: Mapping[str, float]) -> dict[str, float]:

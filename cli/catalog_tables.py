@@ -6,7 +6,7 @@ from collections import Counter
 from collections.abc import Iterable, Sequence
 
 from fishbelly.catalog.search import Entry, Value
-from fishbelly.cli.catalog_properties import MEANINGS, basis, properties
+from fishbelly.cli.catalog_properties import MEANINGS, properties
 from fishbelly.cli.catalog_snippets import snippet
 from fishbelly.cli.format_quantity import NOTHING, unit_label, unit_size
 from fishbelly.cli.text_table import paragraph, shown_width
@@ -126,7 +126,7 @@ def _computed(entry: Entry, style: str) -> list[str]:
     cells = [(symbol, _property(value, what, style), MEANINGS[symbol]) for symbol, value, what in found]
     widths = [max(len(cell[k]) for cell in cells) + 2 for k in range(2)]
     rows = [f"    {symbol:<{widths[0]}}{text:<{widths[1]}}{said}" for symbol, text, said in cells]
-    return ["", f"  Computed from {basis(entry)}", *rows]
+    return ["", "  Computed from the dimensions", *rows]
 
 
 def _property(value: float, what: str, style: str) -> str:

@@ -230,11 +230,25 @@ def i_shape(d: Dimensions) -> Outline:
 
 
 def tee(d: Dimensions) -> Outline:
-    """Tee, flange on top: depth, width, web, flange, radius."""
-    b, w, h = 0.5 * d["width"], 0.5 * d["web"], 0.5 * d["depth"]
-    under = h - d["flange"]
-    corners = [(-w, -h), (w, -h), (w, under), (b, under), (b, h), (-b, h), (-b, under), (-w, under)]
-    return rounded(corners, [0.0, 0.0, d["radius"], 0.0, 0.0, 0.0, 0.0, d["radius"]])
+    """Tee, flange on top: depth, width, web, flange, radius; rolled ones also slope, toe_radius, web_toe_radius.
+
+    With a slope the under face of the flange climbs towards its toes and the faces of the web draw together towards
+    its foot; the flange has its thickness at the distance flange_at from the middle of the web, the web has its at
+    the distance web_at from the outer face of the flange.
+    """
+    b, h = 0.5 * d["width"], d["depth"]
+    zero = np.zeros_like(b)
+    slope, toe, foot = (d.get(k, zero) for k in ("slope", "toe_radius", "web_toe_radius"))
+    flange_at, web_at = d.get("flange_at", zero), d.get("web_at", zero)
+    # the faces meet where y = web / 2 + slope (web_at - t) and t = flange + slope (flange_at - y)
+    y = 0.5 * d["web"] + slope * (web_at - d["flange"]) - slope**2 * flange_at
+    y = y / (1.0 - slope**2)
+    root = 0.5 * h - d["flange"] - slope * (flange_at - y)
+    tip = 0.5 * h - d["flange"] - slope * (flange_at - b)
+    w = 0.5 * d["web"] + slope * (web_at - h)
+    low, top = -0.5 * h, 0.5 * h
+    corners = [(-w, low), (w, low), (y, root), (b, tip), (b, top), (-b, top), (-b, tip), (-y, root)]
+    return rounded(corners, [foot, foot, d["radius"], toe, 0.0, 0.0, toe, d["radius"]])
 
 
 def channel(d: Dimensions) -> Outline:

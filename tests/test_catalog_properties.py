@@ -75,7 +75,7 @@ def test_in_full_in_lists_and_as_data(capsys: pytest.CaptureFixture[str]) -> Non
     assert "Computed from the dimensions\n    A     53.81 cm2" in text
     assert "42.24 kg/m" in text and "of steel at 7850 kg/m3" in text
     assert "47.3" in said(capsys, "W16x31", "--units", "us") and "lb/ft" in said(capsys, "W16x31", "--units", "us")
-    assert "without slopes and toe radii" in said(capsys, "T 100")
+    assert "I_y   178.5 cm4" in said(capsys, "T 100")
     listed = said(capsys, "IPE")
     row = next(line for line in listed.splitlines() if line.startswith("    IPE 300"))
     assert "53.81" in row and "8356" in row and "are computed from the dimensions" in listed
