@@ -72,7 +72,7 @@ def finished(value: Any, end: float | None, path: Path, report: Report) -> Law |
 def _warn_of_ends(value: Columns, law: Law, end: float | None, path: Path, report: Report) -> None:
     """Say where a survey does not reach the ends of what it describes: its last values go on."""
     first, last = float(law.knots[0]), float(law.knots[-1])
-    stretch = report.data[path[0]][path[1]] if len(path) > 1 else {}
+    stretch = report.data[str(path[0])][path[1]] if len(path) > 1 else {}
     if end is not None and last < end * (1.0 - 1e-9):
         report.warnings.append(f"{value.file} ends at x = {last:.6g} m: its last value is used up to {end:.6g} m")
     if "from" not in stretch and first > 1e-9 * last:
