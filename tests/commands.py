@@ -83,12 +83,12 @@ def down(combination: Any) -> float:
     return float(combination["deflection"]["down"]["value"])
 
 
-def agrees(found: float, second: float) -> None:
+def check_agrees(found: float, second: float) -> None:
     """A second, independent computation."""
     assert found == pytest.approx(second, rel=1e-8)
 
 
-def prints(value: float, printed: str) -> None:
+def check_prints(value: float, printed: str) -> None:
     """Half of the last digit of a printed figure."""
     digits = printed.partition(".")[2]
     assert abs(value - float(printed)) <= 0.5 * 10 ** -len(digits) * (1 + 1e-9), (value, printed)

@@ -108,7 +108,7 @@ def case(name: str, **factors: float) -> Combination:
     return Combination(name, factors)
 
 
-def close(found: float, expected: Any, tolerance: float, size: Any = None) -> None:
+def check_close(found: float, expected: Any, tolerance: float, size: Any = None) -> None:
     """Assert that a number agrees, relative to itself or to a size of its kind."""
     scale = abs(float(size if size is not None else expected))
     gap = abs(float(mp.mpf(found) - mp.mpf(expected)))

@@ -10,7 +10,7 @@ from common import (
     PROMISED,
     STEEL,
     TIMBER,
-    close,
+    check_close,
     fixed,
     line,
     part,
@@ -49,12 +49,12 @@ def test_haunched_between_fixed_ends(law: str) -> None:
     M = simple_moment(Q, length)
     left, right = fixed_fixed(M, EI, places, length)
     found = run(member, 0.0, 2.5, 4.5)
-    close(reaction(found, "A", "moment"), left, PROMISED)
-    close(reaction(found, "B", "moment"), -right, PROMISED)
-    close(found["moment"]["hogging"]["value"], left, PROMISED)
+    check_close(reaction(found, "A", "moment"), left, PROMISED)
+    check_close(reaction(found, "B", "moment"), -right, PROMISED)
+    check_close(found["moment"]["hogging"]["value"], left, PROMISED)
     whole = lambda x: M(x) + left
     for x in (2.5, 4.5):
-        close(station(found, x)["deflection"], work(whole, unit_moment(x, length), EI, (*places, x)), PROMISED)
+        check_close(station(found, x)["deflection"], work(whole, unit_moment(x, length), EI, (*places, x)), PROMISED)
 
 
 def test_thrust_of_a_haunched_beam_held_along_at_both_ends() -> None:
@@ -77,11 +77,11 @@ def test_thrust_of_a_haunched_beam_held_along_at_both_ends() -> None:
     f[1, 0], f[1, 1] = f[0, 1], work(z, z, EI, places) + work(one, one, EA, places)
     m, n = mp.lu_solve(f, -mp.matrix([work(M, one, EI, places), work(M, z, EI, places)]))
     found = run(member, 0.0, 2.5, 4.5)
-    close(station(found, 2.5)["N"], n, PROMISED)
-    close(reaction(found, "A", "along"), -n, PROMISED)
-    close(station(found, 0.0)["M"], m + n * z(0), PROMISED)
+    check_close(station(found, 2.5)["N"], n, PROMISED)
+    check_close(reaction(found, "A", "along"), -n, PROMISED)
+    check_close(station(found, 0.0)["M"], m + n * z(0), PROMISED)
     whole = lambda x: M(x) + m + n * z(x)
-    close(station(found, 4.5)["deflection"], work(whole, unit_moment(4.5, length), EI, places), PROMISED)
+    check_close(station(found, 4.5)["deflection"], work(whole, unit_moment(4.5, length), EI, places), PROMISED)
 
 
 def test_parabolic_soffit_of_two_materials() -> None:
@@ -108,8 +108,8 @@ def test_parabolic_soffit_of_two_materials() -> None:
     places = (0, 1.5, 2, 3, 4, 6.5, 8)
     M = simple_moment(Q, length)
     for x in (2.0, 4.0):
-        close(station(found, x)["deflection"], work(M, unit_moment(x, length), EI, places), PROMISED)
-    close(station(found, 0.0)["slope"], work(M, lambda x: 1 - x / mp.mpf(8), EI, places), PROMISED)
+        check_close(station(found, x)["deflection"], work(M, unit_moment(x, length), EI, places), PROMISED)
+    check_close(station(found, 0.0)["slope"], work(M, lambda x: 1 - x / mp.mpf(8), EI, places), PROMISED)
 
 
 def test_pair_of_timbers_with_steel_between() -> None:
@@ -146,4 +146,4 @@ def test_pair_of_timbers_with_steel_between() -> None:
 
     found = run(member, 3.0)
     expected = 8000 * work(unit_moment(2.0, length), unit_moment(3.0, length), EI, (0, 1, 2, 3, 4, 6))
-    close(station(found, 3.0)["deflection"], expected, PROMISED)
+    check_close(station(found, 3.0)["deflection"], expected, PROMISED)

@@ -11,7 +11,7 @@ from common import (
     PROMISED,
     STEEL,
     cantilever,
-    close,
+    check_close,
     integral,
     part,
     run,
@@ -34,13 +34,13 @@ def test_plan_that_runs_out_to_a_point_has_finite_slope() -> None:
     tip = run(Member(L, (blade,), (STEEL,), supports=cantilever(), loads=(Point(L, 100.0),), shear=False), L)["ends"][
         "right"
     ]
-    close(tip["deflection"], 100.0 * L**3 / (2 * EI0), PROMISED)
-    close(tip["slope"], 100.0 * L**2 / EI0, PROMISED)
+    check_close(tip["deflection"], 100.0 * L**3 / (2 * EI0), PROMISED)
+    check_close(tip["slope"], 100.0 * L**2 / EI0, PROMISED)
     spread = Member(L, (blade,), (STEEL,), supports=cantilever(), loads=(uniform(100.0, L),))
     tip = run(spread, L)["ends"]["right"]
     GA0 = 81e9 * 0.2 * 0.05 * 5 / 6
-    close(tip["deflection"], 100.0 * L**4 / (6 * EI0) + 100.0 * L**2 / GA0, PROMISED)
-    close(tip["slope"], 100.0 * L**3 / (4 * EI0) + 100.0 * L / GA0, PROMISED)
+    check_close(tip["deflection"], 100.0 * L**4 / (6 * EI0) + 100.0 * L**2 / GA0, PROMISED)
+    check_close(tip["slope"], 100.0 * L**3 / (4 * EI0) + 100.0 * L / GA0, PROMISED)
 
 
 @pytest.mark.parametrize("shear", [True, False])
@@ -51,10 +51,10 @@ def test_wedge_to_a_point_has_a_deflection_and_no_slope(shear: bool) -> None:
     tip = found["ends"]["right"]
     assert tip["slope"] is None and tip["rotation"] is None
     assert station(found, L)["slope"] is None
-    close(tip["deflection"], 1e3 * L**4 / (2 * EI0) + shear * 1e3 * L**2 / GA0, PROMISED)
+    check_close(tip["deflection"], 1e3 * L**4 / (2 * EI0) + shear * 1e3 * L**2 / GA0, PROMISED)
     # slope at 3 m: curvature q L^3 / (2 EI0 s), s from the tip
     expected = 1e3 * L**3 / (2 * EI0) * math.log(2.0)
-    close(station(found, 3.0)["rotation"], expected, PROMISED)
+    check_close(station(found, 3.0)["rotation"], expected, PROMISED)
 
 
 @pytest.mark.parametrize("shear", [True, False])
@@ -80,5 +80,5 @@ def test_beam_pointed_at_both_ends() -> None:
     EI = lambda x: EI0 * min(x, L - x) / half
     found = run(Member(L, (beam,), (STEEL,), supports=simple(L), loads=(uniform(Q, L),), shear=False), 0.0, half)
     M = simple_moment(Q, L)
-    close(station(found, half)["deflection"], 2 * integral(lambda x: M(x) * x / 2 / EI(x), (0, half)), PROMISED)
-    close(station(found, 0.0)["slope"], integral(lambda x: M(x) / EI(x), (0, half)), PROMISED)
+    check_close(station(found, half)["deflection"], 2 * integral(lambda x: M(x) * x / 2 / EI(x), (0, half)), PROMISED)
+    check_close(station(found, 0.0)["slope"], integral(lambda x: M(x) / EI(x), (0, half)), PROMISED)

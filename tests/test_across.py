@@ -9,7 +9,7 @@ from common import (
     INF,
     PROMISED,
     STEEL,
-    close,
+    check_close,
     fixed,
     part,
     pin,
@@ -51,10 +51,10 @@ def test_z_section_moves_aside_under_vertical_load() -> None:
     found = run(z_section(uniform(1e3, L), supports=simple(L)), 3.0)
     c = z_compliance()
     shape = 5 * 1e3 * L**4 / 384
-    close(station(found, 3.0)["deflection"], shape * c[0, 0], CLOSED)
+    check_close(station(found, 3.0)["deflection"], shape * c[0, 0], CLOSED)
     # down'' = -k_y and across'' = +k_z: across carries the other sign
-    close(station(found, 3.0)["across"], -shape * c[1, 0], CLOSED)
-    close(found["deflection"]["across"]["value"], -shape * c[1, 0], CLOSED)
+    check_close(station(found, 3.0)["across"], -shape * c[1, 0], CLOSED)
+    check_close(found["deflection"]["across"]["value"], -shape * c[1, 0], CLOSED)
 
 
 def test_z_section_held_sideways_in_midspan() -> None:
@@ -64,8 +64,8 @@ def test_z_section_held_sideways_in_midspan() -> None:
     load, point = 5 * 1e3 * L**4 / 384, L**3 / 48
     # force f towards +y at midspan: across = f point c_zz, down = -f point c_yz
     f = load * c[1, 0] / (point * c[1, 1])
-    close(reaction(found, "side", "across"), f, CLOSED)
-    close(station(found, 3.0)["deflection"], load * c[0, 0] - f * point * c[0, 1], CLOSED)
+    check_close(reaction(found, "side", "across"), f, CLOSED)
+    check_close(station(found, 3.0)["deflection"], load * c[0, 0] - f * point * c[0, 1], CLOSED)
     assert abs(station(found, 3.0)["across"]) < 1e-15
 
 
@@ -75,9 +75,9 @@ def test_z_section_with_the_ends_free_sideways_at_one_place() -> None:
     found = run(z_section(uniform(1e3, L), supports=supports), 3.0)
     free = run(z_section(uniform(1e3, L), supports=simple(L)), 3.0, 4.0)
     # no force sideways is needed: vertical bending is the same, across is turned about A
-    close(station(found, 3.0)["deflection"], station(free, 3.0)["deflection"], CLOSED)
+    check_close(station(found, 3.0)["deflection"], station(free, 3.0)["deflection"], CLOSED)
     shifted = station(free, 3.0)["across"] - station(free, 4.0)["across"] * 3.0 / 4.0
-    close(station(found, 3.0)["across"], shifted, PROMISED)
+    check_close(station(found, 3.0)["across"], shifted, PROMISED)
 
 
 def test_angle_principal_axes() -> None:
@@ -93,8 +93,8 @@ def test_angle_principal_axes() -> None:
     iyz = sum(a * (y - yc) * (z - zc) for a, y, z, w, d in legs)
     c = np.linalg.inv(E * np.array([[iy, iyz], [iyz, iz]]))
     shape = 5 * 500.0 * L**4 / 384
-    close(station(found, 3.0)["deflection"], shape * c[0, 0], CLOSED)
-    close(station(found, 3.0)["across"], -shape * c[1, 0], CLOSED)
+    check_close(station(found, 3.0)["deflection"], shape * c[0, 0], CLOSED)
+    check_close(station(found, 3.0)["across"], -shape * c[1, 0], CLOSED)
 
 
 @pytest.mark.parametrize("shear", [False, True])
@@ -102,27 +102,27 @@ def test_load_across(shear: bool) -> None:
     found = run(beam(uniform(Q, L, direction="across"), shear=shear), 3.0)
     iz = E * H * B**3 / 12
     w = 5 * Q * L**4 / (384 * iz) + shear * Q * L**2 / (8 * GA)
-    close(station(found, 3.0)["across"], w, CLOSED)
-    close(reaction(found, "A", "across"), -Q * L / 2, CLOSED)
+    check_close(station(found, 3.0)["across"], w, CLOSED)
+    check_close(reaction(found, "A", "across"), -Q * L / 2, CLOSED)
     assert station(found, 3.0)["deflection"] == 0.0
     assert found["deflection"]["down"] is None
-    close(found["deflection"]["across"]["value"], w, CLOSED)
+    check_close(found["deflection"]["across"]["value"], w, CLOSED)
 
 
 def test_load_across_between_fixed_ends_and_a_sideways_spring() -> None:
     iz = E * H * B**3 / 12
     supports = (fixed("A", 0.0, along=INF), fixed("B", L))
     found = run(beam(Point(3.0, P, direction="across"), supports=supports), 3.0)
-    close(station(found, 3.0)["across"], P * L**3 / (192 * iz), CLOSED)
+    check_close(station(found, 3.0)["across"], P * L**3 / (192 * iz), CLOSED)
     k = 2e6
     found = run(beam(Point(3.0, P, direction="across"), supports=(*simple(L), Support("S", 3.0, across=k))), 3.0)
     f = L**3 / (48 * iz)
-    close(station(found, 3.0)["across"], P * f / (1 + k * f), CLOSED)
-    close(reaction(found, "S", "across"), -P * k * f / (1 + k * f), CLOSED)
+    check_close(station(found, 3.0)["across"], P * f / (1 + k * f), CLOSED)
+    check_close(reaction(found, "S", "across"), -P * k * f / (1 + k * f), CLOSED)
 
 
 def test_up_is_minus_down() -> None:
     up = run(beam(uniform(Q, L, direction="up")), 3.0)
-    close(station(up, 3.0)["deflection"], -5 * Q * L**4 / (384 * EI), CLOSED)
+    check_close(station(up, 3.0)["deflection"], -5 * Q * L**4 / (384 * EI), CLOSED)
     assert up["deflection"]["down"] is None
-    close(up["deflection"]["up"]["value"], 5 * Q * L**4 / (384 * EI), CLOSED)
+    check_close(up["deflection"]["up"]["value"], 5 * Q * L**4 / (384 * EI), CLOSED)

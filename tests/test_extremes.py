@@ -7,7 +7,7 @@ import math
 
 import numpy as np
 import pytest
-from common import CLOSED, INF, STEEL, cantilever, close, fixed, part, pin, roller, run, simple, uniform
+from common import CLOSED, INF, STEEL, cantilever, check_close, fixed, part, pin, roller, run, simple, uniform
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.description import Hinge, Member
@@ -29,7 +29,7 @@ def beam(*loads: object, supports: tuple = (), length: float = L, **more: object
 
 
 def peak(found: dict, value: float, at: float, smooth: bool = True) -> None:
-    close(found["value"], value, CLOSED)
+    check_close(found["value"], value, CLOSED)
     assert found["at"] == pytest.approx(at, abs=(PLACE if smooth else 1e-12) * L)
 
 
@@ -98,7 +98,7 @@ def test_equal_spans_report_the_leftmost() -> None:
     w = Q * s * (L**3 - 3 * L * s**2 + 2 * s**3) / (48 * EI)
     peak(found["deflection"]["down"], w, s)
     for row, at in zip(found["spans"], (s, 2 * L - s), strict=True):
-        close(row["deflection"], w, CLOSED)
+        check_close(row["deflection"], w, CLOSED)
         assert row["at"] == pytest.approx(at, abs=PLACE * L)
 
 
@@ -155,7 +155,7 @@ def test_stations_jump_where_forces_do() -> None:
     by_place = {x: [r for r in rows if abs(r["x"] - x) < 1e-9] for x in (0.0, 1.0, 3.0, L, 0.6)}
     assert [len(by_place[x]) for x in (0.0, 1.0, 3.0, L, 0.6)] == [1, 2, 2, 1, 1]
     left, right = by_place[3.0]
-    close(left["V"] - right["V"], P, CLOSED)
+    check_close(left["V"] - right["V"], P, CLOSED)
     xs = [r["x"] for r in rows]
     assert xs == sorted(xs) and len(rows) >= 101
 

@@ -7,7 +7,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from common import CLOSED, PROMISED, close, part, run, simple, station, uniform
+from common import CLOSED, PROMISED, check_close, part, run, simple, station, uniform
 from placed_parts import HOST, NEAR, L, at, box, member, plate, tapering
 
 from fishbelly.member.description import Notch, Opening, Placing, Shape
@@ -23,10 +23,10 @@ def test_notch_cuts_from_each_side() -> None:
         m = member(HOST, notches=(Notch("host", constant(0.05), 3.0, 4.0, side),))
         found = section_at(m, 3.5)
         width, depth = (0.2, 0.35) if side in ("bottom", "top") else (0.15, 0.4)
-        close(found["EI_y"], 210e9 * width * depth**3 / 12, CLOSED)
-        close(found["mass"], 7850 * width * depth, CLOSED)
+        check_close(found["EI_y"], 210e9 * width * depth**3 / 12, CLOSED)
+        check_close(found["mass"], 7850 * width * depth, CLOSED)
         assert removed[0] * removed[1] == pytest.approx(0.08 - width * depth)
-        close(section_at(m, 2.9)["EI_y"], 210e9 * 0.2 * 0.4**3 / 12, CLOSED)
+        check_close(section_at(m, 2.9)["EI_y"], 210e9 * 0.2 * 0.4**3 / 12, CLOSED)
 
 
 def test_notch_reach_takes_stiffness_and_leaves_mass() -> None:
@@ -39,20 +39,20 @@ def test_notch_reach_takes_stiffness_and_leaves_mass() -> None:
         (4.6, False, False),
     ):
         found = section_at(m, x)
-        close(found["EI_y"], 210e9 * 0.2 * (0.35 if cut else 0.4) ** 3 / 12, CLOSED)
-        close(found["mass"], 7850 * 0.2 * (0.35 if light else 0.4), CLOSED)
+        check_close(found["EI_y"], 210e9 * 0.2 * (0.35 if cut else 0.4) ** 3 / 12, CLOSED)
+        check_close(found["mass"], 7850 * 0.2 * (0.35 if light else 0.4), CLOSED)
 
 
 def test_reach_stays_on_its_part() -> None:
     m = member(HOST, notches=(Notch("host", constant(0.05), 0.2, 0.6, reach=0.5),))
-    close(section_at(m, 0.0)["EI_y"], 210e9 * 0.2 * 0.35**3 / 12, CLOSED)
+    check_close(section_at(m, 0.0)["EI_y"], 210e9 * 0.2 * 0.35**3 / 12, CLOSED)
 
 
 def test_notch_that_deepens_along_a_law_and_its_reach() -> None:
     law = straight([3.0, 4.0], [0.02, 0.1])
     m = member(HOST, notches=(Notch("host", law, 3.0, 4.0, reach=0.4),))
     for x, cut in ((2.8, 0.02), (3.25, 0.04), (3.75, 0.08), (4.2, 0.1)):
-        close(section_at(m, x)["EI_y"], 210e9 * 0.2 * (0.4 - cut) ** 3 / 12, CLOSED)
+        check_close(section_at(m, x)["EI_y"], 210e9 * 0.2 * (0.4 - cut) ** 3 / 12, CLOSED)
 
 
 def test_weight_of_a_notched_beam_counts_the_notch_alone() -> None:
@@ -61,7 +61,7 @@ def test_weight_of_a_notched_beam_counts_the_notch_alone() -> None:
     )
     found = run(m)
     total = sum(s["vertical"] for s in found["supports"])
-    close(total, 9.80665 * 7850 * 0.2 * (0.4 * L - 0.05 * 1.0), CLOSED)
+    check_close(total, 9.80665 * 7850 * 0.2 * (0.4 * L - 0.05 * 1.0), CLOSED)
 
 
 def test_a_follower_ignores_the_notch() -> None:
@@ -84,7 +84,7 @@ def test_a_short_notch_is_not_missed() -> None:
     nodes, weights = np.polynomial.legendre.leggauss(6)
     x = 4.0 - w / 2 + w / 4 * (nodes + 1)
     extra = 2 * float((1e4 * x * (L - x) / 2 * x / 2 * weights).sum()) * w / 4 * (1 / thin - 1 / plain)
-    close(station(run(m, 4.0), 4.0)["deflection"], 5e4 * L**4 / 384 / plain + extra, CLOSED)
+    check_close(station(run(m, 4.0), 4.0)["deflection"], 5e4 * L**4 / 384 / plain + extra, CLOSED)
 
 
 # openings
@@ -94,8 +94,8 @@ def test_a_short_notch_is_not_missed() -> None:
 def test_round_opening_follows_its_circle(x: float, half: float) -> None:
     m = member(HOST, openings=(Opening(4.0, ("host",), diameter=0.2),))
     found = section_at(m, x)
-    close(found["EI_y"], 210e9 * 0.2 * (0.4**3 - (2 * half) ** 3) / 12, CLOSED)
-    close(found["mass"], 7850 * 0.2 * (0.4 - 2 * half), CLOSED)
+    check_close(found["EI_y"], 210e9 * 0.2 * (0.4**3 - (2 * half) ** 3) / 12, CLOSED)
+    check_close(found["mass"], 7850 * 0.2 * (0.4 - 2 * half), CLOSED)
 
 
 def test_opening_at_a_level_of_its_own() -> None:
@@ -103,36 +103,36 @@ def test_opening_at_a_level_of_its_own() -> None:
     found = section_at(m, 4.0)
     area, hole = 0.08, 0.02
     zc = (area * -0.2 - hole * -0.1) / (area - hole)
-    close(found["z_c"], zc, CLOSED)
+    check_close(found["z_c"], zc, CLOSED)
     iy = 0.2 * 0.4**3 / 12 + area * (0.2 + zc) ** 2 - 0.2 * 0.1**3 / 12 - hole * (0.1 + zc) ** 2
-    close(found["EI_y"], 210e9 * iy, CLOSED)
+    check_close(found["EI_y"], 210e9 * iy, CLOSED)
 
 
 def test_rectangular_opening_with_round_corners() -> None:
     m = member(HOST, openings=(Opening(4.0, ("host",), length=0.6, depth=0.2, radius=0.05),))
     for x, depth in ((4.0, 0.2), (4.24, 0.2), (4.28, 0.1 + 2 * 0.04), (3.72, 0.18), (4.31, 0.0)):
-        close(section_at(m, x)["EI_y"], 210e9 * 0.2 * (0.4**3 - depth**3) / 12, CLOSED)
+        check_close(section_at(m, x)["EI_y"], 210e9 * 0.2 * (0.4**3 - depth**3) / 12, CLOSED)
 
 
 def test_opening_cuts_only_the_parts_named() -> None:
     m = member(HOST, plate(relation="centred_on", host="host"), openings=(Opening(4.0, ("host",), diameter=0.2),))
     found = section_at(m, 4.0)
     names = {p["name"]: p["area"] for p in found["parts"]}
-    close(names["plate"], 0.002, CLOSED)
+    check_close(names["plate"], 0.002, CLOSED)
     # the plate displaces the host inside the hole, where nothing of the host is left anyway
-    close(names["host"], 0.2 * 0.2, CLOSED)
+    check_close(names["host"], 0.2 * 0.2, CLOSED)
 
 
 def test_opening_of_a_tapering_beam_stands_at_the_middle_there() -> None:
     m = member(replace(HOST, shape=tapering()), openings=(Opening(4.0, ("host",), length=0.4, depth=0.1),))
     found = section_at(m, 4.0)
-    close(found["z_c"], -0.15, CLOSED)
+    check_close(found["z_c"], -0.15, CLOSED)
 
 
 def test_pieces_over_an_opening_share_the_shear_angle() -> None:
     m = member(HOST, openings=(Opening(4.0, ("host",), length=0.4, depth=0.2, level=-0.15),))
     found = section_at(m, 4.0)
-    close(found["GA_z"], 5 / 6 * 81e9 * 0.2 * 0.2, CLOSED)
+    check_close(found["GA_z"], 5 / 6 * 81e9 * 0.2 * 0.2, CLOSED)
 
 
 def test_deflection_over_a_round_opening() -> None:
@@ -152,7 +152,7 @@ def test_deflection_over_a_round_opening() -> None:
     M, unit = 1e4 * x * (L - x) / 2, np.where(x < 4.0, x / 2, (L - x) / 2)
     extra = float((M * unit * (1 / EI(hole) - 1 / EI(0.0)) * weights * d / 2 * np.cos(angle)).sum()) * 0.5 * np.pi
     expected = 5e4 * L**4 / 384 / EI(0.0) + extra
-    close(station(run(m, 4.0), 4.0)["deflection"], expected, PROMISED)
+    check_close(station(run(m, 4.0), 4.0)["deflection"], expected, PROMISED)
 
 
 # cuts, displacing
@@ -174,18 +174,18 @@ def test_groove_takes_from_its_part_alone() -> None:
         end=3.0,
     )
     found = section_at(member(HOST, groove), 2.5)
-    close(found["EA"], 210e9 * (0.08 - 0.005), CLOSED)
+    check_close(found["EA"], 210e9 * (0.08 - 0.005), CLOSED)
     zc = (0.08 * -0.2 - 0.005 * -0.35) / 0.075
-    close(found["z_c"], zc, CLOSED)
-    close(section_at(member(HOST, groove), 1.5)["EA"], 210e9 * 0.08, CLOSED)
+    check_close(found["z_c"], zc, CLOSED)
+    check_close(section_at(member(HOST, groove), 1.5)["EA"], 210e9 * 0.08, CLOSED)
 
 
 def test_later_part_displaces_the_earlier_one() -> None:
     bar = replace(plate(relation="centred_on", host="wood"))
     wood = replace(HOST, name="wood", material="timber")
     found = section_at(member(wood, bar), 1.0)
-    close(found["EA"], 11e9 * (0.08 - 0.002) + 210e9 * 0.002, CLOSED)
-    close(found["EI_y"], 11e9 * (0.2 * 0.4**3 - 0.1 * 0.02**3) / 12 + 210e9 * 0.1 * 0.02**3 / 12, CLOSED)
+    check_close(found["EA"], 11e9 * (0.08 - 0.002) + 210e9 * 0.002, CLOSED)
+    check_close(found["EI_y"], 11e9 * (0.2 * 0.4**3 - 0.1 * 0.02**3) / 12 + 210e9 * 0.1 * 0.02**3 / 12, CLOSED)
 
 
 def test_parts_that_begin_to_overlap_along_the_member() -> None:
@@ -216,7 +216,7 @@ def test_parts_that_begin_to_overlap_along_the_member() -> None:
         M, unit = 1e4 * x * (L - x) / 2, np.where(x < 4.0, x / 2, (L - x) / 2)
         w += float((M * unit / EI(x) * weights).sum()) * (b - a) / 2
     found = run(m, 4.0)
-    close(station(found, 4.0)["deflection"], w, PROMISED)
+    check_close(station(found, 4.0)["deflection"], w, PROMISED)
 
 
 def test_parabola_and_plate_follow_the_same_soffit() -> None:
@@ -251,4 +251,4 @@ def test_a_tapering_part_far_from_the_datum(kind: str, far: float) -> None:
         where = Placing("position", position=(constant(0.0), constant(z)), anchor="middle")
         piece = part("p", kind, L, place=where, **sizes)
         found.append(run(member(piece, supports=simple(L), loads=(uniform(1e3, L),)), 4.0))
-    close(station(found[1], 4.0)["deflection"], station(found[0], 4.0)["deflection"], 1e-9)
+    check_close(station(found[1], 4.0)["deflection"], station(found[0], 4.0)["deflection"], 1e-9)

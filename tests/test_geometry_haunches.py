@@ -6,7 +6,7 @@ import math
 from dataclasses import replace
 
 import pytest
-from common import CLOSED, STEEL, close, part, run, simple, station, uniform
+from common import CLOSED, STEEL, check_close, part, run, simple, station, uniform
 from placed_parts import HOST, NEAR, L, at, box, member, plate
 
 from fishbelly.member.description import Haunch, Member, Part, Shape
@@ -65,7 +65,7 @@ def test_a_haunch_counts_with_its_break_where_another_takes_over() -> None:
     given = {"supports": simple(L), "loads": (uniform(1e4, L),)}
     one = run(member(HOST, haunches=haunches, **given), 3.0)
     other = run(member(by_law, **given), 3.0)
-    close(station(one, 3.0)["deflection"], station(other, 3.0)["deflection"], CLOSED)
+    check_close(station(one, 3.0)["deflection"], station(other, 3.0)["deflection"], CLOSED)
 
 
 def test_i_shape_under_a_haunch_keeps_its_flanges() -> None:
@@ -74,7 +74,7 @@ def test_i_shape_under_a_haunch_keeps_its_flanges() -> None:
     found = section_at(m, 1.0)
     h = 0.6
     iy = (0.2 * h**3 - 0.19 * (h - 0.04) ** 3) / 12
-    close(found["EI_y"], 210e9 * iy, CLOSED)
+    check_close(found["EI_y"], 210e9 * iy, CLOSED)
 
 
 # laws, breaks
@@ -84,8 +84,8 @@ def test_the_two_sides_of_a_step() -> None:
     shaft = part("s", "circle", 1.0, diameter=steps([0.4, 1.0], [0.06, 0.04]))
     m = Member(1.0, (shaft,), (STEEL,))
     left, right = (section_at(m, 0.4, side)["EI_y"] for side in ("left", "right"))
-    close(left, 210e9 * math.pi * 0.06**4 / 64, CLOSED)
-    close(right, 210e9 * math.pi * 0.04**4 / 64, CLOSED)
+    check_close(left, 210e9 * math.pi * 0.06**4 / 64, CLOSED)
+    check_close(right, 210e9 * math.pi * 0.04**4 / 64, CLOSED)
     rows = [r for r in stiffness(m)["stations"] if abs(r["x"] - 0.4) < 1e-12]
     assert [r["EI_y"] for r in rows] == [left, right]
 
@@ -105,5 +105,5 @@ def test_run_in_grows_stiffness_and_not_mass() -> None:
     for x, share in ((2.25, 0.25), (2.9, 0.9), (4.0, 1.0), (5.75, 0.5)):
         found = section_at(m, x)
         assert found["parts"][1]["E"] == pytest.approx(210e9 * share)
-        close(found["EA"], 210e9 * (0.08 + share * 0.002), CLOSED)
-        close(found["mass"], 7850 * (0.08 + 0.002), CLOSED)
+        check_close(found["EA"], 210e9 * (0.08 + share * 0.002), CLOSED)
+        check_close(found["mass"], 7850 * (0.08 + 0.002), CLOSED)

@@ -6,7 +6,7 @@ import math
 from dataclasses import replace
 
 import pytest
-from common import CLOSED, close, part
+from common import CLOSED, check_close, part
 from placed_parts import HOST, NEAR, L, at, box, member, plate, tapering
 
 from fishbelly.member.description import Placing
@@ -107,7 +107,7 @@ def test_pair_stands_left_and_right_of_its_host() -> None:
     assert found["parts"][1]["area"] == pytest.approx(2 * 0.002)
     at(box(m, "plate", 1.0), -0.2, -0.02, 0.2, 0.0)
     assert found["y_c"] == pytest.approx(0.0, abs=1e-15)
-    close(found["EI_z"], 210e9 * (0.4 * 0.2**3 / 12 + 2 * (0.02 * 0.1**3 / 12 + 0.002 * 0.15**2)), CLOSED)
+    check_close(found["EI_z"], 210e9 * (0.4 * 0.2**3 / 12 + 2 * (0.02 * 0.1**3 / 12 + 0.002 * 0.15**2)), CLOSED)
 
 
 def test_pair_placed_against_a_part_off_the_datum_is_mirrored_about_it() -> None:
@@ -154,9 +154,9 @@ def test_turning_by_an_odd_angle_turns_the_stiffness() -> None:
     found = section_at(member(replace(HOST, turn=angle)), 1.0)
     iy, iz = 210e9 * 0.2 * 0.4**3 / 12, 210e9 * 0.4 * 0.2**3 / 12
     c, s = math.cos(angle), math.sin(angle)
-    close(found["EI_y"], iy * c * c + iz * s * s, CLOSED)
-    close(found["EI_z"], iy * s * s + iz * c * c, CLOSED)
-    close(found["EI_yz"], (iz - iy) * s * c, CLOSED)
+    check_close(found["EI_y"], iy * c * c + iz * s * s, CLOSED)
+    check_close(found["EI_z"], iy * s * s + iz * c * c, CLOSED)
+    check_close(found["EI_yz"], (iz - iy) * s * c, CLOSED)
 
 
 def test_mirror_comes_before_turning() -> None:
@@ -165,6 +165,6 @@ def test_mirror_comes_before_turning() -> None:
     # mirrored: heel at the bottom right; turned by a quarter anticlockwise: heel at the top right
     other = section_at(member(replace(angle, turn=math.pi)), 1.0)  # heel at the top right, the legs exchanged
     assert both["EI_yz"] < 0.0
-    close(both["EI_y"], other["EI_z"], CLOSED)
-    close(both["EI_z"], other["EI_y"], CLOSED)
-    close(both["EI_yz"], other["EI_yz"], CLOSED)
+    check_close(both["EI_y"], other["EI_z"], CLOSED)
+    check_close(both["EI_z"], other["EI_y"], CLOSED)
+    check_close(both["EI_yz"], other["EI_yz"], CLOSED)

@@ -6,7 +6,7 @@ import math
 
 import numpy as np
 import pytest
-from common import CLOSED, close
+from common import CLOSED, check_close
 from test_outlines import ALL
 
 from fishbelly.sections.area_moments import area_moments
@@ -28,9 +28,9 @@ def cut(outlines: list[Outline], level: float, parts: int | None = None, targets
 
 def test_width_of_a_disc() -> None:
     width, first, second, left, right = cut([make("circle", 0.1, diameter=0.2)], 0.06)
-    close(width[0], 0.16, CLOSED)
-    close(first[0], 0.016, CLOSED)
-    close(second[0], (0.18**3 - 0.02**3) / 3, CLOSED)
+    check_close(width[0], 0.16, CLOSED)
+    check_close(first[0], 0.016, CLOSED)
+    check_close(second[0], (0.18**3 - 0.02**3) / 3, CLOSED)
     assert (left[0], right[0]) == pytest.approx((0.02, 0.18))
 
 
@@ -38,12 +38,12 @@ def test_later_part_displaces_and_a_cut_takes_away() -> None:
     plate, core = make("rectangle", width=0.4, depth=0.2), make("circle", diameter=0.1)
     width, *_ = cut([plate, core], 0.03)
     chord = 2 * math.sqrt(0.05**2 - 0.03**2)
-    close(width[0], 0.4 - chord, CLOSED)
-    close(width[1], chord, CLOSED)
+    check_close(width[0], 0.4 - chord, CLOSED)
+    check_close(width[1], chord, CLOSED)
     slot = make("rectangle", width=0.02, depth=1.0)
     width, *_ = cut([plate, core, slot], 0.03, 2, ((1,),))
-    close(width[0], 0.4 - chord, CLOSED)
-    close(width[1], chord - 0.02, CLOSED)
+    check_close(width[0], 0.4 - chord, CLOSED)
+    check_close(width[1], chord - 0.02, CLOSED)
 
 
 def test_a_level_that_misses_a_part() -> None:
@@ -84,12 +84,14 @@ def test_integrated_widths_are_the_area_moments(kind: str, turn: float) -> None:
     w, first, second = (getattr(levels.widths, f)[0, 0] for f in ("width", "first", "second"))
     z = levels.z[0]
     area = float((w * weight).sum())
-    close(area, exact.area[0], tolerance)
+    check_close(area, exact.area[0], tolerance)
     size = float(exact.zz[0] + exact.yy[0]) + area * float(exact.y[0] ** 2 + exact.z[0] ** 2)
-    close(float((first * weight).sum()), float(exact.area[0] * exact.y[0]), tolerance, area * 0.1)
-    close(float((w * z * z * weight).sum()), float(exact.zz[0] + exact.area[0] * exact.z[0] ** 2), tolerance, size)
-    close(float((second * weight).sum()), float(exact.yy[0] + exact.area[0] * exact.y[0] ** 2), tolerance, size)
-    close(
+    check_close(float((first * weight).sum()), float(exact.area[0] * exact.y[0]), tolerance, area * 0.1)
+    check_close(
+        float((w * z * z * weight).sum()), float(exact.zz[0] + exact.area[0] * exact.z[0] ** 2), tolerance, size
+    )
+    check_close(float((second * weight).sum()), float(exact.yy[0] + exact.area[0] * exact.y[0] ** 2), tolerance, size)
+    check_close(
         float((first * z * weight).sum()), float(exact.yz[0] + exact.area[0] * exact.y[0] * exact.z[0]), tolerance, size
     )
 
@@ -97,4 +99,4 @@ def test_integrated_widths_are_the_area_moments(kind: str, turn: float) -> None:
 def test_bars_that_touch_leave_no_gap_and_no_overlap() -> None:
     row = make("bars", count=3, diameter=0.02, spacing=0.02)
     width, *_ = cut([row], 0.0005)
-    close(width[0], 3 * 2 * math.sqrt(0.01**2 - 0.0005**2), CLOSED)
+    check_close(width[0], 3 * 2 * math.sqrt(0.01**2 - 0.0005**2), CLOSED)

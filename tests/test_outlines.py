@@ -6,7 +6,7 @@ import math
 
 import numpy as np
 import pytest
-from common import CLOSED, close
+from common import CLOSED, check_close
 
 from fishbelly.sections.area_moments import AreaMoments, area_moments
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon
@@ -25,20 +25,20 @@ def moments(kind: str, **dimensions: float) -> AreaMoments:
     """Moments at the first station, after checking that the others scale by length squared and to the fourth."""
     m = area_moments(outline(kind, **dimensions))
     for k, s in ((1, 1.5), (2, 4.0)):
-        close(m.area[k], m.area[0] * s**2, CLOSED)
-        close(m.zz[k], m.zz[0] * s**4, CLOSED)
-        close(m.yy[k], m.yy[0] * s**4, CLOSED)
+        check_close(m.area[k], m.area[0] * s**2, CLOSED)
+        check_close(m.zz[k], m.zz[0] * s**4, CLOSED)
+        check_close(m.yy[k], m.yy[0] * s**4, CLOSED)
     return m.at(0)
 
 
 def check(m: AreaMoments, area: float, zz: float, yy: float, y: float = 0.0, z: float = 0.0, yz: float = 0.0) -> None:
-    close(float(m.area), area, CLOSED)
-    close(float(m.zz), zz, CLOSED)
-    close(float(m.yy), yy, CLOSED)
+    check_close(float(m.area), area, CLOSED)
+    check_close(float(m.zz), zz, CLOSED)
+    check_close(float(m.yy), yy, CLOSED)
     size = math.sqrt(area)
-    close(float(m.y), y, CLOSED, size)
-    close(float(m.z), z, CLOSED, size)
-    close(float(m.yz), yz, CLOSED, area * area)
+    check_close(float(m.y), y, CLOSED, size)
+    check_close(float(m.z), z, CLOSED, size)
+    check_close(float(m.yz), yz, CLOSED, area * area)
 
 
 def sum_of_rectangles(*pieces: tuple[float, float, float, float]) -> tuple[float, float, float, float, float, float]:
@@ -128,23 +128,23 @@ def test_fillets_of_tee_channel_and_angle_add_and_toes_take_away() -> None:
     toe, _, _ = spandrel(t)
     sharp = {"depth": h, "width": b, "web": w, "flange": f}
     tee = moments("tee", **sharp, radius=r)
-    close(float(tee.area), w * (h - f) + b * f + 2 * root, CLOSED)
+    check_close(float(tee.area), w * (h - f) + b * f + 2 * root, CLOSED)
     channel = moments("channel", **sharp, radius=r, toe_radius=t, slope=0.0, flange_at=0.0)
-    close(float(channel.area), h * w + 2 * (b - w) * f + 2 * root - 2 * toe, CLOSED)
+    check_close(float(channel.area), h * w + 2 * (b - w) * f + 2 * root - 2 * toe, CLOSED)
     angle = moments("angle", **sharp, radius=r, toe_radius=t)
-    close(float(angle.area), w * h + (b - w) * f + root - 2 * toe, CLOSED)
+    check_close(float(angle.area), w * h + (b - w) * f + root - 2 * toe, CLOSED)
     # first moment of the angle about its heel
     _, cr, _ = spandrel(r)
     _, ct, _ = spandrel(t)
     first = h * w * w / 2 + (b - w) * f * (b + w) / 2 + root * (w + cr) - toe * (b - ct) - toe * (w - ct)
-    close(float(angle.y), first / float(angle.area), CLOSED)
+    check_close(float(angle.y), first / float(angle.area), CLOSED)
 
 
 def test_sloping_flanges_of_a_channel() -> None:
     h, b, w, f, slope, at = 0.3, 0.1, 0.01, 0.016, 0.08, 0.05
     m = moments("channel", depth=h, width=b, web=w, flange=f, radius=0.0, toe_radius=0.0, slope=slope, flange_at=at)
     toe, root = f - slope * (b - at), f + slope * (at - w)
-    close(float(m.area), h * w + 2 * (b - w) * (toe + root) / 2, CLOSED)
+    check_close(float(m.area), h * w + 2 * (b - w) * (toe + root) / 2, CLOSED)
 
 
 def test_trapezoid() -> None:
@@ -230,21 +230,21 @@ def test_a_turned_outline_turns_its_second_moments(kind: str) -> None:
     m, t = area_moments(shape).at(0), area_moments(shape.turned(angle)).at(0)
     c, s = math.cos(angle), math.sin(angle)
     size = float(m.zz + m.yy)
-    close(float(t.area), float(m.area), CLOSED)
-    close(float(t.zz), float(c * c * m.zz + s * s * m.yy + 2 * s * c * m.yz), CLOSED, size)
-    close(float(t.yy), float(s * s * m.zz + c * c * m.yy - 2 * s * c * m.yz), CLOSED, size)
-    close(float(t.yz), float((c * c - s * s) * m.yz + s * c * (m.yy - m.zz)), CLOSED, size)
-    close(float(t.y), float(c * m.y - s * m.z), CLOSED, 0.1)
+    check_close(float(t.area), float(m.area), CLOSED)
+    check_close(float(t.zz), float(c * c * m.zz + s * s * m.yy + 2 * s * c * m.yz), CLOSED, size)
+    check_close(float(t.yy), float(s * s * m.zz + c * c * m.yy - 2 * s * c * m.yz), CLOSED, size)
+    check_close(float(t.yz), float((c * c - s * s) * m.yz + s * c * (m.yy - m.zz)), CLOSED, size)
+    check_close(float(t.y), float(c * m.y - s * m.z), CLOSED, 0.1)
 
 
 @pytest.mark.parametrize("kind", ALL)
 def test_a_mirrored_outline_changes_the_sign_of_y_alone(kind: str) -> None:
     shape = outline(kind, **ALL[kind])
     m, f = area_moments(shape).at(0), area_moments(shape.mirrored(0.05)).at(0)
-    close(float(f.area), float(m.area), CLOSED)
-    close(float(f.zz), float(m.zz), CLOSED)
-    close(float(f.yz), -float(m.yz), CLOSED, float(m.zz))
-    close(float(f.y), 0.1 - float(m.y), CLOSED, 0.1)
+    check_close(float(f.area), float(m.area), CLOSED)
+    check_close(float(f.zz), float(m.zz), CLOSED)
+    check_close(float(f.yz), -float(m.yz), CLOSED, float(m.zz))
+    check_close(float(f.y), 0.1 - float(m.y), CLOSED, 0.1)
     box, flipped = shape.bounds(), shape.mirrored(0.05).bounds()
     assert flipped[0][0] == pytest.approx(0.1 - box[2][0]) and flipped[3][0] == pytest.approx(box[3][0])
 
@@ -285,9 +285,9 @@ def test_moments_of_an_outline_far_away_keep_their_digits(far: float) -> None:
     near, away = area_moments(shape), area_moments(shape.moved(far, -far))
     # edges of a centimetre carry the loss of the coordinates
     tolerance = max(1e-13, 4e-16 * far / 0.01 * 4)
-    close(float(away.zz[0]), float(near.zz[0]), tolerance)
-    close(float(away.yy[0]), float(near.yy[0]), tolerance)
-    close(float(away.area[0]), float(near.area[0]), tolerance)
+    check_close(float(away.zz[0]), float(near.zz[0]), tolerance)
+    check_close(float(away.yy[0]), float(near.yy[0]), tolerance)
+    check_close(float(away.area[0]), float(near.area[0]), tolerance)
 
 
 def test_turning_by_quarters_is_exact() -> None:

@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 import pytest
 from by_hand import integral, stepped, strips
-from commands import INCH, KN, KSI, LBF, MM, agrees, changed, deflect, down, prints, scenario, section
+from commands import INCH, KN, KSI, LBF, MM, changed, check_agrees, check_prints, deflect, down, scenario, section
 
 
 def arm(load: str, inertia: Any = None, breaks: list[float] | None = None) -> float:
@@ -42,21 +42,21 @@ def test_s4() -> None:
     text = scenario("s4_sign_arm")
     result = deflect(text)["by_name"]
     for name, load, printed in (("self", "self", "0.202"), ("sign", "260", "0.402"), ("ice", "90", "0.139")):
-        agrees(down(result[name]) / INCH, arm(load))
-        prints(down(result[name]) / INCH, printed)
+        check_agrees(down(result[name]) / INCH, arm(load))
+        check_prints(down(result[name]) / INCH, printed)
         assert result[name]["deflection"]["down"]["at"] == pytest.approx(216 * INCH)
     wind = result["wind"]["deflection"]["across"]["value"] / INCH
-    agrees(wind, arm("900"))
-    prints(wind, "1.39")
+    check_agrees(wind, arm("900"))
+    check_prints(wind, "1.39")
     weight = result["self"]["supports"][0]["vertical"] / LBF
-    agrees(weight, 490 / 1728 * np.pi * 0.239 * (7.5 - 0.239) * 216)
-    prints(weight, "334")
+    check_agrees(weight, 490 / 1728 * np.pi * 0.239 * (7.5 - 0.239) * 216)
+    check_prints(weight, "334")
     limits = {c["limit"]: c["allowed"] / INCH for c in result["wind"]["checks"] + result["all down"]["checks"]}
     assert limits == pytest.approx({"wind": 2.40, "dead": 1.80}, rel=1e-12)
     for x, diameter, printed in (("0 ft", 10.0, "87.3"), ("18 ft", 5.0, "10.15")):
         I = section(text, x)["EI_y"] / (29000 * KSI) / INCH**4
-        agrees(I, np.pi / 64 * (diameter**4 - (diameter - 0.478) ** 4))
-        prints(I, printed)
+        check_agrees(I, np.pi / 64 * (diameter**4 - (diameter - 0.478) ** 4))
+        check_prints(I, printed)
 
 
 def test_s4_shortcuts() -> None:
@@ -71,17 +71,17 @@ def test_s4_shortcuts() -> None:
     def ring(d: float) -> float:
         return float(np.pi / 64 * (d**4 - (d - 0.478) ** 4))
 
-    prints(100 * (wind('diameter = "7.5 in"') / exact - 1), "57")
+    check_prints(100 * (wind('diameter = "7.5 in"') / exact - 1), "57")
     mean = (ring(10) + ring(5)) / 2
     scaled = wind('diameter = "7.5 in"') * ring(7.5) / mean
-    agrees(scaled, arm("900", lambda x: mean + 0 * x))
-    prints(100 * (scaled / exact - 1), "16")
+    check_agrees(scaled, arm("900", lambda x: mean + 0 * x))
+    check_prints(100 * (scaled / exact - 1), "16")
     for n, printed in ((4, "2.9"), (6, "1.3"), (10, "0.46")):
         steps = [(18 * (i + 1) / n, 10 - 5 * (i + 0.5) / n) for i in range(n)]
         found = wind("diameter = { steps = [" + ", ".join(f'["{x!r} ft", "{d!r} in"]' for x, d in steps) + "] }")
         pieces = [(12 * (x - 18 / n), 12 * x, ring(d)) for x, d in steps]
-        agrees(found, arm("900", stepped(*pieces), [p[1] for p in pieces]))
-        prints(100 * (found / exact - 1), printed)
+        check_agrees(found, arm("900", stepped(*pieces), [p[1] for p in pieces]))
+        check_prints(100 * (found / exact - 1), printed)
 
 
 SHAFT = ((0.0, 60.0, 45.0), (60.0, 200.0, 55.0), (200.0, 260.0, 50.0), (260.0, 330.0, 42.0), (330.0, 420.0, 34.0))
@@ -118,15 +118,15 @@ def test_s5() -> None:
         second = [shaft(force, 300), shaft(force, 30, True), shaft(force, 230, True), shaft(force, 395)]
         second = [second[0], second[1] / MM, second[2] / MM, second[3]]
         for value, check, text in zip(found, second, printed[name], strict=True):
-            agrees(value, abs(check))
+            check_agrees(value, abs(check))
             if text:
-                prints(value, text)
+                check_prints(value, text)
     A, B = result["duty"]["supports"]
     assert (A["name"], B["name"]) == ("bearing A", "bearing B")
-    agrees(A["vertical"], -1215 * 165 / 200)
-    prints(A["vertical"], "-1002")
-    prints(B["vertical"], "2217")
-    prints(result["off duty"]["supports"][0]["vertical"] / A["vertical"], "2.029")
+    check_agrees(A["vertical"], -1215 * 165 / 200)
+    check_prints(A["vertical"], "-1002")
+    check_prints(B["vertical"], "2217")
+    check_prints(result["off duty"]["supports"][0]["vertical"] / A["vertical"], "2.029")
 
 
 def test_s5_shortcuts() -> None:
@@ -135,8 +135,8 @@ def test_s5_shortcuts() -> None:
     for d, printed in ((34, "0.307"), (45, "0.100")):
         result = deflect(changed(text, (law, f'diameter = "{d} mm"')))["by_name"]["duty"]
         found = next(s["deflection"] for s in result["stations"] if s["name"] == "impeller") / MM
-        agrees(found, shaft(1215, 395, diameters=((0.0, 420.0, float(d)),)))
-        prints(found, printed)
+        check_agrees(found, shaft(1215, 395, diameters=((0.0, 420.0, float(d)),)))
+        check_prints(found, printed)
 
 
 BOX = ((70e9, 0.08, -0.005, 0.0), (70e9, 0.01, -0.115, -0.005), (70e9, 0.08, -0.12, -0.115))
@@ -168,14 +168,14 @@ def test_s9_deflections() -> None:
     text = scenario("s9_gantry_arm")
     result = deflect(text)["by_name"]
     for load, printed in (("tip", "21.0"), ("self", "1.1"), ("warmth", "11.3")):
-        agrees(down(result[load]), gantry(1.6, load))
-        prints(down(result[load]) / MM, printed)
+        check_agrees(down(result[load]), gantry(1.6, load))
+        check_prints(down(result[load]) / MM, printed)
     assert not result["tip"]["checks"][0]["ok"]
     ratio = section(text, "1 m")["EI_y"] / section(text, "2 m")["EI_y"]
-    agrees(ratio, strips(*BOX, FLAT)[2] / strips(*BOX)[2])
-    prints(ratio, "2.20")
-    prints(section(text, "2 m")["EA"] / 70e9 * 1e6, "1900")
-    prints(section(text, "2 m")["EI_y"] / 70e9 * 1e8, "375.6")
+    check_agrees(ratio, strips(*BOX, FLAT)[2] / strips(*BOX)[2])
+    check_prints(ratio, "2.20")
+    check_prints(section(text, "2 m")["EA"] / 70e9 * 1e6, "1900")
+    check_prints(section(text, "2 m")["EI_y"] / 70e9 * 1e8, "375.6")
 
 
 def test_s9_lengths_of_flat() -> None:
@@ -183,13 +183,13 @@ def test_s9_lengths_of_flat() -> None:
     text = scenario("s9_gantry_arm")
     for end, printed in ((1835, "20.0"), (3000, "18.7")):
         tip = down(deflect(changed(text, ("1600 mm", f"{end} mm")))["by_name"]["tip"])
-        agrees(tip, gantry(end * MM, "tip"))
-        prints(tip / MM, printed)
+        check_agrees(tip, gantry(end * MM, "tip"))
+        check_prints(tip / MM, printed)
     head, _, rest = text.partition('[[part]]\nname = "flat"')
     bare = changed(head + rest[rest.index("[[support]]") :], (', flat = "35 K"', ""))
     tip = down(deflect(bare)["by_name"]["tip"])
-    agrees(tip, 1200 * 27 / (3 * strips(*BOX)[2]))
-    prints(tip / MM, "41.1")
+    check_agrees(tip, 1200 * 27 / (3 * strips(*BOX)[2]))
+    check_prints(tip / MM, "41.1")
 
 
 def test_s9_forces_in_the_flat() -> None:
@@ -202,15 +202,15 @@ def test_s9_forces_in_the_flat() -> None:
     lack = 11e-6 * 35
     bow = EA_flat * (z + 0.125) * lack / EI
     second = EA_flat * lack * (1 - EA_flat / EA) - EA_flat * (z + 0.125) * bow
-    agrees(force, second)
-    prints(force / KN, "13.1")
+    check_agrees(force, second)
+    check_prints(force / KN, "13.1")
     # tip load and self-weight just inside the flat's end
     flat = section(text, "1600 mm", "--side", "left")["parts"][1]
     mean = (flat["stress_per_moment"]["top"] + flat["stress_per_moment"]["bottom"]) / 2 * flat["area"]
-    agrees(mean, -EA_flat * (-0.125 - z) / EI)
+    check_agrees(mean, -EA_flat * (-0.125 - z) / EI)
     M = deflect(text, "1600 mm")["by_name"]["tip and self"]["stations"][0]["M"]
-    prints(abs(mean * M) / KN, "14.4")
+    check_prints(abs(mean * M) / KN, "14.4")
     # shear flow at the root is the change of that force along x, the weights counted too
     root = deflect(text)["by_name"]["tip and self"]["supports"][0]["vertical"]
-    agrees(root, 1200 + G0 * (2700 * 1900e-6 * 3 + 7850 * 800e-6 * 1.6))
-    prints(abs(mean) * root / KN, "12.1")
+    check_agrees(root, 1200 + G0 * (2700 * 1900e-6 * 3 + 7850 * 800e-6 * 1.6))
+    check_prints(abs(mean) * root / KN, "12.1")

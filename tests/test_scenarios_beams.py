@@ -6,7 +6,7 @@ Each figure against an independent computation (`by_hand`: strips and the unit-l
 
 import pytest
 from by_hand import i_section, simple_span, stepped, strips
-from commands import INCH, KN, KSI, LBF, MM, agrees, changed, deflect, down, prints, scenario, section
+from commands import INCH, KN, KSI, LBF, MM, changed, check_agrees, check_prints, deflect, down, scenario, section
 
 
 def flitch(w: float, plate: tuple[float, float] = (10, 200), E: float = 11e9, creep: float = 0.0) -> float:
@@ -19,27 +19,27 @@ def flitch(w: float, plate: tuple[float, float] = (10, 200), E: float = 11e9, cr
 def test_s1_section() -> None:
     both = section(scenario("s1_flitch_beam"), "2.4 m")["EI_y"]
     timber = section(scenario("s1_flitch_beam"), "0.1 m")["EI_y"]
-    agrees(timber, 11e9 * 0.150 * 0.225**3 / 12)
-    agrees(both - timber, 210e9 * 0.010 * 0.200**3 / 12)
-    prints(timber / 1e6, "1.566")
-    prints((both - timber) / 1e6, "1.400")
-    prints(100 * (1 - timber / both), "47")
-    prints(100 * (both - timber) / (both - timber + timber / 1.6), "59")
+    check_agrees(timber, 11e9 * 0.150 * 0.225**3 / 12)
+    check_agrees(both - timber, 210e9 * 0.010 * 0.200**3 / 12)
+    check_prints(timber / 1e6, "1.566")
+    check_prints((both - timber) / 1e6, "1.400")
+    check_prints(100 * (1 - timber / both), "47")
+    check_prints(100 * (both - timber) / (both - timber + timber / 1.6), "59")
 
 
 def test_s1_deflections() -> None:
     result = deflect(scenario("s1_flitch_beam"))["by_name"]
     Q, G, final = (down(result[n]) for n in ("Q", "G", "final"))
-    agrees(Q, flitch(4 * KN))
-    agrees(G, flitch(3 * KN))
-    agrees(final, flitch(3 * KN + 0.3 * 4 * KN, creep=0.6) + flitch(0.7 * 4 * KN))
-    prints(Q / MM, "9.32")
-    prints(G / MM, "6.99")
-    prints(final / MM, "18.7")
+    check_agrees(Q, flitch(4 * KN))
+    check_agrees(G, flitch(3 * KN))
+    check_agrees(final, flitch(3 * KN + 0.3 * 4 * KN, creep=0.6) + flitch(0.7 * 4 * KN))
+    check_prints(Q / MM, "9.32")
+    check_prints(G / MM, "6.99")
+    check_prints(final / MM, "18.7")
     (live,), (last,) = result["Q"]["checks"], result["final"]["checks"]
     assert live["ok"] and last["ok"]
-    prints(live["allowed"] / MM, "13.3")
-    prints(last["allowed"] / MM, "19.2")
+    check_prints(live["allowed"] / MM, "13.3")
+    check_prints(last["allowed"] / MM, "19.2")
     # printed 97 %: that is 18.7 of 19.2; unrounded it is 97.6 %
     assert last["used"] == pytest.approx(0.9759, abs=5e-5)
 
@@ -48,8 +48,8 @@ def test_s1_band() -> None:
     total = deflect(scenario("s1_flitch_beam"))["by_name"]["at once"]["deflection"]["down"]
     low, high = total["band"]["low"], total["band"]["high"]
     for found, E, printed in ((low, 7.4e9, "19.7"), (total["value"], 11e9, "16.3"), (high, 13.5e9, "14.6")):
-        agrees(found, flitch(7 * KN, E=E))
-        prints(found / MM, printed)
+        check_agrees(found, flitch(7 * KN, E=E))
+        check_prints(found / MM, printed)
 
 
 def test_s1_thicker_plate() -> None:
@@ -60,8 +60,8 @@ def test_s1_thicker_plate() -> None:
         ('["42.5 mm", "0 mm"]', '["43.5 mm", "0 mm"]'),
     )
     final = down(deflect(thicker)["by_name"]["final"])
-    agrees(final, flitch(4.2 * KN, (12, 210), creep=0.6) + flitch(2.8 * KN, (12, 210)))
-    prints(final / MM, "15.5")
+    check_agrees(final, flitch(4.2 * KN, (12, 210), creep=0.6) + flitch(2.8 * KN, (12, 210)))
+    check_prints(final / MM, "15.5")
 
 
 BEAM = i_section(0.4, 0.18, 0.0135, 0.0086, 210e9)
@@ -81,14 +81,14 @@ def test_s2_top_and_bottom() -> None:
     text = scenario("s2_runway_beam")
     result = deflect(text)["by_name"]
     wheels, more = down(result["wheels"]), down(result["with beam and rail"])
-    agrees(wheels, runway(BOTH_PLATES, 2.405))
-    agrees(more, runway(BOTH_PLATES, 2.405, 0.9 * KN))
-    prints(wheels / MM, "12.50")
-    prints(more / MM, "13.09")
+    check_agrees(wheels, runway(BOTH_PLATES, 2.405))
+    check_agrees(more, runway(BOTH_PLATES, 2.405, 0.9 * KN))
+    check_prints(wheels / MM, "12.50")
+    check_prints(more / MM, "13.09")
     assert result["wheels"]["deflection"]["down"]["at"] == pytest.approx(3.75, abs=1e-6)
-    agrees(section(text, "1 m")["EI_y"], strips(*BEAM)[2])
-    prints(section(text, "1 m")["EI_y"] / 210e9 * 1e8, "21876")
-    prints(section(text, "1 m")["EA"] / 210e9 * 1e6, "8068")
+    check_agrees(section(text, "1 m")["EI_y"], strips(*BEAM)[2])
+    check_prints(section(text, "1 m")["EI_y"] / 210e9 * 1e8, "21876")
+    check_prints(section(text, "1 m")["EA"] / 210e9 * 1e6, "8068")
     # 12.5003 mm at 2405 mm: "about 2405" is a shade short
     assert not result["wheels"]["checks"][0]["ok"]
     longer = changed(text, ("2547.5 mm", "2545 mm"), ("4952.5 mm", "4955 mm"))
@@ -98,8 +98,8 @@ def test_s2_top_and_bottom() -> None:
 def test_s2_bare() -> None:
     head, _, rest = scenario("s2_runway_beam").partition('[[part]]\nname = "top plate"')
     bare = down(deflect(head + rest[rest.index("[[support]]") :])["by_name"]["wheels"])
-    agrees(bare, runway((), 1.0))
-    prints(bare / MM, "17.2")
+    check_agrees(bare, runway((), 1.0))
+    check_prints(bare / MM, "17.2")
 
 
 def one_plate(width: str, depth: str, length: float) -> str:
@@ -112,12 +112,12 @@ def one_plate(width: str, depth: str, length: float) -> str:
 def test_s2_bottom_plate_alone() -> None:
     """(a) fails full length; (b) passes from about 3160 mm; both largest at mid-span, as the plate is centred."""
     full = down(deflect(one_plate("160 mm", "15 mm", 7500))["by_name"]["wheels"])
-    agrees(full, runway(((210e9, 0.16, -0.415, -0.4),), 7.5))
-    prints(full / MM, "12.58")
+    check_agrees(full, runway(((210e9, 0.16, -0.415, -0.4),), 7.5))
+    check_prints(full / MM, "12.58")
     thick = ((210e9, 0.2, -0.42, -0.4),)
     for length, passes in ((3150, False), (3170, True)):
         result = deflect(one_plate("200 mm", "20 mm", length))["by_name"]["wheels"]
-        agrees(down(result), runway(thick, length * MM))
+        check_agrees(down(result), runway(thick, length * MM))
         assert result["checks"][0]["ok"] is passes
 
 
@@ -142,17 +142,17 @@ def test_s11_deflections() -> None:
         (new, 1.25, True, "0.721"),
         (live, 1.0, True, "0.577"),
     ):
-        agrees(value, office(w, plated))
-        prints(value, printed)
-    prints(old + new, "1.46")
+        check_agrees(value, office(w, plated))
+        check_prints(value, printed)
+    check_prints(old + new, "1.46")
     assert after["by_name"]["live"]["checks"][0]["ok"]
-    prints(after["by_name"]["live"]["checks"][0]["allowed"] / INCH, "0.833")
-    prints(new * 2.15 / 1.25, "1.24")
+    check_prints(after["by_name"]["live"]["checks"][0]["allowed"] / INCH, "0.833")
+    check_prints(new * 2.15 / 1.25, "1.24")
     there, away = section(scenario("s11_after_welding"), "150 in"), section(scenario("s11_after_welding"), "1 ft")
-    prints(there["EI_y"] / (29000 * KSI) / INCH**4, "536")
-    prints(away["EI_y"] / (29000 * KSI) / INCH**4, "367")
-    prints(away["EA"] / (29000 * KSI) / INCH**2, "8.97")
-    prints(there["z_c"] / INCH + 15.9, "5.65")
+    check_prints(there["EI_y"] / (29000 * KSI) / INCH**4, "536")
+    check_prints(away["EI_y"] / (29000 * KSI) / INCH**4, "367")
+    check_prints(away["EA"] / (29000 * KSI) / INCH**2, "8.97")
+    check_prints(there["z_c"] / INCH + 15.9, "5.65")
 
 
 def test_s11_stresses() -> None:
@@ -160,17 +160,17 @@ def test_s11_stresses() -> None:
     (_, z, EI), (_, z0, EI0) = strips(*OFFICE, PLATE), strips(*OFFICE)
     M_old, M_new = 0.9 * 25**2 / 8 * 12, 1.25 * 25**2 / 8 * 12
     old = deflect(scenario("s11_before_welding"))["by_name"]["all"]["stress"][0]
-    agrees(old["max"]["value"] / KSI, 29000 * M_old * (z0 + 15.9) / EI0)
-    prints(old["max"]["value"] / KSI, "18.3")
+    check_agrees(old["max"]["value"] / KSI, 29000 * M_old * (z0 + 15.9) / EI0)
+    check_prints(old["max"]["value"] / KSI, "18.3")
     beam, plate = section(text, "150 in")["parts"]
     per_moment = M_new * 1000 * LBF * INCH / KSI
     bottom, top = (beam["stress_per_moment"][side] * per_moment for side in ("bottom", "top"))
-    agrees(bottom, 29000 * M_new * (z + 15.9) / EI)
-    agrees(top, -29000 * M_new * (0 - z) / EI)
-    prints(bottom, "12.3")
-    prints(bottom + old["max"]["value"] / KSI, "30.6")
-    prints(plate["stress_per_moment"]["bottom"] * per_moment, "13.4")
-    prints(-(top + old["min"]["value"] / KSI), "40.7")
+    check_agrees(bottom, 29000 * M_new * (z + 15.9) / EI)
+    check_agrees(top, -29000 * M_new * (0 - z) / EI)
+    check_prints(bottom, "12.3")
+    check_prints(bottom + old["max"]["value"] / KSI, "30.6")
+    check_prints(plate["stress_per_moment"]["bottom"] * per_moment, "13.4")
+    check_prints(-(top + old["min"]["value"] / KSI), "40.7")
 
 
 def test_s11_at_the_cut_off() -> None:
@@ -179,12 +179,12 @@ def test_s11_at_the_cut_off() -> None:
     bare = section(text, "4 ft", "--side", "left")["parts"][0]["stress_per_moment"]["bottom"]
     M, V = 2.15 * 4 * 21 / 2 * 12, 1.25 * (12.5 - 4)
     unit = 1000 * LBF * INCH / KSI
-    agrees(bare * M * unit, 29000 * M * 7.95 / EI0)
-    prints(bare * M * unit, "23.5")
+    check_agrees(bare * M * unit, 29000 * M * 7.95 / EI0)
+    check_prints(bare * M * unit, "23.5")
     plate = section(text, "4 ft", "--side", "right")["parts"][1]
     mean = (plate["stress_per_moment"]["top"] + plate["stress_per_moment"]["bottom"]) / 2 * unit * 3.5
-    agrees(mean, 29000 * 3.5 * (z + 16.15) / EI)
-    prints(mean * 1.25 * 4 * 21 / 2 * 12, "24.25")
-    prints(mean * V, "0.41")
+    check_agrees(mean, 29000 * 3.5 * (z + 16.15) / EI)
+    check_prints(mean * 1.25 * 4 * 21 / 2 * 12, "24.25")
+    check_prints(mean * V, "0.41")
     station = deflect(text, "4 ft")["by_name"]["new"]["stations"][0]
-    agrees(station["V"] / (1000 * LBF), V)
+    check_agrees(station["V"] / (1000 * LBF), V)

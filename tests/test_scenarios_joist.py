@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 import pytest
 from by_hand import integral, moment_simple, shear_simple, simple_span, skew_strips
-from commands import MM, MPA, agrees, changed, deflect, down, prints, scenario, section
+from commands import MM, MPA, changed, check_agrees, check_prints, deflect, down, scenario, section
 
 TOP = ((0.57, 0.63), (0.92, 0.98), (3.37, 3.43))
 Cut = dict[str, Any]
@@ -65,12 +65,12 @@ def test_s7_deflection(shear: bool, cut: bool, reach: int, printed: str | None) 
     text = text if shear else changed(text, ("shear = true", "shear = false"))
     result = deflect(text, "2.1 m")["by_name"]["Q"]
     worst = result["deflection"]["down"]
-    agrees(worst["value"], joist(worst["at"], 1600.0, shear, cut, reach))
+    check_agrees(worst["value"], joist(worst["at"], 1600.0, shear, cut, reach))
     for aside in (-1e-3, 1e-3):
         assert joist(worst["at"] + aside, 1600.0, shear, cut, reach) < worst["value"]
     middle = result["stations"][0]["deflection"]
-    agrees(middle, joist(2.1, 1600.0, shear, cut, reach))
-    prints((worst["value"] if printed else middle) / MM, printed or "13.1")
+    check_agrees(middle, joist(2.1, 1600.0, shear, cut, reach))
+    check_prints((worst["value"] if printed else middle) / MM, printed or "13.1")
     assert result["checks"][0]["ok"] is (not shear and not cut)
 
 
@@ -80,10 +80,10 @@ def test_s7_totals() -> None:
     as_cut = down(deflect(bending)["by_name"]["total"])
     thin = changed(intact(), ('depth = "225 mm"', 'depth = "190 mm"'), ("shear = true", "shear = false"))
     rough = down(deflect(thin)["by_name"]["total"])
-    agrees(rough, 5 * 1900 * 4.2**4 / (384 * 9.5e9 * 0.063 * 0.19**3 / 12))
-    prints(as_cut / MM, "15.0")
-    prints(rough / MM, "22.5")
-    prints(100 * (rough / as_cut - 1), "50")
+    check_agrees(rough, 5 * 1900 * 4.2**4 / (384 * 9.5e9 * 0.063 * 0.19**3 / 12))
+    check_prints(as_cut / MM, "15.0")
+    check_prints(rough / MM, "22.5")
+    check_prints(100 * (rough / as_cut - 1), "50")
 
 
 def test_s7_stresses() -> None:
@@ -93,15 +93,15 @@ def test_s7_stresses() -> None:
     text = scenario("s7_joist")
     worst = deflect(text)["by_name"]["total"]["stress"][0]["max"]
     assert worst["at"] == pytest.approx(2.3)
-    agrees(worst["value"] / MPA, stress(0.2, 2.3))
-    prints(worst["value"] / MPA, "9.9")
+    check_agrees(worst["value"] / MPA, stress(0.2, 2.3))
+    check_prints(worst["value"] / MPA, "9.9")
     whole = deflect(intact())["by_name"]["total"]["stress"][0]["max"]["value"] / MPA
-    agrees(whole, stress(0.225, 2.1))
-    prints(whole, "7.9")
+    check_agrees(whole, stress(0.225, 2.1))
+    check_prints(whole, "7.9")
     coefficient = section(text, "0.95 m")["parts"][0]["stress_per_moment"]["bottom"]
     at_notch = coefficient * 1900 * 0.95 * 3.25 / 2 / MPA
-    agrees(at_notch, stress(0.19, 0.95))
-    prints(at_notch, "7.7")
+    check_agrees(at_notch, stress(0.19, 0.95))
+    check_prints(at_notch, "7.7")
 
 
 SISTER = """
@@ -149,6 +149,6 @@ def test_s7_sistered() -> None:
     text = changed(scenario("s7_joist"), ("shear = true", "shear = false"))
     head, mark, rest = text.partition("[[notch]]")
     worst = deflect(head + SISTER + mark + rest)["by_name"]["Q"]["deflection"]["down"]
-    agrees(worst["value"], sistered(worst["at"], joined=True))
-    prints(sistered(2.14, joined=False) / MM, "7.7")
+    check_agrees(worst["value"], sistered(worst["at"], joined=True))
+    check_prints(sistered(2.14, joined=False) / MM, "7.7")
     assert worst["value"] < sistered(2.14, joined=False) < 1.0015 * worst["value"]

@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from commands import INCH, KN, MM, MPA, changed, deflect, down, prints
+from commands import INCH, KN, MM, MPA, changed, check_prints, deflect, down
 from worked_answers import ANSWERS
 from worked_run import answer
 
@@ -136,7 +136,7 @@ def test_gives_what_its_comment_says(name: str) -> None:
     answer = comment[comment.index("Expected:") :]
     values = EXPECTED[name](text)
     for value, said in values:
-        prints(value, said.split()[0])
+        check_prints(value, said.split()[0])
     stated = re.findall(r"\d[\d.]* (?:mm|in|N|kNm?|MPa|ksi|mrad|%)(?= |,|;|\.|$)", answer)
     assert stated == [said for _, said in in_order(answer, values)]
 
@@ -175,4 +175,4 @@ def test_from_start_to_answer_as_typed(tmp_path: Path) -> None:
     words = [*fishbelly, "deflect", job.name, "--json"]
     done = subprocess.run(words, capture_output=True, text=True, check=True, cwd=tmp_path)
     final = json.loads(done.stdout)["combinations"][1]
-    prints(down(final) / MM, "14.58")
+    check_prints(down(final) / MM, "14.58")

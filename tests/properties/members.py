@@ -198,7 +198,7 @@ def sizes_of(*tables: dict[tuple[float, str], dict[str, float]]) -> dict[str, fl
     }  # fmt: skip
 
 
-def same(
+def check_same(
     one: dict[tuple[float, str], dict[str, float]],
     other: dict[tuple[float, str], dict[str, float]],
     tolerance: float,

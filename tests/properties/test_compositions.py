@@ -8,7 +8,7 @@ import math
 import numpy as np
 import pytest
 import shapely
-from common import CLOSED, close
+from common import CLOSED, check_close
 from hypothesis import given
 from hypothesis import strategies as st
 from members import shapes
@@ -127,7 +127,7 @@ def test_what_is_left_of_all_adds_up_to_their_union(parts: list[Outline]) -> Non
     """The later part wins everywhere, so that nothing is counted twice in any order of the parts."""
     one, other = (Composition(tuple(p)).moments.total() for p in (parts, parts[::-1]))
     for name in ("area", "zz", "yy"):
-        close(getattr(one, name)[0], getattr(other, name)[0], 1e-11)
+        check_close(getattr(one, name)[0], getattr(other, name)[0], 1e-11)
 
 
 @given(st.integers(1, 40), st.integers(1, 40), st.integers(1, 60))

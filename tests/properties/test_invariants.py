@@ -15,6 +15,7 @@ from members import (
     KEYS,
     MATERIALS,
     SPAN,
+    check_same,
     forces,
     laws,
     loads,
@@ -23,7 +24,6 @@ from members import (
     part_lists,
     places,
     reversed_law,
-    same,
     shapes,
     sizes,
     support_lists,
@@ -76,7 +76,7 @@ def test_superposition(member: Member, other: Load, f: float, g: float) -> None:
     a, b, both = (table(member, combination=k) for k in range(3))
     sum_of = {p: {k: f * a[p][k] + g * b[p][k] for k in KEYS} for p in a}
     parts = [{p: {k: v * t[p][k] for k in KEYS} for p in t} for v, t in ((f, a), (g, b))]
-    same(both, sum_of, ROUND_OFF, weighed_with=parts)
+    check_same(both, sum_of, ROUND_OFF, weighed_with=parts)
 
 
 @given(members(count=1), places, places, st.booleans(), st.booleans())
@@ -127,7 +127,11 @@ def test_seen_from_the_other_end(member: Member) -> None:
     one, back = table(member), table(from_the_other_end(member))
     side = {"left": "right", "right": "left"}
     other = {(x, s): back[min(GRID, key=lambda g: abs(g - (SPAN - x))), side[s]] for x, s in one}
-    same(one, other, ROUND_OFF, lambda key, v: -v if key in ("V", "rotation", "slope") else v)
+    check_same(one, other, ROUND_OFF, lambda key, v: -v if key in ("V", "rotation", "slope") else v)
+
+
+FAR = 1e-8
+"""At 1 km coordinates carry 1e-13 m; of a wall of a few millimetres, twice weighed, that is up to a share of 1e-9."""
 
 
 @given(members(level="centroid", most=3), st.sampled_from([(0.0, 1000.0), (-500.0, 20.0), (3.0, -1000.0)]))
@@ -138,7 +142,10 @@ def test_moving_the_section_off_the_datum(member: Member, shift: tuple[float, fl
         place = Placing("position", position=(constant(y), constant(z)), anchor="middle")
         return replace(member, parts=(replace(member.parts[0], place=place), *member.parts[1:]))
 
-    same(table(at(0.0, 0.0)), table(at(*shift)), ROUND_OFF)
+    # an axial force bends by jumps of the centroid line alone, and of those a far datum costs 1e-13 m: what it
+    # bends is weighed against an everyday load beside it
+    loaded = replace(member, loads=(*member.loads, Distributed(((0.0, 1e3), (SPAN, 1e3)))))
+    check_same(table(at(0.0, 0.0)), table(at(*shift)), FAR, weighed_with=[table(loaded)])
 
 
 @given(members(most=3), places)
@@ -147,7 +154,7 @@ def test_cutting_the_last_part_in_two_along_x(member: Member, x: float) -> None:
     if not last.start < x < last.end or len(member.parts) == 1:
         return
     first, second = replace(last, end=x), replace(last, name="rest", start=x)
-    same(table(member), table(replace(member, parts=(*member.parts[:-1], first, second))), ROUND_OFF)
+    check_same(table(member), table(replace(member, parts=(*member.parts[:-1], first, second))), ROUND_OFF)
 
 
 @given(members(most=1), sizes, laws(0.4), st.sampled_from([0.3, 0.5, 0.9]))
@@ -157,7 +164,7 @@ def test_cutting_a_part_in_two_over_its_depth(member: Member, width: float, dept
     lower = part(
         "lower", "rectangle", SPAN, width=width, depth=depth.times(1.0 - share), place=Placing("under", "upper")
     )
-    same(table(replace(member, parts=(whole,))), table(replace(member, parts=(upper, lower))), ROUND_OFF)
+    check_same(table(replace(member, parts=(whole,))), table(replace(member, parts=(upper, lower))), ROUND_OFF)
 
 
 @given(members(most=3), places)
@@ -170,14 +177,14 @@ def test_cutting_the_first_part_in_two_over_its_width(member: Member, _: float) 
     one = replace(member, parts=(whole,))
     on_axis = Placing("position", position=(constant(-0.075), constant(0.0)), anchor="top")
     two = replace(member, parts=(replace(left, place=on_axis), right))
-    same(table(one), table(two), ROUND_OFF)
+    check_same(table(one), table(two), ROUND_OFF)
 
 
 @given(members(most=3), st.lists(st.floats(0.01, SPAN - 0.01), min_size=1, max_size=4))
 def test_naming_stations_moves_nothing(member: Member, more: list[float]) -> None:
     named = tuple(Station(f"s{k}", x) for k, x in enumerate(more))
     other = {k: v for k, v in table(replace(member, stations=named), GRID).items()}
-    same(table(member), other, ROUND_OFF)
+    check_same(table(member), other, ROUND_OFF)
 
 
 @given(members(most=2, count=1), forces, places, st.sampled_from([0.25, 0.5]))
@@ -190,7 +197,7 @@ def test_splitting_a_load(member: Member, q: float, x: float, share: float) -> N
     )
     one = table(replace(member, loads=(whole,)))
     for pieces in (along, shares):
-        same(one, table(replace(member, loads=pieces)), ROUND_OFF)
+        check_same(one, table(replace(member, loads=pieces)), ROUND_OFF)
 
 
 @given(st.data())
@@ -205,7 +212,7 @@ def test_order_of_parts_that_lie_apart(data: st.DataObject) -> None:
     acting = (data.draw(loads()), data.draw(loads()))
     order = data.draw(st.permutations(range(3)))
     make = lambda these: Member(SPAN, tuple(these), MATERIALS, supports=supports, hinges=hinges, loads=acting)
-    same(table(make(parts)), table(make([parts[k] for k in order])), ROUND_OFF)
+    check_same(table(make(parts)), table(make([parts[k] for k in order])), ROUND_OFF)
 
 
 @given(members(most=3), st.sampled_from([0.01, 3.0, 1e4]))
@@ -215,7 +222,7 @@ def test_scaling_every_modulus(member: Member, factor: float) -> None:
     stiff = tuple(replace(m, E=m.E * factor, G=None if m.G is None else m.G * factor) for m in member.materials)
     moved = ("rotation", "slope", "deflection", "across")
     other = table(replace(member, materials=stiff))
-    same(table(member), other, ROUND_OFF, lambda key, v: v * factor if key in moved else v)
+    check_same(table(member), other, ROUND_OFF, lambda key, v: v * factor if key in moved else v)
 
 
 @given(part_lists(3), loads(across=False, along=False))

@@ -5,7 +5,7 @@ from __future__ import annotations
 
 from hypothesis import given
 from hypothesis import strategies as st
-from members import GRID, same, table
+from members import GRID, check_same, table
 
 from fishbelly.cli.job_file import read_job
 
@@ -105,4 +105,4 @@ def test_millimetres_or_inches(width: int, deep: int, thin: int, span: int, load
     one, other = (read_job("-", text(*numbers)).member for text in (metric, us))
     places = tuple(x / GRID[-1] * one.length for x in GRID)
     # decimal fractions of a unit are rounded once on the way: cubes of depths carry three of them
-    same(table(one, places), table(other, places), 1e-12)
+    check_same(table(one, places), table(other, places), 1e-12)
