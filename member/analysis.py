@@ -19,6 +19,7 @@ from fishbelly.member.profile import Profile
 from fishbelly.member.response import Response, free_of, respond
 from fishbelly.member.sampling import build_profile
 from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.spans import spans
 
 Array = NDArray[np.float64]
 
@@ -214,12 +215,18 @@ class Analysis:
         return total
 
     def round_off(self, total: Response) -> float:
-        """Deflection below which a combination's is nothing but round-off [m]."""
+        """Deflection below which a combination's is nothing but round-off [m].
+
+        Moments are good to 1e-12, and an axial force meets a centroid whose coordinates have fewer digits the
+        farther it lies from the datum.
+        """
         s = self.profile.stiffness(self.moduli(ModuliKey()))
-        k = int(np.argmax(s.EI_y))
-        size = float(np.sqrt(s.EI_y[k] / s.EA[k]))
-        moment = float(np.abs(total.M).max()) + size * float(np.abs(total.N).max())
-        return 1e-12 * moment / float(s.EI_y[k]) * self.member.length**2
+        stiff = float(np.nanmedian(np.minimum(s.EI_y, s.EI_z)))
+        size, far = float(np.sqrt(stiff / np.nanmedian(s.EA))), float(np.abs(self.frame.line).max())
+        arm = 1e-12 * size + 16.0 * float(np.finfo(float).eps) * far
+        moment = 1e-12 * float(np.abs(total.M).max()) + arm * float(np.abs(total.N).max())
+        longest = max((span.length for span in spans(self.member)), default=self.member.length)
+        return moment / stiff * longest**2
 
     def _patterns(self, combination: Combination) -> tuple[NDArray[np.bool_], ...]:
         """Atoms of `pattern` loads, those of one span and case together."""
