@@ -221,8 +221,11 @@ class Analysis:
         farther it lies from the datum.
         """
         s = self.profile.stiffness(self.moduli(ModuliKey()))
-        stiff = float(np.nanmedian(np.minimum(s.EI_y, s.EI_z)))
-        size, far = float(np.sqrt(stiff / np.nanmedian(s.EA))), float(np.abs(self.frame.line).max())
+        panels, row = self.profile.panels, self.profile.row
+        stiff, axial = (
+            float(panels.integrate(v[row])[1].sum()) / self.member.length for v in (np.minimum(s.EI_y, s.EI_z), s.EA)
+        )
+        size, far = float(np.sqrt(stiff / axial)), float(np.abs(self.frame.line).max())
         arm = 1e-12 * size + 16.0 * float(np.finfo(float).eps) * far
         moment = 1e-12 * float(np.abs(total.M).max()) + arm * float(np.abs(total.N).max())
         longest = max((span.length for span in spans(self.member)), default=self.member.length)
