@@ -131,7 +131,8 @@ def test_seen_from_the_other_end(member: Member) -> None:
 
 
 FAR = 1e-8
-"""At 1 km coordinates carry 1e-13 m; of a wall of a few millimetres, twice weighed, that is up to a share of 1e-9."""
+"""At 1 km coordinates carry 1e-13 m. Draws differed by up to 1.2e-9, above the round-off of other tests; the cause
+is taken to be that loss in the outlines, and ten times ROUND_OFF leaves room for draws not seen."""
 
 
 @given(members(level="centroid", most=3), st.sampled_from([(0.0, 1000.0), (-500.0, 20.0), (3.0, -1000.0)]))
