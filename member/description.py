@@ -10,8 +10,30 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from types import MappingProxyType
 
+from fishbelly.member.fixings import EffectiveWidth, Joined
 from fishbelly.member.laws import Law, constant
 from fishbelly.member.loads import Load
+from fishbelly.member.questions import Combination, Limit, Stage, Station
+
+__all__ = [
+    "Combination",
+    "EffectiveWidth",
+    "Haunch",
+    "Hinge",
+    "Joined",
+    "Limit",
+    "Material",
+    "Member",
+    "Notch",
+    "Opening",
+    "Part",
+    "Placing",
+    "Shape",
+    "Stage",
+    "Station",
+    "Strength",
+    "Support",
+]
 
 
 @dataclass(frozen=True)
@@ -49,6 +71,8 @@ class Material:
         Stress above which an elastic result no longer holds [Pa].
     cracking : float, optional
         Tensile stress at which it cracks [Pa].
+    no_tension : bool
+        It carries no tension at all.
     """
 
     name: str
@@ -62,6 +86,7 @@ class Material:
     strength: Strength | None = None
     yield_strength: float | None = None
     cracking: float | None = None
+    no_tension: bool = False
 
     @property
     def shear_modulus(self) -> float | None:
@@ -153,6 +178,12 @@ class Part:
         Rotation, anticlockwise [rad].
     mirror : bool
         Flip left-right before turning.
+    stage, until : str, optional
+        First stage in which it works (default the first), and the stage at whose start it goes.
+    joined : Joined, optional
+        How it is fixed to its host; default rigidly.
+    effective : EffectiveWidth, optional
+        Rule by which only part of its width counts.
     """
 
     name: str
@@ -166,6 +197,10 @@ class Part:
     pair: bool = False
     turn: float = 0.0
     mirror: bool = False
+    stage: str | None = None
+    until: str | None = None
+    joined: Joined | None = None
+    effective: EffectiveWidth | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -232,6 +267,10 @@ class Support:
         Load case of the settlement.
     only_up : bool
         A bearing that pushes up only and cannot pull.
+    stage, until : str, optional
+        First stage in which it holds, and the stage at whose start it goes.
+    slip_free : bool
+        A support that holds rotation leaves the slip of layers free all the same.
     """
 
     name: str
@@ -245,6 +284,9 @@ class Support:
     sinks: float = 0.0
     case: str = "settlement"
     only_up: bool = False
+    stage: str | None = None
+    until: str | None = None
+    slip_free: bool = False
 
 
 @dataclass(frozen=True)
@@ -253,78 +295,8 @@ class Hinge:
 
     at: float
     name: str = ""
-
-
-@dataclass(frozen=True)
-class Station:
-    """A place whose results are wanted by name [m]."""
-
-    name: str
-    at: float
-
-
-@dataclass(frozen=True)
-class Combination:
-    """Load cases with factors; `sustained` is the share of each factor that acts on long-term moduli.
-
-    `implied`: no combination was given, and this one takes every case with factor 1.
-    """
-
-    name: str
-    factors: Mapping[str, float]
-    sustained: Mapping[str, float] = field(default_factory=dict)
-    purpose: str = "deflection"
-    implied: bool = False
-
-
-@dataclass(frozen=True)
-class Limit:
-    """What a deflection may be.
-
-    Parameters
-    ----------
-    name : str
-        Name in the checks.
-    span_over : float, optional
-        Allowed is the span over this number.
-    absolute : float, optional
-        Allowed deflection [m].
-    slope : float, optional
-        Allowed rotation [rad].
-    at : str, optional
-        A named station, instead of the spans.
-    of : {"down", "up", "across", "resultant"}
-        Which deflection.
-    net : bool
-        The camber is subtracted.
-    combination : str, optional
-        Only this combination; default every one for deflection.
-    start, end : float, optional
-        Only places between these [m].
-    spans : tuple of (int or str), optional
-        Only these spans, numbered from 1; overhangs are "left" and "right".
-    cantilever_over : float, optional
-        For an overhang: allowed is its own length over this number.
-    cap : float, optional
-        Beside `span_over` or `cantilever_over`: never more than this is allowed [m].
-    source : str
-        Where the limit is published, and what to know about it; empty for one's own.
-    """
-
-    name: str
-    span_over: float | None = None
-    absolute: float | None = None
-    slope: float | None = None
-    at: str | None = None
-    of: str = "down"
-    net: bool = False
-    combination: str | None = None
-    start: float | None = None
-    end: float | None = None
-    spans: tuple[int | str, ...] | None = None
-    cantilever_over: float | None = None
-    cap: float | None = None
-    source: str = ""
+    stage: str | None = None
+    until: str | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -353,6 +325,14 @@ class Member:
         Height of a parabola over each span, or ordinates along x, upwards [m].
     title, note : str
         Free text.
+    stages : tuple of Stage
+        In order of time; none: everything at once.
+    inclined : {"along", "cut"}
+        How flanges and plates that follow a sloping outline count.
+    tension_stiffening : str, optional
+        Rule for concrete between cracks.
+    cracks : {"history", "by combination"}
+        Whether a place stays cracked once any combination for deflection has cracked it.
     """
 
     length: float
@@ -372,6 +352,10 @@ class Member:
     camber: float | Law | None = None
     title: str = ""
     note: str = ""
+    stages: tuple[Stage, ...] = ()
+    inclined: str = "along"
+    tension_stiffening: str | None = None
+    cracks: str = "history"
 
     def __post_init__(self) -> None:
         from fishbelly.member.checking import check
