@@ -14,6 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.description import Member
+from fishbelly.member.forces import Forces
 from fishbelly.member.free_strain import free_plane, resultants
 from fishbelly.member.laws import straight
 from fishbelly.member.loads import (
@@ -30,6 +31,7 @@ from fishbelly.member.loads import (
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.profile import Profile
 from fishbelly.member.spans import Span, spans
+from fishbelly.member.stage_view import StageView, stage_views
 
 Array = NDArray[np.float64]
 
@@ -87,20 +89,24 @@ class Frame:
         Level c of the analysis line in both planes [m].
     centre : ndarray, shape (2, K, n)
         E-weighted centroid, short-term, from the analysis line [m].
+    view : StageView, optional
+        The stage it is of, where the member has stages.
     """
 
     profile: Profile
     short: Moduli
     line: Array
     centre: Array
+    view: StageView | None = None
 
     @classmethod
-    def of(cls, profile: Profile, short: Moduli) -> Frame:
-        """Make the frame: the analysis line is the mean of the centroid line."""
+    def of(cls, profile: Profile, short: Moduli, line: Array | None = None, view: StageView | None = None) -> Frame:
+        """Make the frame: the analysis line is the mean of the centroid line unless one is given."""
         s = profile.stiffness(short)
         c = np.stack((s.z_c, -s.y_c))[:, profile.row]
-        line = 0.5 * (c.reshape(2, -1).min(axis=1) + c.reshape(2, -1).max(axis=1))
-        return cls(profile, short, line, c - line[:, None, None])
+        if line is None:
+            line = 0.5 * (c.reshape(2, -1).min(axis=1) + c.reshape(2, -1).max(axis=1))
+        return cls(profile, short, line, c - line[:, None, None], view)
 
     def centroid(self, x: float) -> Array:
         """Centroid at x from the analysis line, right of a break (left of it at the far end), shape (2,)."""
@@ -247,16 +253,31 @@ def _axial(frame: Frame, a: Actions, at: float, value: float, level: Array) -> N
     a.C[:, k] += value * level
 
 
+def weighed_parts(member: Member, load: SelfWeight, view: StageView | None) -> tuple[str, ...]:
+    """Parts that a self weight counts: those it names, else those present that no earlier stage has weighed."""
+    if load.parts is not None:
+        return load.parts
+    if view is None:
+        return tuple(p.name for p in member.parts)
+    before: set[str] = set()
+    for earlier in stage_views(member)[: view.index]:
+        for other in member.loads:
+            if isinstance(other, SelfWeight) and other.case in earlier.cases:
+                before.update(other.parts or (member.parts[i].name for i in earlier.parts))
+    return tuple(member.parts[i].name for i in sorted(view.parts) if member.parts[i].name not in before)
+
+
 def _self_weight(frame: Frame, a: Actions, load: SelfWeight) -> None:
     member, profile = frame.profile.member, frame.profile
-    wanted = [p.material is not None and (load.parts is None or p.name in load.parts) for p in member.parts]
+    weighed = weighed_parts(member, load, frame.view)
+    wanted = [p.material is not None and p.name in weighed for p in member.parts]
     density = np.array(
         [
             member.material(p.material).density or 0.0 if w and p.material else 0.0
             for p, w in zip(member.parts, wanted, strict=True)
         ]
     )
-    mass, y, z = (v[profile.row] for v in profile.mass(density))
+    mass, y, z = (v[profile.row] for v in profile.mass(density, frozenset(weighed)))
     weight = load.factor * GRAVITY * mass
     a.q[0] += weight * np.cos(member.rises)
     if member.rises:
@@ -266,16 +287,8 @@ def _self_weight(frame: Frame, a: Actions, load: SelfWeight) -> None:
         a.m[1] += along * (-y - frame.line[1])
 
 
-def free_forces(frame: Frame, loads: Sequence[Load], moduli: Moduli) -> tuple[Array, Array]:
-    """Forces that hold free strain back, about the analysis line, at the grid points.
-
-    Returns
-    -------
-    N : ndarray, shape (K, n)
-        Axial force [N].
-    M : ndarray, shape (2, K, n)
-        Moments in both planes [N m].
-    """
+def free_forces(frame: Frame, loads: Sequence[Load], moduli: Moduli) -> Forces:
+    """Forces that hold free strain back, about the analysis line, at the grid points."""
     profile = frame.profile
     total = np.zeros((3, profile.rows))
     for group in profile.groups:
@@ -285,4 +298,35 @@ def free_forces(frame: Frame, loads: Sequence[Load], moduli: Moduli) -> tuple[Ar
             if plane is not None:
                 total[:, group.rows] += resultants(plane, group, E)
     N, M_y, M_z = total[:, profile.row]
-    return N, np.stack((M_y + N * frame.line[0], -M_z + N * frame.line[1]))
+    M = np.stack((M_y + N * frame.line[0], -M_z + N * frame.line[1]))
+    return Forces(N, np.zeros_like(M), M)
+
+
+def planes_of(frame: Frame, loads: Sequence[Sequence[Load]]) -> dict[int, Array]:
+    """Free strain of each part that several sets of loads give, as planes about the analysis line.
+
+    Parameters
+    ----------
+    frame : Frame
+        The grid.
+    loads : sequence of sequence of Load
+        A sets of loads.
+
+    Returns
+    -------
+    dict
+        By number of the part: v0 + v1 c0 + v2 c1 at the grid points, shape (3, A, K, n); parts without left out.
+    """
+    profile = frame.profile
+    found: dict[int, Array] = {}
+    for a, each in enumerate(loads):
+        for group in profile.groups if each else ():
+            for load in each:
+                plane = free_plane(profile, load, group, group.placed.x, frame.short)
+                if plane is None:
+                    continue
+                values = np.stack((plane.e + plane.a * frame.line[0] - plane.b * frame.line[1], plane.a, -plane.b))
+                for k, part in enumerate(group.placed.index):
+                    rows = found.setdefault(part, np.zeros((3, len(loads), profile.rows)))
+                    rows[:, a, group.rows] += values[:, k]
+    return {part: rows[:, :, profile.row] for part, rows in found.items()}

@@ -3,23 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.actions import Actions, Atom, Frame, actions, atoms
+from fishbelly.member.actions import Actions, Atom, Frame, actions, atoms, planes_of
 from fishbelly.member.apex import pinched_at
 from fishbelly.member.description import Combination, Member
 from fishbelly.member.faults import CannotCompute, NoStiffness
+from fishbelly.member.forces import Forces
 from fishbelly.member.moduli import Moduli, has_band, moduli
 from fishbelly.member.nodes import layout
 from fishbelly.member.profile import Profile
-from fishbelly.member.response import Response, free_of, respond
-from fishbelly.member.sampling import build_profile
-from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.response import Response, free_of
+from fishbelly.member.sampling import build_profiles
 from fishbelly.member.spans import spans
+from fishbelly.member.stage_view import StageView, stage_views
+from fishbelly.member.staging import Planes, Setting, Step, life, summed
 
 Array = NDArray[np.float64]
 
@@ -29,11 +31,17 @@ MOST_CHANGES = 60
 
 @dataclass(frozen=True)
 class ModuliKey:
-    """Which set of moduli: band, long-term or not, and parts with a creep factor of their own."""
+    """Which set of moduli: band, long-term or not, and parts with a creep factor of their own.
+
+    `stage`: of which stage, the last where it says none; `aged`: divided by 1 + chi phi ("aged") or by 1 + phi
+    ("softened") of the creep that runs off in the stage.
+    """
 
     band: str = "nominal"
     long_term: bool = False
     own: tuple[tuple[str, float], ...] = ()
+    stage: int | None = None
+    aged: str = ""
 
 
 @dataclass(frozen=True, eq=False)
@@ -60,6 +68,8 @@ class Combined:
         Masks of atoms that may be on or off together with nothing else, each shape (A,).
     total : Response
         Sum of everything, no axis of atoms.
+    upto : int, optional
+        Number of the stage at whose end it is; the last where none is given.
     """
 
     combination: Combination
@@ -67,6 +77,7 @@ class Combined:
     lifted: frozenset[str]
     patterns: tuple[NDArray[np.bool_], ...]
     total: Response
+    upto: int | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -76,22 +87,26 @@ class Analysis:
     Parameters
     ----------
     profile : Profile
-        The sampled member.
+        The sampled member, in its last stage.
+    earlier : tuple of Profile
+        The member in the stages before, on the same grid.
     """
 
     profile: Profile
+    earlier: tuple[Profile, ...] = ()
     _responses: dict[object, Response] = field(default_factory=dict, repr=False)
+    _histories: dict[object, tuple[Step, ...]] = field(default_factory=dict, repr=False)
     _moduli: dict[ModuliKey, Moduli] = field(default_factory=dict, repr=False)
     _combined: dict[tuple[object, ...], Combined] = field(default_factory=dict, repr=False)
 
     @classmethod
     def of(cls, member: Member, more: Iterable[float] = ()) -> Analysis:
         """Sample a member; `more` are further borders of the grid [m]."""
-        profile = build_profile(member, tuple(more))
-        pinched = pinched_at(profile)
+        *earlier, last = build_profiles(member, tuple(more))
+        pinched = pinched_at(last)
         if pinched is not None:
             raise NoStiffness(pinched, "the section runs out to nothing inside the member")
-        return cls(profile)
+        return cls(last, tuple(earlier))
 
     @property
     def member(self) -> Member:
@@ -99,9 +114,21 @@ class Analysis:
         return self.profile.member
 
     @cached_property
+    def views(self) -> tuple[StageView, ...]:
+        """Stages in order of time; one for a member without stages."""
+        return stage_views(self.member)
+
+    @cached_property
     def frame(self) -> Frame:
-        """The grid with its analysis line."""
-        return Frame.of(self.profile, self.moduli(ModuliKey()))
+        """The grid with its analysis line, in the last stage."""
+        view = self.views[-1]
+        return Frame.of(self.profile, self.moduli(ModuliKey()), view=None if view.stage is None else view)
+
+    @cached_property
+    def frames(self) -> tuple[Frame, ...]:
+        """The grid in every stage, about one analysis line."""
+        earlier = zip(self.earlier, self.views[:-1], strict=True)
+        return (*(Frame.of(p, p.short, self.frame.line, view) for p, view in earlier), self.frame)
 
     @cached_property
     def atoms(self) -> tuple[Atom, ...]:
@@ -111,38 +138,53 @@ class Analysis:
     @cached_property
     def loads(self) -> list[Actions]:
         """What each atom puts on the grid."""
-        return [actions(self.frame, a) for a in self.atoms]
+        return [actions(self.frames[self.stage_of(a)], a) for a in self.atoms]
+
+    def stage_of(self, atom: Atom) -> int:
+        """Number of the stage in which a load arrives."""
+        return next((v.index for v in self.views if atom.case in v.cases), len(self.views) - 1)
 
     def moduli(self, key: ModuliKey) -> Moduli:
         """Return a set of moduli, always the same object for the same key."""
         if key == ModuliKey():
             return self.profile.short
         if key not in self._moduli:
-            self._moduli[key] = moduli(self.member, key.band, key.long_term, dict(key.own))
+            stage = self.views[-1 if key.stage is None else key.stage].stage
+            aged = {}
+            if stage is not None and key.aged:
+                share = stage.ageing if key.aged == "aged" else 1.0
+                aged = {name: 1.0 + share * phi for name, phi in stage.creep.items()}
+            self._moduli[key] = moduli(self.member, key.band, key.long_term, dict(key.own), stage, aged)
         return self._moduli[key]
 
     @cached_property
     def planes(self) -> int:
         """2 where the member also bends sideways, else 1."""
+        return max(self._planes_of(frame) for frame in self.frames)
+
+    def _planes_of(self, frame: Frame) -> int:
+        """2 where the member also bends sideways in one stage, else 1."""
+        stage = None if frame.view is None else frame.view.index
         bands = ("nominal", "low", "high") if has_band(self.member) else ("nominal",)
         keys = {s.key for c in self.member.combinations for b in bands for s in self.shares(c, b)} | {ModuliKey()}
+        keys = {replace(key, stage=stage) for key in keys}
         if any(np.any(v) for a in self.loads for v in (a.q[1], a.P[1])):
             return 2
         pushed = any(np.any(a.n) or np.any(a.F) for a in self.loads)
         for key in keys:
-            s = self.profile.stiffness(self.moduli(key))
+            s = frame.profile.stiffness(self.moduli(key))
             size = np.sqrt((s.EI_y + s.EI_z) / s.EA)
             skew = np.any(np.abs(s.EI_yz) > 1e-12 * np.sqrt(s.EI_y * s.EI_z))
-            aside = np.abs(-s.y_c - self.frame.line[1]) > 1e-11 * size
+            aside = np.abs(-s.y_c - frame.line[1]) > 1e-11 * size
             if skew:
                 return 2
-            free = free_of(self.frame, self.loads, self.moduli(key))
+            row = frame.profile.row
             turned = any(
                 np.any(
-                    np.abs(m[1] + n * (-s.y_c[self.profile.row] - self.frame.line[1]))
-                    > 1e-11 * (np.abs(n) * size[self.profile.row] + np.abs(m[0]))
+                    np.abs(f.M[1] + f.N * (-s.y_c[row] - frame.line[1]))
+                    > 1e-11 * (np.abs(f.N) * size[row] + np.abs(f.M[0]))
                 )
-                for n, m in free
+                for f in free_of(frame, self.loads, self.moduli(key))
             )
             if turned or (np.any(aside) and (pushed or len(self._holding) > 1)):
                 return 2
@@ -154,16 +196,58 @@ class Analysis:
     def _holding(self) -> list[str]:
         return [s.name for s in self.member.supports if s.along > 0.0]
 
-    def responses(self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None) -> Response:
-        """Responses to every atom on one set of moduli."""
+    def responses(
+        self,
+        key: ModuliKey,
+        lifted: frozenset[str] = frozenset(),
+        shear: bool | None = None,
+        upto: int | None = None,
+    ) -> Response:
+        """Responses to every atom on one set of moduli, at the end of a stage (default the last)."""
+        name = (key, lifted, shear, upto)
+        if name not in self._responses:
+            self._responses[name] = summed(self.history(key, lifted, shear), upto)
+        return self._responses[name]
+
+    def history(
+        self, key: ModuliKey, lifted: frozenset[str] = frozenset(), shear: bool | None = None
+    ) -> tuple[Step, ...]:
+        """What every atom does, step by step, on one set of moduli; computed once."""
         with_shear = self.member.shear if shear is None else shear
         name = (key, lifted, with_shear)
-        if name not in self._responses:
-            law = ElasticLaw.of(self.frame, self.moduli(key), self.planes, with_shear)
-            free = free_of(self.frame, self.loads, self.moduli(key))
-            place = layout(self.frame, lifted)
-            self._responses[name] = respond(self.frame, place, law, self.atoms, self.loads, free, self.planes)
-        return self._responses[name]
+        if name not in self._histories:
+            settings = [self._setting(k, key, lifted) for k in range(len(self.views))]
+            self._histories[name] = life(
+                settings, self.atoms, self.loads, self._free, self._free_planes, self.planes, with_shear
+            )
+        return self._histories[name]
+
+    def _setting(self, k: int, key: ModuliKey, lifted: frozenset[str]) -> Setting:
+        """What a stage offers to loads on one set of moduli."""
+        view, frame = self.views[k], self.frames[k]
+        if view.stage is None:
+            return Setting(view, frame, layout(frame, lifted), self.moduli(key), key.long_term)
+        lasting = key.long_term or view.stage.long_term
+        place = layout(frame, lifted | view.gone, view.hinges, self._homes)
+        mine = self.moduli(replace(key, stage=k, long_term=lasting))
+        aged = softened = None
+        if view.stage.creep:
+            aged, softened = (self.moduli(replace(key, stage=k, aged=how)) for how in ("aged", "softened"))
+        return Setting(view, frame, place, mine, lasting, aged, softened)
+
+    @cached_property
+    def _homes(self) -> dict[str, Frame]:
+        """The stage in which each support first holds, by name."""
+        return {
+            s.name: next(f for f, v in zip(self.frames, self.views, strict=True) if s.name not in v.gone)
+            for s in self.member.supports
+        }
+
+    def _free(self, s: Setting, which: Sequence[int]) -> list[Forces]:
+        return free_of(s.frame, [self.loads[k] for k in which], s.moduli)
+
+    def _free_planes(self, s: Setting, which: Sequence[int]) -> Planes:
+        return planes_of(s.frame, [self.loads[k].free for k in which])
 
     def shares(self, combination: Combination, band: str = "nominal") -> tuple[Share, ...]:
         """What of a combination acts on which moduli.
@@ -181,21 +265,30 @@ class Analysis:
                 found.append(Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0)))
         return tuple(found)
 
-    def combine(self, combination: Combination, band: str = "nominal") -> Combined:
-        """Response of a combination, bearings that cannot pull lifted off where they would; computed once."""
-        key = (tuple(combination.factors.items()), tuple(combination.sustained.items()), combination.name, band)
+    def combine(self, combination: Combination, band: str = "nominal", upto: int | None = None) -> Combined:
+        """Response of a combination, bearings that cannot pull lifted off where they would; computed once.
+
+        `upto`: number of the stage at whose end; default the last.
+        """
+        named = (tuple(combination.factors.items()), tuple(combination.sustained.items()), combination.name)
+        key = (*named, band, upto)
         if key not in self._combined:
-            self._combined[key] = self._combine(combination, band)
+            self._combined[key] = self._combine(combination, band, upto)
         return self._combined[key]
 
-    def _combine(self, combination: Combination, band: str) -> Combined:
+    def _combine(self, combination: Combination, band: str, upto: int | None) -> Combined:
         shares = self.shares(combination, band)
         patterns = self._patterns(combination)
         if any(s.only_up for s in self.member.supports):
+            if len(self.views) > 1:
+                raise CannotCompute(
+                    "stages together with bearings that cannot pull are not built: leave out one of the two"
+                )
             lifted = self.bearing(shares)
         else:
             lifted = frozenset[str]()
-        return Combined(combination, shares, lifted, patterns, self.superposed(shares, lifted))
+        total = self.superposed(shares, lifted, upto=upto)
+        return Combined(combination, shares, lifted, patterns, total, upto)
 
     def superposed(
         self,
@@ -203,12 +296,13 @@ class Analysis:
         lifted: frozenset[str],
         shear: bool | None = None,
         off: NDArray[np.bool_] | None = None,
+        upto: int | None = None,
     ) -> Response:
-        """Sum of shares; atoms in `off` left out."""
+        """Sum of shares at the end of a stage; atoms in `off` left out."""
         parts = []
         for share in shares:
             factors = share.factors if off is None else np.where(off, 0.0, share.factors)
-            parts.append(self.responses(share.key, lifted, shear).combined(factors))
+            parts.append(self.responses(share.key, lifted, shear, upto).combined(factors))
         total = parts[0]
         for part in parts[1:]:
             total = total + part

@@ -14,8 +14,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Frame
-from fishbelly.member.equilibrium import Determinate, Forces, couple_at, determinate
+from fishbelly.member.equilibrium import Determinate, couple_at, determinate
 from fishbelly.member.faults import Mechanism
+from fishbelly.member.forces import Forces
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.section_law import ElasticLaw, Strains
 from fishbelly.member.unknowns import (
@@ -184,7 +185,7 @@ def solve(
     r: Redundants,
     law: ElasticLaw,
     loads: list[Actions],
-    free: list[tuple[Array, Array]],
+    free: list[Forces],
     sinks: list[dict[Dof, Array]],
     planes: int,
 ) -> list[Solution]:
@@ -196,8 +197,8 @@ def solve(
         Grid, unknowns and section law.
     loads : list of Actions
         One for each atom.
-    free : list of (N, M)
-        Forces that hold free strain back, for each atom, shapes (K, n) and (2, K, n).
+    free : list of Forces
+        Forces that hold free strain back, for each atom.
     sinks : list of dict
         For each atom: movements of supports, as [spring stiffness times settlement, rigid settlement].
     planes : int
@@ -224,11 +225,11 @@ def solve(
     ]
 
 
-def _gaps(frame: Frame, r: Redundants, law: ElasticLaw, forces: Forces, free: tuple[Array, Array]) -> Array:
+def _gaps(frame: Frame, r: Redundants, law: ElasticLaw, forces: Forces, free: Forces) -> Array:
     """Deformation of each unknown end force under the loads on the released member."""
     if not r.states:
         return np.zeros(0)
-    strains = law.strains(Forces(forces.N + free[0], forces.V, forces.M + free[1]))
+    strains = law.strains(forces.plus(free))
     result = np.zeros(len(r.states))
     for slot in {SLOT[s.name] for s in r.states}:
         one = Forces(r.units.N[slot], r.units.V[:, slot], r.units.M[:, slot])

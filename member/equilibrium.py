@@ -14,23 +14,11 @@ from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Frame
 from fishbelly.member.faults import Mechanism
+from fishbelly.member.forces import Forces
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.panels import Panels
 
 Array = NDArray[np.float64]
-
-
-@dataclass(frozen=True, eq=False)
-class Forces:
-    """Forces at the grid points: N (K, n), V and M (2, K, n), M about the analysis line."""
-
-    N: Array
-    V: Array
-    M: Array
-
-    def plus(self, other: Forces, factor: float = 1.0) -> Forces:
-        """Return the sum with another set, multiplied by a factor."""
-        return Forces(self.N + factor * other.N, self.V + factor * other.V, self.M + factor * other.M)
 
 
 @dataclass(frozen=True, eq=False)

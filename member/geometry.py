@@ -71,9 +71,19 @@ class _Stand:
 
 @dataclass(frozen=True, eq=False)
 class Geometry:
-    """Places the parts of a member at any x."""
+    """Places the parts of a member at any x.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    works : frozenset of int, optional
+        Parts that work, cuts counted, where others have not come yet or have gone; these still carry what leans
+        on them. Default all.
+    """
 
     member: Member
+    works: frozenset[int] | None = None
 
     @cached_property
     def tolerance(self) -> float:
@@ -85,10 +95,14 @@ class Geometry:
         tiny = 2.0 * self.tolerance
         return start <= x + tiny < end if side == "right" else start < x - tiny <= end
 
-    def present(self, x: float, side: str = "right") -> tuple[tuple[int, ...], tuple[int, ...], tuple[int, ...]]:
-        """Indices of the parts, notches and openings that are there at x; ~i for a notch within its reach alone."""
+    def present(self, x: float, side: str = "right") -> tuple[tuple[int, ...], ...]:
+        """Indices of the parts, notches and openings that are there at x; ~i for a notch within its reach alone.
+
+        The fourth entry has the parts that stand there whether or not they work: others may lean on them.
+        """
         m = self.member
-        parts = tuple(i for i, p in enumerate(m.parts) if self.is_there(p.start, p.end, x, side))
+        standing = tuple(i for i, p in enumerate(m.parts) if self.is_there(p.start, p.end, x, side))
+        parts = standing if self.works is None else tuple(i for i in standing if i in self.works)
         names = {m.parts[i].name for i in parts}
         notches = []
         for i, n in enumerate(m.notches):
@@ -103,7 +117,7 @@ class Geometry:
             for i, o in enumerate(m.openings)
             if names.intersection(o.of) and self.is_there(o.at - half_length(o), o.at + half_length(o), x, side)
         )
-        return parts, tuple(notches), openings
+        return parts, tuple(notches), openings, standing
 
     @cached_property
     def opening_levels(self) -> tuple[float, ...]:
@@ -115,7 +129,7 @@ class Geometry:
         if opening.level is not None:
             return opening.level
         side = "left" if opening.at >= self.member.length else "right"
-        parts, _, _ = self.present(opening.at, side)
+        _, _, _, parts = self.present(opening.at, side)
         there = {self.member.parts[i].name: i for i in parts if not self.member.parts[i].cuts}
         for name in opening.of:
             if name in there:
@@ -140,8 +154,8 @@ class Geometry:
         PlacedParts
         """
         x = np.atleast_1d(np.asarray(x, dtype=float))
-        parts, notches, openings = there or self.present(float(x[0]), side)
-        _, outlines = self._stand(parts, x, side)
+        parts, notches, openings, standing = there or self.present(float(x[0]), side)
+        _, outlines = self._stand(standing, x, side)
         adding = tuple(i for i in parts if not self.member.parts[i].cuts)
         names = [self.member.parts[i].name for i in adding]
         cuts = [

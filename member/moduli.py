@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.description import Material, Member
+from fishbelly.member.questions import Stage
 
 Array = NDArray[np.float64]
 
@@ -23,7 +24,12 @@ class Moduli:
 
 
 def moduli(
-    member: Member, band: str = "nominal", long_term: bool = False, own: Mapping[str, float] | None = None
+    member: Member,
+    band: str = "nominal",
+    long_term: bool = False,
+    own: Mapping[str, float] | None = None,
+    stage: Stage | None = None,
+    aged: Mapping[str, float] | None = None,
 ) -> Moduli:
     """Return a set of moduli.
 
@@ -38,6 +44,11 @@ def moduli(
         Divide E and G by 1 + creep (EN 1995-1-1:2004, 2.3.2.2(1)).
     own : mapping of str to float, optional
         Creep factors of single parts that replace the material's.
+    stage : Stage, optional
+        Stage whose own moduli count.
+    aged : mapping of str to float, optional
+        Numbers by which E and G of a material are divided besides, as 1 + chi phi of the age-adjusted
+        modulus (EN 1992-1-1:2004, 5.7; Bazant 1972).
 
     Returns
     -------
@@ -50,9 +61,20 @@ def moduli(
             continue
         material = materials[part.material]
         creep = (own or {}).get(part.name, material.creep or 0.0) if long_term else 0.0
-        E[k] = _elastic(material, band) / (1.0 + creep)
-        G[k] = _shear(material, band) / (1.0 + creep)
-    return Moduli(f"{band}{' long-term' if long_term else ''}", E, G)
+        share = _of_stage(material, stage) / (1.0 + creep) / (aged or {}).get(material.name, 1.0)
+        E[k] = _elastic(material, band) * share
+        G[k] = _shear(material, band) * share
+    when = f" in {stage.name}" if stage is not None else ""
+    return Moduli(f"{band}{' long-term' if long_term else ''}{when}", E, G)
+
+
+def _of_stage(material: Material, stage: Stage | None) -> float:
+    """Share of a material's E and G in a stage: its own modulus there over E, or a factor."""
+    if stage is None:
+        return 1.0
+    if material.name in stage.moduli:
+        return stage.moduli[material.name] / material.E
+    return stage.factors.get(material.name, 1.0)
 
 
 def _elastic(material: Material, band: str) -> float:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import itertools
-from collections.abc import Collection
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -70,7 +70,12 @@ class Layout:
         return [k for k, n in enumerate(self.nodes) if any(s.along > 0.0 for s in n.supports)]
 
 
-def layout(frame: Frame, lifted: Collection[str] = ()) -> Layout:
+def layout(
+    frame: Frame,
+    lifted: Collection[str] = (),
+    hinges: Collection[float] | None = None,
+    homes: Mapping[str, Frame] | None = None,
+) -> Layout:
     """Nodes and segments.
 
     Parameters
@@ -78,16 +83,20 @@ def layout(frame: Frame, lifted: Collection[str] = ()) -> Layout:
     frame : Frame
         The grid.
     lifted : collection of str
-        Names of bearings that have lifted off; they hold nothing.
+        Names of bearings that have lifted off, and of supports that are not there; they hold nothing.
+    hinges : collection of float, optional
+        Places of the hinges that are open [m]; default all.
+    homes : mapping of str to Frame, optional
+        Stage in which a support first holds, by name: its level is the section's of that stage.
     """
     member, panels = frame.profile.member, frame.profile.panels
     working = [s for s in member.supports if s.name not in lifted]
     by_border: dict[int, list[Support]] = {}
     for support in working:
         by_border.setdefault(panels.border(support.at), []).append(support)
-    hinges = {panels.border(h.at) for h in member.hinges}
-    borders = sorted({*by_border, *hinges})
-    nodes = tuple(_node(frame, b, by_border.get(b, []), b in hinges) for b in borders)
+    hinged = {panels.border(x) for x in ([h.at for h in member.hinges] if hinges is None else hinges)}
+    borders = sorted({*by_border, *hinged})
+    nodes = tuple(_node(frame, b, by_border.get(b, []), b in hinged, homes or {}) for b in borders)
     segments = []
     if not borders:
         return Layout((), (Segment(0, panels.count, None, None),))
@@ -99,11 +108,11 @@ def layout(frame: Frame, lifted: Collection[str] = ()) -> Layout:
     return Layout(nodes, tuple(segments))
 
 
-def _node(frame: Frame, border: int, supports: list[Support], hinge: bool) -> Node:
+def _node(frame: Frame, border: int, supports: list[Support], hinge: bool, homes: Mapping[str, Frame]) -> Node:
     panels = frame.profile.panels
     at = float(panels.a[border]) if border < panels.count else float(panels.b[-1])
     holding = [s for s in supports if s.along > 0.0]
-    levels = [frame.level(s.level, at) for s in holding] or [frame.centroid(at)]
+    levels = [homes.get(s.name, frame).level(s.level, at) for s in holding] or [frame.centroid(at)]
     if any(np.abs(v - levels[0]).max() > 1e-9 for v in levels):
         raise CannotCompute(f"two supports at x = {at:.6g} m hold along at different levels")
     if hinge and any(s.rotation > 0.0 for s in supports):

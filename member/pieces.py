@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
-from fishbelly.member.stresses import Loading
+from fishbelly.member.part_forces import Loading
 
 Array = NDArray[np.float64]
 
@@ -34,7 +34,7 @@ class Pieces:
 
 def pieces(analysis: Analysis, loading: Sequence[Loading]) -> Pieces:
     """Sum the shares of a combination, piece by piece."""
-    frame = analysis.frame
+    frame = loading[0].end
 
     def total(name: str) -> Array:
         return np.asarray(sum(getattr(share.response, name) for share in loading))

@@ -7,7 +7,7 @@ the deflection needs is resolved to round-off. Places with the same parts presen
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from typing import Any
 
@@ -121,6 +121,28 @@ class Profile:
         stiffness: SectionStiffness = self._once("stiffness", moduli, build)
         return stiffness
 
+    def part_moments(self, part: int, line: Array) -> Array:
+        """Moments of what works of a part about the analysis line, shape (6, K, n): A, S0, S1, I00, I01, I11.
+
+        Products of c0 = z - line[0] and c1 = -y - line[1]; nothing where the part is not there.
+        """
+        columns = np.zeros((6, self.rows))
+        for g in self.groups:
+            if part in g.placed.index:
+                m = g.composition.moments.at(g.placed.index.index(part))
+                c0, c1 = m.z - line[0], -m.y - line[1]
+                A = m.area
+                columns[:, g.rows] = (A, A * c0, A * c1, m.zz + A * c0 * c0, A * c0 * c1 - m.yz, m.yy + A * c1 * c1)
+        return columns[:, self.row]
+
+    def part_modulus(self, part: int, values: Array) -> Array:
+        """Modulus of a part at the grid points, run-in counted, shape (K, n); zero where it is not there [Pa]."""
+        column = np.zeros(self.rows)
+        for g in self.groups:
+            if part in g.placed.index:
+                column[g.rows] = g.modulus(values)[g.placed.index.index(part)]
+        return column[self.row]
+
     def shear_stiffness(self, moduli: Moduli, across: bool = False) -> Array:
         """GA along z, or along y, at every sampled place [N], shape (R,)."""
 
@@ -133,13 +155,29 @@ class Profile:
         column: Array = self._once("across" if across else "down", moduli, build)
         return column
 
-    def mass(self, density: Array) -> tuple[Array, Array, Array]:
-        """Mass per length [kg/m] and its centroid y, z [m] at every sampled place, each shape (R,)."""
+    def mass(self, density: Array, parts: frozenset[str] = frozenset()) -> tuple[Array, Array, Array]:
+        """Mass per length [kg/m] and its centroid y, z [m] at every sampled place, each shape (R,).
+
+        `parts` are counted even where they do not work yet, as wet concrete is.
+        """
         columns = np.zeros((3, self.rows))
-        for g in self.groups:
+        for g in self._weighing(parts):
             total = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total()
             columns[:, g.rows] = (total.area, total.y, total.z)
         return columns[0], columns[1], columns[2]
+
+    def _weighing(self, parts: frozenset[str]) -> tuple[Group, ...]:
+        """Groups of the profile, with parts that do not work yet but are weighed already."""
+        works = self.geometry.works
+        named = {i for i, p in enumerate(self.member.parts) if p.name in parts}
+        if works is None or named <= works:
+            return self.groups
+        geometry = Geometry(self.member, works | named)
+        found: list[Group] = []
+        for g in self.groups:
+            places = g.placed.x
+            found += [replace(w, rows=g.rows[w.rows]) for w in group_places(geometry, places[:, None], places, 0)]
+        return tuple(found)
 
     def _once(self, what: str, moduli: Moduli, build: Callable[[], Any]) -> Any:
         key = (what, id(moduli))

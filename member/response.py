@@ -14,7 +14,9 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Actions, Atom, Frame, free_forces
 from fishbelly.member.compatibility import Redundants, Solution, redundants, solve
 from fishbelly.member.description import Support
-from fishbelly.member.equilibrium import Forces, axial_forces, panels_integral
+from fishbelly.member.equilibrium import axial_forces, panels_integral
+from fishbelly.member.forces import Forces
+from fishbelly.member.moduli import Moduli
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.panels import Panels
 from fishbelly.member.section_law import ElasticLaw
@@ -82,7 +84,7 @@ def respond(
     law: ElasticLaw,
     atoms: Sequence[Atom],
     loads: list[Actions],
-    free: list[tuple[Array, Array]],
+    free: list[Forces],
     planes: int,
 ) -> Response:
     """Response to every atom.
@@ -93,7 +95,7 @@ def respond(
         Grid, supports at work and section law.
     atoms, loads : sequences of Atom and of Actions
         The loads.
-    free : list of (N, M)
+    free : list of Forces
         Forces that hold free strain back, for each atom.
     planes : int
         1: only the vertical plane deflects.
@@ -114,8 +116,8 @@ def respond(
     N = np.array([s.forces.N for s in found])
     V = np.stack([s.forces.V for s in found], axis=1)
     M = np.stack([s.forces.M for s in found], axis=1)
-    free_n, free_m = np.array([f[0] for f in free]), np.stack([f[1] for f in free], axis=1)
-    strains = law.strains(Forces(N + free_n, V, M + free_m))
+    held = Forces(np.array([f.N for f in free]), *(np.stack([getattr(f, k) for f in free], axis=1) for k in "VM"))
+    strains = law.strains(Forces(N, V, M).plus(held))
     rotation, deflection = np.zeros_like(V), np.zeros_like(V)
     for p in range(planes):
         rotation[p], deflection[p] = _deflected(
@@ -232,8 +234,7 @@ def _shared(
     return shares + [(s, rest / len(rigid)) for s in rigid]
 
 
-def free_of(frame: Frame, loads: Sequence[Actions], moduli: object) -> list[tuple[Array, Array]]:
+def free_of(frame: Frame, loads: Sequence[Actions], moduli: Moduli) -> list[Forces]:
     """Forces that hold the free strain of each atom back, for a set of moduli."""
-    shape = frame.profile.panels.x.shape
-    none = (np.zeros(shape), np.zeros((2, *shape)))
-    return [free_forces(frame, a.free, moduli) if a.free else none for a in loads]  # type: ignore[arg-type]
+    none = Forces.none(frame.profile.panels.x.shape)
+    return [free_forces(frame, a.free, moduli) if a.free else none for a in loads]

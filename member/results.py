@@ -19,11 +19,12 @@ from fishbelly.member.faults import CannotCompute
 from fishbelly.member.moduli import has_band
 from fishbelly.member.notes import notes
 from fishbelly.member.panels import Panels
+from fishbelly.member.part_forces import loadings
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.places import default_places
 from fishbelly.member.spans import spans
 from fishbelly.member.station_results import envelope_rows, station_rows
-from fishbelly.member.stresses import PartStress, loadings, part_stresses
+from fishbelly.member.stresses import PartStress, part_stresses
 
 Array = NDArray[np.float64]
 Data = dict[str, Any]

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+from contextlib import contextmanager
 from dataclasses import dataclass
 
 import numpy as np
@@ -16,6 +18,7 @@ from fishbelly.member.moduli import Moduli, moduli
 from fishbelly.member.openings import opening_round_ends
 from fishbelly.member.panels import POINTS, Panels
 from fishbelly.member.profile import Group, Profile, group_places, varies
+from fishbelly.member.stage_view import StageView, stage_views
 from fishbelly.member.topology import crossing_places
 from fishbelly.sections.chebyshev import rule, tail
 
@@ -50,7 +53,12 @@ class _Batch:
 
 
 def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | None = None) -> Profile:
-    """Sample a member so that its deflection is resolved to round-off.
+    """Sample a member in its last stage; see `build_profiles`."""
+    return build_profiles(member, more, shear)[-1]
+
+
+def build_profiles(member: Member, more: tuple[float, ...] = (), shear: bool | None = None) -> tuple[Profile, ...]:
+    """Sample a member in every stage, on one grid, so that its deflection is resolved to round-off.
 
     Parameters
     ----------
@@ -63,7 +71,8 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
 
     Returns
     -------
-    Profile
+    tuple of Profile
+        One for each stage, with the same panels; one alone where the member has no stages.
 
     Raises
     ------
@@ -72,49 +81,92 @@ def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | No
     CannotCompute
         When the section cannot be resolved.
     """
-    geometry = Geometry(member)
-    short = moduli(member)
     with_shear = member.shear if shear is None else shear
-    batch = _start(member, geometry, breakpoints(member, more))
-    kept: list[tuple[_Batch, NDArray[np.intp]]] = []
-    groups: list[Group] = []
-    rows = panels = 0
+    stages = [_Stage.of(member, view) for view in stage_views(member)]
+    batch = _start(member, [s.geometry for s in stages], breakpoints(member, more))
+    kept: list[_Batch] = []
+    panels = 0
     most = MOST_PANELS + batch.a.size
     for _ in range(MOST_ROUNDS):
         if not batch.a.size:
             break
-        grid = Panels(batch.a, batch.b, batch.anchor)
-        done = np.ones(batch.a.size, dtype=bool)
-        row = np.zeros((batch.a.size, POINTS), dtype=np.intp)
-        worst: dict[str, Array] = {}
-        for varying in (False, True):
-            which = np.flatnonzero(batch.varying == varying)
-            if not which.size:
-                continue
-            x = grid.x[which] if varying else grid.x[which][:, POINTS // 2 : POINTS // 2 + 1]
-            new = group_places(geometry, x, 0.5 * (batch.a + batch.b)[which], rows)
-            row[which] = rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
-            _stands(new, short)
-            if varying:
-                worst = _tails(geometry, new, short, rows, which.size, with_shear, batch.at(which))
-                done[which] = worst["done"].astype(bool)
-            groups += new
-            rows += x.size
-        kept.append((batch.at(done), row[done]))
+        done, worst = _sample(member, stages, batch, with_shear)
+        kept.append(batch.at(done))
+        for s in stages:
+            s.keep(done)
         panels += int(done.sum())
         batch = _halved(batch, done, worst)
         if panels + batch.a.size > most:
             break
     if batch.a.size:
         raise CannotCompute(f"the section between {batch.a[0]:.6g} m and {batch.b[0]:.6g} m cannot be resolved")
-    return _assembled(geometry, kept, groups, rows, short)
+    return _assembled(kept, stages)
 
 
-def _start(member: Member, geometry: Geometry, breaks: Array) -> _Batch:
+@dataclass(eq=False)
+class _Stage:
+    """What has been sampled of one stage: `row` of the batch at hand, `kept` rows of panels that are done."""
+
+    geometry: Geometry
+    short: Moduli
+    name: str
+    groups: list[Group]
+    kept: list[NDArray[np.intp]]
+    row: NDArray[np.intp]
+    rows: int = 0
+
+    @classmethod
+    def of(cls, member: Member, view: StageView) -> _Stage:
+        works = None if view.stage is None else view.parts
+        short = moduli(member, stage=view.stage)
+        return cls(Geometry(member, works), short, view.name, [], [], np.zeros((0, POINTS), dtype=np.intp))
+
+    def keep(self, done: NDArray[np.bool_]) -> None:
+        self.kept.append(self.row[done])
+
+
+def _sample(
+    member: Member, stages: list[_Stage], batch: _Batch, shear: bool
+) -> tuple[NDArray[np.bool_], dict[str, Array]]:
+    """Sample the panels of a batch in every stage: which are resolved in all of them, which end in an apex."""
+    grid = Panels(batch.a, batch.b, batch.anchor)
+    done = np.ones(batch.a.size, dtype=bool)
+    apex = np.zeros(int(batch.varying.sum()))
+    for stage in stages:
+        stage.row = np.zeros((batch.a.size, POINTS), dtype=np.intp)
+        for varying in (False, True):
+            which = np.flatnonzero(batch.varying == varying)
+            if not which.size:
+                continue
+            x = grid.x[which] if varying else grid.x[which][:, POINTS // 2 : POINTS // 2 + 1]
+            with _named(stage.name, len(stages)):
+                new = group_places(stage.geometry, x, 0.5 * (batch.a + batch.b)[which], stage.rows)
+                _stands(new, stage.short)
+            stage.row[which] = stage.rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
+            if varying:
+                found = _tails(stage.geometry, new, stage.short, stage.rows, which.size, shear, batch.at(which))
+                done[which] &= found["done"].astype(bool)
+                apex = np.where(apex != 0.0, apex, found["apex"])
+            stage.groups += new
+            stage.rows += x.size
+    return done, {"apex": apex}
+
+
+@contextmanager
+def _named(stage: str, stages: int) -> Iterator[None]:
+    """Name the stage in which nothing stands somewhere."""
+    try:
+        yield
+    except NoStiffness as error:
+        raise NoStiffness(error.at, f"{error.reason} in stage {stage}") if stages > 1 else error from None
+
+
+def _start(member: Member, geometries: list[Geometry], breaks: Array) -> _Batch:
     batch = _first(member, breaks)
     if batch.varying.any():
         moving = batch.at(batch.varying)
-        extra = crossing_places(geometry, Panels(moving.a, moving.b, moving.anchor))
+        grid = Panels(moving.a, moving.b, moving.anchor)
+        extra = [x for geometry in geometries for x in crossing_places(geometry, grid)]
         if extra:
             batch = _first(member, merged([*breaks.tolist(), *extra], member.length))
     return batch
@@ -250,13 +302,14 @@ def _halved(batch: _Batch, done: NDArray[np.bool_], worst: dict[str, Array]) -> 
     )
 
 
-def _assembled(
-    geometry: Geometry, kept: list[tuple[_Batch, NDArray[np.intp]]], groups: list[Group], rows: int, short: Moduli
-) -> Profile:
-    a, b = (np.concatenate([getattr(k, f) for k, _ in kept]) for f in ("a", "b"))
-    anchor = np.concatenate([k.anchor for k, _ in kept])
-    row = np.concatenate([r for _, r in kept]).astype(np.intp)
+def _assembled(kept: list[_Batch], stages: list[_Stage]) -> tuple[Profile, ...]:
+    a, b = (np.concatenate([getattr(k, f) for k in kept]) for f in ("a", "b"))
+    anchor = np.concatenate([k.anchor for k in kept])
     order = np.argsort(a, kind="stable")
     a, b = a[order], b[order]
     b[:-1] = a[1:]
-    return Profile(geometry, Panels(a, b, anchor[order]), row[order], tuple(groups), rows, short)
+    panels = Panels(a, b, anchor[order])
+    return tuple(
+        Profile(s.geometry, panels, np.concatenate(s.kept).astype(np.intp)[order], tuple(s.groups), s.rows, s.short)
+        for s in stages
+    )

@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Frame
-from fishbelly.member.equilibrium import Forces
+from fishbelly.member.forces import Forces
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.panels import Panels
 

@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from fishbelly.member.analysis import Analysis, ModuliKey
+from fishbelly.member.forces import Forces
 from fishbelly.member.nodes import layout
 from fishbelly.member.note import Note
 from fishbelly.member.response import respond
@@ -52,8 +53,11 @@ def _prismatic(analysis: Analysis, EI: float) -> float | None:
     bend = np.stack((1.0 / full, 1.0 / full, 0.0 * full))
     law = ElasticLaw(analysis.profile.panels, np.full(shape, EI * 1e3), straight, bend, straight)
     shares = analysis.shares(analysis.member.combinations[0])
-    free = [(np.zeros(shape), np.zeros((2, *shape)))] * len(analysis.atoms)
-    r = respond(analysis.frame, layout(analysis.frame), law, analysis.atoms, analysis.loads, free, 1)
+    free = [Forces.none(shape)] * len(analysis.atoms)
+    view = analysis.views[-1]
+    r = respond(
+        analysis.frame, layout(analysis.frame, view.gone, view.hinges), law, analysis.atoms, analysis.loads, free, 1
+    )
     total = r.combined(np.asarray(sum(s.factors for s in shares)))
     w = float(total.deflection[0].max())
     return w if np.isfinite(w) and w > 0.0 else None

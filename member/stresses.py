@@ -8,24 +8,13 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.analysis import Analysis
 from fishbelly.member.extremes import largest
-from fishbelly.member.free_strain import FreePlane, free_plane
-from fishbelly.member.moduli import Moduli
-from fishbelly.member.profile import Group
-from fishbelly.member.response import Response
+from fishbelly.member.part_forces import Loading, stress_planes
+from fishbelly.member.profile import Group, Profile
 from fishbelly.sections.fibres import arc_data, fibres
 
 Array = NDArray[np.float64]
-
-
-@dataclass(frozen=True, eq=False)
-class Loading:
-    """One share of a combination: its response, with an axis of pieces (base, then patterns), and its moduli."""
-
-    response: Response
-    moduli: Moduli
-    factors: Array
 
 
 @dataclass(frozen=True)
@@ -59,28 +48,6 @@ class PartStress:
     highest: StressPeak | None
     lowest: StressPeak | None
     shear: ShearPeak | None = None
-
-
-def loadings(analysis: Analysis, combined: Combined) -> tuple[Loading, ...]:
-    """Responses of a combination by share; pieces are everything but the patterns, then each pattern."""
-    patterned = np.zeros(len(analysis.atoms), dtype=bool)
-    for mask in combined.patterns:
-        patterned |= mask
-    masks = [~patterned, *combined.patterns]
-    found = []
-    for share in combined.shares:
-        r = analysis.responses(share.key, combined.lifted)
-        factors = np.array([np.where(m, share.factors, 0.0) for m in masks])
-        pieces = [r.combined(f) for f in factors]
-        single = ("N", "axial", "reactions")
-        stacked = Response(
-            *(
-                np.stack([getattr(p, f) for p in pieces], axis=0 if f in single else 1)
-                for f in Response.__dataclass_fields__
-            )
-        )
-        found.append(Loading(stacked, analysis.moduli(share.key), factors))
-    return tuple(found)
 
 
 def part_stresses(analysis: Analysis, loading: Sequence[Loading]) -> tuple[PartStress, ...]:
@@ -118,10 +85,11 @@ def part_stresses(analysis: Analysis, loading: Sequence[Loading]) -> tuple[PartS
 
 def _fields(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple[Array | None, Array, Array]:
     """Stress of a part at its candidate fibres: (J+1, C, K, n), NaN where it is not; and y, z (C, K, n)."""
-    profile = analysis.profile
-    groups = [g for g in profile.groups if index in g.placed.index]
-    if not groups:
+    planes = stress_planes(loading, index)
+    if planes is None:
         return None, np.empty(0), np.empty(0)
+    profile = loading[0].end.profile
+    groups = [g for g in profile.groups if index in g.placed.index]
     planar = analysis.planes == 1
     points = {id(g): fibres(g.composition, g.placed.index.index(index), planar) for g in groups}
     count = max(p[0].shape[0] for p in points.values())
@@ -131,30 +99,20 @@ def _fields(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple
         y[: py.shape[0], g.rows], z[: pz.shape[0], g.rows] = py, pz
     fy, fz = y[:, profile.row], z[:, profile.row]
     if not planar:
-        ty, tz = _tangent_points(analysis, loading, index, groups)
+        ty, tz = _tangent_points(profile, planes, index, groups)
         fy, fz = np.concatenate((fy, ty)), np.concatenate((fz, tz))
-    return _stress_at(analysis, loading, index, groups, fy, fz), fy, fz
+    return _stress_at(analysis, planes, fy, fz), fy, fz
 
 
-def _tangent_points(
-    analysis: Analysis, loading: Sequence[Loading], index: int, groups: list[Group]
-) -> tuple[Array, Array]:
-    """Points of a part's arcs where the strain plane of the whole combination is steepest, (2 E, K, n)."""
-    profile = analysis.profile
+def _tangent_points(profile: Profile, planes: Array, index: int, groups: list[Group]) -> tuple[Array, Array]:
+    """Points of a part's arcs where the stress plane of the whole combination is steepest, (2 E, K, n)."""
     data = [arc_data(g.composition, g.placed.index.index(index)) for g in groups]
     count = max(d.shape[1] for d in data)
     arcs = np.full((5, count, profile.rows), np.nan)
     for g, d in zip(groups, data, strict=True):
         arcs[:, : d.shape[1], g.rows] = d
     y_c, z_c, r, start, turn = arcs[:, :, profile.row]
-    up = np.zeros(profile.row.shape)
-    right = np.zeros(profile.row.shape)
-    for share in loading:
-        up = up - share.response.curvature[0].sum(axis=0)
-        right = right + share.response.curvature[1].sum(axis=0)
-        free = _free_strain(analysis, share.factors.sum(axis=0), index, groups)
-        if free is not None:
-            up, right = up - free[1, profile.row], right - free[2, profile.row]
+    up, right = planes[:, 1].sum(axis=0), -planes[:, 2].sum(axis=0)
     y, z = [], []
     for sign in (1.0, -1.0):
         angle = np.arctan2(sign * up, sign * right)
@@ -167,48 +125,13 @@ def _tangent_points(
     return np.concatenate(y), np.concatenate(z)
 
 
-def _stress_at(
-    analysis: Analysis, loading: Sequence[Loading], index: int, groups: list[Group], fy: Array, fz: Array
-) -> Array:
+def _stress_at(analysis: Analysis, planes: Array, fy: Array, fz: Array) -> Array:
     """Stress of a part at fibres (C, K, n), for every piece: shape (J+1, C, K, n)."""
-    profile, planar = analysis.profile, analysis.planes == 1
-    pieces = loading[0].factors.shape[0]
-    total = np.zeros((pieces, *fy.shape))
     line = analysis.frame.line
-    for share in loading:
-        E = np.full(profile.rows, np.nan)
-        for g in groups:
-            E[g.rows] = g.modulus(share.moduli.E)[g.placed.index.index(index)]
-        r = share.response
-        for piece in range(pieces):
-            strain = r.axial[piece] - r.curvature[0, piece] * (fz - line[0])
-            if not planar:
-                strain = strain - r.curvature[1, piece] * (-fy - line[1])
-            free = _free_strain(analysis, share.factors[piece], index, groups)
-            if free is not None:
-                e, a, b = free[:, profile.row]
-                strain = strain - (e + a * fz + b * fy)
-            total[piece] += E[profile.row] * strain
-    return total
-
-
-def _free_strain(analysis: Analysis, factors: Array, index: int, groups: list[Group]) -> Array | None:
-    """Free strain plane of one part at the sampled places, shape (3, R), or None."""
-    profile = analysis.profile
-    total: Array | None = None
-    for factor, actions in zip(factors, analysis.loads, strict=True):
-        if factor == 0.0:
-            continue
-        for load in actions.free:
-            for g in groups:
-                plane: FreePlane | None = free_plane(profile, load, g, g.placed.x, analysis.frame.short)
-                if plane is None:
-                    continue
-                if total is None:
-                    total = np.zeros((3, profile.rows))
-                k = g.placed.index.index(index)
-                total[:, g.rows] += factor * np.stack((plane.e[k], plane.a[k], plane.b[k]))
-    return total
+    total = planes[:, :1] + planes[:, 1:2] * (fz - line[0])
+    if analysis.planes > 1:
+        total = total + planes[:, 2:] * (-fy - line[1])
+    return np.asarray(total)
 
 
 def _peak(analysis: Analysis, stress: Array, y: Array, z: Array, sign: float) -> StressPeak | None:
@@ -258,11 +181,11 @@ def _shear_peak(analysis: Analysis, loading: Sequence[Loading], index: int) -> S
 
 def _shear_level(analysis: Analysis, loading: Sequence[Loading], index: int, at: float) -> float:
     """Level of the largest shear stress of a part in the vertical plane, at the sampled place nearest to x [m]."""
-    profile = analysis.profile
+    profile = loading[0].end.profile
     level = np.full(profile.rows, np.nan)
     for g in profile.groups:
         if index in g.placed.index:
-            level[g.rows] = g.shear(loading[0].moduli).level[g.placed.index.index(index)]
+            level[g.rows] = g.shear(profile.short).level[g.placed.index.index(index)]
     places, levels = profile.panels.x.ravel(), level[profile.row].ravel()
     known = np.flatnonzero(~np.isnan(levels))
     return float(levels[known[int(np.argmin(np.abs(places[known] - at)))]])
@@ -270,12 +193,11 @@ def _shear_level(analysis: Analysis, loading: Sequence[Loading], index: int, at:
 
 def _shear_field(analysis: Analysis, loading: Sequence[Loading], index: int, plane: int) -> Array:
     """Largest shear stress of a part on any level of the section, by shear in one plane, shape (J+1, K, n)."""
-    profile = analysis.profile
-    groups = [g for g in profile.groups if index in g.placed.index]
     total = np.zeros(loading[0].response.V[0].shape)
     for share in loading:
+        profile = share.step.frame.profile
         peak = np.zeros(profile.rows)
-        for g in groups:
+        for g in (g for g in profile.groups if index in g.placed.index):
             peak[g.rows] = g.shear(share.moduli, plane == 1).peak[g.placed.index.index(index)]
         total = total + share.response.V[plane] * peak[profile.row]
     return total

@@ -1,0 +1,111 @@
+"""Stress of a part as a plane over its area, the force and couples it carries, the flow into it.
+
+Everything that tells of a part's stress comes from here: what each step of the member's life has left in it is one
+plane, and the planes add. The shear flow into a part is q = dF/dx, right for tapers, thrust, stages and free strain.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.actions import Frame
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.response import Response
+from fishbelly.member.staging import Step
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Loading:
+    """One share of a combination in one step of the member's life, piece by piece.
+
+    Parameters
+    ----------
+    response : Response
+        Its response, with an axis of pieces: everything but pattern loads, then each pattern load.
+    moduli : Moduli
+        Moduli it acts on.
+    factors : ndarray, shape (J + 1, A)
+        Factors of the atoms in each piece.
+    step : Step
+        The step.
+    end : Frame
+        The grid in the stage at whose end results are asked for.
+    """
+
+    response: Response
+    moduli: Moduli
+    factors: Array
+    step: Step
+    end: Frame
+
+    @property
+    def parts(self) -> tuple[int, ...]:
+        """Numbers of the parts that are there in the stage asked for."""
+        return tuple(sorted({i for g in self.end.profile.groups for i in g.placed.index}))
+
+
+def loadings(analysis: Analysis, combined: Combined) -> tuple[Loading, ...]:
+    """Responses of a combination by share and step; pieces are everything but the patterns, then each pattern."""
+    patterned = np.zeros(len(analysis.atoms), dtype=bool)
+    for mask in combined.patterns:
+        patterned |= mask
+    masks = [~patterned, *combined.patterns]
+    last = len(analysis.views) - 1 if combined.upto is None else combined.upto
+    found = []
+    for share in combined.shares:
+        factors = np.array([np.where(m, share.factors, 0.0) for m in masks])
+        for step in analysis.history(share.key, combined.lifted):
+            if step.stage <= last:
+                stacked = _pieces(step.response, factors)
+                found.append(Loading(stacked, step.moduli, factors, step, analysis.frames[last]))
+    return tuple(found)
+
+
+def _pieces(response: Response, factors: Array) -> Response:
+    pieces = [response.combined(f) for f in factors]
+    single = ("N", "axial", "reactions")
+    return Response(
+        *(
+            np.stack([getattr(p, f) for p in pieces], axis=0 if f in single else 1)
+            for f in Response.__dataclass_fields__
+        )
+    )
+
+
+def stress_planes(loading: Sequence[Loading], index: int) -> Array | None:
+    """Stress of a part as a plane about the analysis line.
+
+    Parameters
+    ----------
+    loading : sequence of Loading
+        Shares and steps of a combination.
+    index : int
+        Number of the part.
+
+    Returns
+    -------
+    ndarray, shape (J + 1, 3, K, n), or None
+        Stress = v[0] + v[1] c0 + v[2] c1 with c0 = z - line[0], c1 = -y - line[1] [Pa, Pa/m], zero at places where
+        the part is not; None where it is nowhere in the stage asked for.
+    """
+    if index not in loading[0].parts:
+        return None
+    total: Array | None = None
+    for share in loading:
+        if index not in share.step.parts:
+            continue
+        r = share.response
+        strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]), axis=1)
+        free = share.step.free.get(index)
+        if free is not None:
+            strain = strain - np.einsum("ja,cakn->jckn", share.factors, free)
+        stress = share.step.frame.profile.part_modulus(index, share.moduli.E) * strain
+        total = stress if total is None else total + stress
+    return total

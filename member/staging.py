@@ -1,0 +1,342 @@
+"""A member's life, step by step: what is released, what creeps, what arrives, each on its stage's parts and moduli.
+
+Every step is one linear solution. What history leaves behind is one plane of stress in each part: a part that
+joins later carries nothing of it; when a part goes, is cut or is displaced, or a support goes, what it carried
+acts on what remains. Creep under the stress locked in is free strain phi sigma / E, held back by the age-adjusted
+modulus E / (1 + chi phi) (H. Trost 1967; Z. P. Bazant, ACI Journal 69, 1972; EN 1992-1-1:2004, 5.7(4), Annex KK).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.actions import Actions, Atom, Frame
+from fishbelly.member.faults import Mechanism
+from fishbelly.member.forces import Forces
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.response import Response, respond
+from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.stage_view import StageView
+
+if TYPE_CHECKING:
+    from fishbelly.member.nodes import Layout
+
+Array = NDArray[np.float64]
+Planes = dict[int, Array]
+"""Stress, or free strain, of each part as a plane v0 + v1 c0 + v2 c1 about the analysis line: shape (3, A, K, n)."""
+
+_SAME = 1e-12
+"""A change of a part's area below this share of it is none."""
+
+
+@dataclass(frozen=True, eq=False)
+class Step:
+    """One thing that happens at once.
+
+    Parameters
+    ----------
+    stage : int
+        Number of the stage.
+    what : {"release", "creep", "loads"}
+        What happens.
+    response : Response
+        What it does, with an axis of atoms.
+    moduli : Moduli
+        Moduli it acts on.
+    frame : Frame
+        The grid with the parts of the stage.
+    free : dict
+        Free strain of parts in it, as planes.
+    creeps : bool
+        Whether its stress creeps in later stages: it does not where it acted on long-term moduli.
+    """
+
+    stage: int
+    what: str
+    response: Response
+    moduli: Moduli
+    frame: Frame
+    free: Planes
+    creeps: bool
+
+    @property
+    def parts(self) -> tuple[int, ...]:
+        """Numbers of the parts that are there."""
+        return tuple(sorted({i for g in self.frame.profile.groups for i in g.placed.index}))
+
+    def stress(self, part: int) -> Array:
+        """Stress that it leaves in a part that is there, as a plane for each atom, shape (3, A, K, n) [Pa]."""
+        r = self.response
+        strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]))
+        if part in self.free:
+            strain = strain - self.free[part]
+        return self.frame.profile.part_modulus(part, self.moduli.E) * strain
+
+
+@dataclass(frozen=True, eq=False)
+class Setting:
+    """What a step needs to know of its stage: grid, supports at work, moduli, and those that creep gives."""
+
+    view: StageView
+    frame: Frame
+    layout: Layout
+    moduli: Moduli
+    lasting: bool
+    aged: Moduli | None = None
+    softened: Moduli | None = None
+
+
+@dataclass(eq=False)
+class _Record:
+    """What has happened so far: total response, stress by part, and the shares of both that still creep."""
+
+    response: Response
+    stress: Planes = field(default_factory=dict)
+    creeping: Planes = field(default_factory=dict)
+    creeping_shear: Array | None = None
+
+    def added(self, steps: list[Step]) -> list[Step]:
+        """Take steps in, and return them."""
+        for step in steps:
+            self.add(step)
+        return steps
+
+    def add(self, step: Step) -> None:
+        """Take a step in."""
+        self.response = self.response + step.response
+        stress = {part: step.stress(part) for part in step.parts}
+        _accumulate(self.stress, stress)
+        if step.creeps:
+            _accumulate(self.creeping, stress)
+            V = step.response.V
+            self.creeping_shear = V if self.creeping_shear is None else self.creeping_shear + V
+
+
+def _accumulate(total: Planes, more: Mapping[int, Array]) -> None:
+    for part, planes in more.items():
+        total[part] = total[part] + planes if part in total else planes
+
+
+def life(
+    settings: Sequence[Setting],
+    atoms: Sequence[Atom],
+    loads: Sequence[Actions],
+    free: Callable[[Setting, Sequence[int]], list[Forces]],
+    free_planes: Callable[[Setting, Sequence[int]], Planes],
+    planes: int,
+    shear: bool,
+) -> tuple[Step, ...]:
+    """Go through the stages of a member, every atom with factor 1 by itself.
+
+    Parameters
+    ----------
+    settings : sequence of Setting
+        The stages in order of time.
+    atoms, loads : sequence
+        Loads that act together, and what they put on the grid of the stage in which they arrive.
+    free : callable
+        Forces that hold the free strain of some atoms back, for a setting and the numbers of the atoms.
+    free_planes : callable
+        Free strain of each part by the same atoms, as planes.
+    planes : int
+        1: the vertical plane alone.
+    shear : bool
+        Whether shear deformation counts.
+
+    Returns
+    -------
+    tuple of Step
+
+    Raises
+    ------
+    Mechanism
+        When the member can move freely in a stage; the stage is named.
+    """
+    member = settings[0].frame.profile.member
+    count, shape = len(atoms), settings[0].frame.profile.panels.x.shape
+    record = _Record(_nothing(count, shape, len(member.supports)))
+    steps: list[Step] = []
+    before: Setting | None = None
+    for s in settings:
+        law = ElasticLaw.of(s.frame, s.moduli, planes, shear)
+        arriving = [k for k, a in enumerate(atoms) if a.case in s.view.cases]
+        try:
+            earlier = [k for st in settings[: s.view.index] for k, a in enumerate(atoms) if a.case in st.view.cases]
+            if before is not None and earlier:
+                steps += record.added(_released(before, s, record, law, earlier, planes))
+                steps += record.added(_crept(s, record, earlier, planes, shear))
+            if arriving:
+                steps.append(_arrived(s, law, atoms, loads, arriving, count, free, free_planes, planes))
+                if len(settings) > 1:
+                    record.add(steps[-1])
+        except Mechanism as error:
+            if s.view.stage is None:
+                raise
+            raise Mechanism(f"{error.reason}, in stage {s.view.name}") from None
+        before = s
+    return tuple(steps) or (_empty_step(settings[-1], record.response),)
+
+
+def _nothing(count: int, shape: tuple[int, ...], supports: int) -> Response:
+    one, two = np.zeros((count, *shape)), np.zeros((2, count, *shape))
+    return Response(one, two, two, one, two, two, two, two, np.zeros((count, supports, 5)))
+
+
+def _empty_step(s: Setting, response: Response) -> Step:
+    return Step(s.view.index, "loads", response, s.moduli, s.frame, {}, False)
+
+
+def _arrived(
+    s: Setting,
+    law: ElasticLaw,
+    atoms: Sequence[Atom],
+    loads: Sequence[Actions],
+    which: list[int],
+    count: int,
+    free: Callable[[Setting, Sequence[int]], list[Forces]],
+    free_planes: Callable[[Setting, Sequence[int]], Planes],
+    planes: int,
+) -> Step:
+    """Loads of the stage on its parts and moduli."""
+    mine = [atoms[k] for k in which]
+    found = respond(s.frame, s.layout, law, mine, [loads[k] for k in which], free(s, which), planes)
+    strained = {part: _spread_planes(v, which, count) for part, v in free_planes(s, which).items()}
+    return Step(s.view.index, "loads", _spread(found, which, count), s.moduli, s.frame, strained, not s.lasting)
+
+
+def _spread(r: Response, which: Sequence[int], count: int) -> Response:
+    """A response of some atoms as one of all of them, nothing for the others."""
+    if list(which) == list(range(count)):
+        return r
+    single = ("N", "axial", "reactions")
+    fields = []
+    for name in Response.__dataclass_fields__:
+        v = getattr(r, name)
+        axis = 0 if name in single else 1
+        full = np.zeros((*v.shape[:axis], count, *v.shape[axis + 1 :]))
+        full[(slice(None),) * axis + (list(which),)] = v
+        fields.append(full)
+    return Response(*fields)
+
+
+def _spread_planes(v: Array, which: Sequence[int], count: int) -> Array:
+    full = np.zeros((3, count, *v.shape[2:]))
+    full[:, list(which)] = v
+    return full
+
+
+def resultant(planes: Array, moments: Array) -> Forces:
+    """Forces of a stress plane over an area about the analysis line, shapes (A, K, n) and (2, A, K, n)."""
+    A, S0, S1, I00, I01, I11 = moments
+    s, s0, s1 = planes
+    N = s * A + s0 * S0 + s1 * S1
+    M = -np.stack((s * S0 + s0 * I00 + s1 * I01, s * S1 + s0 * I01 + s1 * I11))
+    return Forces(N, np.zeros_like(M), M)
+
+
+def _released(
+    before: Setting, s: Setting, record: _Record, law: ElasticLaw, which: list[int], planes: int
+) -> list[Step]:
+    """What parts and supports that go, or are cut or displaced, have carried acts on what remains."""
+    count = record.response.N.shape[0]
+    shape = record.response.N.shape[1:]
+    held = Forces(np.zeros((count, *shape)), np.zeros((2, count, *shape)), np.zeros((2, count, *shape)))
+    changed = before.view.parts != s.view.parts
+    if changed:
+        line = s.frame.line
+        for part in list(record.stress):
+            old = before.frame.profile.part_moments(part, line)
+            new = s.frame.profile.part_moments(part, line)
+            if np.any(np.abs(old - new) > _SAME * np.abs(old).max(axis=(1, 2), keepdims=True)):
+                held = held.plus(resultant(record.stress[part], old - new))
+            if part not in s.view.parts:
+                record.stress.pop(part)
+                record.creeping.pop(part, None)
+    gone = s.view.gone - before.view.gone
+    pushes = [_reversed(s.frame, record.response.reactions[k], gone) for k in which]
+    something = bool(gone) or np.any(held.N) or np.any(held.M)
+    if not something:
+        return []
+    free = [Forces(held.N[k], held.V[:, k], held.M[:, k]) for k in which]
+    nameless = [Atom("")] * len(which)
+    found = respond(s.frame, s.layout, law, nameless, pushes, free, planes)
+    spread = _spread(found, which, count)
+    spread.reactions[:, _numbers(s.frame, gone)] -= record.response.reactions[:, _numbers(s.frame, gone)]
+    return [Step(s.view.index, "release", spread, s.moduli, s.frame, {}, not s.lasting)]
+
+
+def _numbers(frame: Frame, names: frozenset[str]) -> list[int]:
+    return [k for k, s in enumerate(frame.profile.member.supports) if s.name in names]
+
+
+def _reversed(frame: Frame, reactions: Array, gone: frozenset[str]) -> Actions:
+    """Forces of supports that go, turned round, as loads on the member; reactions of one atom, shape (supports, 5)."""
+    panels = frame.profile.panels
+    shape = panels.x.shape
+    borders = shape[0] + 1
+    a = Actions(
+        np.zeros((2, *shape)),
+        np.zeros(shape),
+        np.zeros((2, *shape)),
+        np.zeros((2, borders)),
+        np.zeros(borders),
+        np.zeros((2, borders)),
+    )
+    supports = frame.profile.member.supports
+    for k in _numbers(frame, gone):
+        down, along, couple, across, aside = reactions[k]
+        border = panels.border(supports[k].at)
+        a.P[:, border] -= (down, across)
+        a.F[border] -= along
+        a.C[:, border] -= np.array((couple, aside)) + along * frame.level(supports[k].level, supports[k].at)
+    return a
+
+
+def _crept(s: Setting, record: _Record, which: list[int], planes: int, shear: bool) -> list[Step]:
+    """Creep that runs off in a stage under the stress locked in."""
+    stage = s.view.stage
+    if stage is None or not stage.creep or s.aged is None or s.softened is None:
+        return []
+    profile, member = s.frame.profile, s.frame.profile.member
+    count, shape = record.response.N.shape[0], record.response.N.shape[1:]
+    held = Forces(np.zeros((count, *shape)), np.zeros((2, count, *shape)), np.zeros((2, count, *shape)))
+    free: Planes = {}
+    for part, stress in record.creeping.items():
+        phi = stage.creep.get(member.parts[part].material or "", 0.0)
+        if not phi or part not in s.view.parts:
+            continue
+        E = profile.part_modulus(part, s.moduli.E)
+        free[part] = phi * stress / np.where(E > 0.0, E, np.inf)
+        aged = profile.part_modulus(part, s.aged.E)
+        held = held.plus(resultant(aged * free[part], profile.part_moments(part, s.frame.line)))
+    law = ElasticLaw.of(s.frame, s.aged, planes, shear)
+    if shear and record.creeping_shear is not None:
+        slid = (
+            ElasticLaw.of(s.frame, s.softened, planes, shear).slide
+            - ElasticLaw.of(s.frame, s.moduli, planes, shear).slide
+        )
+        angle = slid[:, None] * record.creeping_shear
+        held = Forces(held.N, angle / np.where(law.slide > 0.0, law.slide, np.inf)[:, None], held.M)
+    if not (np.any(held.N) or np.any(held.M) or np.any(held.V)):
+        return []
+    each = [Forces(held.N[k], held.V[:, k], held.M[:, k]) for k in which]
+    none = [_reversed(s.frame, record.response.reactions[k], frozenset()) for k in which]
+    found = respond(s.frame, s.layout, law, [Atom("")] * len(which), none, each, planes)
+    spread = _spread(found, which, count)
+    return [Step(s.view.index, "creep", spread, s.aged, s.frame, free, True)]
+
+
+def summed(steps: Sequence[Step], upto: int | None = None) -> Response:
+    """Response at the end of a stage, the last where none is given."""
+    some = [s.response for s in steps if upto is None or s.stage <= upto]
+    if not some:
+        return steps[0].response * 0.0
+    total = some[0]
+    for r in some[1:]:
+        total = total + r
+    return total
