@@ -16,7 +16,7 @@ from fishbelly.cli.job_loads import read_loads
 from fishbelly.cli.job_materials import read_materials
 from fishbelly.cli.job_models import NOT_BUILT, TABLES, JobTable
 from fishbelly.cli.job_parts import read_part
-from fishbelly.cli.job_questions import camber_of, read_combinations, read_stations_by_name
+from fishbelly.cli.job_questions import camber_of, read_combinations, read_stages, read_stations_by_name
 from fishbelly.cli.job_references import given_names, references
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_supports import read_hinges, read_supports
@@ -121,6 +121,7 @@ def _job(report: Report, text: str) -> Job:
         supports=read_supports(length, report),
         hinges=read_hinges(length, report),
         loads=read_loads(length, parts, report),
+        stages=read_stages(report),
         combinations=read_combinations(report),
         limits=read_limits(report),
         stations=read_stations_by_name(length, report),
@@ -193,6 +194,7 @@ def _member(draft: Draft, top: JobTable) -> Member:
         supports=_known(draft.supports),
         hinges=_known(draft.hinges),
         loads=_known(draft.loads),
+        stages=_known(draft.stages),
         combinations=_known(draft.combinations),
         limits=_known(draft.limits),
         stations=_known(draft.stations),
@@ -201,4 +203,5 @@ def _member(draft: Draft, top: JobTable) -> Member:
         camber=draft.camber,
         title=top.title,
         note=top.note,
+        inclined=top.inclined,
     )

@@ -80,4 +80,6 @@ def _limit(table: LimitTable, published: dict[str, Any]) -> Limit:
         start=table.from_,
         end=table.to,
         spans=table.span,
+        after=table.after,
+        stage=table.stage,
     )

@@ -36,12 +36,9 @@ from fishbelly.cli.job_types import (
 from fishbelly.cli.quantities import Kind
 
 NOT_BUILT: dict[str, frozenset[str]] = {
-    "": frozenset({"tension_stiffening", "cracks", "inclined", "stage", "travel", "mass"}),
+    "": frozenset({"tension_stiffening", "cracks", "travel", "mass"}),
     "material": frozenset({"no_tension"}),
-    "part": frozenset({"stage", "until", "joined"}),
-    "support": frozenset({"stage", "until", "slip"}),
-    "hinge": frozenset({"stage", "until"}),
-    "limit": frozenset({"after", "stage"}),
+    "support": frozenset({"slip"}),
 }
 """Keys of the contract, by table, that this version refuses by name."""
 
@@ -83,6 +80,7 @@ class JobTable(Table):
     datum: Annotated[str | None, Word("top", "middle", "bottom")] = None
     rises: Annotated[float, Quantity(Kind.ANGLE)] = 0.0
     shear: Yes = True
+    inclined: Annotated[str, Word("along", "cut")] = "along"
     camber: Annotated[Any, Camber()] = None
 
 
@@ -199,6 +197,8 @@ class SupportTable(Table):
     sinks: MaybeLength = None
     case: Name = "settlement"
     only: Annotated[str | None, Word("up")] = None
+    stage: MaybeName = None
+    until: MaybeName = None
 
 
 class HingeTable(Table):
@@ -206,6 +206,8 @@ class HingeTable(Table):
 
     at: Length
     name: MaybeName = None
+    stage: MaybeName = None
+    until: MaybeName = None
 
 
 class StationTable(Table):
@@ -257,6 +259,38 @@ class LimitTable(Table):
     to: MaybeLength = None
     span: Annotated[tuple[int | str, ...] | None, Many(Span(), Span.words, one=True)] = None
     cantilever_over: Annotated[float | None, Factor("a number", above=0.0)] = None
+    after: MaybeName = None
+    stage: MaybeName = None
+
+
+class ModulusOrFactor(Reader):
+    """A modulus in a stage, or a factor of the material's own."""
+
+    words = 'a modulus such as "11 GPa", or a factor above 0'
+    schema = {"anyOf": [{"type": "string"}, {"type": "number", "exclusiveMinimum": 0}]}
+
+    def read(self, value: Any) -> tuple[str, float]:
+        """Read ("modulus", Pa) or ("factor", number)."""
+        if isinstance(value, str):
+            return "modulus", Quantity(Kind.MODULUS, "above zero").read(value)
+        if isinstance(value, int | float) and not isinstance(value, bool) and 0.0 < value < float("inf"):
+            return "factor", float(value)
+        raise ill(self.words, value)
+
+
+class StageTable(Table):
+    """``[[stage]]``."""
+
+    name: Name
+    cases: Annotated[tuple[str, ...], Many(Text("a load case"), 'a list of load cases such as ["dead"]')] = ()
+    long_term: Yes = False
+    moduli: Annotated[
+        dict[str, tuple[str, float]], TableOf(ModulusOrFactor(), 'a table such as { C24 = "9 GPa", concrete = 0.33 }')
+    ] = {}
+    creep: Annotated[
+        dict[str, float], TableOf(Factor("a creep factor", at_least=0.0), "a table such as { concrete = 1.6 }")
+    ] = {}
+    ageing: Annotated[float, Factor("an ageing coefficient", at_least=0.0, at_most=1.0)] = 1.0
 
 
 SINGLE: dict[str, type[Table]] = {
@@ -266,6 +300,7 @@ SINGLE: dict[str, type[Table]] = {
     "support": SupportTable,
     "hinge": HingeTable,
     "station": StationTable,
+    "stage": StageTable,
     "combination": CombinationTable,
     "limit": LimitTable,
 }

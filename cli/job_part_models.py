@@ -5,6 +5,7 @@ from typing import Annotated, Any
 
 from pydantic import Field, create_model
 
+from fishbelly.cli.job_joined import JoinedReader
 from fishbelly.cli.job_laws import LawOf, MaybeLaw, MaybePair, MaybeRadius, MaybeSize, Size
 from fishbelly.cli.job_models import Table
 from fishbelly.cli.job_types import (
@@ -23,6 +24,7 @@ from fishbelly.cli.job_types import (
     ill,
 )
 from fishbelly.cli.quantities import Kind
+from fishbelly.member.fixings import Joined
 
 CORNERS = tuple(f"{level} {side}" for level in ("top", "bottom") for side in ("left", "right"))
 ANCHORS = ("middle", "top", "bottom", "left", "right", *CORNERS)
@@ -55,6 +57,9 @@ class PartTable(Table):
     flush: Annotated[str | None, Word("top", "middle", "bottom", "left", "right")] = None
     gap: MaybeLaw = None
     shift: MaybePair = None
+    stage: MaybeName = None
+    until: MaybeName = None
+    joined: Annotated[Joined | None, JoinedReader()] = None
 
 
 class Points(Reader):

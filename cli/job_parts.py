@@ -77,6 +77,9 @@ def read_part(
         pair=table.pair,
         turn=table.turn,
         mirror=table.mirror,
+        stage=table.stage,
+        until=table.until,
+        joined=table.joined,
     )
 
 

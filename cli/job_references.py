@@ -28,7 +28,7 @@ def given_names(data: dict[str, Any], materials: dict[str, str]) -> dict[str, tu
     for i, table in _tables(data, "part"):
         parts[i] = table["name"] if isinstance(table.get("name"), str) else ""
     names = {"part": tuple(parts), "material": tuple(materials)}
-    for kind in ("station", "combination"):
+    for kind in ("station", "combination", "stage"):
         names[kind] = tuple(t["name"] for _, t in _tables(data, kind) if isinstance(t.get("name"), str))
     if not data.get("combination"):
         names["combination"] = ("all",)
@@ -44,13 +44,20 @@ def references(data: dict[str, Any]) -> list[Reference]:
 
 
 _PLACES: dict[str, tuple[tuple[str, str], ...]] = {
-    "part": tuple((key, "part") for key in ("under", "over", "left_of", "right_of", "centred_on", "of")),
+    "part": (
+        *((key, "part") for key in ("under", "over", "left_of", "right_of", "centred_on", "of")),
+        ("stage", "stage"),
+        ("until", "stage"),
+    ),
+    "support": (("stage", "stage"), ("until", "stage")),
+    "hinge": (("stage", "stage"), ("until", "stage")),
+    "stage": (("cases", "case"), ("moduli", "material"), ("creep", "material")),
     "notch": (("of", "part"),),
     "haunch": (("of", "part"),),
     "opening": (("of", "part"),),
     "load": (("part", "part"), ("parts", "part")),
     "combination": (("factors", "case"), ("sustained", "case")),
-    "limit": (("at", "station"), ("combination", "combination")),
+    "limit": (("at", "station"), ("combination", "combination"), ("after", "stage"), ("stage", "stage")),
 }
 """Keys that name something, by table, with the kind of thing."""
 

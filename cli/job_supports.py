@@ -51,7 +51,7 @@ def read_hinges(length: float | None, report: Report) -> list[Hinge | None]:
     tables = [read_table(HingeTable, t, ("hinge", i), report) for i, t in enumerate(raw)]
     names = _names("hinge", tables)
     return [
-        None if t is None or length is None else Hinge(snapped(t.at, length), name)
+        None if t is None or length is None else Hinge(snapped(t.at, length), name, t.stage, t.until)
         for t, name in zip(tables, names, strict=True)
     ]
 
@@ -108,6 +108,8 @@ def _support(table: SupportTable, name: str, anchor: bool, length: float) -> Sup
         sinks=table.sinks or 0.0,
         case=table.case,
         only_up=table.only == "up",
+        stage=table.stage,
+        until=table.until,
     )
 
 

@@ -11,8 +11,9 @@ from numpy.typing import NDArray
 
 from fishbelly.member.actions import Actions, Atom, Frame, actions, atoms, planes_of
 from fishbelly.member.apex import pinched_at
+from fishbelly.member.bearings import bearing
 from fishbelly.member.description import Combination, Member
-from fishbelly.member.faults import CannotCompute, NoStiffness
+from fishbelly.member.faults import NoStiffness
 from fishbelly.member.forces import Forces
 from fishbelly.member.moduli import Moduli, has_band, moduli
 from fishbelly.member.nodes import layout
@@ -24,9 +25,6 @@ from fishbelly.member.stage_view import StageView, stage_views
 from fishbelly.member.staging import Planes, Setting, Step, life, summed
 
 Array = NDArray[np.float64]
-
-MOST_CHANGES = 60
-"""Changes of bearings between bearing and lifted before the search is given up."""
 
 
 @dataclass(frozen=True)
@@ -257,13 +255,23 @@ class Analysis:
         """
         factors = np.array([combination.factors.get(a.case, 0.0) for a in self.atoms])
         lasting = np.array([combination.sustained.get(a.case, 0.0) for a in self.atoms]) * factors
-        found = [Share(ModuliKey(band), factors - lasting)]
         own = dict.fromkeys(a.own_creep for a in self.atoms)
+        slow = np.array([self._in_long_term_stage(a) for a in self.atoms])
+        found = [Share(ModuliKey(band), np.where(slow, 0.0, factors - lasting))]
+        for creep in own:
+            mine = slow & np.array([a.own_creep == creep for a in self.atoms])
+            if creep and mine.any():
+                found.append(Share(ModuliKey(band, False, (creep,)), np.where(mine, factors - lasting, 0.0)))
         for creep in own:
             mine = np.array([a.own_creep == creep for a in self.atoms]) & (lasting != 0.0)
             if mine.any():
                 found.append(Share(ModuliKey(band, True, (creep,) if creep else ()), np.where(mine, lasting, 0.0)))
         return tuple(found)
+
+    def _in_long_term_stage(self, atom: Atom) -> bool:
+        """Whether shrinkage with a creep factor of its own arrives in a long-term stage."""
+        stage = self.views[self.stage_of(atom)].stage
+        return atom.own_creep is not None and stage is not None and stage.long_term
 
     def combine(self, combination: Combination, band: str = "nominal", upto: int | None = None) -> Combined:
         """Response of a combination, bearings that cannot pull lifted off where they would; computed once.
@@ -280,11 +288,7 @@ class Analysis:
         shares = self.shares(combination, band)
         patterns = self._patterns(combination)
         if any(s.only_up for s in self.member.supports):
-            if len(self.views) > 1:
-                raise CannotCompute(
-                    "stages together with bearings that cannot pull are not built: leave out one of the two"
-                )
-            lifted = self.bearing(shares)
+            lifted = bearing(self, shares)
         else:
             lifted = frozenset[str]()
         total = self.superposed(shares, lifted, upto=upto)
@@ -334,43 +338,3 @@ class Analysis:
                 mask[k] = True
                 masks.append(mask)
         return tuple(masks)
-
-    def bearing(self, shares: tuple[Share, ...]) -> frozenset[str]:
-        """Which bearings have lifted: none pulls, none sinks into its seat."""
-        lifted: frozenset[str] = frozenset()
-        seen = {lifted}
-        supports = self.member.supports
-        for _ in range(MOST_CHANGES):
-            r = self.superposed(shares, lifted)
-            size = np.abs(r.reactions[:, 0]).max(initial=0.0)
-            pulls = {
-                s.name: r.reactions[k, 0]
-                for k, s in enumerate(supports)
-                if s.only_up and s.name not in lifted and r.reactions[k, 0] > 1e-9 * size
-            }
-            presses = {s.name: g for s in supports if s.name in lifted and (g := self._gap(r, shares, s.name)) > 0.0}
-            if not pulls and not presses:
-                return lifted
-            if pulls:
-                lifted = lifted | {max(pulls, key=lambda n: pulls[n])}
-            else:
-                lifted = lifted - {max(presses, key=lambda n: presses[n])}
-            if lifted in seen:
-                break
-            seen.add(lifted)
-        raise CannotCompute("no state of the bearings that cannot pull was found in which all of them agree")
-
-    def _gap(self, r: Response, shares: tuple[Share, ...], name: str) -> float:
-        """How far the member would sink below the seat of a lifted bearing [m], round-off taken off."""
-        support = next(s for s in self.member.supports if s.name == name)
-        panels = self.profile.panels
-        k = panels.border(support.at)
-        w = r.deflection[0]
-        here = float(w[k] @ panels.rule.left if k < panels.count else w[-1] @ panels.rule.right)
-        factor = sum(
-            float(f)
-            for s in shares
-            for f, a in zip(s.factors, self.atoms, strict=True)
-            if a.case == support.case and a.span is None
-        )
-        return here - support.sinks * factor - 1e-9 * float(np.abs(w).max())

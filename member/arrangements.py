@@ -12,7 +12,9 @@ from typing import Any
 import numpy as np
 
 from fishbelly.member.analysis import Analysis, Combined, Share
+from fishbelly.member.bearings import bearing
 from fishbelly.member.faults import CannotCompute
+from fishbelly.member.joints import merged_joints
 
 Data = dict[str, Any]
 
@@ -45,7 +47,7 @@ def arrangements(analysis: Analysis, combined: Combined) -> list[Combined]:
             if not there:
                 off |= mask
         shares = tuple(Share(s.key, np.where(off, 0.0, s.factors)) for s in combined.shares)
-        lifted = analysis.bearing(shares)
+        lifted = bearing(analysis, shares)
         total = analysis.superposed(shares, lifted)
         found.append(Combined(combined.combination, shares, lifted, (), total))
     return found
@@ -67,6 +69,7 @@ def merged(results: Sequence[Data]) -> Data:
         for limit in dict.fromkeys(c["limit"] for r in results for c in r["checks"])
     ]
     data["stress"] = [_stress([r["stress"][k] for r in results]) for k in range(len(data["stress"]))]
+    data["joints"] = merged_joints([r["joints"] for r in results])
     data["envelope"] = {
         "stations": _envelope([r["stations"] for r in results], ("x",), _STATION),
         "supports": _envelope([r["supports"] for r in results], ("name", "at"), _SUPPORT),

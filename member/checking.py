@@ -7,11 +7,13 @@ from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 from fishbelly.member.checking_cuts import cut_problems
+from fishbelly.member.checking_joints import joint_problems
 from fishbelly.member.checking_loads import load_problems
 from fishbelly.member.checking_materials import material_problems
 from fishbelly.member.checking_parts import part_problems
 from fishbelly.member.checking_questions import question_problems
 from fishbelly.member.checking_shapes import shape_problems
+from fishbelly.member.checking_stages import stage_problems
 from fishbelly.member.checking_supports import support_problems
 from fishbelly.member.draft import (
     Draft,
@@ -99,10 +101,12 @@ def _all(draft: Draft) -> Iterator[Problem]:
         unknown_names,
         repeated_names,
         part_problems,
+        joint_problems,
         shape_problems,
         cut_problems,
         support_problems,
         load_problems,
+        stage_problems,
         question_problems,
         material_problems,
     ):

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from fishbelly.member.checking_stages import long_term_needs
 from fishbelly.member.description import Material, Part, Strength
 from fishbelly.member.draft import Draft, Problem
 from fishbelly.member.loads import SelfWeight, Shrinkage, Temperature
@@ -59,6 +60,7 @@ def _needs(draft: Draft) -> Iterator[Need]:
         elif isinstance(load, Temperature):
             yield from ((p, "expansion", _WARM) for p in parts if _warmed(load, p))
     yield from _creep(draft, parts)
+    yield from long_term_needs(draft)
 
 
 _WARM = "a coefficient of expansion, because its temperature changes"

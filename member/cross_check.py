@@ -15,6 +15,7 @@ from fishbelly.member.faults import CannotCompute
 from fishbelly.member.loads import Load, Shrinkage
 from fishbelly.member.second_loads import LoadShare
 from fishbelly.member.second_method import second_method
+from fishbelly.member.section_law import SLIDE_SIGNS
 
 Array = NDArray[np.float64]
 
@@ -50,7 +51,7 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
         When the two methods do not agree.
     """
     entries = [(k, e) for k, e in deflection.items() if e is not None]
-    if not entries:
+    if not entries or analysis.member.stages:
         return None
     way, entry = max(entries, key=lambda pair: abs(pair[1]["value"]))
     at, plane = entry["at"], 1 if way == "across" else 0
@@ -114,7 +115,7 @@ def _slide(analysis: Analysis, key: ModuliKey) -> Callable[[Array, int], Array]:
 
     def slide(x: Array, plane: int) -> Array:
         profile = analysis.profile
-        field = 1.0 / profile.shear_stiffness(analysis.moduli(key), across=plane == 1)[profile.row]
+        field = (SLIDE_SIGNS * profile.shear_flexibility(analysis.moduli(key)))[plane][profile.row]
         return values_at(profile.panels, field, np.asarray(x, dtype=float))
 
     return slide

@@ -18,6 +18,7 @@ from fishbelly.member.description import (
     Notch,
     Opening,
     Part,
+    Stage,
     Station,
     Support,
 )
@@ -107,6 +108,7 @@ class Draft:
     supports: Sequence[Support | None] = ()
     hinges: Sequence[Hinge | None] = ()
     loads: Sequence[Load | None] = ()
+    stages: Sequence[Stage | None] = ()
     combinations: Sequence[Combination | None] = ()
     limits: Sequence[Limit | None] = ()
     stations: Sequence[Station | None] = ()
@@ -132,6 +134,7 @@ class Draft:
             "support": self.supports,
             "hinge": self.hinges,
             "load": self.loads,
+            "stage": self.stages,
             "combination": self.combinations,
             "limit": self.limits,
             "station": self.stations,
@@ -157,6 +160,7 @@ def draft_of(member: Member) -> Draft:
         "material": tuple(m.name for m in member.materials),
         "station": tuple(s.name for s in member.stations),
         "combination": tuple(c.name for c in member.combinations) or ("all",),
+        "stage": tuple(s.name for s in member.stages),
         "case": (*member.cases, *(s.case for s in member.supports)),
     }
     same = {f.name: getattr(member, f.name) for f in fields(Draft) if f.name not in ("names", "references")}
@@ -189,6 +193,24 @@ def _references(member: Member) -> Iterator[Reference]:
             yield Reference(("limit", i, "at"), "station", limit.at)
         if limit.combination is not None:
             yield Reference(("limit", i, "combination"), "combination", limit.combination)
+    yield from _stage_references(member)
+
+
+def _stage_references(member: Member) -> Iterator[Reference]:
+    """Places that name a stage, and what stages name."""
+    for kind, things in (("part", member.parts), ("support", member.supports), ("hinge", member.hinges)):
+        for i, thing in enumerate(things):
+            for key in ("stage", "until"):
+                if getattr(thing, key) is not None:
+                    yield Reference((kind, i, key), "stage", getattr(thing, key))
+    for i, limit in enumerate(member.limits):
+        for key in ("after", "stage"):
+            if getattr(limit, key) is not None:
+                yield Reference(("limit", i, key), "stage", getattr(limit, key))
+    for i, stage in enumerate(member.stages):
+        yield from (Reference(("stage", i, "cases", k), "case", name) for k, name in enumerate(stage.cases))
+        for key, names in (("moduli", {**stage.moduli, **stage.factors}), ("creep", stage.creep)):
+            yield from (Reference(("stage", i, key, name), "material", name) for name in names)
 
 
 def unknown_names(draft: Draft) -> Iterator[Problem]:
@@ -203,7 +225,7 @@ def unknown_names(draft: Draft) -> Iterator[Problem]:
 
 def repeated_names(draft: Draft) -> Iterator[Problem]:
     """Find names that two things of one kind share."""
-    for kind in ("part", "support", "hinge", "station", "combination", "limit"):
+    for kind in ("part", "support", "hinge", "station", "stage", "combination", "limit"):
         seen: set[str] = set()
         for i, thing in enumerate(draft.listed[kind]):
             if thing is None:

@@ -13,16 +13,19 @@ from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
 from fishbelly.member.cross_check import cross_check
-from fishbelly.member.description import Member
+from fishbelly.member.description import Limit, Member
 from fishbelly.member.extremes import Extreme, largest, values_at
 from fishbelly.member.faults import CannotCompute
+from fishbelly.member.joints import joints
 from fishbelly.member.moduli import has_band
 from fishbelly.member.notes import notes
 from fishbelly.member.panels import Panels
-from fishbelly.member.part_forces import loadings
+from fishbelly.member.part_forces import Loading, loadings
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.places import default_places
-from fishbelly.member.spans import spans
+from fishbelly.member.spans import Span, spans
+from fishbelly.member.stage_results import since, stage_rows
+from fishbelly.member.stage_view import stage_number
 from fishbelly.member.station_results import envelope_rows, station_rows
 from fishbelly.member.stresses import PartStress, part_stresses
 
@@ -63,13 +66,7 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
         "length": member.length,
         "notes": notes(analysis, combinations),
         "combinations": combinations,
-        "stages": [
-            {
-                "name": "all",
-                "cases": list(member.cases),
-                "combinations": [{key: c[key] for key in ("name", "deflection", "stress")} for c in combinations],
-            }
-        ],
+        "stages": stage_rows(analysis, combinations, _deflection_and_stress),
     }
 
 
@@ -94,6 +91,14 @@ def _combination(analysis: Analysis, combined: Combined, wanted: list[float] | N
     return data
 
 
+def _deflection_and_stress(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p: Pieces) -> Data:
+    """What every stage tells of a combination."""
+    return {
+        "deflection": deflections(analysis, combined, p),
+        "stress": [_stress(s) for s in part_stresses(analysis, loading)],
+    }
+
+
 def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, check: bool = True) -> Data:
     """Results of one combination or arrangement; `check` asks the second method too."""
     loading = loadings(analysis, combined)
@@ -112,7 +117,7 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
         "spans": _spans(analysis, combined, p),
         "checks": [_check(c) for c in checks],
         "stress": [_stress(s) for s in stresses],
-        "joints": [],
+        "joints": joints(analysis, combined, loading, p),
     }
     data["cross_check"] = cross_check(analysis, combined, data["deflection"]) if check else None
     stations = station_rows(analysis, p, apexes, wanted)
@@ -147,7 +152,7 @@ def _shear_part(analysis: Analysis, combined: Combined, e: Extreme) -> Data:
     for mask, on in zip(combined.patterns, e.on, strict=True):
         if not on:
             off |= mask
-    stiff = analysis.superposed(combined.shares, combined.lifted, shear=False, off=off)
+    stiff = analysis.superposed(combined.shares, combined.lifted, shear=False, off=off, upto=combined.upto)
     side = "left" if e.at >= analysis.member.length else "right"
     bent = values_at(analysis.profile.panels, stiff.deflection[0], np.array([e.at]), side)
     return {"value": e.value, "at": e.at, "shear_part": e.value - float(bent[0])}
@@ -218,7 +223,7 @@ def _spans(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
     panels = analysis.profile.panels
     rows = []
     nothing = 1e-12 * float(np.abs(p.deflection[0].sum(axis=0)).max()) + analysis.round_off(combined.total)
-    for span in spans(analysis.member, combined.lifted):
+    for span in _spans_at(analysis, combined):
         field = relative(analysis, p.deflection[0], span)
         first, stop = panels.border(span.start), panels.border(span.end)
         both = [(s, largest(panels, s * field, first, stop)) for s in (1.0, -1.0)]
@@ -238,17 +243,34 @@ def _spans(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
 
 
 def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequence[PartStress]) -> list[Check]:
-    fields = Fields(p.deflection, p.rotation[0:2], spans(analysis.member, combined.lifted))
+    fields = Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined))
     found = []
     for limit in analysis.member.limits:
         if applies(limit, combined.combination):
-            check = check_limit(analysis, limit, fields)
+            check = check_limit(analysis, limit, _fields_of(analysis, combined, limit, fields))
             if check is not None:
                 found.append(check)
     strong = any(c.purpose == "strength" for c in analysis.member.combinations)
     if not strong or combined.combination.purpose == "strength":
         found += check_strengths(analysis, stresses)
     return found
+
+
+def _spans_at(analysis: Analysis, combined: Combined, stage: int | None = None) -> tuple[Span, ...]:
+    """Spans between the supports at work at the end of a stage."""
+    last = len(analysis.views) - 1 if combined.upto is None else combined.upto
+    view = analysis.views[last if stage is None else stage]
+    return spans(analysis.member, combined.lifted | view.gone)
+
+
+def _fields_of(analysis: Analysis, combined: Combined, limit: Limit, fields: Fields) -> Fields:
+    """Fields that a limit looks at: at the end of its stage, or what happens after another has begun."""
+    if limit.stage is None and limit.after is None:
+        return fields
+    at = stage_number(analysis.member, limit.stage)
+    after = None if limit.after is None else stage_number(analysis.member, limit.after)
+    p = since(analysis, combined, at, after)
+    return Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined, at))
 
 
 def _check(c: Check) -> Data:

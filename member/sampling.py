@@ -26,12 +26,6 @@ Array = NDArray[np.float64]
 
 RESOLVED = 1e-13
 """Last Chebyshev coefficients against the largest value: stiffness is resolved."""
-SHEAR_RESOLVED = 1e-10
-"""The same for 1/GA, whose share of a deflection is small and whose level cuts are good to about this."""
-SHEAR_JUMP = 1e-8
-"""Share of the length to which the place of a jump of GA inside a panel is found."""
-MOST_FOR_SHEAR = 24
-"""So many panels at once may be halved for the sake of GA alone."""
 MOST_ROUNDS = 44
 MOST_PANELS = 20_000
 APEX = 1e-6
@@ -52,12 +46,12 @@ class _Batch:
         return _Batch(*(v[index] for v in (self.a, self.b, self.anchor, self.varying, self.halved)))
 
 
-def build_profile(member: Member, more: tuple[float, ...] = (), shear: bool | None = None) -> Profile:
+def build_profile(member: Member, more: tuple[float, ...] = ()) -> Profile:
     """Sample a member in its last stage; see `build_profiles`."""
-    return build_profiles(member, more, shear)[-1]
+    return build_profiles(member, more)[-1]
 
 
-def build_profiles(member: Member, more: tuple[float, ...] = (), shear: bool | None = None) -> tuple[Profile, ...]:
+def build_profiles(member: Member, more: tuple[float, ...] = ()) -> tuple[Profile, ...]:
     """Sample a member in every stage, on one grid, so that its deflection is resolved to round-off.
 
     Parameters
@@ -66,8 +60,6 @@ def build_profiles(member: Member, more: tuple[float, ...] = (), shear: bool | N
         The description.
     more : tuple of float
         Further places that shall be borders of panels [m].
-    shear : bool, optional
-        Whether shear stiffness has to be resolved too; default as the member says.
 
     Returns
     -------
@@ -81,7 +73,6 @@ def build_profiles(member: Member, more: tuple[float, ...] = (), shear: bool | N
     CannotCompute
         When the section cannot be resolved.
     """
-    with_shear = member.shear if shear is None else shear
     stages = [_Stage.of(member, view) for view in stage_views(member)]
     batch = _start(member, [s.geometry for s in stages], breakpoints(member, more))
     kept: list[_Batch] = []
@@ -90,7 +81,7 @@ def build_profiles(member: Member, more: tuple[float, ...] = (), shear: bool | N
     for _ in range(MOST_ROUNDS):
         if not batch.a.size:
             break
-        done, worst = _sample(member, stages, batch, with_shear)
+        done, worst = _sample(stages, batch)
         kept.append(batch.at(done))
         for s in stages:
             s.keep(done)
@@ -125,9 +116,7 @@ class _Stage:
         self.kept.append(self.row[done])
 
 
-def _sample(
-    member: Member, stages: list[_Stage], batch: _Batch, shear: bool
-) -> tuple[NDArray[np.bool_], dict[str, Array]]:
+def _sample(stages: list[_Stage], batch: _Batch) -> tuple[NDArray[np.bool_], dict[str, Array]]:
     """Sample the panels of a batch in every stage: which are resolved in all of them, which end in an apex."""
     grid = Panels(batch.a, batch.b, batch.anchor)
     done = np.ones(batch.a.size, dtype=bool)
@@ -144,7 +133,7 @@ def _sample(
                 _stands(new, stage.short)
             stage.row[which] = stage.rows + np.arange(which.size)[:, None] * x.shape[1] + np.arange(x.shape[1])
             if varying:
-                found = _tails(stage.geometry, new, stage.short, stage.rows, which.size, shear, batch.at(which))
+                found = _tails(stage.geometry, new, stage.short, stage.rows, which.size, batch.at(which))
                 done[which] &= found["done"].astype(bool)
                 apex = np.where(apex != 0.0, apex, found["apex"])
             stage.groups += new
@@ -193,33 +182,25 @@ def _stands(new: list[Group], short: Moduli) -> None:
 
 
 def _tails(
-    geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, shear: bool, batch: _Batch
+    geometry: Geometry, new: list[Group], short: Moduli, first: int, count: int, batch: _Batch
 ) -> dict[str, Array]:
     """What is resolved, and which panels end in an apex (-2 at a, +2 at b).
 
     Far from the datum coordinates have fewer digits, and no more is asked of the section.
     """
-    v = _sampled(geometry.member, new, short, first, count, shear)
+    v = _sampled(geometry.member, new, short, first, count)
     if not np.all(np.isfinite(v)):
         first_bad = int(np.flatnonzero(~np.isfinite(v).all(axis=(0, 2)))[0])
         raise CannotCompute(f"no stiffness between x = {batch.a[first_bad]:.6g} m and {batch.b[first_bad]:.6g} m")
-    far = np.hypot(v[3], v[4]).max(axis=-1) / np.maximum(v[10].min(axis=-1), 1e-300)
-    unresolved = tail(v[:10], POINTS) - _noise(v[:10], batch) - 100.0 * np.finfo(float).eps * far
+    far = np.hypot(v[3], v[4]).max(axis=-1) / np.maximum(v[8].min(axis=-1), 1e-300)
+    unresolved = tail(v[:8], POINTS) - _noise(v[:8], batch) - 100.0 * np.finfo(float).eps * far
     inverse = unresolved[:3].max(axis=0)
-    largest = np.maximum(v[10].max(axis=-1), 1e-300)
-    levels = [3, 4, 8, 9]
+    largest = np.maximum(v[8].max(axis=-1), 1e-300)
+    levels = [3, 4, 6, 7]
     offset = unresolved[levels] * np.abs(v[levels]).max(axis=-1) / largest
     crossed = unresolved[5] * np.abs(v[5]).max(axis=-1)
     done = np.maximum.reduce([inverse, *offset, crossed]) < RESOLVED
-    bent = done | (width_of(batch) < 1e-12)
-    if shear:
-        # where a piece comes loose GA jumps; its place is then known to a small share of the member
-        narrow = batch.b - batch.a < SHEAR_JUMP * geometry.member.length
-        done &= (unresolved[6:8].max(axis=0) < SHEAR_RESOLVED) | narrow
     done |= width_of(batch) < 1e-12
-    if (bent & ~done).sum() > MOST_FOR_SHEAR:
-        # where parts touch at a point alone, level cuts give a GA that no panel resolves
-        done |= bent
     EI = 1.0 / v[1]
     r = rule(POINTS)
     lowest = APEX * EI.max(axis=-1)
@@ -232,29 +213,25 @@ def _tails(
     return {"done": done.astype(float), "apex": apex.astype(float)}
 
 
-def _sampled(member: Member, new: list[Group], short: Moduli, first: int, count: int, shear: bool) -> Array:
-    """What has to be resolved at the points of panels, shape (11, panels, n); size of the section last."""
-    columns = np.zeros((11, count * POINTS))
-    warm, aside = _asks(member)
+def _sampled(member: Member, new: list[Group], short: Moduli, first: int, count: int) -> Array:
+    """What has to be resolved at the points of panels, shape (9, panels, n); size of the section last."""
+    columns = np.zeros((9, count * POINTS))
+    warm = _warmed(member)
     for g in new:
         s, at = g.stiffness(short), g.rows - first
         size = np.sqrt(np.maximum(s.EI_y, s.EI_z) / s.EA)
         cross = s.EI_yz / np.sqrt(s.EI_y * s.EI_z)
-        ga = g.shear(short).GA if shear else np.ones(at.size)
-        across = g.shear(short, across=True).GA if shear and aside else np.ones(at.size)
         columns[:6, at] = (1.0 / s.EA, 1.0 / s.EI_y, 1.0 / s.EI_z, s.z_c, s.y_c, cross)
-        columns[6:8, at] = (1.0 / ga, 1.0 / across)
         if warm:
             low, high = g.composition.extent
-            columns[8:10, at] = (np.nanmin(low, axis=0), np.nanmax(high, axis=0))
-        columns[10, at] = size
-    return columns.reshape(11, count, POINTS)
+            columns[6:8, at] = (np.nanmin(low, axis=0), np.nanmax(high, axis=0))
+        columns[8, at] = size
+    return columns.reshape(9, count, POINTS)
 
 
-def _asks(member: Member) -> tuple[bool, bool]:
-    """Whether the loads ask for the section's top and bottom (a temperature gradient), and for shear sideways."""
-    warm = any(isinstance(v, Temperature) and v.parts is None and v.top != v.bottom for v in member.loads)
-    return warm, any(getattr(v, "direction", "") == "across" for v in member.loads)
+def _warmed(member: Member) -> bool:
+    """Whether the loads ask for the section's top and bottom: a temperature gradient."""
+    return any(isinstance(v, Temperature) and v.parts is None and v.top != v.bottom for v in member.loads)
 
 
 def _vanishes(geometry: Geometry, short: Moduli, a: float, b: float, apex: int) -> bool:

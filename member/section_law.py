@@ -18,6 +18,9 @@ from fishbelly.member.panels import Panels
 
 Array = NDArray[np.float64]
 
+SLIDE_SIGNS = np.array([[1.0], [1.0], [-1.0]])
+"""Plane 0 counts downwards, the section's z upwards: the mixed shear flexibility changes its sign."""
+
 
 @dataclass(frozen=True, eq=False)
 class Strains:
@@ -52,8 +55,9 @@ class ElasticLaw:
         E-weighted centroid from the analysis line, in both planes [m].
     bend : ndarray, shape (3, K, n)
         Curvature of plane 0 and of plane 1 by their own moment, and by the other's [1/(N m2)].
-    slide : ndarray, shape (2, K, n)
-        Shear angle by shear force, zero where shear is left out [1/N].
+    slide : ndarray, shape (3, K, n)
+        Shear angle of plane 0 and of plane 1 by their own shear force, and by the other's; zero where shear is left
+        out [1/N].
     """
 
     panels: Panels
@@ -73,11 +77,9 @@ class ElasticLaw:
         other = s.EI_y / det if coupled else 1.0 / s.EI_z
         # plane 1 counts -k_z and -M_z, so that the coupling changes its sign
         bend = np.stack((own, other, s.EI_yz / det if coupled else np.zeros_like(own)))
-        slide = np.zeros((2, profile.rows))
+        slide = np.zeros((3, profile.rows))
         if shear:
-            slide[0] = 1.0 / profile.shear_stiffness(moduli)
-            if planes > 1:
-                slide[1] = 1.0 / profile.shear_stiffness(moduli, across=True)
+            slide[: planes + planes // 2] = (SLIDE_SIGNS * profile.shear_flexibility(moduli))[: planes + planes // 2]
         c = np.stack((s.z_c, -s.y_c)) - frame.line[:, None]
         row = profile.row
         return cls(profile.panels, s.EA[row], c[:, row], bend[:, row], slide[:, row])
@@ -93,7 +95,7 @@ class ElasticLaw:
         k0 = self.bend[0] * first + self.bend[2] * second
         k1 = self.bend[2] * first + self.bend[1] * second
         axial = N / self.EA + k0 * self.c[0] + k1 * self.c[1]
-        shear = np.stack((V[0] * self.slide[0], V[1] * self.slide[1]))
+        shear = np.stack((V[0] * self.slide[0] + V[1] * self.slide[2], V[1] * self.slide[1] + V[0] * self.slide[2]))
         strains = Strains(axial, np.stack((k0, k1)), shear)
         for panel in self.panels.apexes:
             for field in (strains.axial, strains.curvature, strains.shear):

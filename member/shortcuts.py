@@ -51,7 +51,7 @@ def _prismatic(analysis: Analysis, EI: float) -> float | None:
     full = np.full(shape, EI)
     straight = np.zeros((2, *shape))
     bend = np.stack((1.0 / full, 1.0 / full, 0.0 * full))
-    law = ElasticLaw(analysis.profile.panels, np.full(shape, EI * 1e3), straight, bend, straight)
+    law = ElasticLaw(analysis.profile.panels, np.full(shape, EI * 1e3), straight, bend, np.zeros((3, *shape)))
     shares = analysis.shares(analysis.member.combinations[0])
     free = [Forces.none(shape)] * len(analysis.atoms)
     view = analysis.views[-1]

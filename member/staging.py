@@ -316,12 +316,8 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int, shear: bo
         held = held.plus(resultant(aged * free[part], profile.part_moments(part, s.frame.line)))
     law = ElasticLaw.of(s.frame, s.aged, planes, shear)
     if shear and record.creeping_shear is not None:
-        slid = (
-            ElasticLaw.of(s.frame, s.softened, planes, shear).slide
-            - ElasticLaw.of(s.frame, s.moduli, planes, shear).slide
-        )
-        angle = slid[:, None] * record.creeping_shear
-        held = Forces(held.N, angle / np.where(law.slide > 0.0, law.slide, np.inf)[:, None], held.M)
+        soft, now = (ElasticLaw.of(s.frame, m, planes, shear).slide for m in (s.softened, s.moduli))
+        held = Forces(held.N, _shear_for(law.slide, _angles(soft - now, record.creeping_shear)), held.M)
     if not (np.any(held.N) or np.any(held.M) or np.any(held.V)):
         return []
     each = [Forces(held.N[k], held.V[:, k], held.M[:, k]) for k in which]
@@ -329,6 +325,20 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int, shear: bo
     found = respond(s.frame, s.layout, law, [Atom("")] * len(which), none, each, planes)
     spread = _spread(found, which, count)
     return [Step(s.view.index, "creep", spread, s.aged, s.frame, free, True)]
+
+
+def _angles(slide: Array, V: Array) -> Array:
+    """Shear angles of both planes by shear forces, shape (2, A, K, n)."""
+    return np.stack((slide[0] * V[0] + slide[2] * V[1], slide[1] * V[1] + slide[2] * V[0]))
+
+
+def _shear_for(slide: Array, angles: Array) -> Array:
+    """Shear forces that give shear angles; nothing in a plane that does not shear."""
+    if not np.any(slide[1]):
+        return np.stack((angles[0] / slide[0], np.zeros_like(angles[0])))
+    det = slide[0] * slide[1] - slide[2] ** 2
+    first, second = slide[1] * angles[0] - slide[2] * angles[1], slide[0] * angles[1] - slide[2] * angles[0]
+    return np.stack((first, second)) / det
 
 
 def summed(steps: Sequence[Step], upto: int | None = None) -> Response:
