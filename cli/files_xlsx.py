@@ -15,9 +15,11 @@ from fishbelly.cli.file_grids import answers, checks, per_combination, section_d
 from fishbelly.cli.files_csv import head
 from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
+from fishbelly.cli.joint_grids import joint_flows, joints
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
 from fishbelly.cli.tables import SECTION_AXES, STIFFNESS_AXES
 from fishbelly.cli.tables_deflect import AXES
+from fishbelly.cli.without_grids import deflect_beside, section_beside, stiffness_beside
 
 _CREATED = datetime(2000, 1, 1)
 """Date in the file's properties, always the same so that the same job gives the same file."""
@@ -93,13 +95,33 @@ def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
         per_combination(data, "Spans", deflect_grids.spans),
         per_combination(data, "Ends", deflect_grids.ends),
         stress(data),
+        *_beside(data),
         stations(data),
         replace(stiffness_grid(table), title="EI"),
     ]
 
 
+def _beside(data: dict[str, Any]) -> list[Grid]:
+    """Joints of parts where there are any, and what is without parts where that was asked."""
+    if not any(c["joints"] for c in data["combinations"]):
+        return _titled(deflect_beside(data))
+    made = (("Joints and cut-offs", joints), ("Flow along joints", joint_flows))
+    return [*(per_combination(data, title, make) for title, make in made), *_titled(deflect_beside(data))]
+
+
+def _titled(grids: list[Grid]) -> list[Grid]:
+    """Give grids short titles for their sheets; what they are without is then told in the note."""
+    several = len(grids) > 1
+    return [
+        replace(
+            g, title=f"Without {k + 1}" if several else "Without", note="; ".join(t for t in (g.title, g.note) if t)
+        )
+        for k, g in enumerate(grids)
+    ]
+
+
 def _stiffness(data: dict[str, Any], _: Any) -> list[Grid]:
-    return [replace(stiffness_grid(data, full=True), title="EI")]
+    return [replace(stiffness_grid(data, full=True), title="EI"), *_titled(stiffness_beside(data))]
 
 
 def _section(data: dict[str, Any], job: Any) -> list[Grid]:
@@ -117,7 +139,7 @@ def _section(data: dict[str, Any], job: Any) -> list[Grid]:
             Column("unit", TEXT, tuple(unit_of(what, job.style)[0] for what, _ in shown)),
         ),
     )
-    return [single, ratios(data), *section_details(data)]
+    return [single, ratios(data), *section_details(data), *_titled(section_beside(data))]
 
 
 def _notes(command: str, data: dict[str, Any], job: Any) -> list[str]:

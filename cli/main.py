@@ -15,6 +15,7 @@ import click
 
 from fishbelly.cli.command_group import LazyGroup
 from fishbelly.cli.last_net import DONE, NOT_MET, WRONG, caught, discard_stdout
+from fishbelly.cli.without_option import WITHOUT, beside, known_parts
 
 NOT_BUILT = {
     "steps": "the fewest prismatic pieces that stand for the member in a frame model",
@@ -137,9 +138,17 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
     help="Side of a break.",
 )
 @click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
+@WITHOUT
 @_outputs
 def section(
-    job: str, places: tuple[str, ...], side: str, to: str | None, as_json: bool, outputs: tuple[str, ...], force: bool
+    job: str,
+    places: tuple[str, ...],
+    side: str,
+    to: str | None,
+    left_out: tuple[str, ...],
+    as_json: bool,
+    outputs: tuple[str, ...],
+    force: bool,
 ) -> int:
     """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
 
@@ -149,12 +158,15 @@ def section(
         raise click.UsageError(f"--at: expected one place, got {len(places)}; `stiffness` takes several")
     read, at = _read(job, places, outputs, force)
     from fishbelly.member.section_results import section_at
+    from fishbelly.member.without import section_without
 
     _known_material(to, read.member)
+    known_parts(left_out, read.member)
     from fishbelly.cli.patience import patience
 
     with patience("cutting the section"):
         data = section_at(read.member, at[0], side, to)
+        beside(data, left_out, lambda: section_without(data, read.member, left_out))
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
 
@@ -170,6 +182,7 @@ def section(
 @click.option("--equal", type=click.IntRange(1, 10_000), metavar="N", help="List N equal steps instead.")
 @click.option("--breaks", is_flag=True, help="List the breaks alone.")
 @click.option("--to", metavar="MATERIAL", help="Also give A, I, W and the axis, transformed to one material.")
+@WITHOUT
 @_outputs
 def stiffness(
     job: str,
@@ -177,6 +190,7 @@ def stiffness(
     equal: int | None,
     breaks: bool,
     to: str | None,
+    left_out: tuple[str, ...],
     as_json: bool,
     outputs: tuple[str, ...],
     force: bool,
@@ -190,8 +204,10 @@ def stiffness(
         raise click.UsageError("expected one of --at, --equal and --breaks, got more")
     read, places = _read(job, at, outputs, force)
     _known_material(to, read.member)
+    known_parts(left_out, read.member)
     from fishbelly.member.places import places_along
     from fishbelly.member.section_results import stiffness as table
+    from fishbelly.member.without import stiffness_without
 
     if equal is not None or breaks:
         places = places_along(read.member, equal)
@@ -199,6 +215,7 @@ def stiffness(
 
     with patience("sampling the member"):
         data = table(read.member, places or None, to)
+        beside(data, left_out, lambda: stiffness_without(data, read.member, left_out))
     return _finish("stiffness", data, read, as_json, outputs, force, listed=bool(places))
 
 
@@ -221,19 +238,30 @@ def _known_material(to: str | None, member: Any) -> None:
     help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
 )
 @click.option("--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order"))
+@WITHOUT
 @_outputs
-def deflect(job: str, at: tuple[str, ...], as_json: bool, outputs: tuple[str, ...], force: bool) -> int:
+def deflect(
+    job: str,
+    at: tuple[str, ...],
+    left_out: tuple[str, ...],
+    as_json: bool,
+    outputs: tuple[str, ...],
+    force: bool,
+) -> int:
     """Show reactions, moments, deflections, stresses and limits.
 
     Exit status 1 when a limit is not met. Example: fishbelly deflect my-beam.toml -o result.xlsx
     """
     read, places = _read(job, at, outputs, force)
+    known_parts(left_out, read.member)
     from fishbelly.cli.format_quantity import format_value
     from fishbelly.cli.patience import patience
     from fishbelly.member.results import deflect as solve
+    from fishbelly.member.without import deflect_without
 
     with patience("solving the member"):
         data = solve(read.member, places or None)
+        beside(data, left_out, lambda: deflect_without(data, read.member, left_out, places or None))
     said = [note.say(lambda value, what: format_value(value, what, read.style)) for note in data["notes"]]
     data["notes"] = [*read.warnings, *said]
     status = _finish("deflect", data, read, as_json, outputs, force, listed=bool(places))

@@ -6,35 +6,19 @@ from typing import Any
 
 from fishbelly.cli.catalog_properties import MEANINGS
 from fishbelly.cli.job_schema import DIALECT
-
-Schema = dict[str, Any]
-
-
-def _number(words: str, unit: str = "", **more: Any) -> Schema:
-    return {"type": "number", "description": f"{words} [{unit}]" if unit else words} | more
-
-
-def _text(words: str) -> Schema:
-    return {"type": "string", "description": words}
-
-
-def _maybe(schema: Schema) -> Schema:
-    """Return the same, or null: what does not exist."""
-    return schema | {"type": [schema["type"], "null"]}
-
-
-def _object(words: str, properties: dict[str, Schema], optional: dict[str, Schema] | None = None) -> Schema:
-    return {
-        "type": "object",
-        "description": words,
-        "properties": properties | (optional or {}),
-        "required": list(properties),
-        "additionalProperties": False,
-    }
-
-
-def _list(words: str, item: Schema) -> Schema:
-    return {"type": "array", "description": words, "items": item}
+from fishbelly.cli.result_schema_joints import joints_schema
+from fishbelly.cli.result_schema_section import twist_schema
+from fishbelly.cli.result_schema_without import (
+    deflect_without_schema,
+    section_without_schema,
+    stiffness_without_schema,
+)
+from fishbelly.cli.schema_words import Schema
+from fishbelly.cli.schema_words import array as _list
+from fishbelly.cli.schema_words import maybe as _maybe
+from fishbelly.cli.schema_words import number as _number
+from fishbelly.cli.schema_words import record as _object
+from fishbelly.cli.schema_words import text as _text
 
 
 _AT = _number("place along the member", "m")
@@ -74,6 +58,10 @@ _TRANSFORMED = {
 _TO = {"to": _text("material to which the section is transformed"), "E": _number("its modulus", "Pa")}
 
 
+def _angles(words: str) -> Schema:
+    return {"type": "object", "description": words, "additionalProperties": _number("angle", "rad")}
+
+
 def _section() -> Schema:
     per_moment = _object(
         "stress for a moment of 1 N m",
@@ -91,8 +79,13 @@ def _section() -> Schema:
         "z_top": _maybe(_number("level of its top", "m")),
         "z_bottom": _maybe(_number("level of its bottom", "m")),
         "stress_per_moment": per_moment,
+        "W": _object(
+            "section modulus of the part's fibres, elastic: moment over stress",
+            {k: _maybe(_number(f"at the part's {k}", "m3")) for k in ("top", "bottom")},
+        ),
         "stress_per_force": _maybe(_number("stress for an axial force of 1 N", "Pa/N")),
     }
+    leaning = _angles("angle to the axis of flanges that count along their slope; all: a plate")
     ratios = {"type": "object", "description": "ratio of moduli by material", "additionalProperties": _number("ratio")}
     levels = {"top": _number("level of the section's top", "m"), "bottom": _number("level of its bottom", "m")}
     principal = {
@@ -100,22 +93,23 @@ def _section() -> Schema:
         "EI_2": _maybe(_number("smallest", "N m2")),
         "angle": _maybe(_number("angle of the first principal axis", "rad")),
     }
+    shears = {"GA_y": _maybe(_number("shear stiffness sideways", "N")), "GA_z": _GA_Z}
     return _object(
         "The cross-section at one place.",
         _HEAD
         | {"x": _AT, "side": {"enum": ["left", "right"], "description": "side of a break"}, "stage": _STAGE}
         | {"break": {"type": "boolean", "description": "whether something begins, ends or changes its law there"}}
         | _STIFFNESS
-        | {"GA_y": _maybe(_number("shear stiffness sideways", "N")), "GA_z": _GA_Z}
+        | shears
         | _CENTROID
         | {
             "principal": _object("principal axes", principal),
-            "parts": _list("parts there", _object("a part", part)),
+            "parts": _list("parts there", _object("a part", part, {"inclined": leaning})),
             "transformed": _object(
                 "properties transformed to one material", _TO | _TRANSFORMED | {"n": ratios} | levels
             ),
         },
-        {"notes": _NOTES},
+        {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)} | twist_schema(),
     )
 
 
@@ -123,10 +117,17 @@ def _stiffness() -> Schema:
     ends = {f"z_{k}": _maybe(_number(f"level of the section's {k}", "m")) for k in ("top", "bottom")}
     station = {"x": _AT} | _STIFFNESS | {"GA_z": _GA_Z} | _CENTROID | ends | {"break": _BREAK}
     single = {"transformed": _object("section of that one material that is as stiff, with --to", _TRANSFORMED)}
+    leaning = {"part": _text("the part"), "flange": _text("top, bottom, or all of a plate")}
+    leaning |= {"angle": _number("its angle to the axis", "rad")}
+    single |= {"inclined": _list("flanges and plates that count along their slope", _object("one", leaning))}
     return _object(
         "Stiffness along the member; two stations at one x where it jumps, the left one first.",
         _HEAD | {"stage": _STAGE, "stations": _list("stations by x", _object("a station", station, single))},
-        {"transformed": _object("with --to", _TO), "notes": _NOTES},
+        {
+            "transformed": _object("with --to", _TO),
+            "notes": _NOTES,
+            "without": stiffness_without_schema(_AT, _STIFFNESS | {"GA_z": _GA_Z} | _CENTROID),
+        },
     )
 
 
@@ -285,10 +286,13 @@ def _spans() -> Schema:
     )
 
 
+def _moments() -> Schema:
+    found = {k: _extreme(w, "N m") for k, w in (("sagging", "largest"), ("hogging", "largest, negative"))}
+    return _object("largest moments", found)
+
+
 def _combination() -> Schema:
-    moments = {k: _extreme(w, "N m") for k, w in (("sagging", "largest"), ("hogging", "largest, negative"))}
     shears = {k: _extreme(w, "N", maybe=False) for k, w in (("max", "largest"), ("min", "smallest"))}
-    joints = {"type": "array", "description": "joints between parts; none yet in this version", "maxItems": 0}
     station = {"x": _AT, "name": _maybe(_text("name of a named station")), "break": _BREAK} | _STATION
     return _object(
         "a combination",
@@ -296,14 +300,14 @@ def _combination() -> Schema:
             "name": _text("its name"),
             "for": {"enum": ["deflection", "strength"], "description": "what it is for"},
             "deflection": _deflection(),
-            "moment": _object("largest moments", moments),
+            "moment": _moments(),
             "shear": _object("largest shear forces", shears),
             "supports": _supports(),
             "ends": _object("movements of the ends", {k: _object(f"{k} end", _END) for k in ("left", "right")}),
             "spans": _spans(),
             "checks": _checks(),
             "stress": _stress(),
-            "joints": joints,
+            "joints": joints_schema(),
             "cross_check": _cross_check(),
             "stations": _list("values along the member; two at one x where one jumps", _object("a station", station)),
         },
@@ -323,6 +327,7 @@ def _deflect() -> Schema:
             _object("a combination", {"name": _text("its name"), "deflection": _deflection(), "stress": _stress()}),
         ),
     }
+    bare = {"deflection": _deflection(), "moment": _moments(), "stress": _stress(), "checks": _checks()}
     return _object(
         "Reactions, moments, deflections, stresses and limits.",
         _HEAD
@@ -332,6 +337,7 @@ def _deflect() -> Schema:
             "combinations": _list("combinations", _combination()),
             "stages": _list("stages of construction", _object("a stage", stage)),
         },
+        {"without": deflect_without_schema(bare)},
     )
 
 

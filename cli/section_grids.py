@@ -14,6 +14,8 @@ Line = tuple[str, str, str, float | None]
 
 NOISE = 1e-10
 """Stiffnesses below this share of the larger of EI_y and EI_z are noise."""
+_FINITE = 1e-6
+"""The same of the shear centre, which is found by finite elements, against the depth."""
 
 
 def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
@@ -35,6 +37,7 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
         ("EI_yz", "coupling of the two", "bending stiffness", coupled),
         ("GA_z", "shear, vertical plane", "shear stiffness", data["GA_z"]),
         ("GA_y", "shear, sideways", "shear stiffness", data["GA_y"]),
+        *_torsion(data.get("torsion")),
     ]
     axes: list[Line] = [
         ("EI_1", "largest", "bending stiffness", big),
@@ -47,6 +50,7 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
         ("z_top", "top of the section", "length", _whole(top, depth)),
         ("z_bottom", "bottom of the section", "length", _whole(bottom, depth)),
         ("depth", "overall", "length", depth),
+        *_shear_centre(data.get("shear"), depth),
         ("mass", "per length", "mass per length", data["mass"]),
     ]
     transformed: list[Line] = [
@@ -65,9 +69,29 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
     ]
 
 
-def _whole(value: float | None, depth: float | None) -> float | None:
+def _torsion(torsion: Row | None) -> list[Line]:
+    """Torsional stiffness between its bounds; nothing where it cannot be had."""
+    if not torsion or torsion["GJ"] is None:
+        return []
+    return [
+        ("GJ", "torsion, St Venant", "bending stiffness", torsion["GJ"]),
+        ("", "lower bound, stress function", "bending stiffness", torsion["lower"]),
+        ("", "upper bound, warping", "bending stiffness", torsion["upper"]),
+    ]
+
+
+def _shear_centre(shear: Row | None, depth: float | None) -> list[Line]:
+    if not shear:
+        return []
+    return [
+        ("z_s", "shear centre, above the datum line positive", "length", _whole(shear["z_s"], depth, _FINITE)),
+        ("y_s", "shear centre, to the right positive", "length", _whole(shear["y_s"], depth, _FINITE)),
+    ]
+
+
+def _whole(value: float | None, depth: float | None, noise: float = NOISE) -> float | None:
     """Set a level that is noise beside the depth to 0."""
-    return 0.0 if value is not None and depth and abs(value) < NOISE * depth else value
+    return 0.0 if value is not None and depth and abs(value) < noise * depth else value
 
 
 def ratios(data: Row) -> Grid:
@@ -117,8 +141,12 @@ def section_stresses(data: Row) -> Grid:
             column(rows, "at its top", "stress per moment", per_moment("top"), own=True, scale=top),
             column(rows, "at its bottom", "stress per moment", per_moment("bottom"), own=True, scale=top),
             column(rows, "by axial force", "stress per force", "stress_per_force", own=True),
+            *(
+                column(rows, f"W {edge}", "section modulus", lambda r, e=edge: (r.get("W") or {}).get(e), own=True)
+                for edge in ("top", "bottom")
+            ),
         ),
-        "per unit of sagging moment, and of tension at the centroid; tension positive",
+        "per unit of sagging moment, and of tension at the centroid; tension positive; W: moment over stress there",
     )
 
 

@@ -20,6 +20,7 @@ from fishbelly.cli.section_grids import (
 from fishbelly.cli.station_choice import breaks, without_repeats
 from fishbelly.cli.tables_deflect import deflect_table
 from fishbelly.cli.text_table import paragraph, render
+from fishbelly.cli.without_grids import section_beside, stiffness_beside
 
 __all__ = ["deflect_table", "section_table", "stiffness_table"]
 
@@ -64,7 +65,7 @@ def section_table(data: Mapping[str, Any], style: str) -> str:
         lines += [*paragraph(heading), *_values(values, style), ""]
         if heading.startswith("Transformed") and len(data["transformed"].get("n") or {}) > 1:
             lines += [*_headed(ratios(data), style), ""]
-    for grid in (section_parts(data), section_stresses(data)):
+    for grid in (section_parts(data), section_stresses(data), *section_beside(data)):
         lines += [*_headed(grid, style), ""]
     return "\n".join([*lines, *_closing(data)]) + "\n"
 
@@ -138,6 +139,8 @@ def stiffness_table(data: Mapping[str, Any], style: str, listed: bool = False) -
         if len(kept) < len(rows):
             said = ["", *paragraph(_LEFT_OUT.format(kept=len(kept), all=len(rows)))]
     lines = [*_title(data, grid.title), *paragraph(STIFFNESS_AXES), "", *render(grid, style), *said, ""]
+    for beside in stiffness_beside(data):
+        lines += [*_headed(beside if listed or not rows else beside.picked(kept), style), ""]
     return "\n".join([*lines, *_closing(data)]) + "\n"
 
 

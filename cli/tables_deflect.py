@@ -10,8 +10,10 @@ from fishbelly.cli import deflect_grids as grids
 from fishbelly.cli.cautions import LINE
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
+from fishbelly.cli.joint_grids import joint_flows, joints
 from fishbelly.cli.station_choice import chosen
 from fishbelly.cli.text_table import clean, fits, paragraph, render, shown_width
+from fishbelly.cli.without_grids import deflect_beside
 
 Row = Mapping[str, Any]
 
@@ -48,6 +50,8 @@ def deflect_table(data: Row, style: str, listed: bool = False) -> str:
         lines += [*_headed(grids.summary(data), style), ""]
     for k, combination in enumerate(data["combinations"]):
         lines += _combination(combination, data["length"], style, listed, data["combinations"][:k])
+    for grid in deflect_beside(data):
+        lines += [*_headed(grid, style), ""]
     if data.get("notes"):
         lines.append("Notes")
         for note in data["notes"]:
@@ -70,6 +74,8 @@ def _combination(c: Row, length: float, style: str, listed: bool, earlier: Seque
         grids.spans(c, noise),
         grids.ends(c, noise),
         _without(grids.stress(c, noise), "shear at x"),
+        joints(c, noise),
+        joint_flows(c, noise),
     ]
     for grid in tables:
         if grid is None:

@@ -158,6 +158,8 @@ def _flexibility(frame: Frame, layout: Layout, law: ElasticLaw, states: list[Sta
     F = np.zeros((len(states), len(states)))
     if not states:
         return F
+    if not getattr(law, "local", True):
+        return _flexibility_together(frame, layout, law, states, units)
     used = sorted({SLOT[s.name] for s in states})
     chosen = Forces(units.N[used], units.V[:, used], units.M[:, used])
     strains = law.strains(chosen)
@@ -178,6 +180,34 @@ def _flexibility(frame: Frame, layout: Layout, law: ElasticLaw, states: list[Sta
             for j in rows:
                 F[i, j] = work[SLOT[states[i].name], SLOT[states[j].name]][seg.first : seg.stop].sum()
     return F
+
+
+AT_ONCE = 24
+"""Unit states that a law which is not local is given at once."""
+
+
+def _flexibility_together(frame: Frame, layout: Layout, law: ElasticLaw, states: list[State], units: Forces) -> Array:
+    """Flexibility for a law that is not local: a unit state strains every segment, so each stands alone."""
+    F = np.zeros((len(states), len(states)))
+    shape = units.N.shape[1:]
+    for start in range(0, len(states), AT_ONCE):
+        some = states[start : start + AT_ONCE]
+        alone = Forces(np.zeros((len(some), *shape)), *(np.zeros((2, len(some), *shape)) for _ in range(2)))
+        for k, state in enumerate(some):
+            seg, slot = layout.segments[state.segment], SLOT[state.name]
+            part = slice(seg.first, seg.stop)
+            alone.N[k, part] = units.N[slot, part]
+            alone.V[:, k, part], alone.M[:, k, part] = units.V[:, slot, part], units.M[:, slot, part]
+        strains = law.strains(alone)
+        for slot in sorted({SLOT[s.name] for s in states}):
+            one = Forces(units.N[slot], units.V[:, slot], units.M[:, slot])
+            one = Forces(one.N, one.V[:, None], one.M[:, None])
+            work = virtual_work(frame, one, strains)
+            for i, state in enumerate(states):
+                if SLOT[state.name] == slot:
+                    seg = layout.segments[state.segment]
+                    F[i, start : start + len(some)] = work[:, seg.first : seg.stop].sum(axis=1)
+    return 0.5 * (F + F.T)
 
 
 def solve(
@@ -229,7 +259,7 @@ def _gaps(frame: Frame, r: Redundants, law: ElasticLaw, forces: Forces, free: Fo
     """Deformation of each unknown end force under the loads on the released member."""
     if not r.states:
         return np.zeros(0)
-    strains = law.strains(forces.plus(free))
+    strains = law.strains(free.plus(forces))
     result = np.zeros(len(r.states))
     for slot in {SLOT[s.name] for s in r.states}:
         one = Forces(r.units.N[slot], r.units.V[:, slot], r.units.M[:, slot])

@@ -75,7 +75,7 @@ def free_plane(profile: Profile, load: Load, group: Group, x: Array, short: Modu
             e[k] = -load.strain
         elif load.force is not None:
             # the strain it is fixed with; over a run-in the force it passes on grows with the modulus that works
-            stiff = short.E[group.placed.index[k]] * group.composition.moments.area[k]
+            stiff = short.E[group.placed.index[k]] * group.moments.area[k]
             e[k] = -load.force / np.where(stiff > 0.0, stiff, np.inf)
     if not (np.any(e) or np.any(a)):
         return None
@@ -87,7 +87,7 @@ def resultants(plane: FreePlane, group: Group, E: Array) -> tuple[Array, Array, 
 
     Added to the forces N, M_y, M_z they give the strains of the section.
     """
-    m = group.composition.moments
+    m = group.moments
     mean = plane.e + plane.a * m.z + plane.b * m.y
     force = E * m.area * mean
     moment_y = -(force * m.z + E * (plane.a * m.zz + plane.b * m.yz))

@@ -6,16 +6,19 @@ breaks); `present` says which.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.description import Member, Opening, Part
+from fishbelly.member.inclined import Rises, drawn_flanges, may_incline, normal, rises, steepened
 from fishbelly.member.openings import grown, half_length, notch_depth, notch_span, opening_depth
+from fishbelly.member.standing import Stand, offset
+from fishbelly.sections.flanges import Flange
 from fishbelly.sections.outlines import OUTLINES, Outline, polygon, rectangle
-from fishbelly.sections.placing import Bounds, against, anchored
+from fishbelly.sections.placing import Bounds
 
 Array = NDArray[np.float64]
 
@@ -50,6 +53,8 @@ class PlacedParts:
         What is taken away.
     run_in : ndarray, shape (P, S)
         Share of E and G that works, 0 to 1.
+    flanges : tuple of Flange
+        Flanges and plates that count along their slope; their `part` is an index into `outlines`.
     """
 
     x: Array
@@ -57,16 +62,7 @@ class PlacedParts:
     outlines: tuple[Outline, ...]
     cuts: tuple[Cut, ...]
     run_in: Array
-
-
-@dataclass(frozen=True, eq=False)
-class _Stand:
-    """Bounding box of a part without haunches, and how far haunches move its bottom, middle and top [m]."""
-
-    box: Bounds
-    bottom: Array
-    middle: Array
-    top: Array
+    flanges: tuple[Flange, ...] = ()
 
 
 @dataclass(frozen=True, eq=False)
@@ -120,6 +116,11 @@ class Geometry:
         return parts, tuple(notches), openings, standing
 
     @cached_property
+    def may_incline(self) -> bool:
+        """Whether flanges or plates may have to count along their slope."""
+        return may_incline(self.member)
+
+    @cached_property
     def opening_levels(self) -> tuple[float, ...]:
         """Level of the middle of each opening [m]."""
         return tuple(self._opening_level(k) for k in range(len(self.member.openings)))
@@ -155,7 +156,7 @@ class Geometry:
         """
         x = np.atleast_1d(np.asarray(x, dtype=float))
         parts, notches, openings, standing = there or self.present(float(x[0]), side)
-        _, outlines = self._stand(standing, x, side)
+        _, outlines, flanges = self._stand(standing, x, side)
         adding = tuple(i for i in parts if not self.member.parts[i].cuts)
         names = [self.member.parts[i].name for i in adding]
         cuts = [
@@ -166,7 +167,9 @@ class Geometry:
         cuts += [c for k in notches for c in self._notch(k, names, outlines, adding, x, side)]
         cuts += [c for k in openings for c in self._opening(k, names, outlines, adding, x)]
         run_in = np.array([self._run_in(self.member.parts[i], x) for i in adding]).reshape(len(adding), x.size)
-        return PlacedParts(x, adding, tuple(outlines[i] for i in adding), tuple(c for c in cuts if c.targets), run_in)
+        shown = tuple(c for c in cuts if c.targets)
+        inclined = tuple(replace(f, part=k) for k, i in enumerate(adding) for f in flanges.get(i, ()))
+        return PlacedParts(x, adding, tuple(outlines[i] for i in adding), shown, run_in, inclined)
 
     def _run_in(self, part: Part, x: Array) -> Array:
         left, right = part.run_in
@@ -177,29 +180,37 @@ class Geometry:
             factor = np.minimum(factor, (part.end - x) / right)
         return np.clip(factor, 0.0, 1.0)
 
-    def _stand(self, parts: tuple[int, ...], x: Array, side: str) -> tuple[dict[str, _Stand], dict[int, Outline]]:
-        stands: dict[str, _Stand] = {}
+    def _stand(
+        self, parts: tuple[int, ...], x: Array, side: str
+    ) -> tuple[dict[str, Stand], dict[int, Outline], dict[int, list[Flange]]]:
+        stands: dict[str, Stand] = {}
         outlines: dict[int, Outline] = {}
+        flanges: dict[int, list[Flange]] = {}
+        inclined = rises(self.member, parts, x, side) if self.may_incline else {}
         for i in parts:
             part = self.member.parts[i]
             below = grown(self.member, part.name, "bottom", x, side)
             above = grown(self.member, part.name, "top", x, side)
-            drawn = _drawn(part, x, side, 0.0)
-            dy, dz, shift = _offset(part, Bounds.of(drawn), stands, x, side)
+            steep = inclined.get(i, {})
+            drawn = _drawn(part, x, side, 0.0, steep)
+            dy, dz, shift = offset(part, Bounds.of(drawn), stands, lambda law: law(x, side))
             placed = drawn.moved(dy, dz)
             box = Bounds.of(placed)
             if np.any(below) or np.any(above):
-                grown_outline = _drawn(part, x, side, below + above)
-                placed = grown_outline.moved(dy, box.top + above - Bounds.of(grown_outline).top)
+                grown_outline = _drawn(part, x, side, below + above, steep)
+                dz = box.top + above - Bounds.of(grown_outline).top
+                placed = grown_outline.moved(dy, dz)
             host = stands.get(part.place.host)
+            about = host.box.middle_y if part.pair and host is not None else np.zeros(x.size)
             if part.pair:
-                about = host.box.middle_y if host is not None else np.zeros(x.size)
                 placed = placed.joined(placed.mirrored(about))
                 right = np.maximum(box.right, 2.0 * about - box.left)
                 box = Bounds(2.0 * about - right, box.bottom, right, box.top)
-            stands[part.name] = _Stand(box, shift - below, shift, shift + above)
+            stands[part.name] = Stand(box, shift - below, shift, shift + above)
             outlines[i] = placed.moved(0.0, shift)
-        return stands, outlines
+            if steep:
+                flanges[i] = _flanges(part, _values(part, x, side, below + above, steep), steep, (dy, dz, shift), about)
+        return stands, outlines, flanges
 
     def _notch(
         self,
@@ -259,34 +270,35 @@ def _box_outline(left: Array, bottom: Array, right: Array, top: Array) -> Outlin
     return outline.moved(0.5 * (left + right), 0.5 * (bottom + top))
 
 
-def _drawn(part: Part, x: Array, side: str, extra: Array | float) -> Outline:
+def _values(part: Part, x: Array, side: str, extra: Array | float, steep: Rises) -> dict[str, Array]:
+    """Dimensions of a part, `extra` deeper, its inclined flanges as deep as they stand on the section."""
+    values = {name: law(x, side) for name, law in part.shape.dimensions.items()}
+    if np.any(extra):
+        values["depth"] = values["depth"] + extra
+    return steepened(part, values, steep) if steep else values
+
+
+def _drawn(part: Part, x: Array, side: str, extra: Array | float, steep: Rises) -> Outline:
     """Outline of a part in its own frame, `extra` deeper, mirrored and turned."""
     shape = part.shape
     if shape.kind == "polygon":
         outline = polygon(shape.points, shape.holes, x.size)
     else:
-        values = {name: law(x, side) for name, law in shape.dimensions.items()}
-        if np.any(extra):
-            values["depth"] = values["depth"] + extra
-        outline = OUTLINES[shape.kind](values)
+        outline = OUTLINES[shape.kind](_values(part, x, side, extra, steep))
     if part.mirror:
         outline = outline.mirrored()
     return outline.turned(part.turn)
 
 
-def _offset(part: Part, box: Bounds, stands: dict[str, _Stand], x: Array, side: str) -> tuple[Array, Array, Array]:
-    """Shift of a part as placed without haunches, and how far haunches of others carry it [m]."""
-    place = part.place
-    zero = np.zeros(x.size)
-    dy0, dz0 = place.shift[0](x, side), place.shift[1](x, side)
-    if place.relation == "datum":
-        dy, dz = anchored(box, place.anchor or "top", 0.0, 0.0)
-        return dy + dy0, dz + dz0, zero
-    if place.relation == "position":
-        assert place.position is not None
-        dy, dz = anchored(box, place.anchor or "middle", place.position[0](x, side), place.position[1](x, side))
-        return dy + dy0, dz + dz0, zero
-    host = stands[place.host]
-    dy, dz = against(box, host.box, place.relation, place.flush, place.gap(x, side))
-    edge = {"under": "bottom", "over": "top"}.get(place.relation, place.flush)
-    return dy + dy0, dz + dz0, {"bottom": host.bottom, "top": host.top}.get(edge, host.middle)
+def _flanges(
+    part: Part, values: dict[str, Array], steep: Rises, moved: tuple[Array, Array, Array], about: Array
+) -> list[Flange]:
+    """Inclined flanges of a part where they stand; `moved` is how far it is shifted right, up and carried."""
+    found = []
+    for face, outline in drawn_flanges(part, values, steep).items():
+        stands = outline.moved(moved[0], moved[1])
+        if part.pair:
+            stands = stands.joined(stands.mirrored(about))
+        n_y, n_z = normal(part)
+        found.append(Flange(0, face, stands.moved(0.0, moved[2]), steep[face], (0.0 if part.pair else n_y, n_z)))
+    return found

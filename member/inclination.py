@@ -6,12 +6,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
+from fishbelly.member.inclined import FLANGES, is_plate
 
 Array = NDArray[np.float64]
-
-THIN = ("I", "tee", "channel", "box")
-"""Outlines whose flanges count along their slope; plates are rectangles that follow another part's outline."""
-
 
 def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
     """Steepest lower or upper face of each part that has one above half a degree.
@@ -19,8 +16,8 @@ def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
     Returns
     -------
     list of (name, x, angle, counts)
-        Part, place [m], angle to the member's axis [rad], and whether a flange or plate of constant thickness
-        runs there, which a vertical cut overstates.
+        Part, place [m], angle to the member's axis [rad], and whether a flange or plate runs there, which a vertical
+        cut overstates.
     """
     profile = analysis.profile
     panels = profile.panels
@@ -44,7 +41,7 @@ def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
             if slope[k] > best[0]:
                 best = (float(slope[k]), float(panels.x[k]))
         angle = float(np.arctan(best[0]))
-        follows = part.shape.kind == "rectangle" and part.place.relation in ("under", "over")
         if angle > np.radians(0.5):
-            found.append((part.name, best[1], angle, part.shape.kind in THIN or follows))
+            thin = part.shape.kind in FLANGES or is_plate(analysis.member, part)
+            found.append((part.name, best[1], angle, thin))
     return found

@@ -12,6 +12,8 @@ from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
+from fishbelly.member.notes_joints import joints_full, joints_short
+from fishbelly.member.notes_twist import twisting
 from fishbelly.member.shortcuts import shortcuts
 from fishbelly.member.spans import spans
 from fishbelly.sections.composition import Composition
@@ -83,7 +85,7 @@ def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
             continue
         names = tuple(analysis.member.parts[i].name for i in group.placed.index)
         together = group.stiffness(short).EI_y
-        own = (group.modulus(short.E) * section.moments.zz).sum(axis=0)
+        own = (group.modulus(short.E) * group.moments.zz).sum(axis=0)
         k = int(np.argmax(together / np.where(own > 0.0, own, np.inf)))
         joined = len(touching_groups(section.outlines, k)) == 1
         if worst is None or together[k] / own[k] > worst[1] / worst[2]:
@@ -170,13 +172,18 @@ def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
 
 
 def _inclined(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    groups = analysis.profile.groups
+    along = {analysis.member.parts[g.placed.index[f.part]].name for g in groups for f in g.placed.flanges}
     for name, at, angle, counts in steepest_faces(analysis):
         if counts:
-            over = 1.0 / np.cos(angle) ** 3 - 1.0
+            over = 1.0 / np.cos(angle) ** 4 - 1.0
             if over > 5e-4:
+                if name in along:
+                    how = "counts along its slope, its thickness square to it; there a vertical cut would overstate"
+                else:
+                    how = "counts as a vertical cut shows it, which overstates"
                 yield Note(
-                    f"{name} is inclined by {{angle}} at x = {{at}} and counts as a vertical cut shows it, "
-                    f"which overstates what it carries by {100 * over:.1f} %",
+                    f"{name} is inclined by {{angle}} at x = {{at}} and {how} what it carries by {100 * over:.1f} %",
                     {"angle": (angle, "angle"), "at": (at, "position")},
                 )
         if angle > np.radians(12.5):
@@ -184,6 +191,11 @@ def _inclined(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
                 f"{name} tapers by {{angle}} at x = {{at}}: beam theory is an estimate above about 10 to 15 degrees",
                 {"angle": (angle, "angle"), "at": (at, "position")},
             )
+    if along:
+        yield Note(
+            "the force of an inclined flange carries part of the shear force: shear stresses in webs are those of the "
+            "rest; shear stiffness is that of the section as a vertical cut shows it"
+        )
 
 
 def _deep(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
@@ -287,12 +299,15 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _moduli_apart,
     _lasting,
     _stressed,
+    joints_short,
+    joints_full,
     _inclined,
     _deep,
     _thrust,
     _cantilevers,
     _camber,
     _openings,
+    twisting,
     _large,
     _lifted,
     shortcuts,

@@ -15,8 +15,9 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Frame
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.moduli import Moduli
+from fishbelly.member.panels import Panels
 from fishbelly.member.response import Response
-from fishbelly.member.staging import Step
+from fishbelly.member.staging import Step, resultant
 
 Array = NDArray[np.float64]
 
@@ -99,13 +100,22 @@ def stress_planes(loading: Sequence[Loading], index: int) -> Array | None:
         return None
     total: Array | None = None
     for share in loading:
-        if index not in share.step.parts:
-            continue
-        r = share.response
-        strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]), axis=1)
-        free = share.step.free.get(index)
-        if free is not None:
-            strain = strain - np.einsum("ja,cakn->jckn", share.factors, free)
-        stress = share.step.frame.profile.part_modulus(index, share.moduli.E) * strain
-        total = stress if total is None else total + stress
+        stress = share_plane(share, index)
+        if stress is not None:
+            total = stress if total is None else total + stress
+    if total is None:
+        shape = loading[0].response.N.shape
+        total = np.zeros((shape[0], 3, *shape[1:]))
     return total
+
+
+def share_plane(share: Loading, index: int) -> Array | None:
+    """Stress plane of a part from one share in one step, as `stress_planes` has it; None where it is not there."""
+    if index not in share.step.parts:
+        return None
+    r = share.response
+    strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]), axis=1)
+    free = share.step.free.get(index)
+    if free is not None:
+        strain = strain - np.einsum("ja,cakn->jckn", share.factors, free)
+    return np.asarray(share.step.frame.profile.part_modulus(index, share.moduli.E) * strain)

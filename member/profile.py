@@ -21,7 +21,10 @@ from fishbelly.member.geometry import Geometry, PlacedParts
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.openings import half_length, notch_span
 from fishbelly.member.panels import Panels
+from fishbelly.member.shear_along import ShearAlong
+from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.composition import Composition
+from fishbelly.sections.flanges import flange_moments, working_moments
 from fishbelly.sections.shear_stiffness import ShearStiffness, shear_stiffness
 from fishbelly.sections.stiffness import SectionStiffness, section_stiffness
 
@@ -43,11 +46,21 @@ class Group:
         """Moduli of the parts of this group at its stations, run-in counted, shape (P, S)."""
         return np.asarray(values[list(self.placed.index)][:, None] * self.placed.run_in)
 
+    @cached_property
+    def moments(self) -> AreaMoments:
+        """Moments of what works of each part along the member, inclined flanges by their share, shape (P, S)."""
+        return working_moments(self.composition, self.placed.flanges, self.flange_moments)
+
+    @cached_property
+    def flange_moments(self) -> tuple[AreaMoments, ...]:
+        """Moments of what is left of each inclined flange as it is cut, fields of shape (S,)."""
+        return flange_moments(self.composition, self.placed.flanges)
+
     def stiffness(self, moduli: Moduli) -> SectionStiffness:
         """Section stiffness for a set of moduli, fields of shape (S,); computed once."""
         if id(moduli) not in self._stiff:
             # the moduli are kept beside the result, so that their identity stays theirs
-            self._stiff[id(moduli)] = (moduli, section_stiffness(self.composition.moments, self.modulus(moduli.E)))
+            self._stiff[id(moduli)] = (moduli, section_stiffness(self.moments, self.modulus(moduli.E)))
         return self._stiff[id(moduli)][1]
 
     def shear(self, moduli: Moduli, across: bool = False) -> ShearStiffness:
@@ -59,6 +72,9 @@ class Group:
 
     def _shear(self, moduli: Moduli, across: bool) -> ShearStiffness:
         stiffness = self.stiffness(moduli)
+        if self.placed.flanges:
+            # shear is that of the section as it is cut: the bending that goes with it weighs every part in full
+            stiffness = section_stiffness(self.composition.moments, self.modulus(moduli.E))
         section = self.composition
         if across:
             section = self._turned
@@ -129,7 +145,7 @@ class Profile:
         columns = np.zeros((6, self.rows))
         for g in self.groups:
             if part in g.placed.index:
-                m = g.composition.moments.at(g.placed.index.index(part))
+                m = g.moments.at(g.placed.index.index(part))
                 c0, c1 = m.z - line[0], -m.y - line[1]
                 A = m.area
                 columns[:, g.rows] = (A, A * c0, A * c1, m.zz + A * c0 * c0, A * c0 * c1 - m.yz, m.yy + A * c1 * c1)
@@ -143,17 +159,24 @@ class Profile:
                 column[g.rows] = g.modulus(values)[g.placed.index.index(part)]
         return column[self.row]
 
-    def shear_stiffness(self, moduli: Moduli, across: bool = False) -> Array:
-        """GA along z, or along y, at every sampled place [N], shape (R,)."""
+    @cached_property
+    def shear_along(self) -> ShearAlong:
+        """Shear stiffness by the section's strain energy, along the member."""
+        return ShearAlong(self.geometry)
+
+    def shear_flexibility(self, moduli: Moduli) -> Array:
+        """Shear angle by shear force along z, along y, and along y by one along z [1/N], shape (3, R)."""
 
         def build() -> Array:
-            column = np.full(self.rows, np.nan)
+            columns = np.full((3, self.rows), np.nan)
             for g in self.groups:
-                column[g.rows] = g.shear(moduli, across).GA
-            return column
+                x = g.placed.x
+                whole = (g.modulus(moduli.G) * g.composition.moments.area).sum(axis=0)
+                columns[:, g.rows] = self.shear_along.coefficients(x, x, moduli.E, moduli.G) / whole
+            return columns
 
-        column: Array = self._once("across" if across else "down", moduli, build)
-        return column
+        columns: Array = self._once("shear", moduli, build)
+        return columns
 
     def mass(self, density: Array, parts: frozenset[str] = frozenset()) -> tuple[Array, Array, Array]:
         """Mass per length [kg/m] and its centroid y, z [m] at every sampled place, each shape (R,).

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import cached_property
@@ -9,7 +10,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.description import Member
+from fishbelly.member.description import Haunch, Member
 from fishbelly.member.laws import Law
 
 Array = NDArray[np.float64]
@@ -154,6 +155,7 @@ def _named(member: Member) -> Iterator[float]:
         yield from notch.depth.knots.tolist()
     for haunch in member.haunches:
         yield from (haunch.at - haunch.reach[0], haunch.at, haunch.at + haunch.reach[1])
+    yield from _meetings(member)
     for opening in member.openings:
         half = 0.5 * (opening.length if opening.diameter is None else opening.diameter)
         corner = 0.0 if opening.diameter is not None else opening.radius
@@ -166,6 +168,31 @@ def _named(member: Member) -> Iterator[float]:
                 yield float(value)
         for x, _ in getattr(place_of, "stations", ()):
             yield float(x)
+
+
+def _meetings(member: Member) -> Iterator[float]:
+    """Places at which another haunch becomes the deepest of its face [m]: depths are parabolas between stations."""
+    for k, one in enumerate(member.haunches):
+        for other in member.haunches[:k]:
+            if (one.of, one.side) != (other.of, other.side):
+                continue
+            x = np.unique([v for h in (one, other) for v in (h.at - h.reach[0], h.at, h.at + h.reach[1])])
+            for a, b in itertools.pairwise(x.tolist()):
+                low, middle, high = (_deeper(one, v, a + b) - _deeper(other, v, a + b) for v in (a, 0.5 * (a + b), b))
+                bend, lean = 2.0 * (low - 2.0 * middle + high), 4.0 * middle - 3.0 * low - high
+                # low + lean t + bend t² = 0; the second form keeps the root of a parabola that is nearly straight
+                root = np.sqrt(max(lean * lean - 4.0 * bend * low, 0.0))
+                half = -0.5 * (lean + np.copysign(root, lean))
+                for over, under in ((half, bend), (low, half)):
+                    if under and 0.0 < over / under < 1.0:
+                        yield a + over / under * (b - a)
+
+
+def _deeper(haunch: Haunch, x: float, twice: float) -> float:
+    """Depth that a haunch adds at x, in the stretch about half of `twice` [m]."""
+    reach = haunch.reach[0] if twice < 2.0 * haunch.at else haunch.reach[1]
+    t = max(0.0, 1.0 - abs(x - haunch.at) / reach) if reach > 0.0 else 0.0
+    return haunch.depth * (t * t if haunch.law == "parabola" else t)
 
 
 def root_ends(member: Member) -> list[float]:

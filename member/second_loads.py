@@ -76,6 +76,8 @@ class Pushes:
         Jumps of (N, V, V across, M, M across) at the borders.
     free : ndarray, shape (3, K, n)
         Forces (N, M, M across) that would hold free strain back, about the line.
+    angle : ndarray, shape (2, K, n), optional
+        Shear angle of each plane that comes without a shear force.
     """
 
     q: Array
@@ -83,13 +85,23 @@ class Pushes:
     m: Array
     jumps: Array
     free: Array
+    angle: Array | None = None
+
+    @classmethod
+    def none(cls, shape: tuple[int, ...]) -> Pushes:
+        """Return no loads on intervals whose points have shape (K, n)."""
+        k, n = shape
+        return cls(
+            np.zeros((2, k, n)), np.zeros((k, n)), np.zeros((2, k, n)), np.zeros((5, k + 1)), np.zeros((3, k, n))
+        )
 
 
 @dataclass(frozen=True, eq=False)
 class Ground:
     """What loads stand on: the member, its intervals and sections, the line and the short-term centroid.
 
-    `line`: level of the line in both planes, shape (2,) [m]; `centroid`: from it, shape (2, K, n).
+    `line`: level of the line in both planes, shape (2,) [m]; `centroid`: from it, shape (2, K, n); `works`: numbers
+    of the parts that work, None for all.
     """
 
     member: Member
@@ -98,6 +110,7 @@ class Ground:
     short: Array
     line: Array
     centroid: Array
+    works: frozenset[int] | None = None
 
     @classmethod
     def of(cls, member: Member, intervals: Intervals, sections: Sections, short: Array) -> Ground:
@@ -105,6 +118,10 @@ class Ground:
         c = flexibility(sections, short).c
         line = 0.5 * (c.max(axis=(1, 2)) + c.min(axis=(1, 2)))
         return cls(member, intervals, sections, short, line, c - line[:, None, None])
+
+    def weighed(self, load: SelfWeight) -> tuple[Sections, frozenset[str]]:
+        """Sections in which a self weight finds its parts, and the names of these."""
+        return self.sections, frozenset(load.parts or (p.name for p in self.member.parts))
 
     def border(self, x: float) -> int:
         """Number of the border at x; K is the far end."""
@@ -121,7 +138,7 @@ class Ground:
         if level == "datum":
             z = 0.0
         elif isinstance(level, str):
-            placed = Geometry(self.member).place(np.array([x]), "left" if last else "right")
+            placed = Geometry(self.member, self.works).place(np.array([x]), "left" if last else "right")
             bounds = [o.bounds() for o in placed.outlines]
             z = min(float(b[1][0]) for b in bounds) if level == "bottom" else max(float(b[3][0]) for b in bounds)
         else:
@@ -131,8 +148,7 @@ class Ground:
 
 def pushes(ground: Ground, share: LoadShare) -> Pushes:
     """Collect the loads of a share, each times its factor."""
-    k, n = ground.intervals.x.shape
-    p = Pushes(np.zeros((2, k, n)), np.zeros((k, n)), np.zeros((2, k, n)), np.zeros((5, k + 1)), np.zeros((3, k, n)))
+    p = Pushes.none(ground.intervals.x.shape)
     for load in ground.member.loads:
         factor = share.factor(load)
         if factor == 0.0:
@@ -188,10 +204,11 @@ def _along_length(ground: Ground, p: Pushes, load: Distributed, factor: float) -
 
 
 def _weight(ground: Ground, p: Pushes, load: SelfWeight, factor: float) -> None:
-    member, s = ground.member, ground.sections
+    member = ground.member
+    s, weighed = ground.weighed(load)
     density = np.zeros(len(member.parts))
     for k, part in enumerate(member.parts):
-        if part.material is not None and (load.parts is None or part.name in load.parts):
+        if part.material is not None and part.name in weighed:
             density[k] = member.material(part.material).density or 0.0
     mass, y, z = np.einsum("p,pmkn->mkn", density, s.stands[:, :3])
     pull = factor * load.factor * G0
@@ -214,20 +231,26 @@ def _force(ground: Ground, p: Pushes, load: Point, factor: float) -> None:
 def _hold_back(ground: Ground, p: Pushes, load: Temperature | Shrinkage | Prestress, factor: float, E: Array) -> None:
     """Free strain e + a (z - about) of every part, times E, as forces about the line."""
     s = ground.sections
-    middle = 0.5 * (ground.intervals.a + ground.intervals.b)
     for k, part in enumerate(ground.member.parts):
         if part.material is None:
             continue
-        e, a = _plane(ground, load, k)
-        if isinstance(load, (Temperature, Shrinkage)):
-            on = ((middle > load.start) & (middle < load.end))[:, None]
-            e, a = e * on, a * on
+        e, a = free_strain(ground, load, k)
         area, y, z, _, zz, yz = s.works[k]
         weight = factor * E[k] * s.run_in[k]
         force = weight * (e * area + a * z)
         p.free[0] += force
         p.free[1] -= weight * (e * z + a * zz) + force * (s.about[1] - ground.line[0])
         p.free[2] += weight * (e * y + a * yz) + force * (s.about[0] + ground.line[1])
+
+
+def free_strain(ground: Ground, load: Temperature | Shrinkage | Prestress, k: int) -> tuple[Array, Array]:
+    """Free strain of part k at the point `about`, and its change with z [1/m], where the load says."""
+    e, a = _plane(ground, load, k)
+    if isinstance(load, Prestress):
+        return e, a
+    middle = 0.5 * (ground.intervals.a + ground.intervals.b)
+    on = ((middle > load.start) & (middle < load.end))[:, None]
+    return e * on, a * on
 
 
 def _plane(ground: Ground, load: Temperature | Shrinkage | Prestress, k: int) -> tuple[Array, Array]:

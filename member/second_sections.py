@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -13,6 +13,7 @@ from fishbelly.member.faults import NoStiffness
 from fishbelly.member.geometry import Geometry, PlacedParts
 from fishbelly.member.loads import Temperature
 from fishbelly.member.second_grid import POINTS, RULE, Intervals, first_intervals
+from fishbelly.member.second_inclined import Band, bands
 from fishbelly.member.second_strips import StripMoments, strip_moments
 from fishbelly.sections.outlines import Outline
 
@@ -88,8 +89,8 @@ class Flexibility:
         E-weighted centroid [m].
     bend : ndarray, shape (2, 2, K, n)
         Curvature by moments about the centroid [1/(N m2)].
-    slide : ndarray, shape (2, K, n)
-        Shear angle by shear force [1/N].
+    slide : ndarray, shape (3, K, n)
+        Shear angle by the plane's own shear force, and of each plane by that of the other [1/N].
     """
 
     EA: Array
@@ -108,7 +109,7 @@ def flexibility(s: Sections, E: Array, slide: Array | None = None) -> Flexibilit
         det = iy * iz - cross * cross
         bend = np.array([[iz / det, -cross / det], [-cross / det, iy / det]])
     c = np.stack((z + s.about[1], -(y + s.about[0])))
-    return Flexibility(area, c, bend, np.zeros_like(c) if slide is None else slide)
+    return Flexibility(area, c, bend, np.zeros((3, *area.shape)) if slide is None else slide)
 
 
 @dataclass(frozen=True, eq=False)
@@ -140,36 +141,66 @@ def sample(member: Member, moduli: Sequence[Array], slides: Sequence[Slide | Non
     NoStiffness
         Where no part is there, or none that has stiffness.
     """
-    geometry = Geometry(member)
+    return sample_stages(member, [None], [moduli], [slides])[0]
+
+
+def sample_stages(
+    member: Member,
+    works: Sequence[frozenset[int] | None],
+    moduli: Sequence[Sequence[Array]],
+    slides: Sequence[Sequence[Slide | None]],
+) -> tuple[Sampled, ...]:
+    """Evaluate the sections of a member stage by stage, on intervals that resolve them all; see `sample`.
+
+    Parameters
+    ----------
+    member : Member
+        The description.
+    works : sequence of (frozenset of int or None)
+        Parts that work in each stage; None for all.
+    moduli, slides : sequence of sequence
+        Sets of E, and 1/GA, that shall be resolved in each stage.
+    """
+    geometries = [Geometry(member, w) for w in works]
     batch = first_intervals(member)
     most = MOST_INTERVALS + batch.a.size
     # a temperature from top to bottom follows the edges, whose corners may change over in a turned section
     warmed = any(isinstance(v, Temperature) and v.parts is None for v in member.loads)
-    kept: list[tuple[Intervals, Sections, Array]] = []
+    kept: list[tuple[Intervals, list[Sections], Array]] = []
     count = 0
     for _ in range(MOST_ROUNDS):
-        sections, varies = _evaluated(geometry, batch)
-        tail, thin = _tails(sections, batch, moduli, slides, varies, warmed)
+        found = [_evaluated(geometry, batch) for geometry in geometries]
+        tails = [
+            _tails(s, batch, E, slide, varies, warmed)
+            for (s, varies), E, slide in zip(found, moduli, slides, strict=True)
+        ]
+        sections, tail = [s for s, _ in found], np.max([t for t, _ in tails], axis=0)
+        thin = tails[0][1]
+        for _, ends in tails[1:]:
+            thin = np.where(thin == 0, ends, thin)
         done = tail * (batch.b - batch.a) / member.length < RESOLVED
         done |= batch.b - batch.a <= SMALLEST * member.length
         count += done.size
         if count > most:
             done[:] = True
-        kept.append((batch.at(done), sections.at(done), tail[done]))
+        kept.append((batch.at(done), [s.at(done) for s in sections], tail[done]))
         if np.all(done):
             break
         batch = _refined(batch, ~done, thin, SMALLEST * member.length)
     else:
-        kept.append((batch, *_last(geometry, batch)))
+        # what is left when the rounds are over is not resolved
+        kept.append((batch, [_evaluated(g, batch)[0] for g in geometries], np.ones(batch.a.size)))
     intervals = Intervals.joined([k[0] for k in kept])
     order = np.argsort(intervals.a, kind="stable")
-    everything = Sections.joined([k[1] for k in kept])
-    return Sampled(intervals.at(order), everything.at(order), np.concatenate([k[2] for k in kept])[order])
+    tail = np.concatenate([k[2] for k in kept])[order]
+    stages = [Sections.joined([k[1][stage] for k in kept]).at(order) for stage in range(len(geometries))]
+    intervals = intervals.at(order)
+    return tuple(Sampled(intervals, s, tail) for s in stages)
 
 
-def _last(geometry: Geometry, batch: Intervals) -> tuple[Sections, Array]:
-    """Sections of what is left when the rounds are over, not resolved."""
-    return _evaluated(geometry, batch)[0], np.ones(batch.a.size)
+def sections_on(member: Member, works: frozenset[int], intervals: Intervals) -> Sections:
+    """Evaluate the sections of some parts on intervals that are given."""
+    return _evaluated(Geometry(member, works), intervals)[0]
 
 
 def _refined(batch: Intervals, rest: NDArray[np.bool_], thin: NDArray[np.int_], smallest: float) -> Intervals:
@@ -248,9 +279,9 @@ def _evaluated(geometry: Geometry, i: Intervals) -> tuple[Sections, NDArray[np.b
         still, moving = k[~varies[k]], k[varies[k]]
         points = np.arange(k.size * POINTS).reshape(k.size, POINTS)
         if still.size:
-            _fill(s, still, placed, points[~varies[k], :1])
+            _fill(geometry.member, s, still, placed, points[~varies[k], :1])
         if moving.size:
-            _fill(s, moving, placed, points[varies[k]])
+            _fill(geometry.member, s, moving, placed, points[varies[k]])
     return s, varies
 
 
@@ -264,13 +295,15 @@ def _varies(placed: PlacedParts, count: int) -> NDArray[np.bool_]:
     return result
 
 
-def _fill(s: Sections, k: NDArray[np.intp], placed: PlacedParts, points: NDArray[np.intp]) -> None:
+def _fill(
+    member: Member, s: Sections, k: NDArray[np.intp], placed: PlacedParts, points: NDArray[np.intp]
+) -> None:
     """Evaluate the section at points (an index into the placed stations, a row for each interval)."""
     flat = points.ravel()
     outlines = [_rows(o, flat) for o in placed.outlines]
     cuts = [(_rows(c.outline, flat), c.targets, c.mass) for c in placed.cuts]
-    works = strip_moments(outlines, [(o, t) for o, t, _ in cuts])
-    stands = works
+    inclined = bands(member, placed.index, outlines, placed.x[flat])
+    works, stands = _weighed(outlines, [(o, t) for o, t, _ in cuts], inclined)
     if not all(mass for _, _, mass in cuts):
         stands = strip_moments(outlines, [(o, t) for o, t, mass in cuts if mass])
     index = np.array(placed.index)
@@ -283,6 +316,33 @@ def _fill(s: Sections, k: NDArray[np.intp], placed: PlacedParts, points: NDArray
         getattr(s, name)[index[:, None, None], np.arange(6)[:, None], k] = spread(found.values)
     _spread_rest(s, k, works, spread)
     s.run_in[index[:, None], k] = spread(placed.run_in[:, flat])
+
+
+def _weighed(
+    outlines: list[Outline], cuts: list[tuple[Outline, tuple[int, ...]]], inclined: list[Band]
+) -> tuple[StripMoments, StripMoments]:
+    """Moments of the parts as they work along the member, bands with their share, and as they stand there."""
+    if not inclined:
+        found = strip_moments(outlines, cuts)
+        return found, found
+    every: list[Outline] = []
+    own: list[int] = []
+    within: dict[int, int] = {}
+    shares = {}
+    for part, outline in enumerate(outlines):
+        own.append(len(every))
+        every.append(outline)
+        for band in (b for b in inclined if b.part == part):
+            within[len(every)], shares[len(every)] = own[part], band.share
+            every.append(band.outline)
+    cut = [(o, tuple(n for t in targets for n in (own[t], *(b for b, p in within.items() if p == own[t]))))
+           for o, targets in cuts]
+    split = strip_moments(every, cut, within)
+    works, stands = split.values[own], split.values[own]
+    for band_at, part_at in within.items():
+        works[own.index(part_at)] += shares[band_at] * split.values[band_at]
+        stands[own.index(part_at)] += split.values[band_at]
+    return replace(split, values=works), replace(split, values=stands)
 
 
 def _spread_rest(s: Sections, k: NDArray[np.intp], works: StripMoments, spread: Callable[[Array], Array]) -> None:

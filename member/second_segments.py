@@ -196,7 +196,8 @@ def strains(f: Flexibility, line: Array, fields: Fields) -> Strain:
     about = [fields.M[p] + fields.N * c[p] for p in range(2)]
     curvature = np.stack([f.bend[p, 0] * about[0] + f.bend[p, 1] * about[1] for p in range(2)])
     axial = fields.N / f.EA + curvature[0] * c[0] + curvature[1] * c[1]
-    return Strain(axial, curvature, np.stack([fields.V[p] * f.slide[p] for p in range(2)]))
+    angle = np.stack([fields.V[p] * f.slide[p] + fields.V[1 - p] * f.slide[2] for p in range(2)])
+    return Strain(axial, curvature, angle)
 
 
 def end_movements(cut: Segments, strain: Strain) -> tuple[Array, Array]:

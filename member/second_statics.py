@@ -7,7 +7,7 @@ redundants, have no part in it.
 
 from __future__ import annotations
 
-from collections.abc import Collection
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field
 from functools import cached_property
 
@@ -110,8 +110,27 @@ class Frame:
         return [0, 1, 2, 3, 4] if self.planes == 2 else [0, 1, 3]
 
 
-def frame(ground: Ground, lifted: Collection[str], planes: int) -> Frame:
+def frame(
+    ground: Ground,
+    lifted: Collection[str],
+    planes: int,
+    hinges: Collection[float] | None = None,
+    homes: Mapping[str, Ground] | None = None,
+) -> Frame:
     """Find the nodes, and everything that is held.
+
+    Parameters
+    ----------
+    ground : Ground
+        What stands there.
+    lifted : collection of str
+        Names of the supports that hold nothing.
+    planes : int
+        1: the vertical plane alone; 2: both.
+    hinges : collection of float, optional
+        Places of the hinges that are open [m]; default all.
+    homes : mapping of str to Ground, optional
+        By support, what stood there when it came: its level is found on that.
 
     Raises
     ------
@@ -123,10 +142,10 @@ def frame(ground: Ground, lifted: Collection[str], planes: int) -> Frame:
     if not working:
         raise Mechanism("there is no support")
     count = ground.intervals.a.size
-    hinged = {ground.border(h.at): h.at for h in member.hinges}
+    hinged = {ground.border(x): x for x in ([h.at for h in member.hinges] if hinges is None else hinges)}
     borders = sorted({0, count, *(b for _, _, b in working), *(b for b in hinged if 0 < b < count)})
     node = {b: k for k, b in enumerate(borders)}
-    holds = _holds(ground, [(i, s, node[b]) for i, s, b in working], planes)
+    holds = _holds(ground, [(i, s, node[b]) for i, s, b in working], planes, homes or {})
     places = [float(np.append(ground.intervals.a, ground.intervals.b[-1])[b]) for b in borders]
     holds += _references(holds, node[working[0][2]], places, planes)
     hinges = {node[b]: float(ground.level("centroid", x)[0]) for b, x in hinged.items() if 0 < b < count}
@@ -134,14 +153,17 @@ def frame(ground: Ground, lifted: Collection[str], planes: int) -> Frame:
     return Frame(tuple(borders), tuple(holds), hinges, cut, planes)
 
 
-def _holds(ground: Ground, working: list[tuple[int, Support, int]], planes: int) -> list[Hold]:
+def _holds(
+    ground: Ground, working: list[tuple[int, Support, int]], planes: int, homes: Mapping[str, Ground]
+) -> list[Hold]:
     found: list[Hold] = []
     for i, support, node in working:
         for way, name in enumerate(WAYS[: 5 if planes == 2 else 3]):
             stiffness = float(getattr(support, name))
             if stiffness == 0.0:
                 continue
-            level = ground.level(support.level, support.at) if name == "along" else np.zeros(2)
+            home = homes.get(support.name, ground)
+            level = home.level(support.level, support.at) if name == "along" else np.zeros(2)
             for k, h in enumerate(found):
                 if h.node == node and h.way == way and np.abs(h.level - level).max() < 1e-9:
                     found[k] = Hold(node, way, h.level, (*h.supports, (i, stiffness)))
@@ -211,11 +233,14 @@ class System:
         Jumps of forces by loads at the borders.
     sinks : ndarray, shape (holds, 2)
         Settlement of rigid supports, and spring stiffness times settlement.
+    opened : mapping of int to float
+        Moment about the centroid just right of a hinge, by node, where it is not zero [N m].
     """
 
     frame: Frame
     jumps: Array
     sinks: Array
+    opened: Mapping[int, float] = field(default_factory=dict)
     count: int = 0
     move: dict[tuple[int, int], int] = field(default_factory=dict)
     force: dict[tuple[int, int], int] = field(default_factory=dict)
@@ -260,7 +285,7 @@ class System:
         return found
 
     def right_of(self, j: int) -> Affine:
-        """Forces just right of a node; about the centroid no moment right of a hinge."""
+        """Forces just right of a node; about the centroid no moment right of a hinge but one that is given."""
         if j == 0:
             return self.node_jumps[0]
         f = self.frame
@@ -268,7 +293,8 @@ class System:
         coefficients = np.eye(5)[:, free]
         if j in f.hinges:
             coefficients[3, free.index(0)] = -f.hinges[j]
-        return Affine([self.force[j, c] for c in free], coefficients, np.zeros(5))
+        given = np.array([0.0, 0.0, 0.0, self.opened.get(j, 0.0), 0.0])
+        return Affine([self.force[j, c] for c in free], coefficients, given)
 
     def left_of(self, j: int) -> Affine:
         """Forces just left of a node."""
@@ -279,7 +305,7 @@ class System:
         return Affine(
             right.columns + jump.columns,
             np.hstack((right.coefficients, -jump.coefficients)),
-            -jump.constant,
+            right.constant - jump.constant,
         )
 
 

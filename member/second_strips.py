@@ -7,7 +7,7 @@ Nothing here is shared with the first method's area moments.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -65,7 +65,11 @@ class _Edges:
     owner: Index
 
 
-def strip_moments(outlines: Sequence[Outline], cuts: Sequence[tuple[Outline, tuple[int, ...]]]) -> StripMoments:
+def strip_moments(
+    outlines: Sequence[Outline],
+    cuts: Sequence[tuple[Outline, tuple[int, ...]]],
+    within: Mapping[int, int] | None = None,
+) -> StripMoments:
     """Moments of parts of which later ones displace earlier ones, cuts taken off.
 
     Parameters
@@ -74,6 +78,8 @@ def strip_moments(outlines: Sequence[Outline], cuts: Sequence[tuple[Outline, tup
         The P parts, each at S stations.
     cuts : sequence of (Outline, tuple of int)
         What is taken away, and from which parts.
+    within : mapping of int to int, optional
+        Outlines that take over only what is owned, so far, by an outline before them.
 
     Returns
     -------
@@ -88,7 +94,7 @@ def strip_moments(outlines: Sequence[Outline], cuts: Sequence[tuple[Outline, tup
     stations = about.shape[1]
     step = max(1, _LARGEST // max(1, levels.shape[1] * edges.owner.size))
     pieces = [
-        _integrated(_rows(edges, slice(k, k + step)), levels[k : k + step], len(outlines), targets)
+        _integrated(_rows(edges, slice(k, k + step)), levels[k : k + step], len(outlines), targets, within or {})
         for k in range(0, stations, step)
     ]
     values, bottom, top = (np.concatenate([p[k] for p in pieces], axis=-1) for k in range(3))
@@ -231,10 +237,12 @@ def _crossings(e: _Edges, i: Index, j: Index) -> Array:
     return np.concatenate(columns, axis=1)
 
 
-def _integrated(e: _Edges, levels: Array, parts: int, targets: Sequence[tuple[int, ...]]) -> tuple[Array, Array, Array]:
+def _integrated(
+    e: _Edges, levels: Array, parts: int, targets: Sequence[tuple[int, ...]], within: Mapping[int, int]
+) -> tuple[Array, Array, Array]:
     """Moments (P, 6, S), bottom and top (S,) of stations whose levels are given."""
     below, above = levels[:, :-1], levels[:, 1:]
-    order, y, owner = _owned(e, 0.5 * (below + above), parts, targets)
+    order, y, owner = _owned(e, 0.5 * (below + above), parts, targets, within)
     before = np.concatenate((np.full((*owner.shape[:2], 1), -1), owner[:, :, :-1]), axis=2)
     # only edges that part what is owned from what is not, or by another part, count
     s, k, place = np.nonzero((before != owner) & (above > below)[:, :, None])
@@ -258,7 +266,7 @@ def _integrated(e: _Edges, levels: Array, parts: int, targets: Sequence[tuple[in
 
 
 def _owned(
-    e: _Edges, z: Array, parts: int, targets: Sequence[tuple[int, ...]]
+    e: _Edges, z: Array, parts: int, targets: Sequence[tuple[int, ...]], within: Mapping[int, int]
 ) -> tuple[Index, Array, NDArray[np.int_]]:
     """Edges met by level lines from left to right, their y, and the part to the right of each (-1: none)."""
     dz = z[:, :, None] - e.z0[:, None, :]
@@ -278,7 +286,9 @@ def _owned(
     owner = np.full(y.shape, -1)
     for k in range(parts + len(targets)):
         inside = np.cumsum(np.where(whose == k, enters, 0.0), axis=2) > 0.5
-        if k < parts:
+        if k in within:
+            owner[inside & (owner == within[k])] = k
+        elif k < parts:
             owner[inside] = k
         else:
             owner[inside & np.isin(owner, targets[k - parts])] = -1

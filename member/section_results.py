@@ -12,9 +12,12 @@ from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.description import Material, Member
 from fishbelly.member.faults import NoStiffness
 from fishbelly.member.geometry import Geometry
+from fishbelly.member.inclined_results import along_at_levels, inclined_at, inclined_there
 from fishbelly.member.moduli import Moduli, moduli
 from fishbelly.member.places import default_places, two_sided
 from fishbelly.member.profile import Group, group_places
+from fishbelly.member.section_shear import NO_SHEAR, shear_and_torsion
+from fishbelly.member.shear_along import ShearAlong
 from fishbelly.sections.stiffness import SectionStiffness, principal_axes
 
 Array = NDArray[np.float64]
@@ -61,7 +64,7 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
     }
     data["break"] = bool(np.abs(breakpoints(member) - x).min() < 1e-9 * member.length)
     data |= {k: _number(getattr(s, k)[0]) for k in ("EA", "EI_y", "EI_z", "EI_yz")}
-    data |= {"GA_y": _shear(member, group, short, True), "GA_z": _shear(member, group, short, False)}
+    data |= shear_and_torsion(member, group, short) if _has_shear(member, group) else NO_SHEAR
     data |= {"y_c": _number(s.y_c[0]), "z_c": _number(s.z_c[0]), "mass": _mass(member, group)}
     big, small, angle = principal_axes(s)
     data["principal"] = {"EI_1": _number(big[0]), "EI_2": _number(small[0]), "angle": _number(angle[0])}
@@ -77,10 +80,6 @@ def _number(value: float) -> float | None:
 def _has_shear(member: Member, group: Group) -> bool:
     parts = [member.parts[i] for i in group.placed.index]
     return all(member.material(p.material or "").shear_modulus is not None for p in parts)
-
-
-def _shear(member: Member, group: Group, short: Moduli, across: bool) -> float | None:
-    return _number(group.shear(short, across).GA[0]) if _has_shear(member, group) else None
 
 
 def _densities(member: Member) -> Array | None:
@@ -107,7 +106,10 @@ def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli) -> 
     for k, i in enumerate(group.placed.index):
         part = member.parts[i]
         bottom, top = float(low[k, 0]), float(high[k, 0])
-        per_moment = [_number(-E[k, 0] * (z - s.z_c[0]) / s.EI_y[0]) for z in (top, bottom)]
+        along = along_at_levels(group, k, (top, bottom))
+        per_moment = [
+            _number(-E[k, 0] * a * (z - s.z_c[0]) / s.EI_y[0]) for z, a in zip((top, bottom), along, strict=True)
+        ]
         rows.append(
             {
                 "name": part.name,
@@ -121,10 +123,24 @@ def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli) -> 
                 "z_top": _number(top),
                 "z_bottom": _number(bottom),
                 "stress_per_moment": {"top": per_moment[0], "bottom": per_moment[1]},
+                "W": {
+                    "top": _section_modulus(E[k, 0], top - s.z_c[0], s),
+                    "bottom": _section_modulus(E[k, 0], bottom - s.z_c[0], s),
+                },
                 "stress_per_force": _number(E[k, 0] / s.EA[0]),
             }
         )
+        leaning = {r["flange"]: r["angle"] for r in inclined_there(member, group, 0) if r["part"] == part.name}
+        if leaning:
+            rows[-1]["inclined"] = leaning
     return rows
+
+
+def _section_modulus(E: float, arm: float, s: SectionStiffness) -> float | None:
+    """M over stress at a fibre of a part, without sign [m3]; None at the axis, and where the part does not work."""
+    if not E * abs(arm) > 1e-9 * E * np.sqrt(s.EI_y[0] / s.EA[0]):
+        return None
+    return _number(s.EI_y[0] / (E * abs(arm)))
 
 
 def _transformed(member: Member, group: Group, s: SectionStiffness, to: str | None) -> Data:
@@ -182,6 +198,10 @@ def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None 
         | {"break": bool(np.abs(breaks - every[k]).min() < 1e-9 * member.length)}
         for k in np.flatnonzero(keep)
     ]
+    leaning = inclined_at(member, every, sides)
+    for row, k in zip(rows, np.flatnonzero(keep), strict=True):
+        if leaning[k]:
+            row["inclined"] = leaning[k]
     data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all"}
     if to is not None:
         material = member.material(to)
@@ -226,6 +246,7 @@ def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
     """Columns of `COLUMNS` at places, each seen from one side, shape (10, X); NaN where there is none."""
     geometry, short, density = Geometry(member), moduli(member), _densities(member)
     table = np.full((len(COLUMNS), x.size), np.nan)
+    shear = ShearAlong(geometry)
     for side in ("left", "right"):
         which = np.flatnonzero(np.array(sides) == side)
         if not which.size:
@@ -233,7 +254,11 @@ def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
         for g in group_places(geometry, x[which][:, None], x[which], 0, side):
             with np.errstate(all="ignore"):
                 s = g.stiffness(short)
-                ga = g.shear(short).GA if _has_shear(member, g) else np.full(g.rows.size, np.nan)
+                ga = np.full(g.rows.size, np.nan)
+                if _has_shear(member, g):
+                    inside = x[which[g.rows]] + (-1.0 if side == "left" else 1.0) * 1e-9 * member.length
+                    whole = (g.modulus(short.G) * g.composition.moments.area).sum(axis=0)
+                    ga = whole / shear.coefficients(x[which[g.rows]], inside, short.E, short.G)[0]
                 mass = np.full(g.rows.size, np.nan)
                 if density is not None:
                     mass = g.composition.mass_moments.times(density[list(g.placed.index)][:, None]).total().area

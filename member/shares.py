@@ -37,7 +37,7 @@ def bending_shares(member: Member, x: Array, sides: list[str]) -> Array:
         if not which.size:
             continue
         for g in group_places(geometry, x[which][:, None], x[which], 0, side):
-            m, stiff = g.composition.moments, g.modulus(E)
+            m, stiff = g.moments, g.modulus(E)
             z_c = g.stiffness(moduli(member)).z_c
             own = stiff * (m.zz + m.area * (np.nan_to_num(m.z) - z_c) ** 2)
             total = own.sum(axis=0)

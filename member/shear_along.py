@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import geometry_breaks, merged
 from fishbelly.member.clusters import clusters
+from fishbelly.member.faults import CannotCompute
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.openings import opening_round_ends
 from fishbelly.member.panels import Panels
@@ -24,6 +25,7 @@ from fishbelly.sections.chebyshev import rule
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.flexure import flexure
 from fishbelly.sections.outlines import Outline
+from fishbelly.sections.section_mesh import MeshFoldError
 
 Array = NDArray[np.float64]
 Presence = tuple[tuple[int, ...], ...]
@@ -96,7 +98,7 @@ class ShearAlong:
 
         Raises
         ------
-        MeshFoldError
+        CannotCompute
             When a section cannot be divided into cells.
         """
         pieces = self._pieces(E, G)
@@ -163,9 +165,9 @@ class ShearAlong:
         if np.ptp(shape, axis=0).max(initial=0.0) < ALIKE:
             key = np.round(shape[0], 9).tobytes()
             if key not in known:
-                known[key] = self._solved(Composition(placed.outlines, cuts), index, run, there, E, G, slice(0, 1))
+                known[key] = self._solved(Composition(placed.outlines, cuts), index, run, there, E, G, x, slice(0, 1))
             return known[key]
-        return self._solved(Composition(placed.outlines, cuts), index, run, there, E, G, slice(None))
+        return self._solved(Composition(placed.outlines, cuts), index, run, there, E, G, x, slice(None))
 
     def _solved(
         self,
@@ -175,6 +177,7 @@ class ShearAlong:
         there: Presence,
         E: Array,
         G: Array,
+        x: Array,
         rows: slice,
     ) -> Array:
         some = section if rows == slice(None) else _first(section)
@@ -182,7 +185,10 @@ class ShearAlong:
             return np.array([[1.2], [1.2], [0.0]])
         mine_E, mine_G = (v[index][:, None] * run[:, rows] for v in (E, G))
         groups = clusters(self.geometry.member)
-        f = flexure(some, mine_E, mine_G, [groups[i] for i in index], share_angle=bool(there[2]))
+        try:
+            f = flexure(some, mine_E, mine_G, [groups[i] for i in index], share_angle=bool(there[2]))
+        except MeshFoldError as error:
+            raise CannotCompute(f"shear at x = {x[error.station]:.6g} m: {error}") from None
         whole = (mine_G * some.moments.area).sum(axis=0)
         return np.stack((f.F_zz, f.F_yy, f.F_yz)) * whole
 

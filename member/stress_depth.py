@@ -11,6 +11,7 @@ from fishbelly.member.analysis import Analysis
 from fishbelly.member.extremes import values_at
 from fishbelly.member.free_strain import free_plane
 from fishbelly.member.geometry import Geometry
+from fishbelly.member.inclined_stress import whole_plates
 from fishbelly.member.profile import Group, group_places
 
 Array = NDArray[np.float64]
@@ -77,6 +78,7 @@ def stress_over_depth(analysis: Analysis, combination: str, x: float, side: str 
         strain = axial - k_z * (z - line[0]) - (k_y * (-y - line[1]))[:, None]
         strain = strain - _free(analysis, share.factors, group, x, side, y, z)
         total += group.modulus(analysis.moduli(share.key).E)[:, :1] * strain
+    total *= whole_plates(group)
     return tuple(PartLine(i, z[k], total[k]) for k, i in enumerate(group.placed.index) if np.all(np.isfinite(z[k])))
 
 

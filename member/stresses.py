@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.extremes import largest
+from fishbelly.member.inclined_stress import along_plates, any_inclined, shear_in_webs
 from fishbelly.member.part_forces import Loading, stress_planes
 from fishbelly.member.profile import Group, Profile
 from fishbelly.sections.fibres import arc_data, fibres
@@ -101,7 +102,9 @@ def _fields(analysis: Analysis, loading: Sequence[Loading], index: int) -> tuple
     if not planar:
         ty, tz = _tangent_points(profile, planes, index, groups)
         fy, fz = np.concatenate((fy, ty)), np.concatenate((fz, tz))
-    return _stress_at(analysis, planes, fy, fz), fy, fz
+    stress = _stress_at(analysis, planes, fy, fz)
+    along = along_plates(profile, index, fy, fz)
+    return stress if along is None else stress * along, fy, fz
 
 
 def _tangent_points(profile: Profile, planes: Array, index: int, groups: list[Group]) -> tuple[Array, Array]:
@@ -192,12 +195,16 @@ def _shear_level(analysis: Analysis, loading: Sequence[Loading], index: int, at:
 
 
 def _shear_field(analysis: Analysis, loading: Sequence[Loading], index: int, plane: int) -> Array:
-    """Largest shear stress of a part on any level of the section, by shear in one plane, shape (J+1, K, n)."""
+    """Largest shear stress of a part on any level of the section, by shear in one plane, shape (J+1, K, n).
+
+    What inclined flanges carry of the shear force is left out.
+    """
     total = np.zeros(loading[0].response.V[0].shape)
     for share in loading:
         profile = share.step.frame.profile
         peak = np.zeros(profile.rows)
         for g in (g for g in profile.groups if index in g.placed.index):
             peak[g.rows] = g.shear(share.moduli, plane == 1).peak[g.placed.index.index(index)]
-        total = total + share.response.V[plane] * peak[profile.row]
+        V = shear_in_webs(share, plane, share.step.frame.line) if any_inclined(profile) else share.response.V[plane]
+        total = total + V * peak[profile.row]
     return total

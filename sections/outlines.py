@@ -213,10 +213,18 @@ def _rounded_rectangle(width: Array, depth: Array, radius: Array) -> Outline:
     return rounded([(-b, -h), (b, -h), (b, h), (-b, h)], [radius] * 4)
 
 
+def both_flanges(d: Dimensions) -> tuple[Array, Array]:
+    """Thickness of the top and of the bottom flange: one `flange`, or top_flange and bottom_flange beside it."""
+    return d.get("top_flange", d["flange"]), d.get("bottom_flange", d["flange"])
+
+
 def box(d: Dimensions) -> Outline:
-    """Box: width, depth, web (each side wall), flange (top and bottom), radius outside, inner_radius."""
+    """Box: width, depth, web (each side wall), flange (see `both_flanges`), radius outside, inner_radius."""
     outer = _rounded_rectangle(d["width"], d["depth"], d["radius"])
-    inner = _rounded_rectangle(d["width"] - 2.0 * d["web"], d["depth"] - 2.0 * d["flange"], d["inner_radius"])
+    top, bottom = both_flanges(d)
+    inner = _rounded_rectangle(d["width"] - 2.0 * d["web"], d["depth"] - (top + bottom), d["inner_radius"])
+    if top is not bottom:
+        inner = inner.moved(0.0, 0.5 * (bottom - top))
     return outer.joined(_flip(inner))
 
 
@@ -252,22 +260,22 @@ def tee(d: Dimensions) -> Outline:
 
 
 def channel(d: Dimensions) -> Outline:
-    """Channel, web on the left: depth, width, web, flange, radius, toe_radius, slope, flange_at.
+    """Channel, web on the left: depth, width, web, flange (see `both_flanges`), radius, toe_radius, slope, flange_at.
 
     With a slope the inner faces of the flanges climb towards the web; the flange has its thickness at
     the distance flange_at from the back of the web.
     """
     h, b, w = 0.5 * d["depth"], d["width"], d["web"]
-    toe = d["flange"] - d["slope"] * (b - d["flange_at"])
-    root = d["flange"] + d["slope"] * (d["flange_at"] - w)
+    upper, lower = both_flanges(d)
+    thinner, thicker = d["slope"] * (b - d["flange_at"]), d["slope"] * (d["flange_at"] - w)
     zero = np.zeros_like(b)
     corners = [
         (zero, -h),
         (b, -h),
-        (b, -h + toe),
-        (w, -h + root),
-        (w, h - root),
-        (b, h - toe),
+        (b, -h + (lower - thinner)),
+        (w, -h + (lower + thicker)),
+        (w, h - (upper + thicker)),
+        (b, h - (upper - thinner)),
         (b, h),
         (zero, h),
     ]

@@ -56,7 +56,6 @@ BAD = {
     ),
     # not built yet
     "stage": (BASE + '[[stage]]\nname = "a"\n', ":11: [[stage]]: not built yet in this version"),
-    "inclined": ('inclined = "cut"\n' + BASE, ':1: key "inclined": not built yet in this version'),
     "joined": (BASE + 'joined = "apart"\n', ':11: part "beam": key "joined": not built yet in this version'),
     "no tension": (
         BASE.replace("poisson", "no_tension = true\npoisson"),

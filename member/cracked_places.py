@@ -1,0 +1,126 @@
+"""Where a member cracks: stretches between roots of tension over cracking stress, and how they are closed in on."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.cracked_grid import roots
+from fishbelly.member.cracked_phases import Solved
+from fishbelly.member.panels import Panels
+
+Array = NDArray[np.float64]
+Mask = NDArray[np.bool_]
+Stretches = tuple[tuple[float, float], ...]
+"""Where a member is cracked: starts and ends [m], in order, apart."""
+
+
+def joined(stretches: Sequence[tuple[float, float]], close: float) -> Stretches:
+    """Put stretches in order and make one of those that meet within `close` [m]; shorter ones than that go."""
+    found: list[tuple[float, float]] = []
+    for a, b in sorted(stretches):
+        if b - a <= close:
+            continue
+        if found and a <= found[-1][1] + close:
+            found[-1] = (found[-1][0], max(found[-1][1], b))
+        else:
+            found.append((a, b))
+    return tuple(found)
+
+
+def inside(panels: Panels, stretches: Stretches) -> Mask:
+    """Which panels lie in stretches, by their middle, shape (K, n)."""
+    middle = 0.5 * (panels.a + panels.b)
+    held = np.zeros(middle.size, dtype=bool)
+    for a, b in stretches:
+        held |= (middle > a) & (middle < b)
+    return np.asarray(np.broadcast_to(held[:, None], panels.x.shape))
+
+
+def own_stretches(panels: Panels, phases: Sequence[Solved]) -> tuple[Stretches, list[float]]:
+    """Stretches in which tension passes the stress at which a part cracks in any phase, and the roots that end them."""
+    found: list[tuple[float, float]] = []
+    ends: list[float] = []
+    for solved in phases:
+        fields = [np.where(np.isfinite(f), f, -1e300) for v in solved.fibres().values() for f in v]
+        if not fields:
+            continue
+        places = [x for f in fields for x in roots(panels, f - 1.0)]
+        # a fibre that passes its limit where another is over it already ends nothing
+        governing = [x for x in places if _largest(panels, fields, np.array([x]))[0] < 1.0 + 1e-6]
+        cuts = np.unique(np.concatenate((panels.a, panels.b, governing)))
+        over = _largest(panels, fields, 0.5 * (cuts[1:] + cuts[:-1]))
+        found += [(float(a), float(b)) for a, b, v in zip(cuts[:-1], cuts[1:], over, strict=True) if v > 1.0]
+        ends += governing
+    return joined(found, 1e-9 * float(panels.b[-1])), sorted(ends)
+
+
+def openings(panels: Panels, phases: Sequence[Solved]) -> list[float]:
+    """Places where a part that never carries tension begins to open [m]."""
+    found: list[float] = []
+    for solved in phases:
+        law, plane = solved.law, solved.closed.state.uncracked.plane
+        if not np.any(solved.closed.response.N):
+            continue
+        for part in law.never:
+            for field in law.sections.tension(part, law.stress(part, plane, 0), law.planar):
+                found += roots(panels, field)
+    return sorted(found)
+
+
+def _largest(panels: Panels, fields: Sequence[Array], x: Array) -> Array:
+    k = panels.find(x)
+    basis = panels.rule.basis(panels.local(k, x))
+    return np.asarray(np.max([(f[k] * basis).sum(axis=1) for f in fields], axis=0))
+
+
+def kinks(panels: Panels, phases: Sequence[Solved], cracked: Mask, beta: float | None) -> list[float]:
+    """Further places where strains have a kink: cracked places where moment or zeta passes zero [m]."""
+    found: list[float] = []
+    for solved in phases:
+        state, law = solved.closed.state, solved.law
+        where = cracked | bool(law.never)
+        rows = np.flatnonzero(where.any(axis=1))
+        if not rows.size:
+            continue
+        for curvature in state.uncracked.plane[1:]:
+            if np.abs(curvature).max() > 0.0:
+                found += [x for x in roots(panels, curvature) if where[panels.find(np.array([x]))[0], 0]]
+        fields = [f for v in solved.fibres().values() for f in v] if law.cracking else []
+        if beta is not None and beta < 1.0:
+            found += [
+                x for f in fields for x in roots(panels, f - np.sqrt(beta)) if cracked[panels.find(np.array([x]))[0], 0]
+            ]
+    return found
+
+
+@dataclass(eq=False)
+class Search:
+    """Closes in on places that depend on themselves: Broyden's method on x -> roots found with borders at x.
+
+    Source: C. G. Broyden, Mathematics of Computation 19, 1965.
+    """
+
+    x: Array | None = None
+    found: Array | None = None
+    inverse: Array | None = None
+
+    def next(self, x: Array, found: Array) -> Array:
+        """Return where to try next, given what was found with borders at x, both in order."""
+        residual = found - x
+        if self.x is None or self.found is None or self.x.size != x.size or self.inverse is None:
+            self.inverse = np.eye(x.size)
+        else:
+            dx, dr = x - self.x, residual - (self.found - self.x)
+            change = self.inverse @ dr
+            weight = float(dx @ change)
+            if abs(weight) > 1e-12 * float(dx @ dx):
+                self.inverse = self.inverse + np.outer(dx + change, dx @ self.inverse) / -weight
+        self.x, self.found = x, found
+        step = x + self.inverse @ residual
+        if np.any(np.diff(step) <= 0.0):
+            self.inverse, step = None, found
+        return np.asarray(step)

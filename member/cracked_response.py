@@ -1,0 +1,357 @@
+"""What a member does whose concrete cracks or whose parts carry no tension: all loads of a combination as one.
+
+Where it cracks is found as roots along x, and the grid is given borders there, so that no panel has a kink. In a
+statically indeterminate member forces, cracks and stiffness depend on one another and are brought into agreement.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.cracked_grid import CLOSE, split
+from fishbelly.member.cracked_law import LawState
+from fishbelly.member.cracked_phases import Phases, Solved
+from fishbelly.member.cracked_places import Search, Stretches, inside, joined, kinks, openings, own_stretches
+from fishbelly.member.cracked_sections import cracking_parts, no_tension_parts
+from fishbelly.member.cracked_solve import CLOSED, radius
+from fishbelly.member.description import Combination, Member
+from fishbelly.member.extremes import values_at
+from fishbelly.member.faults import CannotCompute, NoStiffness
+from fishbelly.member.forces import Forces
+from fishbelly.member.panels import POINTS
+from fishbelly.member.response import Response
+from fishbelly.sections.chebyshev import rule
+
+Array = NDArray[np.float64]
+Mask = NDArray[np.bool_]
+
+MOST_SEARCHES = 40
+SETTLED = 1e-10
+"""Change of the ends of cracked stretches, as a share of the member's length, at which they count as found."""
+RESOLVED = 1e-10
+"""Last Chebyshev coefficients of strains against the largest strain of the member."""
+MOST_HALVINGS = 5
+
+
+@dataclass(frozen=True)
+class Convergence:
+    """How equilibrium closed.
+
+    Parameters
+    ----------
+    status : {"closed", "cracks held", "not closed"}
+        "cracks held": cracks that opened on the way were kept, because no state without them agreed with itself.
+    rounds : int
+        Linear solutions in all.
+    searches : int
+        How often the places of cracks were found anew.
+    residual : float
+        Change of the forces in the last round against the largest.
+    at : float
+        Where that change is largest [m].
+    """
+
+    status: str
+    rounds: int
+    searches: int
+    residual: float
+    at: float
+
+
+@dataclass(frozen=True, eq=False)
+class CrackedResponse:
+    """One combination on a member that cracks.
+
+    Parameters
+    ----------
+    analysis : Analysis
+        On a grid with borders where cracks begin.
+    combined : Combined
+        The combination, with the cracked response as its total.
+    uncracked : Response
+        The linear response, on the same grid.
+    phases : tuple of Solved
+        Sustained loads and then all loads, with the law; empty where nothing cracks.
+    stretches : tuple of (float, float)
+        Where it counts as cracked [m].
+    own : tuple of (float, float)
+        Where this combination cracks it by itself [m].
+    convergence : Convergence
+        How it closed.
+    """
+
+    analysis: Analysis
+    combined: Combined
+    uncracked: Response
+    phases: tuple[Solved, ...]
+    stretches: Stretches
+    own: Stretches
+    convergence: Convergence
+
+    @property
+    def total(self) -> Response:
+        """The response."""
+        return self.combined.total
+
+    @property
+    def state(self) -> LawState | None:
+        """Sections in the last phase; None where nothing cracks."""
+        return self.phases[-1].closed.state if self.phases else None
+
+
+def may_crack(member: Member) -> bool:
+    """Whether a member has parts that carry no tension or that crack."""
+    return bool(no_tension_parts(member) or cracking_parts(member))
+
+
+def cracked_response(
+    analysis: Analysis,
+    combination: Combination,
+    rule: str | None = None,
+    held: Stretches = (),
+    band: str = "nominal",
+    everywhere: bool = False,
+) -> CrackedResponse:
+    """Response of a combination with cracks.
+
+    Parameters
+    ----------
+    analysis : Analysis
+        The member.
+    combination : Combination
+        Its loads.
+    rule : str, optional
+        Rule of tension stiffening along x: "EN 1992-1-1"; any other leaves state II as it is.
+    held : tuple of (float, float), optional
+        Stretches that other loads have cracked already [m].
+    band : {"nominal", "low", "high"}
+        Which end of the materials' bands of E.
+    everywhere : bool
+        Every place counts as cracked, without tension stiffening.
+
+    Returns
+    -------
+    CrackedResponse
+
+    Raises
+    ------
+    NoStiffness
+        Where a section cannot carry its forces, with the place, the moment and what it can carry.
+    CannotCompute
+        When equilibrium does not close, or where a bearing that cannot pull or a pattern load would have to be
+        followed through cracking.
+    """
+    _built(analysis, combination)
+    combined = analysis.combine(combination, band)
+    whole = ((0.0, analysis.member.length),)
+    run = _Run(analysis, combined, None if everywhere else rule, whole if everywhere else held, everywhere)
+    return run.go()
+
+
+def _built(analysis: Analysis, combination: Combination) -> None:
+    """See that nothing is asked for that has to be followed through cracking and is not."""
+    if len(analysis.views) > 1:
+        raise CannotCompute("stages together with parts that crack are not built: leave out one of the two")
+    for atom in analysis.atoms:
+        if atom.span is not None and combination.factors.get(atom.case, 0.0):
+            raise CannotCompute("pattern loads together with parts that crack are not built: give every arrangement")
+
+
+@dataclass(eq=False)
+class _Run:
+    base: Analysis
+    combined: Combined
+    rule: str | None
+    held: Stretches
+    everywhere: bool
+
+    def go(self) -> CrackedResponse:
+        """Find cracks and forces that agree."""
+        phases, solved = self._start(self.base)
+        own, ends = self._own(self.base, solved)
+        cracked = joined([*own, *self.held], CLOSE * self.base.member.length)
+        if not cracked and not phases.never:
+            return self._finished(self.base, (), (), (), 0, 0, "closed")
+        search, extra, halved, rounds, status = Search(), list[float](), 0, 0, "closed"
+        borders = np.array(sorted([*ends, *openings(self.base.profile.panels, solved)]))
+        gap = 0.0 if not borders.size else np.inf
+        for count in range(1, MOST_SEARCHES + 1):
+            places = [*borders.tolist(), *(x for pair in cracked for x in pair), *extra]
+            analysis = split(self.base, [*places, *self._kinks(solved, cracked)])
+            # as long as cracks still move by much, forces need not close to the last digit
+            rough = max(CLOSED, min(1e-3 * gap / self.base.member.length, 1e-6))
+            solved = self._solve(analysis, cracked, solved, rough)
+            rounds += sum(s.closed.rounds for s in solved)
+            own, ends = self._own(analysis, solved)
+            found = np.array(sorted([*ends, *openings(analysis.profile.panels, solved)]))
+            same = found.size == borders.size
+            gap = float(np.abs(found - borders).max(initial=0.0)) if same else np.inf
+            import os; os.environ.get("TR") and print(count, gap, halved, found.size, borders.size, analysis.profile.panels.count, solved[-1].closed.rounds, solved[-1].closed.residual)
+            if gap <= SETTLED * self.base.member.length:
+                more = self._unresolved(analysis, solved) if halved < MOST_HALVINGS else []
+                if not more:
+                    return self._finished(analysis, solved, cracked, own, rounds, count, status)
+                halved += 1
+                extra += more
+            if count > MOST_SEARCHES // 2:
+                # no state agrees with itself: what has cracked on the way stays cracked
+                status = "cracks held"
+                cracked = joined([*cracked, *own], CLOSE * self.base.member.length)
+                borders = found
+            else:
+                borders = search.next(borders, found) if same and borders.size else found
+                cracked = self._moved(own, found, borders)
+        worst = max(solved, key=lambda s: s.closed.residual)
+        raise CannotCompute(
+            f"cracks of combination {self.combined.combination.name} did not settle in {MOST_SEARCHES} searches: "
+            f"they still move by {gap:.3g} m; forces change by {worst.closed.residual:.1e} at x = {worst.closed.at:.6g} m"
+        )
+
+    def _moved(self, own: Stretches, found: Array, borders: Array) -> Stretches:
+        """Stretches with their ends where the search goes next, and those that are held."""
+        places = dict(zip(found.tolist(), borders.tolist(), strict=True)) if found.size == borders.size else {}
+        moved = [(places.get(a, a), places.get(b, b)) for a, b in own]
+        return joined([*moved, *self.held], CLOSE * self.base.member.length)
+
+    def _phases(self, analysis: Analysis) -> Phases:
+        return Phases(analysis, self.combined.shares, self.combined.lifted, self.rule)
+
+    def _start(self, analysis: Analysis) -> tuple[Phases, tuple[Solved, ...]]:
+        """The uncracked state under the forces of the uncracked member."""
+        phases = self._phases(analysis)
+        nowhere = np.zeros(analysis.profile.panels.x.shape, dtype=bool)
+        if phases.never:
+            return phases, self._guarded(phases, nowhere, [(f, None) for f in phases.uncracked()])
+        # without cracks every phase closes in one round
+        return phases, phases.solve(nowhere, [(f, None) for f in phases.uncracked()])
+
+    def _guarded(
+        self, phases: Phases, mask: Mask, starts: list[tuple[Forces, LawState | None]], closed: float = CLOSED
+    ) -> tuple[Solved, ...]:
+        with np.errstate(all="ignore"):
+            return phases.solve(mask, starts, self.everywhere, closed)
+
+    def _solve(self, analysis: Analysis, cracked: Stretches, near: Sequence[Solved], closed: float) -> tuple[Solved, ...]:
+        phases = self._phases(analysis)
+        mask = inside(analysis.profile.panels, cracked)
+        starts: list[tuple[Forces, LawState | None]] = [(_carried_over(analysis, s), None) for s in near]
+        return self._guarded(phases, mask, starts, closed)
+
+    def _own(self, analysis: Analysis, solved: Sequence[Solved]) -> tuple[Stretches, list[float]]:
+        if self.everywhere:
+            return (), []
+        return own_stretches(analysis.profile.panels, solved)
+
+    def _kinks(self, solved: Sequence[Solved], cracked: Stretches) -> list[float]:
+        panels = solved[-1].closed.state, solved[-1].law.sections.frame.profile.panels
+        mask = inside(panels[1], cracked)
+        beta = solved[-1].law.beta if self.held else None
+        # a panel that is cracked in part only counts: its borders follow
+        mask = mask | np.array([any(a < y and b > x for a, b in cracked) for x, y in zip(panels[1].a, panels[1].b)])[:, None]
+        return kinks(panels[1], solved, mask, beta)
+
+    def _unresolved(self, analysis: Analysis, solved: Sequence[Solved]) -> list[float]:
+        """Middles, and quarters, of panels in which strains need more points."""
+        panels = analysis.profile.panels
+        found: list[float] = []
+        to = rule(POINTS).to_coefficients
+        reach = np.array([1.0, *(2 * [radius(analysis)])])[:, None, None]
+        wide = (panels.b - panels.a > 1e-4 * analysis.member.length) & (np.abs(panels.anchor) < 2)
+        for s in solved:
+            strains = s.closed.state.plane * reach
+            largest = float(np.abs(strains).max())
+            ends = np.abs(strains @ to.T)[:, :, -3:].max(axis=(0, 2))
+            if largest > 0.0 and np.all(np.isfinite(ends)):
+                bad = np.flatnonzero((ends > RESOLVED * largest) & wide)
+                # three digits and more away, a half would not be enough
+                far = bad[ends[bad] > 1e3 * RESOLVED * largest]
+                found += (0.5 * (panels.a + panels.b)[bad]).tolist()
+                found += [float(x) for t in (0.25, 0.75) for x in ((1.0 - t) * panels.a + t * panels.b)[far]]
+        return found
+
+    def _finished(
+        self,
+        analysis: Analysis,
+        solved: tuple[Solved, ...],
+        cracked: Stretches,
+        own: Stretches,
+        rounds: int,
+        count: int,
+        status: str,
+    ) -> CrackedResponse:
+        combination = self.combined.combination
+        linear = self.combined if analysis is self.base else analysis.combine(combination, self._band)
+        if not solved:
+            done = Convergence("closed", 0, 0, 0.0, 0.0)
+            return CrackedResponse(analysis, linear, linear.total, (), (), (), done)
+        self._judge(solved)
+        worst = max(solved, key=lambda s: s.closed.residual)
+        total = solved[-1].closed.response
+        self._bears(total)
+        done = Convergence(status, rounds, count, worst.closed.residual, worst.closed.at)
+        return CrackedResponse(analysis, replace(linear, total=total), linear.total, solved, cracked, own, done)
+
+    @property
+    def _band(self) -> str:
+        return self.combined.shares[0].key.band
+
+    def _judge(self, solved: Sequence[Solved]) -> None:
+        """See that every section carries its forces and that equilibrium has closed."""
+        for s in solved:
+            state, panels = s.closed.state, s.law.sections.frame.profile.panels
+            if not state.carried.all():
+                raise _cannot_carry(s, self.combined.combination.name)
+            if not state.converged.all():
+                k = int(np.argmin(state.converged))
+                raise CannotCompute(f"the cracked section at x = {panels.x.flat[k]:.6g} m did not close")
+            if s.closed.residual > 1e3 * CLOSED:
+                raise CannotCompute(
+                    f"the cracked member did not come into equilibrium in {s.closed.rounds} rounds in combination "
+                    f"{self.combined.combination.name}: forces still change by {s.closed.residual:.1e} of the largest "
+                    f"at x = {s.closed.at:.6g} m"
+                )
+
+    def _bears(self, total: Response) -> None:
+        """See that bearings that cannot pull bear or lift as they did without cracks."""
+        down = total.reactions[:, 0]
+        size = float(np.abs(down).max(initial=0.0))
+        for k, s in enumerate(self.base.member.supports):
+            if s.only_up and s.name not in self.combined.lifted and down[k] > 1e-9 * size:
+                raise CannotCompute(
+                    f"{s.name} would lift off once cracks have opened: bearings that lift off are not built "
+                    "together with parts that crack"
+                )
+
+
+def _carried_over(analysis: Analysis, solved: Solved) -> Forces:
+    """Forces of a solved phase on another grid."""
+    old, new = solved.law.sections.frame.profile.panels, analysis.profile.panels
+    r = solved.closed.response
+    if old is new:
+        return Forces(r.N, r.V, r.M)
+    x = new.x
+    fields = np.stack((r.N, *r.V, *r.M))
+    values = values_at(old, fields, x.ravel()).reshape(5, *x.shape)
+    return Forces(values[0], values[1:3], values[3:5])
+
+
+def _cannot_carry(solved: Solved, name: str) -> NoStiffness:
+    """Tell where a section cannot carry its forces, and what it can."""
+    state, sections = solved.closed.state, solved.law.sections
+    r, panels = solved.closed.response, sections.frame.profile.panels
+    forces = Forces(r.N, r.V, r.M)
+    moment = r.M[0] + r.N * sections.frame.centre[0]
+    where = np.argwhere(~state.carried)
+    shares = [sections.share_carried((int(k), int(j)), forces) for k, j in where]
+    k, j = (int(v) for v in where[int(np.argmin(shares))])
+    share = min(shares)
+    return NoStiffness(
+        float(panels.x[k, j]),
+        f"without tension the section cannot carry M = {moment[k, j]:.6g} N m with N = {r.N[k, j]:.6g} N in "
+        f"combination {name}; it can carry {share * moment[k, j]:.6g} N m at that axial force",
+    )

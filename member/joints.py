@@ -1,0 +1,200 @@
+"""Joints between parts: what enters each part at its ends, the flow along it, and what its fasteners get of it."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.carried import PartForce, part_force
+from fishbelly.member.contacts import contacts
+from fishbelly.member.cut_offs import CutOff, cut_offs
+from fishbelly.member.description import Combination, Joined, Member
+from fishbelly.member.extremes import largest
+from fishbelly.member.panels import Panels
+from fishbelly.member.part_forces import Loading
+from fishbelly.member.part_shears import part_shears
+from fishbelly.member.pieces import Pieces
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+_WHOLE = 1e-9
+"""A number of fasteners that is over a whole one by less than this is that one."""
+_STEADY = 1e-9
+"""A flow below this share of the part's largest force over the member's length is none."""
+_SAME = 1e-9
+"""Flows of either sign that differ by less than this share are the same: the one on the left is given."""
+
+
+def joints(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p: Pieces) -> list[Data]:
+    """Joint of every part with what it is placed against or touches, under one combination.
+
+    Parameters
+    ----------
+    analysis : Analysis
+        The member.
+    combined : Combined
+        The combination; theoretical cut-offs are found in those in which strength is checked.
+    loading : sequence of Loading
+        Its shares and steps.
+    p : Pieces
+        Its fields.
+
+    Returns
+    -------
+    list of dict
+        As the contract of results has it, in the member's order of parts. Values are just inside the ends of the
+        part; for a `pair` they are those of both copies together. With pattern loads every value by itself is that of
+        the arrangement which makes it largest by size.
+    """
+    if len(analysis.member.parts) < 2:
+        return []
+    parts = {i: f for i in loading[0].parts if (f := part_force(loading, i)) is not None}
+    profile = loading[0].end.profile
+    fixed = {i: to for i, to in contacts(profile).items() if i in parts and to in parts}
+    if not fixed:
+        return []
+    shears = part_shears(loading, parts)
+    ends = cut_offs(analysis, loading, list(fixed)) if strength_counts(analysis.member, combined.combination) else {}
+    return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i)) for i, to in sorted(fixed.items())]
+
+
+def strength_counts(member: Member, combination: Combination) -> bool:
+    """Whether strengths are looked at in a combination: in those for strength where there are any, else in all."""
+    return combination.purpose == "strength" or not any(c.purpose == "strength" for c in member.combinations)
+
+
+def _joint(
+    analysis: Analysis, p: Pieces, index: int, to: int, force: PartForce, shear: Array, cut: CutOff | None
+) -> Data:
+    member, panels = analysis.member, analysis.profile.panels
+    part = member.parts[index]
+    joined = part.joined
+    data: Data = {"part": part.name, "to": member.parts[to].name}
+    for name, x in (("start", part.start), ("end", part.end)):
+        k = force.first if name == "start" else force.stop - 1
+        fields = {"M": p.M, "V": p.V, "force": force.N, "shear": shear, "couple": force.M[0], "flow": force.flow}
+        entry: Data = {"x": x} | {key: worst(inside(panels, field, k, name)) for key, field in fields.items()}
+        entry["flow"] = _settled(entry["flow"], force, member.length)
+        entry["per_fastener"] = _per_fastener(joined, entry["flow"])
+        data[name] = entry | _fastening(joined, entry["force"]) | _cut_off(joined, force, panels, cut, name, entry)
+    data["flow"] = {"max": _largest_flow(panels, force, joined, member.length)}
+    if joined is not None and joined.capacity is not None:
+        most = abs(data["flow"]["max"]["value"])
+        data["flow"]["largest_pitch"] = joined.capacity * joined.rows / most if most > 0.0 else None
+    return data
+
+
+def inside(panels: Panels, field: Array, panel: int, end: str) -> Array:
+    """Values of a field (J + 1, K, n) just inside an end of a panel, shape (J + 1,)."""
+    values = field[:, panel]
+    if end == "start":
+        # next to a root the interpolant's end is no place to look at
+        return np.asarray(values[:, 0] if panels.anchor[panel] < 0 else values @ panels.rule.left)
+    return np.asarray(values[:, -1] if panels.anchor[panel] > 0 else values @ panels.rule.right)
+
+
+def worst(values: Array) -> float:
+    """Largest by size over all arrangements of pieces, with its sign, shape (J + 1,)."""
+    high = values[0] + np.maximum(values[1:], 0.0).sum()
+    low = values[0] + np.minimum(values[1:], 0.0).sum()
+    return float(high if high >= -low else low) + 0.0
+
+
+def _settled(flow: float, force: PartForce, length: float) -> float:
+    """Flow without what differentiation makes of round-off: a force that does not vary has none."""
+    size = float(np.abs(force.N[:, force.first : force.stop]).max(initial=0.0))
+    return flow if abs(flow) > _STEADY * size / length else 0.0
+
+
+def _largest_flow(panels: Panels, force: PartForce, joined: Joined | None, length: float) -> Data:
+    both = [(s, largest(panels, s * force.flow, force.first, force.stop)) for s in (1.0, -1.0)]
+    # of equal ones the left
+    sign, found = max(both, key=lambda b: b[1].value)
+    if abs(both[0][1].value - both[1][1].value) <= _SAME * found.value:
+        sign, found = min(both, key=lambda b: b[1].at)
+    value = _settled(sign * found.value, force, length) + 0.0
+    return {"value": value, "at": found.at} | ({} if joined is None else {"per_fastener": _per_fastener(joined, value)})
+
+
+def _per_fastener(joined: Joined | None, flow: float) -> float | None:
+    if joined is None or joined.pitch is None:
+        return None
+    return flow * joined.pitch / joined.rows
+
+
+def _fastening(joined: Joined | None, force: float) -> Data:
+    """Fasteners needed to bring a force in, and the length they, or the weld, take for it at the given pitch."""
+    if joined is None or (joined.capacity is None and joined.weld is None):
+        return {}
+    data: Data = {}
+    if joined.capacity is not None:
+        data["needed"] = math.ceil(abs(force) / joined.capacity - _WHOLE)
+    data["zone"] = anchorage(joined, force)
+    return data
+
+
+def anchorage(joined: Joined, force: float) -> float:
+    """Length of joint that brings a force in: whole rows of fasteners at their pitch, or weld [m]."""
+    if joined.weld is not None:
+        return abs(force) / joined.weld
+    assert joined.capacity is not None and joined.pitch is not None
+    return math.ceil(abs(force) / (joined.capacity * joined.rows) - _WHOLE) * joined.pitch
+
+
+def _cut_off(
+    joined: Joined | None, force: PartForce, panels: Panels, cut: CutOff | None, end: str, entry: Data
+) -> Data:
+    """Theoretical cut-off of one end, and where the part then has to run to."""
+    if cut is None:
+        return {}
+    x = cut.start if end == "start" else cut.end
+    data: Data = {"cut_off": x, "used_without": cut.used[0 if end == "start" else 1]}
+    if joined is not None and (joined.capacity is not None or joined.weld is not None):
+        data["run_to"] = None
+        if x is not None:
+            carried = _force_at(force, panels, x, entry["force"])
+            length = anchorage(joined, carried)
+            data["run_to"] = x - length if end == "start" else x + length
+    return data
+
+
+def _force_at(force: PartForce, panels: Panels, x: float, otherwise: float) -> float:
+    """Force of the part at its theoretical cut-off; at its end where the cut-off lies beyond it."""
+    k = int(panels.find(np.array([x]))[0])
+    if not force.first <= k < force.stop:
+        return otherwise
+    basis = panels.rule.basis(panels.local(np.array([k]), np.array([x])))[0]
+    return worst(force.N[:, k] @ basis)
+
+
+def merged_joints(results: Sequence[Sequence[Data]]) -> list[Data]:
+    """Put joints of several arrangements together: every value that of the one which makes it largest by size.
+
+    Parameters
+    ----------
+    results : sequence of list
+        Joints of each arrangement, all of the same parts.
+    """
+    merged: list[Data] = []
+    for same in zip(*results, strict=True):
+        data = dict(same[0])
+        for end in ("start", "end"):
+            data[end] = {key: _most(end, key, [j[end] for j in same]) for key in same[0][end]}
+        data["flow"] = max((j["flow"] for j in same), key=lambda flow: abs(flow["max"]["value"]))
+        merged.append(data)
+    return merged
+
+
+def _most(end: str, key: str, entries: Sequence[Data]) -> Any:
+    known = [e[key] for e in entries if e[key] is not None]
+    if not known:
+        return None
+    if key in ("cut_off", "run_to"):
+        return min(known) if end == "start" else max(known)
+    return max(known, key=abs)
