@@ -5,6 +5,7 @@ from typing import Annotated, Any
 
 from pydantic import Field, create_model
 
+from fishbelly.cli.job_effective import EffectiveReader
 from fishbelly.cli.job_joined import JoinedReader
 from fishbelly.cli.job_laws import LawOf, MaybeLaw, MaybePair, MaybeRadius, MaybeSize, Size
 from fishbelly.cli.job_models import Table
@@ -24,7 +25,7 @@ from fishbelly.cli.job_types import (
     ill,
 )
 from fishbelly.cli.quantities import Kind
-from fishbelly.member.fixings import Joined
+from fishbelly.member.fixings import EffectiveWidth, Joined
 
 CORNERS = tuple(f"{level} {side}" for level in ("top", "bottom") for side in ("left", "right"))
 ANCHORS = ("middle", "top", "bottom", "left", "right", *CORNERS)
@@ -60,6 +61,7 @@ class PartTable(Table):
     stage: MaybeName = None
     until: MaybeName = None
     joined: Annotated[Joined | None, JoinedReader()] = None
+    effective: Annotated[EffectiveWidth | None, EffectiveReader()] = None
 
 
 class Points(Reader):

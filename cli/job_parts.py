@@ -80,6 +80,7 @@ def read_part(
         stage=table.stage,
         until=table.until,
         joined=table.joined,
+        effective=table.effective,
     )
 
 

@@ -28,9 +28,8 @@ def joints(combination: Row, noise: Noise) -> Grid:
     return Grid(
         "Joints and cut-offs",
         (
-            column(rows, "part", TEXT),
+            column(rows, "part, end", TEXT, lambda r: f"{r['part']}, {r['end']}"),
             column(rows, "to", TEXT),
-            column(rows, "end", TEXT),
             column(rows, "at x", "position", "x"),
             column(rows, "M", "moment", noise=noise.moment),
             column(rows, "V", "force", noise=noise.force),
@@ -38,7 +37,7 @@ def joints(combination: Row, noise: Noise) -> Grid:
             column(rows, "couple", "moment", noise=noise.moment, own=True),
             column(rows, "flow", "shear flow", noise=noise.force),
             column(rows, "fastener", "force", "per_fastener", optional=True, noise=noise.force, own=True),
-            column(rows, "needed", "factor", optional=True, own=True),
+            column(rows, "needed", TEXT, lambda r: str(r["needed"]) if "needed" in r else "", optional=True),
             column(rows, "zone", "length", optional=True),
             column(rows, "cut-off", "position", "cut_off", optional=True),
             column(rows, "run to", "position", "run_to", optional=True),

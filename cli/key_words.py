@@ -65,6 +65,7 @@ KEYS: dict[str, dict[str, str]] = {
         "stage": "first stage in which it works; default the first",
         "until": "stage at whose start it goes",
         "joined": "how it is fixed to the part it stands against: fasteners or a weld; default rigidly",
+        "effective": "published rule by which only part of a slab's width counts in stiffness; its weight stays whole",
     },
     "dimension": {
         "width": f"full width, {LAW}",

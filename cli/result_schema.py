@@ -2,24 +2,23 @@
 
 from __future__ import annotations
 
-from typing import Any
-
 from fishbelly.cli.catalog_properties import MEANINGS
 from fishbelly.cli.job_schema import DIALECT
 from fishbelly.cli.result_schema_joints import joints_schema
 from fishbelly.cli.result_schema_section import twist_schema
+from fishbelly.cli.result_schema_stages import stages_schema
 from fishbelly.cli.result_schema_without import (
     deflect_without_schema,
     section_without_schema,
     stiffness_without_schema,
 )
+from fishbelly.cli.result_schema_trade import trade_schema, width_schema
 from fishbelly.cli.schema_words import Schema
 from fishbelly.cli.schema_words import array as _list
 from fishbelly.cli.schema_words import maybe as _maybe
 from fishbelly.cli.schema_words import number as _number
 from fishbelly.cli.schema_words import record as _object
 from fishbelly.cli.schema_words import text as _text
-
 
 _AT = _number("place along the member", "m")
 _HEAD = {
@@ -104,12 +103,12 @@ def _section() -> Schema:
         | _CENTROID
         | {
             "principal": _object("principal axes", principal),
-            "parts": _list("parts there", _object("a part", part, {"inclined": leaning})),
+            "parts": _list("parts there", _object("a part", part, {"inclined": leaning} | width_schema())),
             "transformed": _object(
                 "properties transformed to one material", _TO | _TRANSFORMED | {"n": ratios} | levels
             ),
         },
-        {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)} | twist_schema(),
+        {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)} | twist_schema() | trade_schema(),
     )
 
 
@@ -319,14 +318,6 @@ def _combination() -> Schema:
 
 
 def _deflect() -> Schema:
-    stage = {
-        "name": _STAGE,
-        "cases": _list("load cases that arrive in it", {"type": "string"}),
-        "combinations": _list(
-            "combinations up to its end",
-            _object("a combination", {"name": _text("its name"), "deflection": _deflection(), "stress": _stress()}),
-        ),
-    }
     bare = {"deflection": _deflection(), "moment": _moments(), "stress": _stress(), "checks": _checks()}
     return _object(
         "Reactions, moments, deflections, stresses and limits.",
@@ -335,9 +326,9 @@ def _deflect() -> Schema:
             "length": _number("length of the member", "m"),
             "notes": _NOTES,
             "combinations": _list("combinations", _combination()),
-            "stages": _list("stages of construction", _object("a stage", stage)),
+            "stages": stages_schema(_deflection(), _stress()),
         },
-        {"without": deflect_without_schema(bare)},
+        {"stage": _text("stage at whose end they are, with --stage"), "without": deflect_without_schema(bare)},
     )
 
 

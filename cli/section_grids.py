@@ -7,6 +7,7 @@ from typing import Any
 
 from fishbelly.cli.grid import TEXT, Column, Grid, column
 from fishbelly.cli.station_choice import sides
+from fishbelly.cli.trade_lines import trade_lines
 
 Row = Mapping[str, Any]
 Line = tuple[str, str, str, float | None]
@@ -66,6 +67,7 @@ def section_lines(data: Row) -> list[tuple[str, list[Line]]]:
         ("Place and mass", place),
         (f"Transformed to {to['to']}", transformed),
         ("Principal axes of bending", axes),
+        *trade_lines(data),
     ]
 
 
@@ -132,6 +134,9 @@ def section_stresses(data: Row) -> Grid:
     def per_moment(edge: str) -> Any:
         return lambda row: (row.get("stress_per_moment") or {}).get(edge)
 
+    def modulus(edge: str) -> Any:
+        return lambda row: (row.get("W") or {}).get(edge)
+
     edges = [[per_moment(e)(r) for r in rows] for e in ("top", "bottom")]
     top = max((abs(v) for e in edges for v in e if v is not None), default=0.0)
     return Grid(
@@ -141,10 +146,7 @@ def section_stresses(data: Row) -> Grid:
             column(rows, "at its top", "stress per moment", per_moment("top"), own=True, scale=top),
             column(rows, "at its bottom", "stress per moment", per_moment("bottom"), own=True, scale=top),
             column(rows, "by axial force", "stress per force", "stress_per_force", own=True),
-            *(
-                column(rows, f"W {edge}", "section modulus", lambda r, e=edge: (r.get("W") or {}).get(e), own=True)
-                for edge in ("top", "bottom")
-            ),
+            *(column(rows, f"W {edge}", "section modulus", modulus(edge), own=True) for edge in ("top", "bottom")),
         ),
         "per unit of sagging moment, and of tension at the centroid; tension positive; W: moment over stress there",
     )

@@ -27,7 +27,7 @@ def section_beside(data: Row) -> list[Grid]:
     if "without" not in data:
         return []
     bare = data["without"]
-    grids = []
+    grids: list[Grid] = []
     for what in dict.fromkeys(w for _, w in _LINES):
         rows = [{"quantity": key} for key, w in _LINES if w == what and data[key] is not None]
         if rows:

@@ -20,6 +20,9 @@ from fishbelly.member.nodes import layout
 from fishbelly.member.profile import Profile
 from fishbelly.member.response import Response, free_of
 from fishbelly.member.sampling import build_profiles
+from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.slip_layers import has_soft_joints
+from fishbelly.member.slip_setting import joint_borders, tied
 from fishbelly.member.spans import spans
 from fishbelly.member.stage_view import StageView, stage_views
 from fishbelly.member.staging import Planes, Setting, Step, life, summed
@@ -88,10 +91,13 @@ class Analysis:
         The sampled member, in its last stage.
     earlier : tuple of Profile
         The member in the stages before, on the same grid.
+    at_once : bool
+        Nothing creeps: no stage is long-term, no share sustained, no creep runs off.
     """
 
     profile: Profile
     earlier: tuple[Profile, ...] = ()
+    at_once: bool = False
     _responses: dict[object, Response] = field(default_factory=dict, repr=False)
     _histories: dict[object, tuple[Step, ...]] = field(default_factory=dict, repr=False)
     _moduli: dict[ModuliKey, Moduli] = field(default_factory=dict, repr=False)
@@ -100,7 +106,10 @@ class Analysis:
     @classmethod
     def of(cls, member: Member, more: Iterable[float] = ()) -> Analysis:
         """Sample a member; `more` are further borders of the grid [m]."""
-        *earlier, last = build_profiles(member, tuple(more))
+        borders = tuple(more)
+        if has_soft_joints(member):
+            borders = (*borders, *joint_borders(member, borders))
+        *earlier, last = build_profiles(member, borders)
         pinched = pinched_at(last)
         if pinched is not None:
             raise NoStiffness(pinched, "the section runs out to nothing inside the member")
@@ -214,24 +223,29 @@ class Analysis:
         with_shear = self.member.shear if shear is None else shear
         name = (key, lifted, with_shear)
         if name not in self._histories:
-            settings = [self._setting(k, key, lifted) for k in range(len(self.views))]
-            self._histories[name] = life(
-                settings, self.atoms, self.loads, self._free, self._free_planes, self.planes, with_shear
-            )
+            settings = [self._setting(k, key, lifted, with_shear) for k in range(len(self.views))]
+            self._histories[name] = life(settings, self.atoms, self.loads, self._free, self._free_planes, self.planes)
         return self._histories[name]
 
-    def _setting(self, k: int, key: ModuliKey, lifted: frozenset[str]) -> Setting:
+    def _setting(self, k: int, key: ModuliKey, lifted: frozenset[str], shear: bool) -> Setting:
         """What a stage offers to loads on one set of moduli."""
         view, frame = self.views[k], self.frames[k]
-        if view.stage is None:
-            return Setting(view, frame, layout(frame, lifted), self.moduli(key), key.long_term)
-        lasting = key.long_term or view.stage.long_term
+        stage, planes = view.stage, self.planes
+        lasting = key.long_term or (stage is not None and stage.long_term and not self.at_once)
+        mine = self.moduli(key if stage is None else replace(key, stage=k, long_term=lasting))
         place = layout(frame, lifted | view.gone, view.hinges, self._homes)
-        mine = self.moduli(replace(key, stage=k, long_term=lasting))
         aged = softened = None
-        if view.stage.creep:
+        if stage is not None and stage.creep and not self.at_once:
             aged, softened = (self.moduli(replace(key, stage=k, aged=how)) for how in ("aged", "softened"))
-        return Setting(view, frame, place, mine, lasting, aged, softened)
+        if has_soft_joints(self.member):
+            tie, law = tied(frame, view, key.band, lasting, dict(key.own), planes, shear, lifted | view.gone)
+        else:
+            tie = None
+
+            def law(moduli: Moduli, _: str) -> ElasticLaw:
+                return ElasticLaw.of(frame, moduli, planes, shear)
+
+        return Setting(view, frame, place, mine, lasting, law, aged, softened, tie, self._homes)
 
     @cached_property
     def _homes(self) -> dict[str, Frame]:
@@ -242,7 +256,8 @@ class Analysis:
         }
 
     def _free(self, s: Setting, which: Sequence[int]) -> list[Forces]:
-        return free_of(s.frame, [self.loads[k] for k in which], s.moduli)
+        loads = [self.loads[k] for k in which]
+        return free_of(s.frame, loads, s.moduli) if s.tie is None else s.tie.free(s.frame, loads, s.moduli)
 
     def _free_planes(self, s: Setting, which: Sequence[int]) -> Planes:
         return planes_of(s.frame, [self.loads[k].free for k in which])
@@ -254,7 +269,8 @@ class Analysis:
         a creep factor of its own has a set of its own.
         """
         factors = np.array([combination.factors.get(a.case, 0.0) for a in self.atoms])
-        lasting = np.array([combination.sustained.get(a.case, 0.0) for a in self.atoms]) * factors
+        sustained = {} if self.at_once else combination.sustained
+        lasting = np.array([sustained.get(a.case, 0.0) for a in self.atoms]) * factors
         own = dict.fromkeys(a.own_creep for a in self.atoms)
         slow = np.array([self._in_long_term_stage(a) for a in self.atoms])
         found = [Share(ModuliKey(band), np.where(slow, 0.0, factors - lasting))]
@@ -271,7 +287,18 @@ class Analysis:
     def _in_long_term_stage(self, atom: Atom) -> bool:
         """Whether shrinkage with a creep factor of its own arrives in a long-term stage."""
         stage = self.views[self.stage_of(atom)].stage
-        return atom.own_creep is not None and stage is not None and stage.long_term
+        return atom.own_creep is not None and stage is not None and stage.long_term and not self.at_once
+
+    @cached_property
+    def creeps(self) -> bool:
+        """Whether anything creeps: a stage is long-term or has creep that runs off, or a share is sustained."""
+        slow = any(v.stage is not None and (v.stage.long_term or any(v.stage.creep.values())) for v in self.views)
+        return slow or any(s for c in self.member.combinations for s in c.sustained.values())
+
+    @cached_property
+    def instantaneous(self) -> Analysis:
+        """The same member if nothing crept, on the same grid."""
+        return Analysis(self.profile, self.earlier, True, _moduli=self._moduli)
 
     def combine(self, combination: Combination, band: str = "nominal", upto: int | None = None) -> Combined:
         """Response of a combination, bearings that cannot pull lifted off where they would; computed once.

@@ -48,8 +48,8 @@ def arrangements(analysis: Analysis, combined: Combined) -> list[Combined]:
                 off |= mask
         shares = tuple(Share(s.key, np.where(off, 0.0, s.factors)) for s in combined.shares)
         lifted = bearing(analysis, shares)
-        total = analysis.superposed(shares, lifted)
-        found.append(Combined(combined.combination, shares, lifted, (), total))
+        total = analysis.superposed(shares, lifted, upto=combined.upto)
+        found.append(Combined(combined.combination, shares, lifted, (), total, combined.upto))
     return found
 
 

@@ -11,9 +11,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from fishbelly.member.history_forces import resultant
 from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading, stress_planes
-from fishbelly.member.staging import resultant
 
 Array = NDArray[np.float64]
 

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 from fishbelly.member.checking_cuts import cut_problems
+from fishbelly.member.checking_effective import effective_problems
 from fishbelly.member.checking_joints import joint_problems
 from fishbelly.member.checking_loads import load_problems
 from fishbelly.member.checking_materials import material_problems
@@ -102,6 +103,7 @@ def _all(draft: Draft) -> Iterator[Problem]:
         repeated_names,
         part_problems,
         joint_problems,
+        effective_problems,
         shape_problems,
         cut_problems,
         support_problems,

@@ -88,29 +88,47 @@ def _resampled(profile: Profile, panels: Panels, parent: NDArray[np.intp]) -> Pr
 
 
 def roots(panels: Panels, field: Array) -> list[float]:
-    """Places inside panels where a field (K, n) changes its sign [m]; jumps at borders are none.
+    """Places where a field (K, n) passes zero within panels or on their borders [m]; jumps at borders are none.
 
-    A field that is infinite somewhere in a panel has no root there.
+    Where a border lies on the root to `CLOSE`, the tangent at the panel's end says where it is. A field that is
+    infinite somewhere in a panel has no root there.
     """
-    rule = panels.rule
+    rule, close = panels.rule, CLOSE * float(panels.b[-1])
     found: list[float] = []
     usable = np.isfinite(field).all(axis=1)
     safe = np.where(usable[:, None], field, 1.0)
     left, right = panels.ends(safe)
     values = np.concatenate((left[:, None], safe, right[:, None]), axis=1)
+    slopes = safe @ rule.differentiate.T / panels.stretch
+    for side, end, place in ((left, rule.left, panels.a), (right, rule.right, panels.b)):
+        slope = slopes @ end
+        with np.errstate(divide="ignore", invalid="ignore"):
+            step = np.where(slope != 0.0, side / slope, np.inf)
+        at = np.abs(step) <= close
+        found += (place - step)[at & usable].tolist()
     places = np.concatenate(([-1.0], rule.points, [1.0]))
-    # what is zero to round-off at an end of a panel is a border already
-    values[np.abs(values) <= 1e-13 * np.abs(values).max(axis=1, keepdims=True)] = 0.0
     for k, j in np.argwhere(values[:, :-1] * values[:, 1:] < 0.0):
-        low, high, sign = places[j], places[j + 1], np.sign(values[k, j])
-        coefficients = safe[k]
-        for _ in range(3):
-            # sections of a panel in 33, three times over, then the chord
-            s = np.linspace(low, high, 33)
-            v = rule.basis(s) @ coefficients
-            step = int(np.argmax(v * sign <= 0.0)) or 32
-            low, high, ends = s[step - 1], s[step], (v[step - 1], v[step])
-        gap = ends[0] - ends[1]
-        s0 = low + (high - low) * (ends[0] / gap if gap else 0.5)
-        found.append(float(panels.place(np.array(k), np.array(s0))))
+        found.append(float(panels.place(np.array(k), np.array(_root(panels, safe[k], places[j], places[j + 1])))))
+    return _apart(found, 3.0 * close)
+
+
+def _root(panels: Panels, values: Array, low: float, high: float) -> float:
+    """Where the interpolant of a panel passes zero between two local coordinates of different sign."""
+    start = float(panels.rule.basis(np.array([low]))[0] @ values)
+    for _ in range(3):
+        # sections in 32, three times over, then the chord
+        s = np.linspace(low, high, 33)
+        v = panels.rule.basis(s) @ values
+        step = int(np.argmax(v * np.sign(start) <= 0.0)) or 32
+        low, high, ends = float(s[step - 1]), float(s[step]), (float(v[step - 1]), float(v[step]))
+    gap = ends[0] - ends[1]
+    return low + (high - low) * (ends[0] / gap if gap else 0.5)
+
+
+def _apart(places: list[float], close: float) -> list[float]:
+    """Places in order, those closer than `close` taken for one."""
+    found: list[float] = []
+    for x in sorted(places):
+        if not found or x - found[-1] > close:
+            found.append(x)
     return found

@@ -17,11 +17,12 @@ from fishbelly.member.cracked_sections import CrackedSections, Planes, PointStat
 from fishbelly.member.forces import Forces
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.section_law import ElasticLaw
-from fishbelly.sections.effective_inertia import distribution
+from fishbelly.sections.effective_inertia import Stiffening
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
 
+_STEP = 1e-6
 SOFT = 1e3
 """So much softer than uncracked a section counts, while the search goes on, that cannot carry its forces."""
 
@@ -89,8 +90,8 @@ class CrackedLaw:
         Parts that crack, with the tensile stress at which they do [Pa].
     mask : ndarray of bool, shape (K, n)
         Places that count as cracked.
-    beta : float or None
-        Duration factor of tension stiffening by EN 1992-1-1; None without.
+    stiffening : Stiffening or None
+        Rule of tension stiffening; None without.
     free : tuple of Planes
         Free strain of the parts in state I and in state II, what history left in them counted.
     planar : bool
@@ -102,7 +103,7 @@ class CrackedLaw:
     never: frozenset[int]
     cracking: Mapping[int, float]
     mask: Mask
-    beta: float | None
+    stiffening: Stiffening | None
     free: tuple[Planes, Planes]
     planar: bool
 
@@ -116,26 +117,28 @@ class CrackedLaw:
         start = first.plane if near is None else near.cracked.plane
         second = self.sections.states(E, brittle, self.free[1], forces, self.mask, start)
         over = self.over(self.fibres(first.plane))
-        zeta = np.where(self.mask, 1.0, 0.0)
-        if self.beta is not None:
-            with np.errstate(divide="ignore"):
-                ratio = np.where(over > 0.0, 1.0 / np.where(over > 0.0, over, 1.0), np.inf)
-            zeta = np.where(self.mask, distribution(ratio, self.beta), 0.0)
         one, two = _softened(first, first), _softened(second, first)
         cracked = np.where(self.mask, two[0], one[0])
+        zeta = self._zeta(over, one[0], cracked)
         plane = one[0] + zeta * (cracked - one[0])
         share = zeta[..., None, None]
         flexibility = (1.0 - share) * one[1] + share * np.where(self.mask[..., None, None], two[1], one[1])
-        if self.beta is not None:
-            flexibility[..., 1, 1] += self._stiffening_lost(forces, over, zeta, cracked[1] - one[0][1])
+        if self.stiffening is not None:
+            # a little more moment makes zeta grow too; about right, for the tangent alone
+            grown = (self._zeta(over * (1.0 + _STEP), one[0], cracked) - zeta) / _STEP
+            moment = np.where(forces.M[0] == 0.0, np.inf, forces.M[0])
+            flexibility[..., 1, 1] += np.maximum(grown * (cracked[1] - one[0][1]) / moment, 0.0)
         return LawState(plane, flexibility, first, second, over, zeta)
 
-    def _stiffening_lost(self, forces: Forces, over: Array, zeta: Array, more: Array) -> Array:
-        """Curvature of plane 0 that a little more moment adds because zeta grows; about right, for the tangent alone."""
-        assert self.beta is not None
-        growing = self.mask & (zeta > 0.0) & (over > 0.0) & (forces.M[0] != 0.0)
-        safe = np.where(growing, over * over * forces.M[0], 1.0)
-        return np.where(growing, np.maximum(2.0 * self.beta * more / safe, 0.0), 0.0)
+    def _zeta(self, over: Array, first: Array, second: Array) -> Array:
+        """Share of state II, shape (K, n), given the strains of both states."""
+        if self.stiffening is None:
+            return np.where(self.mask, 1.0, 0.0)
+        tense = over > 0.0
+        ratio = np.where(tense, 1.0 / np.where(tense, over, 1.0), np.inf)
+        bent = first[1] != 0.0
+        growth = np.where(bent, second[1] / np.where(bent, first[1], 1.0), 1.0)
+        return np.where(self.mask, self.stiffening.zeta(ratio, growth), 0.0)
 
     def fibres(self, plane: Array) -> dict[int, Array]:
         """Tension over the stress at which it cracks at the fibres of every part that cracks, (C, K, n) by part."""

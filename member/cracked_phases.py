@@ -23,7 +23,7 @@ from fishbelly.member.forces import Forces
 from fishbelly.member.nodes import Layout, layout
 from fishbelly.member.response import Response
 from fishbelly.member.section_law import ElasticLaw
-from fishbelly.sections.effective_inertia import BETA, EN
+from fishbelly.sections.effective_inertia import Stiffening
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -54,7 +54,7 @@ class Phases:
     lifted : frozenset of str
         Bearings that have lifted off.
     rule : str or None
-        Rule of tension stiffening along x; only EN 1992-1-1 changes the law here.
+        Rule of tension stiffening along x.
     """
 
     analysis: Analysis
@@ -78,11 +78,9 @@ class Phases:
         return tuple(found)
 
     @cached_property
-    def beta(self) -> float | None:
-        """Duration factor of EN 1992-1-1: sustained as soon as a share of the loads is; None for other rules."""
-        if self.rule != EN:
-            return None
-        return BETA["sustained" if any(s.key.long_term for s in self.order) else "short"]
+    def stiffening(self) -> Stiffening | None:
+        """Rule of tension stiffening; loads count as sustained as soon as a share of them is."""
+        return None if self.rule is None else Stiffening(self.rule, any(s.key.long_term for s in self.order))
 
     @cached_property
     def layout(self) -> Layout:
@@ -155,11 +153,11 @@ class Phases:
             new = self.loaded(share)
             more = {k: new.get(k, 0.0) - loaded.get(k, 0.0) for k in {*new, *loaded}}
             free = tuple(_sum(own, more) for own in inherited)
-            beta = None if all_cracked else self.beta
+            rule = None if all_cracked else self.stiffening
             moduli = self.analysis.moduli(share.key)
             planar = self.analysis.planes == 1
             law = CrackedLaw(
-                self.sections, moduli, self.never, self.cracking, mask, beta, (free[0], free[1]), planar
+                self.sections, moduli, self.never, self.cracking, mask, rule, (free[0], free[1]), planar
             )
             phase = self.phase(share, found[-1].closed if found else None)
             found.append(Solved(law, close(self.analysis, self.layout, law, phase, forces, near, closed)))

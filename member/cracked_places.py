@@ -40,17 +40,21 @@ def inside(panels: Panels, stretches: Stretches) -> Mask:
     return np.asarray(np.broadcast_to(held[:, None], panels.x.shape))
 
 
-def own_stretches(panels: Panels, phases: Sequence[Solved]) -> tuple[Stretches, list[float]]:
-    """Stretches in which tension passes the stress at which a part cracks in any phase, and the roots that end them."""
+def own_stretches(panels: Panels, phases: Sequence[Solved], level: float = 1.0) -> tuple[Stretches, list[float]]:
+    """Stretches in which tension passes the stress at which a part cracks in any phase, and the roots that end them.
+
+    `level`: share of that stress at which a rule of tension stiffening begins to count it as cracked.
+    """
     found: list[tuple[float, float]] = []
     ends: list[float] = []
     for solved in phases:
-        fields = [np.where(np.isfinite(f), f, -1e300) for v in solved.fibres().values() for f in v]
+        fields = [np.where(np.isfinite(f), f / level, -1e300) for v in solved.fibres().values() for f in v]
         if not fields:
             continue
         places = [x for f in fields for x in roots(panels, f - 1.0)]
         # a fibre that passes its limit where another is over it already ends nothing
         governing = [x for x in places if _largest(panels, fields, np.array([x]))[0] < 1.0 + 1e-6]
+        governing = [x for x in governing if 0.0 < x < panels.b[-1]]
         cuts = np.unique(np.concatenate((panels.a, panels.b, governing)))
         over = _largest(panels, fields, 0.5 * (cuts[1:] + cuts[:-1]))
         found += [(float(a), float(b)) for a, b, v in zip(cuts[:-1], cuts[1:], over, strict=True) if v > 1.0]
@@ -68,7 +72,8 @@ def openings(panels: Panels, phases: Sequence[Solved]) -> list[float]:
         for part in law.never:
             for field in law.sections.tension(part, law.stress(part, plane, 0), law.planar):
                 found += roots(panels, field)
-    return sorted(found)
+    close = 1e-8 * float(panels.b[-1])
+    return sorted(x for x in found if close < x < panels.b[-1] - close)
 
 
 def _largest(panels: Panels, fields: Sequence[Array], x: Array) -> Array:
@@ -77,8 +82,11 @@ def _largest(panels: Panels, fields: Sequence[Array], x: Array) -> Array:
     return np.asarray(np.max([(f[k] * basis).sum(axis=1) for f in fields], axis=0))
 
 
-def kinks(panels: Panels, phases: Sequence[Solved], cracked: Mask, beta: float | None) -> list[float]:
-    """Further places where strains have a kink: cracked places where moment or zeta passes zero [m]."""
+def kinks(panels: Panels, phases: Sequence[Solved], cracked: Mask, start: float | None) -> list[float]:
+    """Further places where strains have a kink: cracked places where moment or zeta passes zero [m].
+
+    `start`: tension over the stress at which it cracks, from which on zeta is above 0 in a place cracked before.
+    """
     found: list[float] = []
     for solved in phases:
         state, law = solved.closed.state, solved.law
@@ -89,11 +97,9 @@ def kinks(panels: Panels, phases: Sequence[Solved], cracked: Mask, beta: float |
         for curvature in state.uncracked.plane[1:]:
             if np.abs(curvature).max() > 0.0:
                 found += [x for x in roots(panels, curvature) if where[panels.find(np.array([x]))[0], 0]]
-        fields = [f for v in solved.fibres().values() for f in v] if law.cracking else []
-        if beta is not None and beta < 1.0:
-            found += [
-                x for f in fields for x in roots(panels, f - np.sqrt(beta)) if cracked[panels.find(np.array([x]))[0], 0]
-            ]
+        if start is not None:
+            for field in (f for v in solved.fibres().values() for f in v):
+                found += [x for x in roots(panels, field - start) if cracked[panels.find(np.array([x]))[0], 0]]
     return found
 
 

@@ -126,7 +126,7 @@ def cracked_response(
     combination : Combination
         Its loads.
     rule : str, optional
-        Rule of tension stiffening along x: "EN 1992-1-1"; any other leaves state II as it is.
+        Rule of tension stiffening, section by section along x; none leaves cracked sections as they are.
     held : tuple of (float, float), optional
         Stretches that other loads have cracked already [m].
     band : {"nominal", "low", "high"}
@@ -191,7 +191,6 @@ class _Run:
             found = np.array(sorted([*ends, *openings(analysis.profile.panels, solved)]))
             same = found.size == borders.size
             gap = float(np.abs(found - borders).max(initial=0.0)) if same else np.inf
-            import os; os.environ.get("TR") and print(count, gap, halved, found.size, borders.size, analysis.profile.panels.count, solved[-1].closed.rounds, solved[-1].closed.residual)
             if gap <= SETTLED * self.base.member.length:
                 more = self._unresolved(analysis, solved) if halved < MOST_HALVINGS else []
                 if not more:
@@ -245,15 +244,15 @@ class _Run:
     def _own(self, analysis: Analysis, solved: Sequence[Solved]) -> tuple[Stretches, list[float]]:
         if self.everywhere:
             return (), []
-        return own_stretches(analysis.profile.panels, solved)
+        rule = solved[-1].law.stiffening
+        return own_stretches(analysis.profile.panels, solved, 1.0 if rule is None else rule.level)
 
     def _kinks(self, solved: Sequence[Solved], cracked: Stretches) -> list[float]:
-        panels = solved[-1].closed.state, solved[-1].law.sections.frame.profile.panels
-        mask = inside(panels[1], cracked)
-        beta = solved[-1].law.beta if self.held else None
-        # a panel that is cracked in part only counts: its borders follow
-        mask = mask | np.array([any(a < y and b > x for a, b in cracked) for x, y in zip(panels[1].a, panels[1].b)])[:, None]
-        return kinks(panels[1], solved, mask, beta)
+        panels, rule = solved[-1].law.sections.frame.profile.panels, solved[-1].law.stiffening
+        # a panel that is cracked in part counts: its borders follow
+        mask = np.array([any(a < y and b > x for a, b in cracked) for x, y in zip(panels.a, panels.b, strict=True)])
+        where = np.broadcast_to(mask[:, None], panels.x.shape)
+        return kinks(panels, solved, where, None if rule is None or not self.held else rule.starts_at)
 
     def _unresolved(self, analysis: Analysis, solved: Sequence[Solved]) -> list[float]:
         """Middles, and quarters, of panels in which strains need more points."""

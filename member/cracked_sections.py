@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Frame
 from fishbelly.member.description import Member
 from fishbelly.member.forces import Forces
-from fishbelly.sections.clipping import at_stations, moved, raw_moments
+from fishbelly.sections.clipping import at_stations, moved
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.fibres import arc_data, fibres
 from fishbelly.sections.no_tension import FreePlanes, largest_share, solve_section

@@ -3,18 +3,23 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.analysis import Analysis, Combined, ModuliKey
+from fishbelly.member.analysis import Analysis, Combined, ModuliKey, Share
 from fishbelly.member.description import Support
 from fishbelly.member.extremes import values_at
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.loads import Load, Shrinkage
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.profile import Profile
 from fishbelly.member.second_loads import LoadShare
-from fishbelly.member.second_method import second_method
+from fishbelly.member.second_method import SecondResult, second_method
+from fishbelly.member.second_sections import Slide
+from fishbelly.member.second_stages import ModuliOf, StagedShare, staged_method
 from fishbelly.member.section_law import SLIDE_SIGNS
 
 Array = NDArray[np.float64]
@@ -51,22 +56,16 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
         When the two methods do not agree.
     """
     entries = [(k, e) for k, e in deflection.items() if e is not None]
-    if not entries or analysis.member.stages:
+    if not entries:
         return None
     way, entry = max(entries, key=lambda pair: abs(pair[1]["value"]))
     at, plane = entry["at"], 1 if way == "across" else 0
     side = "left" if at >= analysis.member.length else "right"
     panels = analysis.profile.panels
     first = float(values_at(panels, combined.total.deflection[plane], np.array([at]), side)[0])
-    second = second_method(
-        analysis.member,
-        np.array([at]),
-        _shares(analysis, combined),
-        lifted=combined.lifted,
-        short_E=analysis.moduli(ModuliKey()).E,
-    )
+    second = second_of(analysis, combined, np.array([at]))
     value = float(second.deflection[plane, 0])
-    nothing = analysis.round_off(combined.total)
+    nothing = _round_off(analysis, combined)
     size = max(float(np.abs(combined.total.deflection).max()), abs(first), nothing)
     difference = abs(value - first) / size
     # where nothing deflects, two round-offs need not agree
@@ -86,22 +85,71 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
     }
 
 
-def _shares(analysis: Analysis, combined: Combined) -> list[LoadShare]:
+def second_of(analysis: Analysis, combined: Combined, x: Array) -> SecondResult:
+    """Ask the second method for what a combination does.
+
+    Parameters
+    ----------
+    analysis, combined : Analysis, Combined
+        The member and its combination.
+    x : ndarray, shape (X,)
+        Places at which deflections are wanted [m].
+    """
+    if analysis.member.stages:
+        # shrinkage with its own creep in a long-term stage finds its moduli by itself
+        given = [share for share in combined.shares if share.key.long_term or not share.key.own]
+        shares = [_staged(analysis, combined, share) for share in given]
+        return staged_method(analysis.member, x, shares, combined.lifted, combined.upto)
+    return second_method(
+        analysis.member,
+        x,
+        [_share(analysis, combined, share) for share in combined.shares],
+        lifted=combined.lifted,
+        short_E=analysis.moduli(ModuliKey()).E,
+    )
+
+
+def _round_off(analysis: Analysis, combined: Combined) -> float:
+    """Deflection that is nothing but round-off: of what was there at the end of any stage, where it has gone again."""
+    totals = [combined.total]
+    for view in analysis.views[: combined.upto if combined.upto is not None else -1]:
+        totals.append(analysis.superposed(combined.shares, combined.lifted, upto=view.index))
+    return max(analysis.round_off(total) for total in totals)
+
+
+def _share(analysis: Analysis, combined: Combined, share: Share) -> LoadShare:
+    slide = _slide(analysis.profile, analysis.moduli(share.key)) if analysis.member.shear else None
+    return LoadShare(_factors(combined, share.key), analysis.moduli(share.key).E, slide, _only(analysis, share.key))
+
+
+def _staged(analysis: Analysis, combined: Combined, share: Share) -> StagedShare:
+    key = share.key
+
+    def slide(which: ModuliOf) -> Slide:
+        wanted = replace(key, stage=which.stage, long_term=which.long_term, own=which.own, aged=which.aged)
+        return _slide(analysis.frames[which.stage].profile, analysis.moduli(wanted))
+
+    return StagedShare(
+        _factors(combined, key),
+        key.band,
+        key.long_term,
+        key.own,
+        _only(analysis, key),
+        slide if analysis.member.shear else None,
+    )
+
+
+def _factors(combined: Combined, key: ModuliKey) -> dict[str, float]:
+    """Factor of each case in the sustained share, or in what is left beside it."""
     c = combined.combination
-    owns = {a.own_creep for a in analysis.atoms if a.own_creep is not None}
-    found = []
-    for share in combined.shares:
-        key = share.key
-        part = {case: c.sustained.get(case, 0.0) for case in c.factors}
-        factors = {case: f * (part[case] if key.long_term else 1.0 - part[case]) for case, f in c.factors.items()}
-        only = _only(key, owns) if key.long_term else None
-        slide = _slide(analysis, key) if analysis.member.shear else None
-        found.append(LoadShare(factors, analysis.moduli(key).E, slide, only))
-    return found
+    part = {case: c.sustained.get(case, 0.0) for case in c.factors}
+    return {case: f * (part[case] if key.long_term else 1.0 - part[case]) for case, f in c.factors.items()}
 
 
-def _only(key: ModuliKey, owns: set[tuple[str, float]]) -> Callable[[Load | Support], bool]:
+def _only(analysis: Analysis, key: ModuliKey) -> Callable[[Load | Support], bool] | None:
     """Tell which loads belong to a long-term set: those of its own creep factor, or all others."""
+    if not key.long_term:
+        return None
 
     def belongs(load: Load | Support) -> bool:
         own = (load.part, load.creep) if isinstance(load, Shrinkage) and load.creep is not None else None
@@ -110,24 +158,25 @@ def _only(key: ModuliKey, owns: set[tuple[str, float]]) -> Callable[[Load | Supp
     return belongs
 
 
-def _slide(analysis: Analysis, key: ModuliKey) -> Callable[[Array, int], Array]:
+def _slide(profile: Profile, moduli: Moduli) -> Slide:
     """1/GA along x, taken over from the first method."""
 
     def slide(x: Array, plane: int) -> Array:
-        profile = analysis.profile
-        field = (SLIDE_SIGNS * profile.shear_flexibility(analysis.moduli(key)))[plane][profile.row]
+        field = (SLIDE_SIGNS * profile.shear_flexibility(moduli))[plane][profile.row]
         return values_at(profile.panels, field, np.asarray(x, dtype=float))
 
     return slide
 
 
 def _residual(analysis: Analysis, combined: Combined) -> float:
-    """Reactions plus loads, down, over the sum of their sizes."""
+    """Reactions plus the loads that have arrived, down, over the sum of their sizes."""
     panels = analysis.profile.panels
     factors = np.asarray(sum(s.factors for s in combined.shares))
     loads = np.zeros(len(analysis.atoms))
     sizes = np.zeros(len(analysis.atoms))
     for k, a in enumerate(analysis.loads):
+        if combined.upto is not None and analysis.stage_of(analysis.atoms[k]) > combined.upto:
+            continue
         whole = panels.integrate(a.q[0])[1]
         loads[k] = whole.sum() + a.P[0].sum()
         sizes[k] = np.abs(whole).sum() + np.abs(a.P[0]).sum()

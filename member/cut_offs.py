@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,9 +19,10 @@ from fishbelly.member.description import Strength
 from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading
 from fishbelly.member.profile import Group, Profile
+from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.fibres import fibres
-from fishbelly.sections.flanges import working_moments
+from fishbelly.sections.flanges import flange_moments, working_moments
 from fishbelly.sections.stiffness import SectionStiffness, section_stiffness
 
 Array = NDArray[np.float64]
@@ -121,15 +123,18 @@ class _Rest:
     group: Group
     stays: tuple[int, ...]
 
+    @cached_property
+    def moments(self) -> AreaMoments:
+        """Moments of what works of the parts that stay."""
+        if len(self.stays) == len(self.group.placed.index):
+            return self.group.moments
+        place = {k: n for n, k in enumerate(self.stays)}
+        flanges = [replace(f, part=place[f.part]) for f in self.group.placed.flanges if f.part in place]
+        return working_moments(self.composition, flanges, flange_moments(self.composition, flanges))
+
     def stiffness(self, E: Array) -> SectionStiffness:
         """Stiffness with moduli of all parts of the member, shape (P,)."""
-        flanges = tuple(f for f in self.group.placed.flanges if f.part in self.stays)
-        if len(self.stays) == len(self.group.placed.index):
-            moments = self.group.moments
-        else:
-            place = {k: n for n, k in enumerate(self.stays)}
-            moments = working_moments(self.composition, [replace(f, part=place[f.part]) for f in flanges])
-        return section_stiffness(moments, self.group.modulus(E)[list(self.stays)])
+        return section_stiffness(self.moments, self.group.modulus(E)[list(self.stays)])
 
 
 def _without(group: Group, index: int) -> _Rest:

@@ -205,7 +205,10 @@ class Part:
 
 @dataclass(frozen=True, eq=False)
 class Notch:
-    """A cut through a part's whole width from one side [m]; `reach` cuts stiffness, not mass."""
+    """A cut through a part's whole width from one side [m]; `reach` cuts stiffness, not mass.
+
+    One that a `rule` makes, such as that of an effective width, cuts no mass anywhere.
+    """
 
     of: str
     depth: Law
@@ -213,6 +216,7 @@ class Notch:
     end: float
     side: str = "bottom"
     reach: float = 0.0
+    rule: str = ""
 
 
 @dataclass(frozen=True)
@@ -361,6 +365,10 @@ class Member:
         from fishbelly.member.checking import check
 
         check(self)
+        if any(p.effective is not None for p in self.parts) and not any(n.rule for n in self.notches):
+            from fishbelly.member.effective_width import effective_notches
+
+            object.__setattr__(self, "notches", self.notches + effective_notches(self))
         if not self.combinations:
             factors = MappingProxyType(dict.fromkeys(self.cases, 1.0))
             everything = Combination("all", factors, implied=True)

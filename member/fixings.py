@@ -60,16 +60,17 @@ class Joined:
 
 @dataclass(frozen=True)
 class EffectiveWidth:
-    """Shear lag of a wide part by a published rule: `rule` names it.
+    """Shear lag of a wide part by a published rule: only part of its width counts in stiffness and stress.
 
     Parameters
     ----------
     rule : str
-        Name of the rule, such as ``"EN 1992-1-1"``.
+        Name of the rule, one of `fishbelly.member.effective_rules.RULES`.
     web_spacing : float, optional
-        Distance to the next web on either side, middle to middle [m].
+        Distance to the next web, middle to middle [m]; on both sides where there is no `edge`.
     edge : float, optional
-        Distance from the web to a free edge, on the side that has one [m].
+        Distance from the middle of the web to a free edge [m]; on both sides where there is no `web_spacing`. With
+        neither the part's own width gives both.
     """
 
     rule: str

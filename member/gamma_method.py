@@ -54,7 +54,12 @@ class Gamma:
 
 
 def gamma_method(
-    EA: Sequence[float], EI: Sequence[float], levels: Sequence[float], k: Sequence[float], length: float, middle: int = 0
+    EA: Sequence[float],
+    EI: Sequence[float],
+    levels: Sequence[float],
+    k: Sequence[float],
+    length: float,
+    middle: int = 0,
 ) -> Gamma:
     """Effective stiffness of one section.
 
@@ -89,7 +94,6 @@ def gamma_method(
     if not 2 <= len(EA) <= MOST_PARTS:
         raise ValueError(f"expected two or three parts, got {len(EA)}")
     axial, own, z, joint = (np.asarray(v, dtype=float) for v in (EA, EI, levels, k))
-    gamma = np.zeros(axial.size)
     stiff = joint * length**2
     gamma = stiff / (stiff + np.pi**2 * axial)
     gamma[middle] = 1.0
@@ -98,7 +102,7 @@ def gamma_method(
     effective = float(own.sum() + weight @ a**2)
     flow = weight * np.abs(a) / effective
     flow[middle] = 0.0
-    return Gamma(effective, *(tuple(v.tolist()) for v in (gamma, a, flow)), length)
+    return Gamma(effective, tuple(gamma.tolist()), tuple(a.tolist()), tuple(flow.tolist()), length)
 
 
 @dataclass(frozen=True)
@@ -127,8 +131,10 @@ class GammaSpan:
 def gamma_spans(law: SlipLaw) -> tuple[GammaSpan, ...]:
     """The gamma-method on every span of a member, where its conditions hold.
 
-    These are: two parts, or three of which the outer ones are joined to the middle one; each over the whole span with
-    one section and one joint stiffness; bending in the vertical plane alone.
+    These are: a span that turns freely over its supports, or an overhang; no hinge in it; two parts, or three of which
+    the outer ones are joined to the middle one; each over the whole span with one section and one joint stiffness;
+    bending in the vertical plane alone. The shape of the moment is not looked at: the code has it sinusoidal or
+    parabolic.
 
     Parameters
     ----------
@@ -164,7 +170,8 @@ def _on_span(law: SlipLaw, span: Span, several: bool) -> GammaSpan:
     for j, slipping in enumerate(law.layers.joints):
         outer = slipping.on if slipping.layer == host else slipping.layer
         joint[outer] = law.k[j, inside[0], 0]
-    result = gamma_method(EA[there], EI[there], level[there], joint[there], length, int(np.searchsorted(there, host)))
+    axial, own, levels, joints = (v[there].tolist() for v in (EA, EI, level, joint))
+    result = gamma_method(axial, own, levels, joints, length, int(np.searchsorted(there, host)))
     return GammaSpan(span, result, "", rigid, apart)
 
 
@@ -178,6 +185,13 @@ def _middle(law: SlipLaw, there: np.ndarray) -> int:
 def _reason(law: SlipLaw, inside: np.ndarray, there: np.ndarray, span: Span) -> str:
     """First condition of the method that does not hold on a span."""
     s, place = law.sections, f"between {span.start:.6g} m and {span.end:.6g} m"
+    member, tiny = law.layers.member, 1e-9 * law.layers.member.length
+    ends = (span.start - tiny, span.end + tiny)
+    turning = [v.at for v in member.supports if v.rotation > 0.0 and ends[0] < v.at < ends[1]]
+    if turning and not span.overhang:
+        return f"a support holds the rotation at {turning[0]:.6g} m"
+    if any(ends[0] < h.at < ends[1] for h in member.hinges):
+        return f"there is a hinge {place}"
     if there.size < 2:
         return f"there is one part alone {place}"
     if there.size > MOST_PARTS:

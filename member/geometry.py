@@ -92,7 +92,7 @@ class Geometry:
         return start <= x + tiny < end if side == "right" else start < x - tiny <= end
 
     def present(self, x: float, side: str = "right") -> tuple[tuple[int, ...], ...]:
-        """Indices of the parts, notches and openings that are there at x; ~i for a notch within its reach alone.
+        """Indices of the parts, notches and openings that are there at x; ~i for a notch that cuts no mass there.
 
         The fourth entry has the parts that stand there whether or not they work: others may lean on them.
         """
@@ -105,7 +105,7 @@ class Geometry:
             if n.of in names:
                 p = m.part(n.of)
                 if self.is_there(*notch_span(n, p.start, p.end, False), x, side):
-                    notches.append(i)
+                    notches.append(~i if n.rule else i)
                 elif self.is_there(*notch_span(n, p.start, p.end, True), x, side):
                     notches.append(~i)
         openings = tuple(

@@ -68,6 +68,12 @@ def moduli(
     return Moduli(f"{band}{' long-term' if long_term else ''}{when}", E, G)
 
 
+def modulus(material: Material, long_term: bool = False, stage: Stage | None = None) -> float:
+    """E of a material in a stage [Pa], divided by 1 + creep where it is for loads of long duration."""
+    creep = (material.creep or 0.0) if long_term else 0.0
+    return material.E * _of_stage(material, stage) / (1.0 + creep)
+
+
 def _of_stage(material: Material, stage: Stage | None) -> float:
     """Share of a material's E and G in a stage: its own modulus there over E, or a factor."""
     if stage is None:

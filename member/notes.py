@@ -12,6 +12,7 @@ from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
+from fishbelly.member.notes_effective import effective_widths
 from fishbelly.member.notes_joints import joints_full, joints_short
 from fishbelly.member.notes_twist import twisting
 from fishbelly.member.shortcuts import shortcuts
@@ -301,6 +302,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _stressed,
     joints_short,
     joints_full,
+    effective_widths,
     _inclined,
     _deep,
     _thrust,

@@ -57,9 +57,9 @@ def _eccentricity(analysis: Analysis, x: float) -> float | None:
     works = analysis.profile.geometry.works
     group = group_places(Geometry(member, works), np.array([[x]]), np.array([x]), 0, side)[0]
     short = analysis.moduli(ModuliKey())
-    if _symmetric(group, analysis) or not np.all(group.modulus(short.G) > 0.0):
-        return None
     s = group.stiffness(short)
+    if not s.EA[0] > 0.0 or _symmetric(group, analysis) or not np.all(group.modulus(short.G) > 0.0):
+        return None
     size = float(np.sqrt((s.EI_y[0] + s.EI_z[0]) / s.EA[0]))
     e = -float(section_flexure(member, group, short).y_s[0])
     return e if abs(e) > _ASIDE * size else None

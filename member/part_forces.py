@@ -15,9 +15,8 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Frame
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.moduli import Moduli
-from fishbelly.member.panels import Panels
 from fishbelly.member.response import Response
-from fishbelly.member.staging import Step, resultant
+from fishbelly.member.staging import Step
 
 Array = NDArray[np.float64]
 
@@ -114,7 +113,10 @@ def share_plane(share: Loading, index: int) -> Array | None:
     if index not in share.step.parts:
         return None
     r = share.response
-    strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]), axis=1)
+    axial = r.axial
+    if share.step.layered is not None:
+        axial = np.einsum("ja,akn->jkn", share.factors, share.step.axial(index))
+    strain = np.stack((axial, -r.curvature[0], -r.curvature[1]), axis=1)
     free = share.step.free.get(index)
     if free is not None:
         strain = strain - np.einsum("ja,cakn->jckn", share.factors, free)

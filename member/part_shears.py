@@ -57,19 +57,20 @@ def part_shears(loading: Sequence[Loading], forces: Mapping[int, PartForce]) -> 
     bodies: dict[tuple[int, int | None], list[int]] = {}
     for i, head in heads.items():
         bodies.setdefault((cluster[i], head), []).append(i)
-    shear = {(c, None): v for c, v in left.items()}
+    shear: dict[tuple[int, int | None], Array] = {(c, None): v for c, v in left.items()}
+    nothing = np.zeros(total.shape)
     for _, head in sorted((b for b in bodies if b[1] is not None), key=lambda b: -(b[1] or 0)):
         assert head is not None
         under = number[member.parts[head].place.host]
         mine = (cluster[head], head)
         carried = _above(head, heads, number, profile)
         whole = _stacked_shear(profile, forces, carried, head, float(loading[0].end.line[0]))
-        shear[mine] = shear.get(mine, 0.0) + whole
+        shear[mine] = shear.get(mine, nothing) + whole
         below = (cluster[under], heads[under])
-        shear[below] = shear.get(below, 0.0) - whole
+        shear[below] = shear.get(below, nothing) - whole
     found: dict[int, Array] = {}
     for body, parts in bodies.items():
-        found |= _shared(profile, parts, np.asarray(shear[body]))
+        found |= _shared(profile, parts, shear[body])
     return found
 
 
@@ -158,5 +159,5 @@ def _shared(profile: Profile, parts: list[int], shear: Array) -> dict[int, Array
             every = shear_shares(g.composition.levels, E, G if np.all(G.max(axis=1) > 0.0) else E, stiffness)
             some = every[[k for _, k in mine]]
             whole = some.sum(axis=0)
-            share[np.ix_([k for k, _ in mine], g.rows)] = some / np.where(whole != 0.0, whole, 1.0)
+            share[np.ix_(np.array([k for k, _ in mine]), g.rows)] = some / np.where(whole != 0.0, whole, 1.0)
     return {i: shear * share[k][profile.row] for k, i in enumerate(parts)}

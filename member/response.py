@@ -19,7 +19,7 @@ from fishbelly.member.forces import Forces
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.nodes import Layout, Segment
 from fishbelly.member.panels import Panels
-from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.section_law import ElasticLaw, Strains
 from fishbelly.member.unknowns import HELD_BY, Dof
 
 Array = NDArray[np.float64]
@@ -87,7 +87,20 @@ def respond(
     free: list[Forces],
     planes: int,
 ) -> Response:
-    """Response to every atom.
+    """Response to every atom; see `responded`."""
+    return responded(frame, layout, law, atoms, loads, free, planes)[0]
+
+
+def responded(
+    frame: Frame,
+    layout: Layout,
+    law: ElasticLaw,
+    atoms: Sequence[Atom],
+    loads: list[Actions],
+    free: list[Forces],
+    planes: int,
+) -> tuple[Response, Strains]:
+    """Response to every atom, and the strains as the law has them.
 
     Parameters
     ----------
@@ -104,6 +117,8 @@ def respond(
     -------
     Response
         With an axis of atoms.
+    Strains
+        The same strains; where parts slip on each other, layer by layer.
 
     Raises
     ------
@@ -116,15 +131,15 @@ def respond(
     N = np.array([s.forces.N for s in found])
     V = np.stack([s.forces.V for s in found], axis=1)
     M = np.stack([s.forces.M for s in found], axis=1)
-    held = Forces(np.array([f.N for f in free]), *(np.stack([getattr(f, k) for f in free], axis=1) for k in "VM"))
-    strains = law.strains(Forces(N, V, M).plus(held))
+    strains = law.strains(type(free[0]).stacked(free).plus(Forces(N, V, M)))
     rotation, deflection = np.zeros_like(V), np.zeros_like(V)
     for p in range(planes):
         rotation[p], deflection[p] = _deflected(
             frame.profile.panels, layout, found, strains.curvature[p], strains.shear[p], p
         )
     reactions = np.array([_reactions(frame, r, s, atom, a) for s, atom, a in zip(found, atoms, loads, strict=True)])
-    return Response(N, V, M, strains.axial, strains.curvature, strains.shear, rotation, deflection, reactions)
+    found_strains = (strains.axial, strains.curvature, strains.shear)
+    return Response(N, V, M, *found_strains, rotation, deflection, reactions), strains
 
 
 def _settlements(layout: Layout, atom: Atom) -> dict[Dof, Array]:

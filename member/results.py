@@ -36,7 +36,7 @@ NEGLIGIBLE = 1e-9
 """A largest value below this share of the largest of its kind does not exist."""
 
 
-def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
+def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None = None) -> Data:
     """Everything `fishbelly deflect` tells.
 
     Parameters
@@ -45,28 +45,34 @@ def deflect(member: Member, at: Iterable[float] | None = None) -> Data:
         The description.
     at : iterable of float, optional
         Places to list instead of the default ones [m].
+    stage : str, optional
+        Stage at whose end the results are; default the last.
 
     Returns
     -------
     dict
-        As the contract of results has it, SI units.
+        As the contract of results has it, SI units; ``stage`` where one was asked for.
 
     Raises
     ------
+    KeyError
+        When there is no such stage.
     CannotCompute
         When the numbers cannot be had.
     """
     wanted = None if at is None else [float(x) for x in at]
+    number = stage_number(member, stage)
+    upto = number if stage is not None and number < len(member.stages) - 1 else None
     analysis = Analysis.of(member, wanted or ())
     _in_range(analysis)
-    combinations = [_combination(analysis, c, wanted) for c in map(analysis.combine, member.combinations)]
-    return {
-        "title": member.title,
-        "units": "SI: m, N, Pa, rad, kg",
-        "length": member.length,
+    combinations = [_combination(analysis, analysis.combine(c, upto=upto), wanted) for c in member.combinations]
+    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "length": member.length}
+    if stage is not None:
+        data["stage"] = stage
+    return data | {
         "notes": notes(analysis, combinations),
         "combinations": combinations,
-        "stages": stage_rows(analysis, combinations, _deflection_and_stress),
+        "stages": stage_rows(analysis, combinations, _deflection_and_stress)[: number + 1],
     }
 
 
@@ -246,7 +252,7 @@ def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequenc
     fields = Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined))
     found = []
     for limit in analysis.member.limits:
-        if applies(limit, combined.combination):
+        if applies(limit, combined.combination) and not _later(analysis, combined, limit):
             check = check_limit(analysis, limit, _fields_of(analysis, combined, limit, fields))
             if check is not None:
                 found.append(check)
@@ -254,6 +260,12 @@ def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequenc
     if not strong or combined.combination.purpose == "strength":
         found += check_strengths(analysis, stresses)
     return found
+
+
+def _later(analysis: Analysis, combined: Combined, limit: Limit) -> bool:
+    """Whether a limit looks at a stage after the one at whose end results are asked for."""
+    named = [stage_number(analysis.member, s) for s in (limit.stage, limit.after) if s is not None]
+    return combined.upto is not None and max(named, default=0) > combined.upto
 
 
 def _spans_at(analysis: Analysis, combined: Combined, stage: int | None = None) -> tuple[Span, ...]:
@@ -267,7 +279,8 @@ def _fields_of(analysis: Analysis, combined: Combined, limit: Limit, fields: Fie
     """Fields that a limit looks at: at the end of its stage, or what happens after another has begun."""
     if limit.stage is None and limit.after is None:
         return fields
-    at = stage_number(analysis.member, limit.stage)
+    last = combined.upto if combined.upto is not None else len(analysis.views) - 1
+    at = last if limit.stage is None else stage_number(analysis.member, limit.stage)
     after = None if limit.after is None else stage_number(analysis.member, limit.after)
     p = since(analysis, combined, at, after)
     return Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined, at))
@@ -304,7 +317,7 @@ def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
     """Add what the low and the high end of every material's band of E give, all low or all high together."""
     bands = {}
     for band in ("low", "high"):
-        other = analysis.combine(combined.combination, band)
+        other = analysis.combine(combined.combination, band, combined.upto)
         cases = arrangements(analysis, other) if bearings_change(analysis, other) else [other]
         found = [_deflections_and_checks(analysis, c) for c in cases]
         entries = {k: _widest([d[k] for d, _ in found]) for k in data["deflection"]}

@@ -5,6 +5,7 @@ A plate's angle is that of the edge it follows, a flange's that of its middle li
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np

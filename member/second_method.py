@@ -32,7 +32,7 @@ __all__ = ["LoadShare", "SecondResult", "second_method"]
 
 Array = NDArray[np.float64]
 
-_ROUND_OFF = 1e-14
+ROUND_OFF = 1e-14
 
 
 @dataclass(frozen=True, eq=False)
@@ -116,7 +116,7 @@ def second_method(
         everywhere += shape.deflection
         error += error_of(found, sampled, float(np.abs(shape.deflection).max()))
     largest = max(float(np.abs(everywhere).max()), float(np.abs(total).max(initial=0.0)))
-    error = _ROUND_OFF + error / largest if largest > 0.0 else 0.0
+    error = ROUND_OFF + error / largest if largest > 0.0 else 0.0
     work = _work_check(solved[0]) if len(solved) == 1 else None
     return SecondResult(total, reactions, error, largest, work)
 

@@ -125,6 +125,8 @@ def _slid(strain: Strain, loads: Pushes) -> Strain:
 def coupled(ground: Ground, law: Flexibility, loads: Pushes) -> bool:
     """Whether anything may move the member sideways."""
     bend = law.bend
+    if loads.angle is not None and np.any(loads.angle[1]):
+        return True
     if np.any(bend[0, 1] ** 2 > UNCOUPLED**2 * bend[0, 0] * bend[1, 1]):
         return True
     size = np.sqrt(1.0 / (bend[1, 1] * law.EA))

@@ -9,15 +9,18 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import breakpoints
-from fishbelly.member.description import Material, Member
+from fishbelly.member.description import Member
+from fishbelly.member.effective_width import counting_width
 from fishbelly.member.faults import NoStiffness
-from fishbelly.member.geometry import Geometry
 from fishbelly.member.inclined_results import along_at_levels, inclined_at, inclined_there
-from fishbelly.member.moduli import Moduli, moduli
+from fishbelly.member.moduli import Moduli
 from fishbelly.member.places import default_places, two_sided
 from fishbelly.member.profile import Group, group_places
+from fishbelly.member.section_plastic import plastic_bending
 from fishbelly.member.section_shear import NO_SHEAR, shear_and_torsion
+from fishbelly.member.section_table import rolled_table
 from fishbelly.member.shear_along import ShearAlong
+from fishbelly.member.stage_section import StageSection, in_stage
 from fishbelly.sections.stiffness import SectionStiffness, principal_axes
 
 Array = NDArray[np.float64]
@@ -26,7 +29,9 @@ Data = dict[str, Any]
 COLUMNS = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass", "z_top", "z_bottom")
 
 
-def section_at(member: Member, x: float, side: str = "right", to: str | None = None) -> Data:
+def section_at(
+    member: Member, x: float, side: str = "right", to: str | None = None, stage: str | None = None
+) -> Data:
     """Everything `fishbelly section` tells about the cross-section at x.
 
     Parameters
@@ -39,18 +44,28 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
         Which side of a break.
     to : str, optional
         Material to which the section is transformed; default that of the first part there.
+    stage : str, optional
+        Stage whose parts and moduli count, long-term ones in a stage that is `long_term`; default the last.
 
     Returns
     -------
     dict
         As the contract of results has it, SI units; moments and axes about the E-weighted centroid.
+
+    Raises
+    ------
+    KeyError
+        When there is no such stage.
+    NoStiffness
+        When nothing is left of the section there.
     """
+    there = in_stage(member, stage)
     if x >= member.length * (1.0 - 1e-12):
         side = "left"
     elif x <= member.length * 1e-12:
         side = "right"
-    group = group_places(Geometry(member), np.array([[x]]), np.array([x]), 0, side)[0]
-    short = moduli(member)
+    group = group_places(there.geometry, np.array([[x]]), np.array([x]), 0, side)[0]
+    short = there.moduli
     with np.errstate(all="ignore"):
         s = group.stiffness(short)
         if not s.EA[0] > 0.0:
@@ -60,7 +75,7 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
         "units": "SI: m, N, Pa, rad, kg",
         "x": x,
         "side": side,
-        "stage": "all",
+        "stage": there.view.name,
     }
     data["break"] = bool(np.abs(breakpoints(member) - x).min() < 1e-9 * member.length)
     data |= {k: _number(getattr(s, k)[0]) for k in ("EA", "EI_y", "EI_z", "EI_yz")}
@@ -68,9 +83,9 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
     data |= {"y_c": _number(s.y_c[0]), "z_c": _number(s.z_c[0]), "mass": _mass(member, group)}
     big, small, angle = principal_axes(s)
     data["principal"] = {"EI_1": _number(big[0]), "EI_2": _number(small[0]), "angle": _number(angle[0])}
-    data["parts"] = _parts(member, group, s, short)
-    data["transformed"] = _transformed(member, group, s, to)
-    return data
+    data["parts"] = _parts(member, group, s, short, side)
+    data["transformed"] = _transformed(there, group, s, to)
+    return data | {"plastic": plastic_bending(member, group), "table": rolled_table(member, group)}
 
 
 def _number(value: float) -> float | None:
@@ -97,7 +112,7 @@ def _mass(member: Member, group: Group) -> float | None:
     return _number(total.area[0])
 
 
-def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli) -> list[Data]:
+def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli, side: str) -> list[Data]:
     """Area, modulus, levels and stress coefficients of every part there."""
     m = group.composition.moments
     E = group.modulus(short.E)
@@ -133,6 +148,7 @@ def _parts(member: Member, group: Group, s: SectionStiffness, short: Moduli) -> 
         leaning = {r["flange"]: r["angle"] for r in inclined_there(member, group, 0) if r["part"] == part.name}
         if leaning:
             rows[-1]["inclined"] = leaning
+        rows[-1] |= counting_width(member, part, float(group.placed.x[0]), side)
     return rows
 
 
@@ -143,21 +159,23 @@ def _section_modulus(E: float, arm: float, s: SectionStiffness) -> float | None:
     return _number(s.EI_y[0] / (E * abs(arm)))
 
 
-def _transformed(member: Member, group: Group, s: SectionStiffness, to: str | None) -> Data:
-    material: Material = member.material(to or member.parts[group.placed.index[0]].material or "")
+def _transformed(there: StageSection, group: Group, s: SectionStiffness, to: str | None) -> Data:
+    member = there.member
+    name = to or member.parts[group.placed.index[0]].material or ""
+    E = there.modulus(name)
     low, high = group.composition.extent
     top, bottom = float(np.nanmax(high)), float(np.nanmin(low))
-    I_y = s.EI_y[0] / material.E
+    I_y = s.EI_y[0] / E
     ratios = {}
     for i in group.placed.index:
-        name = member.parts[i].material or ""
-        ratios[name] = member.material(name).E / material.E
+        other = member.parts[i].material or ""
+        ratios[other] = there.modulus(other) / E
     return {
-        "to": material.name,
-        "E": material.E,
-        "A": _number(s.EA[0] / material.E),
+        "to": name,
+        "E": E,
+        "A": _number(s.EA[0] / E),
         "I_y": _number(I_y),
-        "I_z": _number(s.EI_z[0] / material.E),
+        "I_z": _number(s.EI_z[0] / E),
         "W_top": _number(I_y / (top - s.z_c[0])),
         "W_bottom": _number(I_y / (s.z_c[0] - bottom)),
         "n": ratios,
@@ -166,7 +184,9 @@ def _transformed(member: Member, group: Group, s: SectionStiffness, to: str | No
     }
 
 
-def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None = None) -> Data:
+def stiffness(
+    member: Member, at: Iterable[float] | None = None, to: str | None = None, stage: str | None = None
+) -> Data:
     """Stiffness along the member, as `fishbelly stiffness` lists it.
 
     Parameters
@@ -177,6 +197,8 @@ def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None 
         Places to list instead of an even 101 and every break [m].
     to : str, optional
         Material to which the section is also transformed, as frame models want it.
+    stage : str, optional
+        Stage whose parts and moduli count, long-term ones in a stage that is `long_term`; default the last.
 
     Returns
     -------
@@ -186,7 +208,8 @@ def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None 
     """
     places = default_places(member) if at is None else np.unique(np.fromiter(at, dtype=float))
     every, sides = two_sided(places, places, member.length)
-    table = profile_at(member, every, sides)
+    there = in_stage(member, stage)
+    table = profile_at(member, every, sides, stage)
     keep = np.ones(every.size, dtype=bool)
     for k in range(every.size - 1):
         if every[k] == every[k + 1] and not _jumps(table[:, k], table[:, k + 1], table):
@@ -198,16 +221,16 @@ def stiffness(member: Member, at: Iterable[float] | None = None, to: str | None 
         | {"break": bool(np.abs(breaks - every[k]).min() < 1e-9 * member.length)}
         for k in np.flatnonzero(keep)
     ]
-    leaning = inclined_at(member, every, sides)
+    leaning = inclined_at(member, every, sides, there.geometry.works)
     for row, k in zip(rows, np.flatnonzero(keep), strict=True):
         if leaning[k]:
             row["inclined"] = leaning[k]
-    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": "all"}
+    data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": there.view.name}
     if to is not None:
-        material = member.material(to)
-        data["transformed"] = {"to": material.name, "E": material.E}
+        E = there.modulus(to)
+        data["transformed"] = {"to": to, "E": E}
         for row in rows:
-            row["transformed"] = _referred(row, material.E)
+            row["transformed"] = _referred(row, E)
     return data | {"stations": rows}
 
 
@@ -242,9 +265,10 @@ def _jumps(left: Array, right: Array, table: Array) -> bool:
     )
 
 
-def profile_at(member: Member, x: Array, sides: list[str]) -> Array:
-    """Columns of `COLUMNS` at places, each seen from one side, shape (10, X); NaN where there is none."""
-    geometry, short, density = Geometry(member), moduli(member), _densities(member)
+def profile_at(member: Member, x: Array, sides: list[str], stage: str | None = None) -> Array:
+    """Columns of `COLUMNS` at places in a stage, each seen from one side, shape (10, X); NaN where there is none."""
+    there = in_stage(member, stage)
+    geometry, short, density = there.geometry, there.moduli, _densities(member)
     table = np.full((len(COLUMNS), x.size), np.nan)
     shear = ShearAlong(geometry)
     for side in ("left", "right"):

@@ -179,7 +179,9 @@ class Chain:
             return
         size = max(float(np.abs(g).max(initial=0.0)), float(np.abs(target).max(initial=0.0)))
         if np.any(np.abs(missing[join.pinned]) > 1e-9 * size):
-            raise Mechanism(f"nothing holds a layer along x left of x = {self.borders.at[k + 1]:.6g} m, and it is pushed")
+            raise Mechanism(
+                f"nothing holds a layer along x left of x = {self.borders.at[k + 1]:.6g} m, and it is pushed"
+            )
 
     def _backward(self, s: Array, offsets: list[tuple[Array, Array]]) -> tuple[Array, Array]:
         left, right = np.zeros_like(s), np.zeros_like(s)
@@ -226,7 +228,7 @@ def _joined(joints: Index, following: Index, A: Array, springs: Array) -> _Borde
     pinned = ~np.any(A[ends] != 0.0, axis=1)
     own[pinned], own[:, pinned] = 0.0, 0.0
     own[pinned, pinned] = 1.0
-    out = np.linalg.inv(own)
+    out: Array = np.linalg.inv(own).astype(float)
     out[pinned] = 0.0
     across = A[np.ix_(on, ends)]
     back = out @ A[np.ix_(ends, on)]

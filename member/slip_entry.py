@@ -66,43 +66,43 @@ def entries(frame: Frame, layers: Layers, lifted: Collection[str] = ()) -> Entri
     held, cut = np.zeros(borders, dtype=bool), np.zeros(borders, dtype=bool)
     cut[[0, -1]] = True
     gone = frozenset(lifted) | (frame.view.gone if frame.view is not None else frozenset())
-    wanted: dict[int, list[tuple[float, float]]] = {}
-    for support in member.supports:
-        if support.name in gone:
-            continue
-        if _holds_slip(support):
-            held[panels.border(support.at)] = True
-        if support.along > 0.0:
-            _ask(frame, wanted, support.at, support.level)
-    for at in frame.view.hinges if frame.view is not None else [h.at for h in member.hinges]:
-        cut[panels.border(at)] = True
-        _ask(frame, wanted, at, "centroid")
-    for load in member.loads:
-        if isinstance(load, Axial) and load.value:
-            _ask(frame, wanted, load.at, load.level)
-    for load in member.loads:
-        if isinstance(load, Point) and load.per and member.rises and panels.border(load.at) not in wanted:
-            _ask(frame, wanted, load.at, "centroid")
-    for border, levels in wanted.items():
+    hinges = frame.view.hinges if frame.view is not None else tuple(h.at for h in member.hinges)
+    cut[[panels.border(at) for at in hinges]] = True
+    held[[panels.border(s.at) for s in member.supports if s.name not in gone and _holds_slip(s)]] = True
+    for border, levels in _wanted(frame, gone, hinges).items():
         found = {_layer_at(frame, layers, x, z) for x, z in levels}
         if len(found) > 1:
             raise CannotCompute(f"forces along x enter different layers at x = {levels[0][0]:.6g} m")
         layer[border] = found.pop()
     if member.rises:
-        middle = 0.5 * (panels.a + panels.b)
         half = panels.rule.points.size // 2
-        for k, x in enumerate(middle):
+        for k, x in enumerate(0.5 * (panels.a + panels.b)):
             spread[k] = _layer_at(frame, layers, float(x), float(frame.centre[0, k, half] + frame.line[0]))
     return Entries(layer, spread, held, cut)
 
 
+def _wanted(frame: Frame, gone: frozenset[str], hinges: tuple[float, ...]) -> dict[int, list[tuple[float, float]]]:
+    """Places and levels at which forces along x enter, by border; those that only may where nothing else does."""
+    member = frame.profile.member
+    arriving = [v for v in member.loads if frame.view is None or v.case in frame.view.cases]
+    sure: list[tuple[float, str | float]] = [(h, "centroid") for h in hinges]
+    sure += [(s.at, s.level) for s in member.supports if s.along > 0.0 and s.name not in gone]
+    sure += [(v.at, v.level) for v in arriving if isinstance(v, Axial) and v.value]
+    # a support that has gone leaves what it carried; an inclined member's point loads push along it too
+    may: list[tuple[float, str | float]] = [(s.at, s.level) for s in member.supports if s.along > 0.0]
+    may += [(v.at, "centroid") for v in arriving if isinstance(v, Point) and v.per and member.rises]
+    found: dict[int, list[tuple[float, float]]] = {}
+    for at, level in sure:
+        z = float(frame.level(level, at)[0] + frame.line[0])
+        found.setdefault(frame.profile.panels.border(at), []).append((at, z))
+    for at, level in may:
+        z = float(frame.level(level, at)[0] + frame.line[0])
+        found.setdefault(frame.profile.panels.border(at), [(at, z)])
+    return found
+
+
 def _holds_slip(support: Support) -> bool:
     return bool(np.isinf(support.rotation)) and not support.slip_free
-
-
-def _ask(frame: Frame, wanted: dict[int, list[tuple[float, float]]], at: float, level: str | float) -> None:
-    z = float(frame.level(level, at)[0] + frame.line[0])
-    wanted.setdefault(frame.profile.panels.border(at), []).append((at, z))
 
 
 def _layer_at(frame: Frame, layers: Layers, x: float, z: float) -> int:

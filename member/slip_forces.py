@@ -43,6 +43,29 @@ class LayeredForces(Forces):
                 slips = factor * other.slips if slips is None else slips + factor * other.slips
         return LayeredForces(total.N, total.V, total.M, layers, slips)
 
+    @property
+    def any(self) -> bool:
+        """Whether there is any force or slip at all."""
+        return bool(
+            Forces(self.N, self.V, self.M).any or np.any(self.layers) or (self.slips is not None and np.any(self.slips))
+        )
+
+    def atom(self, k: int) -> LayeredForces:
+        """Return one of several sets stacked in front of (K, n)."""
+        slips = None if self.slips is None else self.slips[:, k]
+        return LayeredForces(self.N[k], self.V[:, k], self.M[:, k], self.layers[:, k], slips)
+
+    @property
+    def any(self) -> bool:
+        """Whether there is any force or slip at all; forces of layers may cancel in the whole."""
+        slips = self.slips is not None and bool(np.any(self.slips))
+        return slips or bool(np.any(self.layers)) or bool(np.any(self.V)) or bool(np.any(self.M))
+
+    def atom(self, k: int) -> LayeredForces:
+        """Return one of several sets stacked in front of (K, n)."""
+        slips = None if self.slips is None else self.slips[:, k]
+        return LayeredForces(self.N[k], self.V[:, k], self.M[:, k], self.layers[:, k], slips)
+
     @classmethod
     def by_layer(cls, layers: Layers, parts: Iterable[tuple[int, Forces]], shape: tuple[int, ...]) -> LayeredForces:
         """Collect forces given part by part, each with fields of `shape` (after the plane), into their layers."""
@@ -54,20 +77,18 @@ class LayeredForces(Forces):
         return cls(N, V, M, each)
 
     @classmethod
-    def stacked(cls, several: Sequence[LayeredForces]) -> LayeredForces:
-        """Stack sets on a new axis, in front of (K, n)."""
-        joints = next((len(f.slips) for f in several if f.slips is not None), 0)
-        slips = None
-        if joints:
-            shape = (joints, *several[0].N.shape)
-            slips = np.stack([np.zeros(shape) if f.slips is None else f.slips for f in several], axis=1)
-        return cls(
-            np.stack([f.N for f in several]),
-            np.stack([f.V for f in several], axis=1),
-            np.stack([f.M for f in several], axis=1),
-            np.stack([f.layers for f in several], axis=1),
-            slips,
-        )
+    def stacked(cls, several: Sequence[Forces]) -> LayeredForces:
+        """Stack sets on a new axis, in front of (K, n); those that act on the whole alone may be among them."""
+        N = np.stack([f.N for f in several])
+        V, M = (np.stack([getattr(f, name) for f in several], axis=1) for name in "VM")
+        layered = [f for f in several if isinstance(f, LayeredForces)]
+        none = np.zeros_like(layered[0].layers)
+        layers = np.stack([f.layers if isinstance(f, LayeredForces) else none for f in several], axis=1)
+        slipping = next((f.slips for f in layered if f.slips is not None), None)
+        if slipping is None:
+            return cls(N, V, M, layers)
+        own = (f.slips if isinstance(f, LayeredForces) else None for f in several)
+        return cls(N, V, M, layers, np.stack([np.zeros_like(slipping) if v is None else v for v in own], axis=1))
 
 
 def layered_free_forces(frame: Frame, layers: Layers, loads: Sequence[Load], moduli: Moduli) -> LayeredForces:

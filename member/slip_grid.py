@@ -12,8 +12,8 @@ from numpy.typing import NDArray
 
 from fishbelly.member.actions import Frame
 from fishbelly.member.moduli import Moduli
-from fishbelly.member.slip_layers import Layers
 from fishbelly.member.slip_law import SlipLaw
+from fishbelly.member.slip_layers import Layers
 
 Array = NDArray[np.float64]
 
@@ -113,10 +113,27 @@ def fastener_springs(frame: Frame, layers: Layers, stiffness: Array, which: NDAr
     return np.where(which, 0.0, stiffness), springs
 
 
-def law_on_fine_grid(
+def fine_borders(
     frame: Frame, moduli: Moduli, stiffness: Array, discrete: NDArray[np.bool_] | None = None
 ) -> tuple[float, ...]:
-    """Return all further borders that a frame needs for joints of some stiffness [N/m2], shape (J,)."""
+    """Find all further borders that a frame needs.
+
+    Parameters
+    ----------
+    frame : Frame
+        The grid as the member asks for it.
+    moduli : Moduli
+        Set of moduli; the softest parts ask for most.
+    stiffness : ndarray, shape (J,)
+        Stiffness of every joint per length [N/m2], the largest to be reckoned with.
+    discrete : ndarray of bool, shape (J,), optional
+        Joints whose fasteners are taken one by one.
+
+    Returns
+    -------
+    tuple of float
+        Places [m], for `build_profile(member, more)`.
+    """
     law = SlipLaw.of(frame, moduli, stiffness, 1, False)
     which = np.zeros(len(stiffness), dtype=bool) if discrete is None else discrete
     return (*slip_borders(law), *fastener_borders(law.layers, which))

@@ -117,17 +117,15 @@ class SlipLaw:
         Parameters
         ----------
         frame : Frame
-            The grid; its panels fine enough for the joints, see `slip_grid.slip_borders`.
+            The grid, with the borders that `slip_grid.fine_borders` asks for.
         moduli : Moduli
             Set of moduli.
         stiffness : ndarray, shape (J,) or (J, K, n)
             Slip stiffness of each joint per length [N/m2]; 0 where parts are apart or no fastener stands.
-        planes : int
-            1: only the vertical plane's shear counts.
-        shear : bool
-            Whether shear deformation counts.
+        planes, shear : int, bool
+            1: only the vertical plane's shear counts, where `shear` says so.
         springs : ndarray, shape (K + 1, J), optional
-            Single fasteners at the borders [N/m].
+            Fasteners taken one by one [N/m].
         lifted : collection of str
             Supports that hold nothing.
 
@@ -137,14 +135,9 @@ class SlipLaw:
             When the member runs out to a point, or nothing passes a force along x on.
         """
         panels = frame.profile.panels
-        if panels.apexes:
-            raise CannotCompute("a member with joints that slip runs out to a point; it has to end before")
         layers = layers_of(frame.profile.member)
         sections = layer_sections(frame, layers, moduli, planes, shear)
-        carrier = sections.there.argmax(axis=0)
-        if np.any(carrier != carrier[0]):
-            place = panels.a[int(np.flatnonzero(carrier != carrier[0])[0])]
-            raise CannotCompute(f"nothing passes a force along x on from one layer to the next at x = {place:.6g} m")
+        _see_carried(panels, sections)
         active = np.array([sections.there[j.layer] & sections.there[j.on] for j in layers.joints])
         spread = stiffness if stiffness.ndim == 3 else stiffness[:, None, None]
         k = spread * active[..., None] * np.ones(panels.x.shape)
@@ -158,6 +151,16 @@ class SlipLaw:
             np.zeros((panels.count + 1, len(layers.joints))) if springs is None else springs,
         )
         return cls(panels, layers, sections, sections.bend, entry, active, k, transfer, Chain.of(transfer, borders))
+
+    @property
+    def carrier(self) -> int:
+        """Layer in which N is counted: the first that is there."""
+        return int(self.sections.there[:, 0].argmax())
+
+    @property
+    def slide(self) -> Array:
+        """Shear angle by shear force, as `ElasticLaw` has it, shape (3, K, n) [1/N]."""
+        return self.sections.slide
 
     def without_shear(self) -> SlipLaw:
         """Return the same law, rigid in shear."""
@@ -178,34 +181,34 @@ class SlipLaw:
         """
         shape = forces.N.shape
         N, V, M = (v.reshape(*v.shape[: v.ndim - len(shape)], -1, *shape[-2:]) for v in (forces.N, forces.V, forces.M))
-        R, L, J = N.shape[0], self.layers.count, len(self.layers.joints)
+        L, J = self.layers.count, len(self.layers.joints)
         held, own = np.zeros((L, *N.shape)), np.zeros((J, *N.shape))
         if isinstance(forces, LayeredForces):
             held = np.broadcast_to(forces.layers, (L, *shape)).reshape(L, *N.shape)
             own = own if forces.slips is None else forces.slips.reshape(J, *N.shape)
         passing = N - held.sum(axis=0)
         free = held.copy()
-        free[int(self.sections.there[:, 0].argmax())] += passing
+        free[self.carrier] += passing
         e0, _ = self._plane(free, M)
         inside = self._joints(passing, own, e0)
         force, slip = (np.transpose(v, (2, 3, 0, 1)) for v in (inside.force, inside.slip))
         force = force * self.active[:, None, :, None]
         layered = free + self._into_layers(force)
         axial, curvature = self._plane(layered, M)
-        layer_force = layered - held
-        flow = self.k[:, None] * (slip - own)
-        fasteners = self._spring_forces(slip, own)
         own_way, other_way, mixed = self.sections.slide
         shear = np.stack((V[0] * own_way + V[1] * mixed, V[1] * other_way + V[0] * mixed))
-        working = axial[int(self.sections.there[:, 0].argmax())] + self._offset(slip)
-        fields = (axial, layer_force, force, flow, slip * self.active[:, None, :, None])
-        back = [v.reshape(v.shape[0], *shape) for v in fields]
+        working = axial[self.carrier] + self._offset(slip)
+        there = self.active[:, None, :, None]
         return LayerStrains(
             working.reshape(shape),
             curvature.reshape(2, *shape),
             shear.reshape(2, *shape),
-            *back,
-            fasteners.reshape(J, *shape[:-2], fasteners.shape[-1]),
+            axial.reshape(L, *shape),
+            (layered - held).reshape(L, *shape),
+            force.reshape(J, *shape),
+            (self.k[:, None] * (slip - own)).reshape(J, *shape),
+            (slip * there).reshape(J, *shape),
+            self._spring_forces(slip, own).reshape(J, *shape[:-2], -1),
         )
 
     def _plane(self, layered: Array, M: Array) -> tuple[Array, Array]:
@@ -266,3 +269,13 @@ class SlipLaw:
         start = np.einsum("jk,jrk->rk", path[:, :-1], moved @ rule.left)
         end = np.einsum("jk,jrk->rk", path[:, 1:], moved @ rule.right)
         return ((end - start) / h)[..., None]
+
+
+def _see_carried(panels: Panels, sections: LayerSections) -> None:
+    """See that the member ends in no point, and that one layer passes a force along x on from end to end."""
+    if panels.apexes:
+        raise CannotCompute("a member with joints that slip runs out to a point; it has to end before")
+    carrier = sections.there.argmax(axis=0)
+    if np.any(carrier != carrier[0]):
+        place = panels.a[int(np.flatnonzero(carrier != carrier[0])[0])]
+        raise CannotCompute(f"nothing passes a force along x on from one layer to the next at x = {place:.6g} m")

@@ -48,8 +48,8 @@ class Transfer:
         Integrals from the left end to each point, and from each point to the right end [m].
     whole : ndarray, shape (K, n)
         Integral over the panel [m].
-    inverse : ndarray, shape (K, nJ, nJ)
-        Inverse of the collocated equations for s.
+    matrix, inverse : ndarray, shape (K, nJ, nJ)
+        Collocated equations for s, and their inverse.
     GG, Gs, sG, ss : ndarray, shape (K, J, J)
         G at the right end by G at the left and by s at the right; s at the left by the same two.
     """
@@ -80,14 +80,12 @@ class Transfer:
         matrix = through.transpose(0, 1, 3, 2, 4).reshape(K, n * J, n * J) @ _by_joint(flow, J)
         matrix = matrix + np.eye(n * J)
         blank = np.zeros((K, J, J))
-        half = cls(C, k, ahead, back, whole, matrix, np.linalg.inv(matrix), blank, blank, blank, blank)
-        eye = np.broadcast_to(np.eye(J), (K, J, J))
-        none = np.zeros((K, n, J, J))
-        by_force = half.inside(eye, np.zeros((K, J, J)), none, none)
-        by_slip = half.inside(np.zeros((K, J, J)), eye, none, none)
-        GG, sG = half.ends(by_force, eye, np.zeros((K, J, J)), none)
-        Gs, ss = half.ends(by_slip, np.zeros((K, J, J)), eye, none)
-        return cls(C, k, ahead, back, whole, matrix, half.inverse, GG, Gs, sG, ss)
+        inverse: Array = np.linalg.inv(matrix).astype(float)
+        half = cls(C, k, ahead, back, whole, matrix, inverse, blank, blank, blank, blank)
+        eye, none = np.broadcast_to(np.eye(J), (K, J, J)), np.zeros((K, n, J, J))
+        GG, sG = half.ends(half.inside(eye, blank, none, none), eye, blank, none)
+        Gs, ss = half.ends(half.inside(blank, eye, none, none), blank, eye, none)
+        return cls(C, k, ahead, back, whole, matrix, inverse, GG, Gs, sG, ss)
 
     def inside(self, G: Array, s: Array, put: Array, g: Array) -> Inside:
         """Fields under forces at the left end and slips at the right end.

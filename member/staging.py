@@ -18,13 +18,15 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Actions, Atom, Frame
 from fishbelly.member.faults import Mechanism
 from fishbelly.member.forces import Forces
+from fishbelly.member.history_forces import resultant
 from fishbelly.member.moduli import Moduli
-from fishbelly.member.response import Response, respond
-from fishbelly.member.section_law import ElasticLaw
+from fishbelly.member.response import Response, responded
+from fishbelly.member.section_law import ElasticLaw, Strains
 from fishbelly.member.stage_view import StageView
 
 if TYPE_CHECKING:
     from fishbelly.member.nodes import Layout
+    from fishbelly.member.slip_tie import Layered, Tie
 
 Array = NDArray[np.float64]
 Planes = dict[int, Array]
@@ -54,6 +56,8 @@ class Step:
         Free strain of parts in it, as planes.
     creeps : bool
         Whether its stress creeps in later stages: it does not where it acted on long-term moduli.
+    layered : Layered, optional
+        Strains of the layers and what their joints do, where parts slip on each other.
     """
 
     stage: int
@@ -63,16 +67,21 @@ class Step:
     frame: Frame
     free: Planes
     creeps: bool
+    layered: Layered | None = None
 
     @property
     def parts(self) -> tuple[int, ...]:
         """Numbers of the parts that are there."""
         return tuple(sorted({i for g in self.frame.profile.groups for i in g.placed.index}))
 
+    def axial(self, part: int) -> Array:
+        """Strain of a part on the analysis line, shape (A, K, n)."""
+        return self.response.axial if self.layered is None else self.layered.axial(part)
+
     def stress(self, part: int) -> Array:
         """Stress that it leaves in a part that is there, as a plane for each atom, shape (3, A, K, n) [Pa]."""
         r = self.response
-        strain = np.stack((r.axial, -r.curvature[0], -r.curvature[1]))
+        strain = np.stack((self.axial(part), -r.curvature[0], -r.curvature[1]))
         if part in self.free:
             strain = strain - self.free[part]
         return self.frame.profile.part_modulus(part, self.moduli.E) * strain
@@ -80,15 +89,45 @@ class Step:
 
 @dataclass(frozen=True, eq=False)
 class Setting:
-    """What a step needs to know of its stage: grid, supports at work, moduli, and those that creep gives."""
+    """What a step needs to know of its stage.
+
+    Parameters
+    ----------
+    view, frame, layout : StageView, Frame, Layout
+        The stage, its grid, supports at work.
+    moduli : Moduli
+        Moduli on which loads of the stage act.
+    lasting : bool
+        Whether these are long-term.
+    law : callable
+        Section law for a set of moduli and what it is: "now", "aged" or "softened".
+    aged, softened : Moduli, optional
+        Moduli divided by 1 + chi phi and by 1 + phi of the creep that runs off.
+    tie : Tie, optional
+        Layers and joints, where parts slip on each other.
+    homes : mapping of str to Frame
+        Stage in which each support first holds, whose levels it has.
+    """
 
     view: StageView
     frame: Frame
     layout: Layout
     moduli: Moduli
     lasting: bool
+    law: Callable[[Moduli, str], ElasticLaw]
     aged: Moduli | None = None
     softened: Moduli | None = None
+    tie: Tie | None = None
+    homes: Mapping[str, Frame] = field(default_factory=dict)
+
+    def held(self, each: Sequence[tuple[int, Forces]], shape: tuple[int, ...]) -> Forces:
+        """Forces given part by part, as the law takes them; fields of `shape` after the plane."""
+        if self.tie is not None:
+            return self.tie.held(each, self.view.parts, shape)
+        total = Forces.none(shape)
+        for _, forces in each:
+            total = total.plus(forces)
+        return total
 
 
 @dataclass(eq=False)
@@ -99,6 +138,7 @@ class _Record:
     stress: Planes = field(default_factory=dict)
     creeping: Planes = field(default_factory=dict)
     creeping_shear: Array | None = None
+    creeping_flow: Array | None = None
 
     def added(self, steps: list[Step]) -> list[Step]:
         """Take steps in, and return them."""
@@ -115,6 +155,9 @@ class _Record:
             _accumulate(self.creeping, stress)
             V = step.response.V
             self.creeping_shear = V if self.creeping_shear is None else self.creeping_shear + V
+            if step.layered is not None:
+                flow = step.layered.flow
+                self.creeping_flow = flow if self.creeping_flow is None else self.creeping_flow + flow
 
 
 def _accumulate(total: Planes, more: Mapping[int, Array]) -> None:
@@ -129,7 +172,6 @@ def life(
     free: Callable[[Setting, Sequence[int]], list[Forces]],
     free_planes: Callable[[Setting, Sequence[int]], Planes],
     planes: int,
-    shear: bool,
 ) -> tuple[Step, ...]:
     """Go through the stages of a member, every atom with factor 1 by itself.
 
@@ -145,8 +187,6 @@ def life(
         Free strain of each part by the same atoms, as planes.
     planes : int
         1: the vertical plane alone.
-    shear : bool
-        Whether shear deformation counts.
 
     Returns
     -------
@@ -163,13 +203,13 @@ def life(
     steps: list[Step] = []
     before: Setting | None = None
     for s in settings:
-        law = ElasticLaw.of(s.frame, s.moduli, planes, shear)
+        law = s.law(s.moduli, "now")
         arriving = [k for k, a in enumerate(atoms) if a.case in s.view.cases]
         try:
             earlier = [k for st in settings[: s.view.index] for k, a in enumerate(atoms) if a.case in st.view.cases]
             if before is not None and earlier:
                 steps += record.added(_released(before, s, record, law, earlier, planes))
-                steps += record.added(_crept(s, record, earlier, planes, shear))
+                steps += record.added(_crept(s, record, earlier, planes))
             if arriving:
                 steps.append(_arrived(s, law, atoms, loads, arriving, count, free, free_planes, planes))
                 if len(settings) > 1:
@@ -204,9 +244,14 @@ def _arrived(
 ) -> Step:
     """Loads of the stage on its parts and moduli."""
     mine = [atoms[k] for k in which]
-    found = respond(s.frame, s.layout, law, mine, [loads[k] for k in which], free(s, which), planes)
+    found, strains = responded(s.frame, s.layout, law, mine, [loads[k] for k in which], free(s, which), planes)
     strained = {part: _spread_planes(v, which, count) for part, v in free_planes(s, which).items()}
-    return Step(s.view.index, "loads", _spread(found, which, count), s.moduli, s.frame, strained, not s.lasting)
+    spread, layered = _spread(found, which, count), _layered(s, strains, which, count)
+    return Step(s.view.index, "loads", spread, s.moduli, s.frame, strained, not s.lasting, layered)
+
+
+def _layered(s: Setting, strains: Strains, which: Sequence[int], count: int) -> Layered | None:
+    return None if s.tie is None else s.tie.layered(strains, which, count)
 
 
 def _spread(r: Response, which: Sequence[int], count: int) -> Response:
@@ -230,52 +275,51 @@ def _spread_planes(v: Array, which: Sequence[int], count: int) -> Array:
     return full
 
 
-def resultant(planes: Array, moments: Array) -> Forces:
-    """Forces of a stress plane over an area about the analysis line, shapes (A, K, n) and (2, A, K, n)."""
-    A, S0, S1, I00, I01, I11 = moments
-    s, s0, s1 = planes
-    N = s * A + s0 * S0 + s1 * S1
-    M = -np.stack((s * S0 + s0 * I00 + s1 * I01, s * S1 + s0 * I01 + s1 * I11))
-    return Forces(N, np.zeros_like(M), M)
-
-
 def _released(
     before: Setting, s: Setting, record: _Record, law: ElasticLaw, which: list[int], planes: int
 ) -> list[Step]:
     """What parts and supports that go, or are cut or displaced, have carried acts on what remains."""
-    count = record.response.N.shape[0]
-    shape = record.response.N.shape[1:]
-    held = Forces(np.zeros((count, *shape)), np.zeros((2, count, *shape)), np.zeros((2, count, *shape)))
-    changed = before.view.parts != s.view.parts
-    if changed:
-        line = s.frame.line
-        for part in list(record.stress):
-            old = before.frame.profile.part_moments(part, line)
-            new = s.frame.profile.part_moments(part, line)
-            if np.any(np.abs(old - new) > _SAME * np.abs(old).max(axis=(1, 2), keepdims=True)):
-                held = held.plus(resultant(record.stress[part], old - new))
-            if part not in s.view.parts:
-                record.stress.pop(part)
-                record.creeping.pop(part, None)
+    count, shape = record.response.N.shape[0], record.response.N.shape
+    each = _carried(before, s, record) if before.view.parts != s.view.parts else []
     gone = s.view.gone - before.view.gone
-    pushes = [_reversed(s.frame, record.response.reactions[k], gone) for k in which]
-    something = bool(gone) or np.any(held.N) or np.any(held.M)
-    if not something:
+    if not gone and not any(np.any(f.N) or np.any(f.M) for _, f in each):
         return []
-    free = [Forces(held.N[k], held.V[:, k], held.M[:, k]) for k in which]
-    nameless = [Atom("")] * len(which)
-    found = respond(s.frame, s.layout, law, nameless, pushes, free, planes)
+    pushes = [_reversed(s, record.response.reactions[k], gone) for k in which]
+    free = _of_atoms(s.held(each, shape), which)
+    found, strains = responded(s.frame, s.layout, law, [Atom("")] * len(which), pushes, free, planes)
     spread = _spread(found, which, count)
-    spread.reactions[:, _numbers(s.frame, gone)] -= record.response.reactions[:, _numbers(s.frame, gone)]
-    return [Step(s.view.index, "release", spread, s.moduli, s.frame, {}, not s.lasting)]
+    numbers = _numbers(s.frame, gone)
+    spread.reactions[:, numbers] -= record.response.reactions[:, numbers]
+    layered = _layered(s, strains, which, count)
+    return [Step(s.view.index, "release", spread, s.moduli, s.frame, {}, not s.lasting, layered)]
+
+
+def _carried(before: Setting, s: Setting, record: _Record) -> list[tuple[int, Forces]]:
+    """Forces of the stress in what a stage takes away, part by part; parts that go are struck off the record."""
+    line, found = s.frame.line, []
+    for part in list(record.stress):
+        old = before.frame.profile.part_moments(part, line)
+        new = s.frame.profile.part_moments(part, line)
+        if np.any(np.abs(old - new) > _SAME * np.abs(old).max(axis=(1, 2), keepdims=True)):
+            found.append((part, resultant(record.stress[part], old - new)))
+        if part not in s.view.parts:
+            record.stress.pop(part)
+            record.creeping.pop(part, None)
+    return found
+
+
+def _of_atoms(held: Forces, which: Sequence[int]) -> list[Forces]:
+    """Forces with an axis of atoms as one set for each of some atoms."""
+    return [held.atom(k) for k in which]
 
 
 def _numbers(frame: Frame, names: frozenset[str]) -> list[int]:
     return [k for k, s in enumerate(frame.profile.member.supports) if s.name in names]
 
 
-def _reversed(frame: Frame, reactions: Array, gone: frozenset[str]) -> Actions:
+def _reversed(s: Setting, reactions: Array, gone: frozenset[str]) -> Actions:
     """Forces of supports that go, turned round, as loads on the member; reactions of one atom, shape (supports, 5)."""
+    frame = s.frame
     panels = frame.profile.panels
     shape = panels.x.shape
     borders = shape[0] + 1
@@ -293,52 +337,40 @@ def _reversed(frame: Frame, reactions: Array, gone: frozenset[str]) -> Actions:
         border = panels.border(supports[k].at)
         a.P[:, border] -= (down, across)
         a.F[border] -= along
-        a.C[:, border] -= np.array((couple, aside)) + along * frame.level(supports[k].level, supports[k].at)
+        home = s.homes.get(supports[k].name, frame)
+        a.C[:, border] -= np.array((couple, aside)) + along * home.level(supports[k].level, supports[k].at)
     return a
 
 
-def _crept(s: Setting, record: _Record, which: list[int], planes: int, shear: bool) -> list[Step]:
+def _crept(s: Setting, record: _Record, which: list[int], planes: int) -> list[Step]:
     """Creep that runs off in a stage under the stress locked in."""
     stage = s.view.stage
-    if stage is None or not stage.creep or s.aged is None or s.softened is None:
+    if stage is None or not any(stage.creep.values()) or s.aged is None or s.softened is None:
         return []
     profile, member = s.frame.profile, s.frame.profile.member
-    count, shape = record.response.N.shape[0], record.response.N.shape[1:]
-    held = Forces(np.zeros((count, *shape)), np.zeros((2, count, *shape)), np.zeros((2, count, *shape)))
+    count, shape = record.response.N.shape[0], record.response.N.shape
     free: Planes = {}
+    each: list[tuple[int, Forces]] = []
     for part, stress in record.creeping.items():
         phi = stage.creep.get(member.parts[part].material or "", 0.0)
-        if not phi or part not in s.view.parts:
-            continue
-        E = profile.part_modulus(part, s.moduli.E)
-        free[part] = phi * stress / np.where(E > 0.0, E, np.inf)
-        aged = profile.part_modulus(part, s.aged.E)
-        held = held.plus(resultant(aged * free[part], profile.part_moments(part, s.frame.line)))
-    law = ElasticLaw.of(s.frame, s.aged, planes, shear)
-    if shear and record.creeping_shear is not None:
-        soft, now = (ElasticLaw.of(s.frame, m, planes, shear).slide for m in (s.softened, s.moduli))
-        held = Forces(held.N, _shear_for(law.slide, _angles(soft - now, record.creeping_shear)), held.M)
-    if not (np.any(held.N) or np.any(held.M) or np.any(held.V)):
+        if phi and part in s.view.parts:
+            E = profile.part_modulus(part, s.moduli.E)
+            free[part] = phi * stress / np.where(E > 0.0, E, np.inf)
+            aged = profile.part_modulus(part, s.aged.E)
+            each.append((part, resultant(aged * free[part], profile.part_moments(part, s.frame.line))))
+    law = s.law(s.aged, "aged")
+    held = s.held(each, shape)
+    if record.creeping_shear is not None and np.any(law.slide):
+        soft, now = s.law(s.softened, "softened").slide, s.law(s.moduli, "now").slide
+        held = held.plus(sheared(law.slide, soft - now, record.creeping_shear))
+    if s.tie is not None and record.creeping_flow is not None:
+        held = s.tie.crept(held, record.creeping_flow)
+    if not held.any:
         return []
-    each = [Forces(held.N[k], held.V[:, k], held.M[:, k]) for k in which]
-    none = [_reversed(s.frame, record.response.reactions[k], frozenset()) for k in which]
-    found = respond(s.frame, s.layout, law, [Atom("")] * len(which), none, each, planes)
-    spread = _spread(found, which, count)
-    return [Step(s.view.index, "creep", spread, s.aged, s.frame, free, True)]
-
-
-def _angles(slide: Array, V: Array) -> Array:
-    """Shear angles of both planes by shear forces, shape (2, A, K, n)."""
-    return np.stack((slide[0] * V[0] + slide[2] * V[1], slide[1] * V[1] + slide[2] * V[0]))
-
-
-def _shear_for(slide: Array, angles: Array) -> Array:
-    """Shear forces that give shear angles; nothing in a plane that does not shear."""
-    if not np.any(slide[1]):
-        return np.stack((angles[0] / slide[0], np.zeros_like(angles[0])))
-    det = slide[0] * slide[1] - slide[2] ** 2
-    first, second = slide[1] * angles[0] - slide[2] * angles[1], slide[0] * angles[1] - slide[2] * angles[0]
-    return np.stack((first, second)) / det
+    none = [_reversed(s, record.response.reactions[k], frozenset()) for k in which]
+    found, strains = responded(s.frame, s.layout, law, [Atom("")] * len(which), none, _of_atoms(held, which), planes)
+    layered = _layered(s, strains, which, count)
+    return [Step(s.view.index, "creep", _spread(found, which, count), s.aged, s.frame, free, True, layered)]
 
 
 def summed(steps: Sequence[Step], upto: int | None = None) -> Response:

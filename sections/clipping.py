@@ -14,6 +14,7 @@ from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.level_cuts import events, pieces
 from fishbelly.sections.outlines import Outline, arcs
+from fishbelly.sections.placing import Bounds
 from fishbelly.sections.slab_moments import slab_moments
 
 Array = NDArray[np.float64]
@@ -79,18 +80,21 @@ def clipped_moments(section: Composition, part: int, line: Array) -> Array:
     """
     if section.crossing:
         return _across_slabs(section, part, line)
-    total = clipped_outline(section.outlines[part], line, raw_moments(section.gross.at(part)))
+    total = clipped_outline(section.outlines[part], line, raw_moments(section.gross.at(part)), section.boxes[part])
     count = len(section.outlines)
     for i, j in section.relations:
         if i == part:
             if j < count:
-                total = total - clipped_outline(section.outlines[j], line, raw_moments(section.gross.at(j)))
+                whole = raw_moments(section.gross.at(j))
+                total = total - clipped_outline(section.outlines[j], line, whole, section.boxes[j])
             else:
                 total = total - clipped_outline(section.cuts[j - count][0], line)
     return total
 
 
-def clipped_outline(outline: Outline, line: Array, whole: Array | None = None) -> Array:
+def clipped_outline(
+    outline: Outline, line: Array, whole: Array | None = None, box: Bounds | None = None
+) -> Array:
     """Moments of the region of an outline where a linear function is below zero.
 
     Parameters
@@ -101,6 +105,8 @@ def clipped_outline(outline: Outline, line: Array, whole: Array | None = None) -
         line[0] + line[1] z + line[2] y.
     whole : ndarray, shape (6, S), optional
         Moments of the whole outline, where they are known already.
+    box : Bounds, optional
+        Its bounding box, where it is known already.
 
     Returns
     -------
@@ -108,24 +114,19 @@ def clipped_outline(outline: Outline, line: Array, whole: Array | None = None) -
         A, ∫y, ∫z, ∫z², ∫y², ∫yz about the origin.
     """
     c, s, level = _direction(line)
-    local = _turned(outline, c, s)
-    if outline.bulge.any():
-        bounds = local.bounds()
-        low, high = bounds[1], bounds[3]
-    else:
-        low, high = local.z.min(axis=1), local.z.max(axis=1)
+    box = box or Bounds.of(outline)
+    # the box turned with the line tells of most stations whether they are cut at all
+    low = np.minimum(s * box.left, s * box.right) + np.minimum(c * box.bottom, c * box.top)
+    high = np.maximum(s * box.left, s * box.right) + np.maximum(c * box.bottom, c * box.top)
+    result = np.zeros((6, level.size))
     inside = high <= level
     if whole is None:
-        cut = high > low  # every station by the same road
         inside = np.zeros_like(inside)
     else:
-        cut = ~inside & (low < level)
-    result = np.zeros((6, level.size))
-    if whole is not None:
         result[:, inside] = whole[:, inside]
-    index = np.flatnonzero(cut & (low < level))
+    index = np.flatnonzero(~inside & (low < level))
     if index.size:
-        found = _edges(_rows(local, index), np.minimum(level[index], high[index]))
+        found = _edges(_turned(_rows(outline, index), c[index], s[index]), np.minimum(level, high)[index])
         result[:, index] = _turned_back(found, c[index], s[index])
     return result
 

@@ -6,6 +6,8 @@ Sources: EN 1992-1-1:2004, 7.4.3; ACI 318-14, 24.2.3.5 (D. E. Branson 1965); ACI
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
@@ -132,3 +134,54 @@ def distribution(ratio: ArrayLike, beta: float) -> Array:
     (0.875, 0.75)
     """
     return np.asarray(np.clip(1.0 - beta * np.asarray(ratio, dtype=float) ** 2, 0.0, 1.0))
+
+
+@dataclass(frozen=True)
+class Stiffening:
+    """A rule of tension stiffening as a share of the cracked state at one section.
+
+    Parameters
+    ----------
+    rule : str
+        One of `RULES`.
+    sustained : bool
+        Whether loads last or repeat; only EN 1992-1-1 asks.
+    """
+
+    rule: str
+    sustained: bool = False
+
+    @property
+    def level(self) -> float:
+        """Tension over the stress at which the section cracks, from which on it counts as cracked."""
+        return CRACKING_SHARE[self.rule]
+
+    @property
+    def beta(self) -> float:
+        """Factor of (M_cr / M)^2 for the rules that have the form of EN 1992-1-1."""
+        if self.rule == EN:
+            return BETA["sustained" if self.sustained else "short"]
+        return self.level**2
+
+    @property
+    def starts_at(self) -> float:
+        """Tension over the stress at which it cracks, from which on zeta is above 0 in a section already cracked."""
+        return self.level if self.rule == ACI_14 else float(np.sqrt(self.beta))
+
+    def zeta(self, ratio: ArrayLike, growth: ArrayLike) -> Array:
+        """Share of the cracked state.
+
+        Parameters
+        ----------
+        ratio : array_like
+            M_cr / M, the whole cracking moment.
+        growth : array_like
+            Curvature of the cracked over that of the uncracked section under the same forces, 1 or more; asked for
+            by Branson's form alone, where 1 / I_e = (1 - zeta) / I_g + zeta / I_cr.
+        """
+        if self.rule != ACI_14:
+            return distribution(ratio, self.beta)
+        q = np.maximum(np.asarray(growth, dtype=float), 1.0)
+        cube = np.minimum(np.asarray(ratio, dtype=float) * self.level, 1.0) ** 3
+        # (1/I_e - 1/I_g) / (1/I_cr - 1/I_g) with I_e / I_cr = 1 + (q - 1) cube; the limit for q = 1 is 1 - cube
+        return np.asarray((1.0 - cube) / (1.0 + (q - 1.0) * cube))

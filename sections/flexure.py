@@ -15,11 +15,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.sections.composition import Composition
+from fishbelly.sections.flexure_warping import TWIST, Warping, warping
 from fishbelly.sections.mesh_direction import main_direction, turned_section
 from fishbelly.sections.mesh_slabs import cuts
 from fishbelly.sections.section_mesh import SharedMesh, shared_meshes
 from fishbelly.sections.stiffness import SectionStiffness
-from fishbelly.sections.flexure_warping import TWIST, Warping, warping
 
 Array = NDArray[np.float64]
 
@@ -44,6 +44,8 @@ class Flexure:
         Pieces that do not hang together.
     degree : int
         Degree of the elements.
+    asked : tuple
+        What it was asked for, so that `error` can ask again.
     """
 
     F_zz: Array
@@ -111,20 +113,23 @@ def flexure(
     angle = main_direction(section)
     asked = (section, E, G, clusters, share_angle)
     section = turned_section(section, -angle)
-    curved = any(np.any(o.bulge) for o in (*section.outlines, *(c[0] for c in section.cuts)))
-    p = degree if degree is not None else CURVED_DEGREE if curved else STRAIGHT_DEGREE
+    p = _degree(section) if degree is None else degree
     sums = _Sums(G.shape[1])
     for shared in shared_meshes(section, E, G, clusters):
         sums.add(shared, warping(shared, E[:, shared.rows], G[:, shared.rows], p), share_angle)
     F, torque = sums.together(share_angle)
     c = cuts(section)
     centre = np.stack((c.middle_z - torque[:, 1], c.middle_y + torque[:, 0]), axis=-1)
-    if angle:
-        # (z, y) of the turned section to those asked for
-        cos, sin = np.cos(angle), np.sin(angle)
-        back = np.array([[cos, sin], [-sin, cos]])
-        F, centre = back @ F @ back.T, centre @ back.T
+    # (z, y) of the turned section to those asked for
+    cos, sin = np.cos(angle), np.sin(angle)
+    back = np.array([[cos, sin], [-sin, cos]])
+    F, centre = back @ F @ back.T, centre @ back.T
     return Flexure(F[:, 0, 0], F[:, 1, 1], F[:, 0, 1], centre[:, 1], centre[:, 0], sums.pieces, p, asked)
+
+
+def _degree(section: Composition) -> int:
+    curved = any(np.any(o.bulge) for o in (*section.outlines, *(c[0] for c in section.cuts)))
+    return CURVED_DEGREE if curved else STRAIGHT_DEGREE
 
 
 class _Sums:
@@ -148,8 +153,8 @@ class _Sums:
 
     def together(self, share_angle: bool) -> tuple[Array, Array]:
         """Flexibility of all pieces and torque of unit forces, shapes (S, 2, 2) and (S, 2)."""
-        share = np.linalg.inv(self.weight)
-        whole = share if share_angle else share @ self.energy @ share
+        share = np.asarray(np.linalg.inv(self.weight), dtype=float)
+        whole: Array = share if share_angle else np.asarray(share @ self.energy @ share)
         return whole, (self.torque[:, None, :] @ share)[:, 0]
 
 

@@ -10,8 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.elements import at_points, numbering
-from fishbelly.sections.flexure_warping import TWIST, gathered, node_loads, piece_stiffness
-from fishbelly.sections.flexure_warping import condensed as condensed_problem
+from fishbelly.sections.flexure_warping import TWIST, Problem, condensed, gathered, node_loads, piece_stiffness
 from fishbelly.sections.frontal import eliminate, fronts, solution
 from fishbelly.sections.mesh_slabs import cuts
 from fishbelly.sections.section_mesh import SharedMesh, shaped, shared_meshes
@@ -76,7 +75,7 @@ def shear_fields(
         e, g = E[:, rows][m.part][:, :, None], G[:, rows][m.part][:, :, None]
         s = shaped(m, degree)
         loads = node_loads(s, shared, e, g, piece_stiffness(s, shared, e), degree)
-        w = _warping(shared, condensed_problem(s, g, loads, degree), degree)
+        w = _warping(shared, condensed(s, g, loads, degree), degree)
         count, stations, points = s.y.shape
         # the warping that goes with a twist lessens its energy
         w[..., TWIST] *= -1.0
@@ -90,7 +89,7 @@ def shear_fields(
         yield ShearField(rows, m.part, m.piece, y, z, s.area, g[..., None] * tau_y, g[..., None] * tau_z)
 
 
-def _warping(shared: SharedMesh, problem, degree: int) -> Array:  # type: ignore[no-untyped-def]
+def _warping(shared: SharedMesh, problem: Problem, degree: int) -> Array:
     """Values at all nodes of the elements, in the order of `elements.stiffness`, shape (N, T, (degree + 1)², R)."""
     unknowns = shared.unknowns(degree)
     k, b = gathered(problem, unknowns, degree)
@@ -104,7 +103,7 @@ def _warping(shared: SharedMesh, problem, degree: int) -> Array:  # type: ignore
     rim = np.moveaxis(x[:, unknowns], 0, 1).copy()
     pointed = unknowns[:, 1] == -2
     side = np.array([1, *range(4, 4 + degree - 1)])
-    rim[np.ix_(pointed, range(rim.shape[1]), side)] = rim[pointed][:, :, :1]
+    rim[np.ix_(np.flatnonzero(pointed), np.arange(rim.shape[1]), side)] = rim[pointed][:, :, :1]
     inner = problem.inner[..., 4 * degree :] - problem.inner[..., : 4 * degree] @ rim
     assert rim.shape[2] + inner.shape[2] == sum(n.size for n in numbering(degree))
     return np.concatenate((rim, inner), axis=2)

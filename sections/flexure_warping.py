@@ -179,7 +179,7 @@ def condensed(s: Shaped, weight: Array, node_loads: Array, degree: int) -> Probl
     whole = elements.stiffness(degree, metric)
     rim, cases = 4 * degree, node_loads.shape[2]
     right = np.concatenate((whole[:, rim:, :rim], node_loads[:, rim:]), axis=2)
-    inner = np.linalg.solve(whole[:, rim:, rim:], right) if degree > 1 else right
+    inner = np.asarray(np.linalg.solve(whole[:, rim:, rim:], right), dtype=float)
     reduced = np.concatenate((whole[:, :rim, :rim], node_loads[:, :rim]), axis=2)
     reduced -= np.swapaxes(right[:, :, :rim], 1, 2) @ inner
     inside = np.swapaxes(node_loads[:, rim:], 1, 2) @ inner[:, :, rim:]

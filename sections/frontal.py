@@ -143,12 +143,11 @@ def eliminate(order: list[Front], matrices: Array, loads: Array, keep: bool = Fa
         size, g = front.known.size, front.gone
         k = np.zeros((stations, size, size + cases))
         for e, rows, at in front.elements:
-            grid = np.ix_(rows, rows)
             if rows.size == matrices.shape[2]:
                 k[:, at[:, None], at] += matrices[e]
                 k[:, at, size:] += loads[e]
             else:
-                k[:, at[:, None], at] += matrices[e][:, grid[0], grid[1]]
+                k[:, at[:, None], at] += matrices[e][:, rows[:, None], rows]
                 k[:, at, size:] += loads[e][:, rows]
         for other, at in front.merged:
             a, b = left.pop(id(other))

@@ -41,6 +41,8 @@ class Rule(NamedTuple):
 AT_CORNER = Rule(2.5, 4.0, 8.0)
 AT_ARC = Rule(1.5, 2.3, 5.0)
 """Own trials: 1e-7 of the flexibility at degree 7, 1e-6 with arcs at degree 8; longer cells lose a digit or two."""
+_TIE = 1.0 + 1e-7
+"""So that lengths that are equal but for round-off decide alike."""
 FADED = 1.5
 """Distance from a corner, in thicknesses, beyond which its disturbance has died out."""
 
@@ -72,7 +74,7 @@ def _singular(angles: list[tuple[float, int]], G: Array) -> bool:
     sharp = 3.0 * _DEGREE
     if len(by_material) == 1:
         re_entrant = np.pi + 5.0 * _DEGREE < whole < 2.0 * np.pi - sharp
-        return bool(re_entrant or 98.0 * _DEGREE < whole < 165.0 * _DEGREE)
+        return bool(re_entrant or 98.0 * _DEGREE < whole < 170.0 * _DEGREE)
     if len(by_material) == 2:
         one = next(iter(by_material.values()))
         straight = abs(whole - 2.0 * np.pi) < sharp and abs(one - np.pi) < sharp
@@ -125,7 +127,7 @@ def grade(grid: Grid, corners: set[tuple[int, int]], twist: bool = False) -> Non
         for level, number in sorted(corners):
             _grade_at(grid, corners, level, number)
             grid.carry_on()
-        for (level, number), radius in sorted(ends.items(), key=lambda item: (item[1], item[0])):
+        for (level, number), radius in sorted(ends.items(), key=lambda item: (float(f"{item[1]:.9g}"), item[0])):
             _grade_end(grid, level, number, radius)
         _part_corners(grid, corners)
         grid.carry_on()
@@ -145,11 +147,11 @@ def _grade_end(grid: Grid, level: int, number: int, radius: float) -> None:
             tall = (rows[1] if end == 0 else 1.0 - rows[-2]) * length
             if step == 0:
                 first = min(radius, _span(grid, slab, end, block))
-                if tall > AT_ARC.longest * first:
+                if tall > _TIE * AT_ARC.longest * first:
                     _rows(grid, slab, end, block, AT_ARC, first, tall, length)
                 continue
             first = min(radius, _thickness(grid, slab, block, line.at))
-            if wide > AT_ARC.longest * first:
+            if wide > _TIE * AT_ARC.longest * first:
                 _columns(grid, slab, end, block, k, j, AT_ARC, first, wide)
                 grid.carry_on()
                 return _grade_end(grid, level, number, radius)
@@ -202,10 +204,10 @@ def _grade_at(grid: Grid, corners: set[tuple[int, int]], level: int, number: int
         sizes.append((wide, tall))
     least = min(min(s) for s in sizes)
     for (slab, end, block, k, j), (wide, tall) in zip(cells, sizes, strict=True):
-        if tall > AT_CORNER.longest * least:
+        if tall > _TIE * AT_CORNER.longest * least:
             _rows(grid, slab, end, block, AT_CORNER, least, tall, _length(grid, slab, block.lines[k]))
         other = (block.lines[j].bottom, block.lines[j].top)[end]
-        if wide > AT_CORNER.longest * least:
+        if wide > _TIE * AT_CORNER.longest * least:
             # carried on at once, so that the cell on the other side of the level finds the line
             _columns(grid, slab, end, block, k, j, AT_CORNER, least, wide)
             grid.carry_on()
@@ -220,9 +222,9 @@ def _two_ended(corners: set[tuple[int, int]], slab: int, line: Line) -> bool:
 def _distances(rule: Rule, least: float, room: float, thickness: float) -> list[float]:
     """Distances from a corner at which lines are drawn, short of `room`."""
     found = [rule.first * least]
-    while found[-1] < FADED * thickness and rule.growth * found[-1] < 0.7 * room:
+    while _TIE * found[-1] < FADED * thickness and _TIE * rule.growth * found[-1] < 0.7 * room:
         found.append(rule.growth * found[-1])
-    return [d for d in found if d < 0.75 * room] or [0.5 * room]
+    return [d for d in found if _TIE * d < 0.75 * room] or [0.5 * room]
 
 
 def _rows(grid: Grid, slab: int, end: int, block: Block, rule: Rule, least: float, tall: float, length: float) -> None:

@@ -138,7 +138,7 @@ class Grid:
     def add_row(self, slab: int, run: int, height: float, room: float) -> None:
         """Divide a run at a height, 0 to 1, unless it is divided within `room` of it."""
         rows = self.rows[slab][run]
-        if all(abs(v - height) > room for v in rows):
+        if all(abs(v - height) > room * (1.0 + 1e-7) for v in rows):
             rows.append(height)
             rows.sort()
 

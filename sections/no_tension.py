@@ -23,6 +23,8 @@ CLOSED = 1e-13
 """Change of the strain plane against the plane itself, in the last round."""
 STILL = 1e-11
 """A change below this that no longer shrinks is round-off of a section whose stiffness nearly vanishes."""
+SINGULAR = 1e-13
+"""Determinant of a stiffness with ones on its diagonal, below which next to nothing is at work."""
 MARGIN = 1e-9
 """A resultant so near the edge, as a share of the section's size, counts as outside: nothing is left to carry it."""
 
@@ -136,12 +138,22 @@ def _held(moments: list[Array], E: Array, free: FreePlanes) -> Array:
     return total
 
 
-def _balanced(matrix: Array, forces: Array) -> Array:
-    """Strain plane under forces, scaled so that a matrix with units does not lose digits, shape (3, S)."""
-    # a trace of stiffness keeps what carries nothing at the moment from stopping the search
-    scale = np.sqrt(np.maximum(np.einsum("sii->si", matrix), 1e-300))
-    scaled = matrix / (scale[:, :, None] * scale[:, None, :])
+def _balanced(matrix: Array, forces: Array, full: Array | None = None) -> Array:
+    """Strain plane under forces, scaled so that a matrix with units does not lose digits, shape (3, S).
+
+    Where next to nothing is at work a trace of the `full` section keeps the search going.
+    """
+    scale, scaled = _scaled(matrix)
+    if full is not None:
+        idle = np.linalg.det(scaled) < SINGULAR
+        if idle.any():
+            scale, scaled = _scaled(np.where(idle[:, None, None], matrix + 1e-12 * full, matrix))
     return np.asarray((np.linalg.solve(scaled, (forces.T / scale)[..., None])[..., 0] / scale).T)
+
+
+def _scaled(matrix: Array) -> tuple[Array, Array]:
+    scale = np.sqrt(np.maximum(np.einsum("sii->si", matrix), 1e-300))
+    return scale, matrix / (scale[:, :, None] * scale[:, None, :])
 
 
 @dataclass(eq=False)
@@ -192,7 +204,7 @@ class _Work:
         while not done.all() and rounds < MOST_ROUNDS:
             rounds += 1
             matrix = self.tangent(moments)
-            target = _balanced(matrix + 1e-15 * self.full, self.forces + _held(moments, self.E, self.free))
+            target = _balanced(matrix, self.forces + _held(moments, self.E, self.free), self.full)
             step = np.where(done, 0.0, target - at)
             length, new = np.ones(at.shape[1]), at + step
             moments_new = self.active(new)
@@ -218,7 +230,7 @@ class _Work:
     def _state(
         self, at: Array, matrix: Array, out: Array, strain: Array, carried: Mask, change: Array, rounds: int
     ) -> SectionState:
-        answer = _balanced(matrix + 1e-15 * self.full, out)
+        answer = _balanced(matrix, out, self.full)
         lost = np.abs((out * answer).sum(axis=0))
         residual = np.sqrt(lost / np.where(strain > 0.0, 2.0 * strain, 1.0))
         closed = (change <= STILL) | ~carried

@@ -54,6 +54,8 @@ class Shaped:
         Quadrature weight times area [m2].
     y_x, y_y, z_x, z_y : ndarray, shape (N, T, q)
         Derivatives of y and z by the local coordinates x, y.
+    turn : ndarray, shape (N, T, q)
+        Their determinant.
     folded : ndarray of bool, shape (T,)
         Stations at which an element folds over itself.
     """
@@ -81,6 +83,8 @@ class SharedMesh:
         Its elements.
     station : int
         Which of the T stations decided on it.
+    orders : dict
+        Orders of elimination found so far, by degree.
     """
 
     rows: Index

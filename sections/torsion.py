@@ -16,12 +16,12 @@ from numpy.typing import NDArray
 
 from fishbelly.sections import elements
 from fishbelly.sections.composition import Composition
+from fishbelly.sections.flexure_warping import TWIST, condensed, gathered, warping
 from fishbelly.sections.frontal import eliminate, fronts
 from fishbelly.sections.mesh_direction import main_direction, turned_section
 from fishbelly.sections.mesh_rims import Rims, rims
 from fishbelly.sections.mesh_slabs import Cuts, cuts
 from fishbelly.sections.section_mesh import SharedMesh, shaped, shared_meshes
-from fishbelly.sections.flexure_warping import TWIST, condensed, gathered, warping
 
 Array = NDArray[np.float64]
 

@@ -45,7 +45,9 @@ Conditions = Callable[[np.ndarray, np.ndarray], Sequence[float]]
 """Residuals, 6 for each stretch, from the states at the left and at the right ends, shape (stretches, 6)."""
 
 
-def solved(stretches: Sequence[Stretch], conditions: Conditions, tolerance: float = 1e-10) -> Callable[[float], np.ndarray]:
+def solved(
+    stretches: Sequence[Stretch], conditions: Conditions, tolerance: float = 1e-10
+) -> Callable[[float], np.ndarray]:
     """State at any x, shape (6,)."""
     n = len(stretches)
     starts, lengths = np.array([s.a for s in stretches]), np.array([s.b - s.a for s in stretches])
@@ -53,7 +55,9 @@ def solved(stretches: Sequence[Stretch], conditions: Conditions, tolerance: floa
 
     def slopes(t: np.ndarray, y: np.ndarray) -> np.ndarray:
         full = y * scale[:, None]
-        parts = [s.slopes(s.a + t * (s.b - s.a), full[6 * i : 6 * i + 6]) * (s.b - s.a) for i, s in enumerate(stretches)]
+        parts = [
+            s.slopes(s.a + t * (s.b - s.a), full[6 * i : 6 * i + 6]) * (s.b - s.a) for i, s in enumerate(stretches)
+        ]
         return np.concatenate(parts) / scale[:, None]
 
     def ends(left: np.ndarray, right: np.ndarray) -> np.ndarray:

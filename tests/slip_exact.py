@@ -13,6 +13,7 @@ import mpmath as mp
 
 Polynomial = tuple[float, ...]
 """Moment on a stretch: coefficients of 1, x, x²."""
+Field = Callable[[mp.mpf], mp.matrix]
 
 
 @dataclass
@@ -47,56 +48,48 @@ class Layered:
         second = -inverse * self.arm * m[2]
         return [inverse * (soft * (2 * second) - self.arm * m[0]), -inverse * self.arm * m[1], second]
 
+    def exponentials(self, a: mp.mpf, b: mp.mpf, at: mp.mpf, order: int) -> list[mp.matrix]:
+        """The 2 J exponentials of a stretch from a to b at a place, or their derivatives."""
+        found = []
+        for m, rate in enumerate(self.rates):
+            for start, sign in ((a, -1), (b, 1)):
+                found.append(self.modes[:, m] * ((sign * rate) ** order * mp.exp(sign * rate * (at - start))))
+        return found
+
     def solve(
         self, places: Sequence[float], moments: Sequence[Polynomial], held: tuple[bool, bool]
-    ) -> tuple[Callable[[mp.mpf], mp.matrix], Callable[[mp.mpf], mp.matrix], Callable[[mp.mpf], mp.mpf]]:
+    ) -> tuple[Field, Field, Callable[[mp.mpf], mp.mpf]]:
         """G(x), slip(x) and curvature(x); `held`: nothing slips at the left and at the right end, else G = 0."""
         x = [mp.mpf(p) for p in places]
         J, count = self.J, len(moments)
         parts = [self.particular(m) for m in moments]
-
-        def fields(i: int, at: mp.mpf) -> tuple[list[mp.matrix], list[mp.matrix]]:
-            """Columns of G and G' of the 2 J exponentials of a stretch."""
-            G, D = [], []
-            for m, rate in enumerate(self.rates):
-                for start, sign in ((x[i], -1), (x[i + 1], 1)):
-                    e = mp.exp(sign * rate * (at - start))
-                    G.append(self.modes[:, m] * e)
-                    D.append(self.modes[:, m] * (sign * rate * e))
-            return G, D
-
-        def own(i: int, at: mp.mpf) -> tuple[mp.matrix, mp.matrix]:
-            a, b, c = parts[i]
-            return a + b * at + c * at**2, b + 2 * c * at
-
         A, r = mp.zeros(2 * J * count), mp.zeros(2 * J * count, 1)
 
-        def put(row: int, i: int, at: mp.mpf, which: int, sign: int) -> None:
-            columns, rest = fields(i, at)[which], own(i, at)[which]
+        def own(i: int, at: mp.mpf, order: int) -> mp.matrix:
+            a, b, c = parts[i]
+            return b + 2 * c * at if order else a + b * at + c * at**2
+
+        def put(row: int, i: int, at: mp.mpf, order: int, sign: int) -> None:
             for q in range(J):
-                for m, column in enumerate(columns):
+                for m, column in enumerate(self.exponentials(x[i], x[i + 1], at, order)):
                     A[row + q, 2 * J * i + m] += sign * column[q]
-                r[row + q] -= sign * rest[q]
+                r[row + q] -= sign * own(i, at, order)[q]
 
         put(0, 0, x[0], int(held[0]), 1)
         put(J, count - 1, x[-1], int(held[1]), 1)
         for i in range(1, count):
-            for which in (0, 1):
-                row = 2 * J * i + J * which
-                put(row, i - 1, x[i], which, 1)
-                put(row, i, x[i], which, -1)
+            for order in (0, 1):
+                put(2 * J * i + J * order, i - 1, x[i], order, 1)
+                put(2 * J * i + J * order, i, x[i], order, -1)
         weights = mp.lu_solve(A, r)
 
-        def field(at: mp.mpf, which: int) -> mp.matrix:
-            i = max(0, min(count - 1, sum(1 for p in x[1:-1] if at > p)))
-            total = own(i, at)[which]
-            for m, column in enumerate(fields(i, at)[which]):
-                total += column * weights[2 * J * i + m]
-            return total
+        def field(at: mp.mpf, order: int) -> mp.matrix:
+            i = sum(1 for p in x[1:-1] if at > p)
+            columns = self.exponentials(x[i], x[i + 1], at, order)
+            return sum((c * weights[2 * J * i + m] for m, c in enumerate(columns)), own(i, at, order))
 
         def curvature(at: mp.mpf) -> mp.mpf:
-            i = max(0, min(count - 1, sum(1 for p in x[1:-1] if at > p)))
-            a, b, c = (mp.mpf(v) for v in moments[i])
+            a, b, c = (mp.mpf(v) for v in moments[sum(1 for p in x[1:-1] if at > p)])
             return (a + b * at + c * at**2 + (self.arm.T * field(at, 0))[0]) / self.bending
 
         stiff = mp.diag([1 / mp.mpf(v) for v in self.k])

@@ -2,23 +2,22 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from typing import Any
 
 import numpy as np
-from common import INF, fixed, pin, roller, uniform
+from common import pin, roller, uniform
 
 from fishbelly.member.actions import Frame, actions, atoms
 from fishbelly.member.description import Joined, Material, Member, Part, Placing, Shape
+from fishbelly.member.forces import Forces
 from fishbelly.member.laws import Law, constant
 from fishbelly.member.moduli import moduli
 from fishbelly.member.nodes import layout
 from fishbelly.member.panels import Panels
 from fishbelly.member.response import Response, free_of, respond
 from fishbelly.member.sampling import build_profile
-from fishbelly.member.slip_grid import fastener_springs, law_on_fine_grid
+from fishbelly.member.slip_grid import fastener_springs, fine_borders
 from fishbelly.member.slip_law import LayerStrains, SlipLaw
-from fishbelly.member.forces import Forces
 from fishbelly.member.slip_layers import joint_stiffness, layers_of
 
 SLAB = Material("slab", 12e9, G=5e9, expansion=10e-6, creep=2.0)
@@ -62,7 +61,7 @@ class Run:
         self.k = joint_stiffness(self.layers) if k is None else k
         which = np.full(len(self.layers.joints), discrete)
         coarse = Frame.of(build_profile(member), moduli(member))
-        more = law_on_fine_grid(coarse, coarse.short, self.k, which)
+        more = fine_borders(coarse, coarse.short, self.k, which)
         profile = build_profile(member, more)
         self.frame = Frame.of(profile, profile.short)
         smeared, springs = fastener_springs(self.frame, self.layers, self.k, which)

@@ -56,7 +56,10 @@ BAD = {
     ),
     # not built yet
     "stage": (BASE + '[[stage]]\nname = "a"\n', ":11: [[stage]]: not built yet in this version"),
-    "joined": (BASE + 'joined = "apart"\n', ':11: part "beam": key "joined": not built yet in this version'),
+    "joined": (
+        BASE + 'joined = "apart"\n',
+        ':11: part "beam", joined: not built yet in this version: joints that slip',
+    ),
     "no tension": (
         BASE.replace("poisson", "no_tension = true\npoisson"),
         ':4: material "steel": key "no_tension": not built yet in this version',

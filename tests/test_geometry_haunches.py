@@ -14,15 +14,22 @@ from fishbelly.member.laws import constant, steps, straight
 from fishbelly.member.section_results import section_at, stiffness
 
 
+MOMENTS = (lambda z, d: 1.0, lambda z, d: z, lambda z, d: z * z + d * d / 12)
+"""Area, first and second moment of a rectangle d deep with its middle at z, over its area."""
+
+
 def haunched(*followers: Part, law: str = "straight", side: str = "bottom") -> Member:
     return member(HOST, *followers, haunches=(Haunch("host", 0.0, 0.3, (0.0, 2.0), law, side),))
 
 
-@pytest.mark.parametrize("law, extra", [("straight", 0.15), ("parabola", 0.075)])
-def test_haunch_moves_the_soffit_and_what_is_under_it(law: str, extra: float) -> None:
+@pytest.mark.parametrize("law, extra, slope", [("straight", 0.15, 0.15), ("parabola", 0.075, 0.15)])
+def test_haunch_moves_the_soffit_and_what_is_under_it(law: str, extra: float, slope: float) -> None:
+    """The plate's thickness is square to it: on the section it stands t / cos deep."""
     m = haunched(plate(relation="under", host="host"), law=law)
     at(box(m, "host", 1.0), -0.1, -0.4 - extra, 0.1, 0.0)
-    at(box(m, "plate", 1.0), -0.05, -0.42 - extra, 0.05, -0.4 - extra)
+    at(box(m, "plate", 1.0), -0.05, -0.4 - extra - 0.02 * math.hypot(1.0, slope), 0.05, -0.4 - extra)
+    cut = replace(m, inclined="cut")
+    at(box(cut, "plate", 1.0), -0.05, -0.42 - extra, 0.05, -0.4 - extra)
     at(box(m, "plate", 3.0), -0.05, -0.42, 0.05, -0.4)
 
 
@@ -40,7 +47,7 @@ def test_haunch_carries_a_chain_of_followers() -> None:
     one = plate("one", relation="under", host="host")
     two = plate("two", relation="under", host="one")
     m = haunched(one, two)
-    assert box(m, "two", 1.0)[3] == pytest.approx(-0.57, abs=NEAR)
+    assert box(m, "two", 1.0)[3] == pytest.approx(-0.55 - 0.02 * math.hypot(1.0, 0.15), abs=NEAR)
 
 
 def test_haunch_on_top_raises_what_is_over_it() -> None:
@@ -72,9 +79,14 @@ def test_i_shape_under_a_haunch_keeps_its_flanges() -> None:
     i = part("host", "I", L, depth=0.4, web=0.01, top_width=0.2, bottom_width=0.2, top_flange=0.02, bottom_flange=0.02)
     m = member(i, haunches=(Haunch("host", 0.0, 0.4, (0.0, 2.0)),))
     found = section_at(m, 1.0)
-    h = 0.6
-    iy = (0.2 * h**3 - 0.19 * (h - 0.04) ** 3) / 12
-    check_close(found["EI_y"], 210e9 * iy, CLOSED)
+    h, cos = 0.6, math.cos(math.atan(0.2))
+    v = 0.02 / cos
+    pieces = ((0.2 * 0.02, -0.01, 0.02), (0.01 * (h - 0.02 - v), -(h + 0.02 - v) / 2, h - 0.02 - v))
+    pieces += ((0.2 * v * cos**4, v / 2 - h, v),)
+    area, first, second = (sum(a * f(z, d) for a, z, d in pieces) for f in MOMENTS)
+    check_close(found["EI_y"], 210e9 * (second - first**2 / area), CLOSED)
+    as_cut = section_at(replace(m, inclined="cut"), 1.0)
+    check_close(as_cut["EI_y"], 210e9 * (0.2 * h**3 - 0.19 * (h - 0.04) ** 3) / 12, CLOSED)
 
 
 # laws, breaks

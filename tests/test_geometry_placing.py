@@ -90,7 +90,8 @@ def test_parts_follow_parts_that_follow_parts() -> None:
     two = plate("two", relation="under", host="one")
     three = plate("three", relation="right_of", host="two")
     m = member(replace(HOST, shape=tapering()), one, two, three)
-    at(box(m, "three", 4.0), 0.05, -0.34, 0.15, -0.32)
+    middle = -0.3 - 1.5 * 0.02 * math.hypot(1.0, 0.025)  # plates stand t / cos deep
+    at(box(m, "three", 4.0), 0.05, middle - 0.01, 0.15, middle + 0.01)
 
 
 def test_follower_of_a_tapering_part_over_its_sides() -> None:

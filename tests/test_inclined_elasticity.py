@@ -27,6 +27,8 @@ Array = NDArray[np.float64]
 E, NU = 210e9, 0.3
 STEEL = Material("steel", E, poisson=NU)
 INF = math.inf
+MESH = 4e-3
+"""Halving the elements moves the ratios by up to 3e-3, the corners of the wall are singular."""
 FIXED = Support("wall", 0.0, down=INF, rotation=INF, along=INF, across=INF)
 
 
@@ -134,18 +136,19 @@ CASES = {
     "tapered, couple": (tapered, 1e5, 0.0, (0.9935, 0.9564)),
     # 0.5 % and 1.8 %: the haunch is deep where the couple bends least
     "haunched, couple": (haunched, 1e5, 0.0, (0.9952, 0.9822)),
-    "tapered, force": (tapered, 0.0, 1e5, (0.0, 0.0)),
-    "haunched, force": (haunched, 0.0, 1e5, (0.0, 0.0)),
+    # 2.4 % and 5.8 %; 1.9 % and 5.0 %
+    "tapered, force": (tapered, 0.0, 1e5, (0.9758, 0.9417)),
+    "haunched, force": (haunched, 0.0, 1e5, (0.9809, 0.9502)),
 }
 
 
 @pytest.mark.parametrize("name", CASES)
 def test_bending_and_the_shear_left_for_the_web_are_plane_stress(name: str) -> None:
-    """`found` holds to 1e-3: halving the elements moves it by less. What is missing is local, at wedges and ends."""
+    """What is missing is local: stress at the wall and at kinks, couples that enter a sloping flange along x."""
     make, moment, force, found = CASES[name]
     girder, *members = make()
     along, cut = ratios(girder, members, moment, force)
-    assert (along, cut) == pytest.approx(found, abs=1e-3)
+    assert (along, cut) == pytest.approx(found, abs=MESH)
     assert abs(along - 1.0) < 0.5 * abs(cut - 1.0)
 
 

@@ -43,7 +43,10 @@ ALLOWED = {
     "fishbelly.member.geometry",
     "fishbelly.member.laws",
     "fishbelly.member.loads",
+    "fishbelly.member.moduli",
     "fishbelly.member.openings",
+    "fishbelly.member.questions",
+    "fishbelly.member.stage_view",
     "fishbelly.sections.outlines",
 }
 

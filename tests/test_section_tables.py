@@ -19,7 +19,7 @@ def test_section():
     assert values["z_c"].split()[-2:] == ["-100.0", "mm"]
     assert values["mass"].split()[-2:] == ["157.0", "kg/m"]
     # M/W of 1 kNm: 1000 / 666.7e-6 = 1.5 MPa
-    assert block(text, "Stress coefficients")[2].split() == ["beam", "-1.500", "1.500", "0.05000"]
+    assert block(text, "Stress coefficients")[2].split() == ["beam", "-1.500", "1.500", "0.05000", "666.7", "666.7"]
     assert "horizontal axis y–y" in " ".join(text.split())
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import mpmath as mp
 import numpy as np
 import pytest
-from common import INF, check_close, fixed, pin, roller, uniform
+from common import INF, check_close, fixed, pin, roller
 from slip_exact import Layered, deflection
 from slip_members import Run, composite, over, piece
 

@@ -3,20 +3,28 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 
 import mpmath as mp
 import numpy as np
 import pytest
 from common import INF, fixed, pin, roller, uniform
-from slip_bvp import SCALE, G, M, S, Stretch, TURN, V, W, continuous, solved
+from slip_bvp import SCALE, TURN, G, M, S, Stretch, V, W, continuous, solved
 from slip_exact import Layered
 from slip_members import Run, composite, over, piece
 
-from fishbelly.member.description import Hinge, Joined, Placing
+from fishbelly.member.actions import Frame
+from fishbelly.member.description import Hinge, Joined, Member, Notch, Opening, Placing, Stage
+from fishbelly.member.extremes import values_at
 from fishbelly.member.forces import Forces
+from fishbelly.member.laws import constant as const
 from fishbelly.member.laws import straight
 from fishbelly.member.loads import Point
+from fishbelly.member.sampling import build_profile, build_profiles
+from fishbelly.member.section_law import ElasticLaw
 from fishbelly.member.slip_law import SlipLaw
+from fishbelly.member.slip_layers import joint_stiffness, layers_of
+from fishbelly.member.stage_view import stage_views
 
 AGREES = 1e-8
 """Relative, of the largest value: what the adaptive reference itself reaches at its tolerance of 1e-10."""
@@ -241,12 +249,12 @@ def test_hinge_cuts_all_layers() -> None:
     half = Run(composite(2.0, k, supports=ends[:1], loads=(Point(2.0, 0.5 * P),)))
     r, s = whole.respond()
     r2, s2 = half.respond()
-    assert float(whole.value(r.deflection[0], 2.0)) == pytest.approx(float(half.value(r2.deflection[0], 2.0)), rel=EXACT)
+    assert float(whole.value(r.deflection[0], 2.0)) == pytest.approx(
+        float(half.value(r2.deflection[0], 2.0)), rel=EXACT
+    )
     size = np.abs(s2.joint_force).max()
     assert abs(float(whole.value(s.joint_force, 2.0)[0])) < EXACT * size
-    assert float(whole.value(s.slip, 2.0, "left")[0]) == pytest.approx(
-        float(half.value(s2.slip, 2.0)[0]), rel=EXACT
-    )
+    assert float(whole.value(s.slip, 2.0, "left")[0]) == pytest.approx(float(half.value(s2.slip, 2.0)[0]), rel=EXACT)
     assert float(whole.value(s.slip, 2.0)[0]) == pytest.approx(-float(half.value(s2.slip, 2.0)[0]), rel=EXACT)
 
 
@@ -275,3 +283,71 @@ def test_forces_balance() -> None:
     assert np.abs(carried - r.M[0]).max() < EXACT * np.abs(r.M).max()
     strains = run.law.strains(Forces(r.N, r.V, r.M))
     assert np.array_equal(strains.curvature, s.curvature)
+
+
+def in_stages() -> Member:
+    """The joist alone first; the slab comes in the second stage."""
+    parts = tapered_parts(4.0, 2e7)
+    return composite(
+        4.0,
+        1.0,
+        parts=(parts[0], replace(parts[1], stage="later")),
+        loads=(uniform(Q, 4.0, case="first"), uniform(Q, 4.0, case="second")),
+        stages=(Stage("bare", ("first",)), Stage("later", ("second",))),
+    )
+
+
+def test_a_layer_that_comes_in_a_later_stage() -> None:
+    """Before it comes the joist bends alone, by the same law; afterwards as if it had always been there."""
+    member = in_stages()
+    views = stage_views(member)
+    line = np.array([-0.05, 0.0])
+    profiles = build_profiles(member, tuple(np.linspace(0.0, 4.0, 9)))
+    frames = [Frame.of(p, p.short, line, v) for p, v in zip(profiles, views, strict=True)]
+    k = joint_stiffness(layers_of(member))
+    laws = [SlipLaw.of(f, f.short, k, 1, False) for f in frames]
+    x = frames[0].profile.panels.x
+    M = np.stack((0.5 * Q * x * (4.0 - x), np.zeros_like(x)))
+    forces = Forces(np.zeros_like(x), np.zeros_like(M), M)
+    bare, both = (law.strains(forces) for law in laws)
+    elastic = ElasticLaw.of(frames[0], frames[0].short, 1, False).strains(forces)
+    assert np.abs(bare.curvature - elastic.curvature).max() < EXACT * np.abs(elastic.curvature).max()
+    assert np.abs(bare.joint_force).max() == 0.0
+    run = Run(composite(4.0, 1.0, parts=tapered_parts(4.0, 2e7)))
+    _, always = run.respond()
+    at = [0.3, 2.0, 3.5]
+    panels = frames[1].profile.panels
+    found = values_at(panels, both.joint_force[0], np.array(at))
+    assert found == pytest.approx([float(run.value(always.joint_force[0], v)) for v in at], rel=1e-9)
+
+
+def halved(run: Run) -> Run:
+    """The same member on a grid with every panel cut in half once more."""
+    other = Run(run.member)
+    profile = build_profile(run.member, tuple(np.concatenate((run.panels.a, 0.5 * (run.panels.a + run.panels.b)))))
+    other.frame = Frame.of(profile, profile.short)
+    other.law = SlipLaw.of(other.frame, profile.short, run.k, 2, run.member.shear)
+    return other
+
+
+@pytest.mark.parametrize("case", ["opening", "notch and run-in", "narrow and stiff"])
+def test_a_finer_grid_changes_nothing(case: str) -> None:
+    """Round openings, whose outline begins like a root; stiffness that grows from nothing; very uneven panels."""
+    L = 4.0
+    joist, slab = tapered_parts(L, 3e7)
+    more: dict[str, object] = {}
+    if case == "opening":
+        more["openings"] = (Opening(1.2, ("joist",), diameter=0.05),)
+    elif case == "notch and run-in":
+        more["notches"] = (Notch("joist", const(0.03), 2.0, 2.002),)
+        slab = replace(slab, start=0.5, end=3.5, run_in=(0.2, 0.3))
+    else:
+        slab = replace(slab, joined=Joined(per_length=1e12), start=0.4)
+        more["notches"] = (Notch("joist", const(0.03), 2.0, 2.0 + 1e-6),)
+    run = Run(composite(L, 1.0, parts=(joist, slab), **more))
+    fine = halved(run)
+    (r, s), (r2, s2) = run.respond(), fine.respond()
+    at = np.array([0.55, 1.19, 1.21, 2.5, 3.2])
+    for a, b in ((r.deflection[0], r2.deflection[0]), (s.joint_force[0], s2.joint_force[0]), (s.slip[0], s2.slip[0])):
+        one, two = values_at(run.panels, a, at), values_at(fine.panels, b, at)
+        assert np.abs(one - two).max() < 1e-9 * np.abs(two).max()

@@ -4,7 +4,9 @@ Every row is one test named by its id; dimensions must be those of the catalogue
 half of its last digit, or, where the print itself is off the outline, to the difference stated in the row;
 the row's own computation holds to 1e-6 (hollow sections 6e-6: theirs were computed with coarser corners; the
 closed form of rounded rectangles gives ours). Values are from memory, as the rows say, but for the
-cold-formed ones marked as read. Torsion constants are not the catalogue's: tests of torsion look at them.
+cold-formed ones marked as read. Printed plastic moduli, torsion and warping constants are held against what
+``fishbelly section`` says of a job with that size; printed torsion constants come from the tables' own formulas, which
+for I sections are 1 to 4 % off the outline's. Rows of the true constant are the tests of torsion's.
 """
 
 import json
@@ -15,6 +17,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
+from commands import section as section_of
 from catalog_outlines import Ring, half_of_last_digit, moments, outline
 
 from fishbelly.catalog.rolled import RolledSection, find_rolled
@@ -97,6 +100,33 @@ def properties(section: RolledSection, wanted: dict[str, float]) -> dict[str, fl
     return values
 
 
+def told(section: RolledSection, wanted: dict[str, float]) -> dict[str, float]:
+    """What ``fishbelly section`` says beside the stiffness of a job with that size, in the row's units."""
+    job = (
+        f'length = "1 m"\nshear = false\n[material.steel]\nE = "210 GPa"\n[[part]]\nname = "beam"\n'
+        f'material = "steel"\nsize = "{section.designation}"\n[[support]]\nat = "0 m"\nkind = "fixed"\n'
+    )
+    if not wanted.keys() & {"Wpl_y", "It", "Iw"}:
+        return {}
+    found = section_of(job, "0.5 m")
+    values = {"Wpl_y": found["plastic"]["W_pl"] * 1e6, "It": found["table"]["I_t"] * 1e8}
+    if found["table"]["I_w"] is not None:
+        values["Iw"] = found["table"]["I_w"] * 1e9
+    return {name: value for name, value in values.items() if name in wanted}
+
+
+def as_printed(found: float, row: dict[str, Any], name: str) -> None:
+    """Half of the last printed digit, or the difference that the row states; its computation to 1e-6."""
+    printed = row["value"][name]
+    text = f"{printed:.0f}" if printed == int(printed) and printed >= 100 else repr(printed)
+    stated = abs((row["rel_diff"] or {}).get(name, 0)) * printed * 1.02
+    assert abs(found - printed) <= max(half_of_last_digit(text), stated) * (1 + 1e-9), name
+    # of channels a row's computed torsion constant is the outline's, not that of the tables' formula
+    if name in row["computed"] and not (name == "It" and row["id"].startswith("A-UPE")):
+        kind = find_rolled(designation(row)).kind
+        assert found == pytest.approx(row["computed"][name], rel=SAME_AS_COMPUTED.get(kind, 1e-6)), name
+
+
 @pytest.mark.parametrize("row", RUN, ids=[row["id"] for row in RUN])
 def test_row(row: dict[str, Any]) -> None:
     section = find_rolled(designation(row))
@@ -106,14 +136,11 @@ def test_row(row: dict[str, Any]) -> None:
     found = properties(section, row["value"])
     compared = [name for name in row["value"] if name != "It"]
     for name in compared:
-        printed = row["value"][name]
-        text = f"{printed:.0f}" if printed == int(printed) and printed >= 100 else repr(printed)
-        stated = abs((row["rel_diff"] or {}).get(name, 0)) * printed * 1.02
-        assert abs(found[name] - printed) <= max(half_of_last_digit(text), stated) * (1 + 1e-9), name
-        if name in row["computed"]:
-            assert found[name] == pytest.approx(row["computed"][name], rel=SAME_AS_COMPUTED.get(section.kind, 1e-6)), (
-                name
-            )
+        as_printed(found[name], row, name)
+    by_command = told(section, row["value"])
+    for name, value in by_command.items():
+        as_printed(value, row, name)
+    assert "It" not in row["value"] or "It" in by_command
     assert compared
 
 

@@ -1,10 +1,11 @@
 """Group G: transformed sections and principal axes, run through ``fishbelly section`` on a job text.
 
 Every row run is one test named by its id; sources stand in the rows of ``group_G.json``, those marked "from memory"
-there are so. Rows that ask for torsion constants, Cowper's coefficients or plastic moduli are not run: see
+there are so. Rows that ask for torsion constants or Cowper's coefficients are not run: see
 ``not_run.json``.
 """
 
+import math
 from typing import Any
 
 import pytest
@@ -144,6 +145,26 @@ def test_G9() -> None:
     half_a_digit(found, 411e6, ROWS["G9"], "value", digits=3)
     assert found == pytest.approx(260 * 310**3 / 12 - 160 * 260**3 / 12, rel=1e-9)
     assert found == pytest.approx(ROWS["G9"]["computed"]["value"], rel=2e-7)
+
+
+def test_G17() -> None:
+    """Plastic over elastic modulus; the thin tube with a wall of a hundredth of a per cent of its diameter."""
+    row = ROWS["G17"]
+    outlines = {
+        "rect": 'shape = "rectangle"\nwidth = "70 mm"\ndepth = "120 mm"',
+        "circ": 'shape = "circle"\ndiameter = "90 mm"',
+        "tube": 'shape = "tube"\ndiameter = "1000 mm"\nwall = "0.1 mm"',
+        "diamond": 'shape = "polygon"\npoints = [["0 mm", "-60 mm"], ["50 mm", "0 mm"], ["0 mm", "60 mm"], '
+        '["-50 mm", "0 mm"]]',
+    }
+    closed = {"rect": 1.5, "circ": 16 / (3 * math.pi), "tube": 4 / math.pi, "diamond": 2.0}
+    for name, outline in outlines.items():
+        found = section(job(f'[[part]]\nname = "bar"\nmaterial = "m"\n{outline}\n', {"m": "1 GPa"}), "0.5 m")
+        ratio = found["plastic"]["W_pl"] / found["transformed"]["W_top"]
+        half_a_digit(ratio, row["value"][name], row, name, digits=4)
+        # the wall of the tube is 1e-4 of its diameter thick
+        assert ratio == pytest.approx(closed[name], rel=2e-4 if name == "tube" else 1e-9)
+        assert found["plastic"]["M_pl"] is None
 
 
 def test_G19() -> None:

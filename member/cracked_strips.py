@@ -1,0 +1,206 @@
+"""A cracked member once more: moment and curvature by strips of the cross-section, deflection by virtual work.
+
+Shares nothing with the first method's section law but the placed outlines. Every part is cut into level strips between
+corners, tops of arcs and its own line of no stress; later parts displace earlier ones on each level line. Bending in
+the vertical plane; forces and cracked stretches are taken over, strains are not.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.description import Member
+from fishbelly.member.geometry import Geometry
+from fishbelly.sections.outlines import Outline
+
+Array = NDArray[np.float64]
+Plane = tuple[float, float]
+"""A strain e + a z, or a free strain."""
+
+_GAUSS = np.polynomial.legendre.leggauss(20)
+CLOSED = 1e-12
+MOST_ROUNDS = 200
+
+
+@dataclass(frozen=True, eq=False)
+class StripSection:
+    """A cross-section as level lines can cut it.
+
+    Parameters
+    ----------
+    loops : tuple
+        For each outline, parts first and then cuts, its edges as (ya, za, yb, zb, bulge) rows.
+    parts : tuple of int
+        Numbers of the parts.
+    targets : tuple of tuple of int
+        For each cut, which of the parts (by place in `parts`) it is taken from.
+    levels : ndarray
+        Where anything begins or ends [m], increasing.
+    """
+
+    loops: tuple[Array, ...]
+    parts: tuple[int, ...]
+    targets: tuple[tuple[int, ...], ...]
+    levels: Array
+
+    @classmethod
+    def at(cls, member: Member, x: float, side: str = "right") -> StripSection:
+        """Cut the member at x [m]."""
+        placed = Geometry(member).place(np.array([x]), side)
+        outlines = [*placed.outlines, *(c.outline for c in placed.cuts)]
+        loops = tuple(_edges(o) for o in outlines)
+        levels = np.unique(np.concatenate([_tops(e) for e in loops]))
+        return cls(loops, tuple(placed.index), tuple(tuple(c.targets) for c in placed.cuts), levels)
+
+    def widths(self, z: Array) -> Array:
+        """Width of each part on level lines, shape (P, len(z))."""
+        crossings = [_crossings(e, z) for e in self.loops]
+        outline = np.concatenate([np.full(c.shape[0], k) for k, c in enumerate(crossings)])
+        y = np.concatenate(crossings)
+        order = np.argsort(np.where(np.isnan(y), np.inf, y), axis=0)
+        y, outline = np.take_along_axis(y, order, axis=0), outline[order]
+        met = ~np.isnan(y)
+        # what lies right of each crossing belongs to the last part that the line has entered and not left
+        inside = [np.cumsum((outline == k) & met, axis=0) % 2 == 1 for k in range(len(self.loops))]
+        owner = np.full(y.shape, -1)
+        for part in range(len(self.parts)):
+            owner[inside[part]] = part
+        for cut, targets in enumerate(self.targets):
+            owner[inside[len(self.parts) + cut] & np.isin(owner, targets)] = -1
+        gap = np.nan_to_num(np.diff(y, axis=0))
+        return np.array([np.where(owner[:-1] == part, gap, 0.0).sum(axis=0) for part in range(len(self.parts))])
+
+    def forces(self, strain: Plane, E: Array, tensionless: frozenset[int], free: Mapping[int, Plane]) -> tuple[float, float]:
+        """N and M about z = 0 of a strain e0 - k z.
+
+        Parameters
+        ----------
+        strain : (float, float)
+            e0 and k [1/m].
+        E : ndarray
+            Moduli of the member's parts [Pa].
+        tensionless : frozenset of int
+            Parts that carry compression only.
+        free : mapping
+            Free strain of parts, e + a z.
+        """
+        lines = [(strain[0] - free.get(i, (0.0, 0.0))[0], -strain[1] - free.get(i, (0.0, 0.0))[1]) for i in self.parts]
+        zeros = [-e / a for (e, a), i in zip(lines, self.parts, strict=True) if a != 0.0 and i in tensionless]
+        inner = [z for z in zeros if self.levels[0] < z < self.levels[-1]]
+        levels = np.unique(np.concatenate((self.levels, inner)))
+        half, middle = 0.5 * np.diff(levels)[:, None], 0.5 * (levels[1:] + levels[:-1])[:, None]
+        # crowded to the ends of a strip, where an arc begins like a root
+        z = (middle + half * np.sin(0.5 * np.pi * _GAUSS[0])).ravel()
+        dz = (half * 0.5 * np.pi * np.cos(0.5 * np.pi * _GAUSS[0]) * _GAUSS[1]).ravel()
+        N = M = 0.0
+        for width, (e, a), i in zip(self.widths(z), lines, self.parts, strict=True):
+            stress = E[i] * (e + a * z)
+            if i in tensionless:
+                stress = np.minimum(stress, 0.0)
+            N += float((stress * width) @ dz)
+            M -= float((stress * width * z) @ dz)
+        return N, M
+
+
+def strip_strain(
+    section: StripSection,
+    E: Array,
+    tensionless: frozenset[int],
+    free: Mapping[int, Plane],
+    N: float,
+    M: float,
+    start: Plane = (0.0, 0.0),
+) -> Plane:
+    """Strain e0 and curvature k under N and M about z = 0, by Newton's method with differences.
+
+    Raises
+    ------
+    ArithmeticError
+        When it does not close.
+    """
+    if start == (0.0, 0.0) and tensionless and (N or M):
+        start = strip_strain(section, E, frozenset(), free, N, M, start)
+    depth = float(section.levels[-1] - section.levels[0])
+    at = np.array(start)
+    size = max(abs(N) * depth, abs(M), 1e-300)
+
+    def gap(p: Array) -> Array:
+        n, m = section.forces((float(p[0]), float(p[1])), E, tensionless, free)
+        return np.array([(N - n) * depth, M - m]) / size
+
+    here = gap(at)
+    for _ in range(MOST_ROUNDS):
+        if np.abs(here).max() <= CLOSED:
+            break
+        reach = max(abs(at[0]), abs(at[1]) * depth, 1e-6)
+        columns = []
+        for step in (np.array([1e-6 * reach, 0.0]), np.array([0.0, 1e-6 * reach / depth])):
+            columns.append((gap(at + step) - gap(at - step)) / (2.0 * step.sum()))
+        move = -np.linalg.solve(np.stack(columns, axis=1), here)
+        length = 1.0
+        while length > 1e-4:
+            there = gap(at + length * move)
+            if np.abs(there).max() < np.abs(here).max():
+                break
+            length *= 0.5
+        else:
+            break
+        at, here = at + length * move, there
+    if np.abs(here).max() > 1e-9:
+        raise ArithmeticError(f"strips did not close: {np.abs(here).max():.1e} of the forces is out of balance")
+    return float(at[0]), float(at[1])
+
+
+def _edges(outline: Outline) -> Array:
+    rows = []
+    for first, stop in outline.loops:
+        for k in range(first, stop):
+            after = first if k == stop - 1 else k + 1
+            rows.append((outline.y[0, k], outline.z[0, k], outline.y[0, after], outline.z[0, after], outline.bulge[k]))
+    return np.array(rows)
+
+
+def _circle(edge: Array) -> tuple[float, float, float]:
+    """Centre and radius of an arc by its chord and bulge."""
+    ya, za, yb, zb, bulge = edge
+    chord = np.hypot(yb - ya, zb - za)
+    radius = chord * (1.0 + bulge**2) / (4.0 * abs(bulge))
+    sag = 0.5 * chord * bulge
+    # the centre lies on the normal of the chord, a radius from the top of the bow
+    ny, nz = (zb - za) / chord, -(yb - ya) / chord
+    top_y, top_z = 0.5 * (ya + yb) + sag * ny, 0.5 * (za + zb) + sag * nz
+    sign = np.sign(bulge)
+    return top_y - sign * radius * ny, top_z - sign * radius * nz, radius
+
+
+def _tops(edges: Array) -> Array:
+    levels = [edges[:, 1]]
+    for edge in edges[edges[:, 4] != 0.0]:
+        _, zc, r = _circle(edge)
+        for z in (zc - r, zc + r):
+            if _crossings(edge[None], np.array([z - 1e-9 * r * np.sign(z - zc)])).size:
+                levels.append(np.array([z]))
+    return np.concatenate(levels)
+
+
+def _crossings(edges: Array, z: Array) -> Array:
+    """Where edges meet level lines: y with NaN where they do not, two rows for an arc, shape (rows, len(z))."""
+    rows = []
+    for edge in edges:
+        ya, za, yb, zb, bulge = edge
+        if bulge == 0.0:
+            with np.errstate(divide="ignore", invalid="ignore"):
+                y = ya + (yb - ya) * (z - za) / (zb - za)
+            rows.append(np.where((z > min(za, zb)) & (z < max(za, zb)), y, np.nan))
+            continue
+        yc, zc, r = _circle(edge)
+        root = np.sqrt(np.maximum(r * r - (z - zc) ** 2, 0.0))
+        for y in (yc - root, yc + root):
+            # a point of the circle is on the arc where it lies on the bow's side of the chord
+            side = (yb - ya) * (z - za) - (zb - za) * (y - ya)
+            rows.append(np.where((np.abs(z - zc) < r) & (side * bulge < 0.0), y, np.nan))
+    return np.array(rows)
