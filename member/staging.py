@@ -18,7 +18,7 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Actions, Atom, Frame
 from fishbelly.member.faults import Mechanism
 from fishbelly.member.forces import Forces
-from fishbelly.member.history_forces import resultant
+from fishbelly.member.history_forces import resultant, sheared
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.response import Response, responded
 from fishbelly.member.section_law import ElasticLaw, Strains
