@@ -5,9 +5,10 @@ from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 
 from fishbelly.catalog.designations import normal_form, series_of
+from fishbelly.catalog.fasteners import Fastener, fasteners, slip_modulus
 from fishbelly.catalog.k_def import SERVICE_CLASSES
 from fishbelly.catalog.limits import PublishedLimit, limits
-from fishbelly.catalog.materials import CatalogMaterial, materials
+from fishbelly.catalog.materials import CatalogMaterial, find_material, materials
 from fishbelly.catalog.rolled import SERIES, RolledSection, rolled_sections
 from fishbelly.catalog.tables import nearest_names, read_table
 
@@ -22,7 +23,7 @@ class Entry:
     Attributes
     ----------
     group : str
-        ``"material"``, ``"rolled section"``, ``"limit"`` or ``"creep of timber"``.
+        ``"material"``, ``"rolled section"``, ``"limit"``, ``"creep of timber"`` or ``"fastener"``.
     name : str
         Under which a job or the lookup functions know it.
     kind : str
@@ -118,16 +119,39 @@ def k_def_entries() -> list[Entry]:
     ]
 
 
+def fastener_entry(fastener: Fastener) -> Entry:
+    """Entry of a kind of fastener: its slip modulus at a usual size in a few timbers, as examples of its formula."""
+    values: list[Value] = []
+    if fastener.constant is not None:
+        values.append(("stiffness", fastener.constant, "N/m"))
+    elif fastener.size is not None:
+        values.append(("size", fastener.size, "m"))
+        for timber in ("C24", "GL28h"):
+            density = find_material(timber).density or 0.0
+            values.append((f"K_ser, {timber}", slip_modulus(fastener.name, fastener.size, density), "N/m"))
+        density = find_material("C24").density or 0.0
+        steel = slip_modulus(fastener.name, fastener.size, density, to_steel_or_concrete=True)
+        values.append(("C24 to steel", steel, "N/m"))
+    formula = fastener.formula if fastener.constant is not None else f"K_ser = {fastener.formula} (N/mm, kg/m3, mm)"
+    rules = "" if fastener.constant is not None else (
+        "ρ_m of two timbers is the root of the product; twice as much to steel or concrete, by the timber's density "
+        "alone (7.1(2), (3)); K_u = 2/3 K_ser"
+    )
+    said = "; ".join(text for text in (fastener.words, formula, fastener.note, rules) if text)
+    return Entry("fastener", fastener.name, fastener.kind, tuple(values), fastener.source, said)
+
+
 _GROUPS: tuple[Callable[[], Iterable[Entry]], ...] = (
     lambda: map(material_entry, materials()),
     lambda: map(section_entry, rolled_sections()),
     lambda: map(limit_entry, limits()),
     k_def_entries,
+    lambda: map(fastener_entry, fasteners()),
 )
 
 
 def everything() -> list[Entry]:
-    """All entries: materials, rolled sections, limits, creep of timber."""
+    """All entries: materials, rolled sections, limits, creep of timber, fasteners."""
     return [entry for group in _GROUPS for entry in group()]
 
 
@@ -136,6 +160,7 @@ _GROUP_WORDS = {
     "rolled section": ("rolled section", "rolled sections", "section", "sections", "size", "sizes"),
     "limit": ("limit", "limits", "deflection limits"),
     "creep of timber": ("creep of timber", "k_def", "kdef", "deformation factor"),
+    "fastener": ("fastener", "fasteners", "slip modulus", "slip moduli", "k_ser", "kser"),
 }
 """Words that ask for the whole of a group."""
 

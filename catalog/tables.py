@@ -31,13 +31,14 @@ SI: dict[str, Decimal] = {
     "MPa": Decimal("1e6"),
     "GPa": Decimal("1e9"),
     "kg/m3": Decimal(1),
+    "kN/mm": Decimal("1e6"),
     "1e-6/K": Decimal("1e-6"),
     "psi": _PSI,
     "ksi": 1000 * _PSI,
     "lb/ft3": _POUND / (12 * _INCH) ** 3,
     "1e-6/degF": Decimal("1.8e-6"),
 }
-"""Factor from the unit of a column header to SI base units (m, Pa, kg, K)."""
+"""Factor from the unit of a column header to SI base units (m, Pa, N/m, kg, K)."""
 
 
 @cache

@@ -25,7 +25,7 @@ def snippet(entry: Entry) -> str:
     Parameters
     ----------
     entry : Entry
-        A material, a rolled section, a limit or a row of k_def.
+        A material, a rolled section, a limit, a row of k_def or a fastener.
 
     Returns
     -------
@@ -50,6 +50,8 @@ def snippet(entry: Entry) -> str:
             f'[[limit]]\nlike = "{entry.name}"\n'
             f'# combination = "NAME"     # the one for: {entry.kind.removesuffix(", sideways")}{sideways}'
         )
+    if entry.group == "fastener":
+        return _joint(entry)
     if entry.group == "creep of timber":
         return f'[material.timber]\nlike = "NAME"     # a material of {entry.name}\n{_creep(entry)}'
     name = next((name for word, name in _NAMES if word in entry.kind), "mine")
@@ -60,6 +62,17 @@ def snippet(entry: Entry) -> str:
     elif "creep" not in labels:
         lines.append("# creep = …     # needed where loads are sustained; the catalogue cannot know it")
     return "\n".join(lines)
+
+
+def _joint(entry: Entry) -> str:
+    """Write the joint of a part by a fastener, at the size and in the timber of the entry's first value."""
+    values = {label: value for label, value, _ in entry.values}
+    stiffness = values.get("stiffness", values.get("K_ser, C24", 0.0))
+    one = entry.name if "size" not in values else f"{entry.name}, {1e3 * values['size']:g} mm in C24"
+    return (
+        f'[[part]]\nname = "NAME"     # one {one}\n'
+        f'joined = {{ stiffness = "{stiffness / 1e6:.4g} kN/mm", pitch = "150 mm", rows = 1 }}'
+    )
 
 
 def _creep(entry: Entry) -> str:

@@ -28,7 +28,7 @@ _OF_LIMITS = (
     "smaller governs."
 )
 _STRESSES = ("cracking", "yield")
-_WHAT = {"Pa": "modulus", "kg/m3": "density", "1/K": "expansion", "m": "length", "": "factor"}
+_WHAT = {"N/m": "stiffness", "Pa": "modulus", "kg/m3": "density", "1/K": "expansion", "m": "length", "": "factor"}
 _MAIN = {
     "material": ("E", "G", "poisson", "density"),
     "rolled section": ("depth", "width", "diameter", "wall", "thickness", "web", "flange", "radius"),
@@ -38,12 +38,14 @@ _GROUPS = {
     "rolled section": "Sections",
     "limit": "Deflection limits",
     "creep of timber": "Creep of timber, k_def (EN 1995-1-1)",
+    "fastener": "Fasteners, slip modulus (EN 1995-1-1, EN 1994-1-1)",
 }
 _ASK = {
     "material": "fishbelly catalog C24, fishbelly catalog stainless",
     "rolled section": "fishbelly catalog IPE 300, fishbelly catalog UB 457",
     "limit": "fishbelly catalog limits, fishbelly catalog IBC floor",
     "creep of timber": "fishbelly catalog k_def",
+    "fastener": "fishbelly catalog bolt, fishbelly catalog fasteners",
 }
 
 
@@ -140,7 +142,7 @@ def _four(number: float) -> str:
 
 
 def _limit_value(entry: Entry, value: Value, style: str) -> str:
-    text = f"{shown(value, style)} {_unit(value, style)}".rstrip()
+    text = f"{shown(value, style, 4 if value[2] == 'N/m' else 6)} {_unit(value, style)}".rstrip()
     if entry.group != "limit":
         return text
     return {"span over": f"L/{text}", "cantilever over": f"own length/{text}"}.get(value[0], text)

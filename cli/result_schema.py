@@ -335,7 +335,7 @@ def _deflect() -> Schema:
 def _catalog() -> Schema:
     values = {"type": "object", "description": "values by name", "additionalProperties": {"type": ["number", "string"]}}
     entry = {
-        "group": {"enum": ["material", "rolled section", "limit", "creep of timber"], "description": "what it is"},
+        "group": {"enum": ["material", "rolled section", "limit", "creep of timber", "fastener"], "description": "what it is"},
         "name": _text("name by which a job asks for it"),
         "kind": _text("what kind of it"),
         "values": values,

@@ -187,6 +187,9 @@ class _Run:
             rough = max(CLOSED, min(1e-3 * gap / self.base.member.length, 1e-6))
             solved = self._solve(analysis, cracked, solved, rough)
             rounds += sum(s.closed.rounds for s in solved)
+            if count == 1 and all(s.closed.rounds == 1 for s in solved):
+                # forces follow from statics alone: what cannot be carried now cannot later
+                self._carried(solved)
             own, ends = self._own(analysis, solved)
             found = np.array(sorted([*ends, *openings(analysis.profile.panels, solved)]))
             same = found.size == borders.size
@@ -301,10 +304,9 @@ class _Run:
 
     def _judge(self, solved: Sequence[Solved]) -> None:
         """See that every section carries its forces and that equilibrium has closed."""
+        self._carried(solved)
         for s in solved:
             state, panels = s.closed.state, s.law.sections.frame.profile.panels
-            if not state.carried.all():
-                raise _cannot_carry(s, self.combined.combination.name)
             if not state.converged.all():
                 k = int(np.argmin(state.converged))
                 raise CannotCompute(f"the cracked section at x = {panels.x.flat[k]:.6g} m did not close")
@@ -314,6 +316,11 @@ class _Run:
                     f"{self.combined.combination.name}: forces still change by {s.closed.residual:.1e} of the largest "
                     f"at x = {s.closed.at:.6g} m"
                 )
+
+    def _carried(self, solved: Sequence[Solved]) -> None:
+        for s in solved:
+            if not s.closed.state.carried.all():
+                raise _cannot_carry(s, self.combined.combination.name)
 
     def _bears(self, total: Response) -> None:
         """See that bearings that cannot pull bear or lift as they did without cracks."""
@@ -345,10 +352,9 @@ def _cannot_carry(solved: Solved, name: str) -> NoStiffness:
     r, panels = solved.closed.response, sections.frame.profile.panels
     forces = Forces(r.N, r.V, r.M)
     moment = r.M[0] + r.N * sections.frame.centre[0]
-    where = np.argwhere(~state.carried)
-    shares = [sections.share_carried((int(k), int(j)), forces) for k, j in where]
-    k, j = (int(v) for v in where[int(np.argmin(shares))])
-    share = min(shares)
+    shares = sections.shares_carried(~state.carried, forces)
+    k, j = (int(v) for v in np.unravel_index(int(np.argmin(shares)), shares.shape))
+    share = float(shares[k, j])
     return NoStiffness(
         float(panels.x[k, j]),
         f"without tension the section cannot carry M = {moment[k, j]:.6g} N m with N = {r.N[k, j]:.6g} N in "

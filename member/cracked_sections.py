@@ -19,7 +19,7 @@ from fishbelly.member.forces import Forces
 from fishbelly.sections.clipping import at_stations, moved
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.fibres import arc_data, fibres
-from fishbelly.sections.no_tension import FreePlanes, largest_share, solve_section
+from fishbelly.sections.no_tension import FreePlanes, largest_shares, solve_section
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -198,12 +198,15 @@ class CrackedSections:
             result[: values.shape[0], index] = values
         return result.reshape(count, *stress.shape[1:])
 
-    def share_carried(self, where: tuple[int, int], forces: Forces) -> float:
-        """How many times its moment a section without tension can carry at its axial force, at one grid point."""
-        index = int(np.ravel_multi_index(where, forces.N.shape))
-        number, station = (int(v[index]) for v in self._home)
-        load = SIGNS * np.array([forces.N[where], forces.M[0][where], forces.M[1][where]])
-        return largest_share(self._local[number], station, load)
+    def shares_carried(self, where: Mask, forces: Forces) -> Array:
+        """How many times its moment a section without tension can carry at its axial force; inf elsewhere, (K, n)."""
+        result = np.full(where.size, np.inf)
+        load = SIGNS[:, None] * np.stack((forces.N.ravel(), forces.M[0].ravel(), forces.M[1].ravel()))
+        for number in range(len(self.frame.profile.groups)):
+            index, stations = self.points(number, where)
+            if index.size:
+                result[index] = largest_shares(self.section(number, stations), load[:, index])
+        return result.reshape(where.shape)
 
 
 def _free_of(free: Planes, parts: tuple[int, ...], index: NDArray[np.intp]) -> FreePlanes:

@@ -10,6 +10,7 @@ from fishbelly.member.inclined import FLANGES, is_plate
 
 Array = NDArray[np.float64]
 
+
 def steepest_faces(analysis: Analysis) -> list[tuple[str, float, float, bool]]:
     """Steepest lower or upper face of each part that has one above half a degree.
 

@@ -33,9 +33,7 @@ def inclined_there(member: Member, group: Group, station: int) -> list[Data]:
     return found
 
 
-def inclined_at(
-    member: Member, x: Array, sides: list[str], works: frozenset[int] | None = None
-) -> list[list[Data]]:
+def inclined_at(member: Member, x: Array, sides: list[str], works: frozenset[int] | None = None) -> list[list[Data]]:
     """Flanges and plates that run inclined at places, each seen from one side; `works`: parts that work, if not all."""
     found: list[list[Data]] = [[] for _ in sides]
     geometry = Geometry(member, works)

@@ -115,10 +115,3 @@ class Record:
         """Drop a part that has gone."""
         self.stress.pop(part, None)
         self.creeping.pop(part, None)
-
-    def imbalance(self, ground: Ground) -> float:
-        """How far the stresses of all parts are from the forces of the member, over the largest of these."""
-        total = sum(carried(planes, line_moments(ground, part)) for part, planes in self.stress.items())
-        off = total - np.stack((self.N, *self.M))
-        sizes = max(float(np.abs(self.N).max()), 1e-300), max(float(np.abs(self.M).max()), 1e-300)
-        return max(float(np.abs(off[0]).max()) / sizes[0], float(np.abs(off[1:]).max()) / sizes[1])

@@ -295,9 +295,7 @@ def _varies(placed: PlacedParts, count: int) -> NDArray[np.bool_]:
     return result
 
 
-def _fill(
-    member: Member, s: Sections, k: NDArray[np.intp], placed: PlacedParts, points: NDArray[np.intp]
-) -> None:
+def _fill(member: Member, s: Sections, k: NDArray[np.intp], placed: PlacedParts, points: NDArray[np.intp]) -> None:
     """Evaluate the section at points (an index into the placed stations, a row for each interval)."""
     flat = points.ravel()
     outlines = [_rows(o, flat) for o in placed.outlines]
@@ -335,8 +333,10 @@ def _weighed(
         for band in (b for b in inclined if b.part == part):
             within[len(every)], shares[len(every)] = own[part], band.share
             every.append(band.outline)
-    cut = [(o, tuple(n for t in targets for n in (own[t], *(b for b, p in within.items() if p == own[t]))))
-           for o, targets in cuts]
+    cut = [
+        (o, tuple(n for t in targets for n in (own[t], *(b for b, p in within.items() if p == own[t]))))
+        for o, targets in cuts
+    ]
     split = strip_moments(every, cut, within)
     works, stands = split.values[own], split.values[own]
     for band_at, part_at in within.items():

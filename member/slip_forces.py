@@ -55,17 +55,6 @@ class LayeredForces(Forces):
         slips = None if self.slips is None else self.slips[:, k]
         return LayeredForces(self.N[k], self.V[:, k], self.M[:, k], self.layers[:, k], slips)
 
-    @property
-    def any(self) -> bool:
-        """Whether there is any force or slip at all; forces of layers may cancel in the whole."""
-        slips = self.slips is not None and bool(np.any(self.slips))
-        return slips or bool(np.any(self.layers)) or bool(np.any(self.V)) or bool(np.any(self.M))
-
-    def atom(self, k: int) -> LayeredForces:
-        """Return one of several sets stacked in front of (K, n)."""
-        slips = None if self.slips is None else self.slips[:, k]
-        return LayeredForces(self.N[k], self.V[:, k], self.M[:, k], self.layers[:, k], slips)
-
     @classmethod
     def by_layer(cls, layers: Layers, parts: Iterable[tuple[int, Forces]], shape: tuple[int, ...]) -> LayeredForces:
         """Collect forces given part by part, each with fields of `shape` (after the plane), into their layers."""

@@ -12,8 +12,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.sections.clipping import clipped_moments, raw_moments
+from fishbelly.sections.clipping import at_stations, clipped_moments, raw_moments
 from fishbelly.sections.composition import Composition
+from fishbelly.sections.outlines import Outline, arcs
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -21,10 +22,11 @@ Mask = NDArray[np.bool_]
 MOST_ROUNDS = 80
 CLOSED = 1e-13
 """Change of the strain plane against the plane itself, in the last round."""
-STILL = 1e-11
+STILL = 1e-9
 """A change below this that no longer shrinks is round-off of a section whose stiffness nearly vanishes."""
 SINGULAR = 1e-13
 """Determinant of a stiffness with ones on its diagonal, below which next to nothing is at work."""
+_DIRECTIONS = 720
 MARGIN = 1e-9
 """A resultant so near the edge, as a share of the section's size, counts as outside: nothing is left to carry it."""
 
@@ -188,9 +190,10 @@ class _Work:
         stations = self.E.shape[1]
         tough = ((self.E > 0.0) & ~self.tensionless[:, None] & (np.array([m[0] for m in self.whole]) > 0.0)).any(axis=0)
         carried = np.ones(stations, dtype=bool)
-        for s in np.flatnonzero(~tough):
-            if np.any(self.forces[:, s]):
-                carried[s] = largest_share(self.section, int(s), self.forces[:, s]) > 1.0 + MARGIN
+        index = np.flatnonzero(~tough & np.any(self.forces, axis=0))
+        if index.size:
+            share = largest_shares(at_stations(self.section, index), self.forces[:, index])
+            carried[index] = share > 1.0 + MARGIN
         return carried
 
     def closed(self, at: Array, carried: Mask) -> SectionState:
@@ -200,7 +203,7 @@ class _Work:
         moments = self.active(at)
         strain, total = self.energy(at, moments)
         change = np.full(at.shape[1], np.inf)
-        done, rounds = ~carried, 0
+        done, rounds, still = ~carried, 0, np.zeros(at.shape[1], dtype=np.int_)
         while not done.all() and rounds < MOST_ROUNDS:
             rounds += 1
             matrix = self.tangent(moments)
@@ -221,8 +224,9 @@ class _Work:
             plane, before = np.abs(new * weight).max(axis=0), change
             change = np.abs(step * weight).max(axis=0) / np.where(plane > 0.0, plane, 1.0)
             at, moments, strain, total = new, moments_new, strain_new, total_new
-            # a small change that no longer shrinks is round-off
-            done = done | (change <= CLOSED) | ((change <= STILL) & (change >= 0.25 * before))
+            # a small change that no longer shrinks, twice running, is round-off
+            still = np.where((change <= STILL) & (change >= 0.25 * before), still + 1, 0)
+            done = done | (change <= CLOSED) | (still > 1)
         matrix = self.tangent(moments)
         out = self.forces + _held(moments, self.E, self.free) - np.einsum("sij,js->is", matrix, at)
         return self._state(at, matrix, out, strain, carried, change, rounds)
@@ -245,39 +249,48 @@ class _Work:
         return np.asarray(sum(matrices(m * self.E[k]) for k, m in enumerate(moments)))
 
 
-def largest_share(section: Composition, station: int, forces: Array) -> float:
-    """How many times the moment a section without tension can carry at its axial force, in the moment's direction.
+def largest_shares(section: Composition, forces: Array) -> Array:
+    """How many times their moment sections without tension can carry at their axial force, in the moment's direction.
 
     The resultant of compression lies inside the outline of all parts together. The moment counts about the area's
     centroid; the share is 0 where the axial force is none or tension, infinite where there is no moment.
+
+    Parameters
+    ----------
+    section : Composition
+        The cross-section at S stations.
+    forces : ndarray, shape (3, S)
+        N, M_y and M_z about the origin.
+
+    Returns
+    -------
+    ndarray, shape (S,)
     """
     N, M_y, M_z = forces
-    if not N < 0.0:
-        return 0.0
-    total = section.moments.at((slice(None), station)).total()
-    aim = np.array([-M_z / N - total.y, -M_y / N - total.z])
-    far = float(np.hypot(*aim))
-    angles = np.concatenate((np.arange(720) * (np.pi / 360.0), [np.arctan2(aim[1], aim[0])]))
-    reach = np.max([_reach(o, station, angles, total.y, total.z) for o in section.outlines], axis=0)
-    if far == 0.0:
-        return np.inf
-    toward = (aim[0] * np.cos(angles) + aim[1] * np.sin(angles)) / far
-    ahead = toward > 1e-9
-    return float((reach[ahead] / toward[ahead]).min() / far)
+    pressed = N < 0.0
+    total = section.moments.total()
+    safe = np.where(pressed, N, -1.0)
+    y, z = -M_z / safe - total.y, -M_y / safe - total.z
+    far = np.hypot(y, z)
+    angles = np.broadcast_to(np.arange(_DIRECTIONS) * (2.0 * np.pi / _DIRECTIONS), (N.size, _DIRECTIONS))
+    angles = np.concatenate((angles, np.arctan2(z, y)[:, None]), axis=1)
+    reach = np.max([_reach(o, angles, total.y, total.z) for o in section.outlines], axis=0)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        toward = (y[:, None] * np.cos(angles) + z[:, None] * np.sin(angles)) / far[:, None]
+        share = np.where(toward > 1e-9, reach / np.where(toward > 1e-9, toward, 1.0), np.inf).min(axis=1) / far
+    return np.where(pressed, np.where(far > 0.0, share, np.inf), 0.0)
 
 
-def _reach(outline: object, station: int, angles: Array, y: float, z: float) -> Array:
-    """How far an outline reaches from a point in each direction [m]; bows of arcs by points 3 degrees apart."""
-    from fishbelly.sections.outlines import Outline, arcs
-
-    assert isinstance(outline, Outline)
-    ys, zs = [outline.y[station]], [outline.z[station]]
+def _reach(outline: Outline, angles: Array, y: Array, z: Array) -> Array:
+    """How far an outline reaches from a point of each station in directions (S, A) [m]."""
+    cos, sin = np.cos(angles), np.sin(angles)
+    dy, dz = outline.y - y[:, None], outline.z - z[:, None]
+    found = (cos[:, :, None] * dy[:, None, :] + sin[:, :, None] * dz[:, None, :]).max(axis=2)
     curved = np.flatnonzero(outline.bulge)
     if curved.size:
-        one = Outline(outline.y[station : station + 1], outline.z[station : station + 1], outline.bulge, outline.loops)
-        y_c, z_c, r, first, turn = (v[0] for v in arcs(one, curved))
-        at = first[:, None] + turn[:, None] * np.linspace(0.0, 1.0, 121)
-        ys.append((y_c[:, None] + r[:, None] * np.cos(at)).ravel())
-        zs.append((z_c[:, None] + r[:, None] * np.sin(at)).ravel())
-    dy, dz = np.concatenate(ys) - y, np.concatenate(zs) - z
-    return np.asarray((np.outer(np.cos(angles), dy) + np.outer(np.sin(angles), dz)).max(axis=1))
+        y_c, z_c, r, start, turn = (v[:, None, :] for v in arcs(outline, curved))
+        first = np.minimum(start, start + turn)
+        passes = np.mod(angles[:, :, None] - first, 2.0 * np.pi) < np.abs(turn)
+        centre = cos[:, :, None] * (y_c - y[:, None, None]) + sin[:, :, None] * (z_c - z[:, None, None])
+        found = np.maximum(found, np.where(passes, centre + r, -np.inf).max(axis=2))
+    return np.asarray(found)

@@ -11,7 +11,7 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.cross_check import second_of
 from fishbelly.member.description import Hinge, Member, Part, Placing, Support
 from fishbelly.member.extremes import values_at
-from fishbelly.member.laws import constant, straight
+from fishbelly.member.laws import straight
 from fishbelly.member.loads import (
     Axial,
     Couple,

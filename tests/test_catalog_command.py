@@ -29,7 +29,7 @@ def said(capsys: pytest.CaptureFixture[str], *words: str, status: int = DONE) ->
 
 def test_without_a_word_it_says_what_there_is(capsys: pytest.CaptureFixture[str]) -> None:
     out = said(capsys)
-    for group in ("material", "rolled section", "limit", "creep of timber"):
+    for group in ("material", "rolled section", "limit", "creep of timber", "fastener"):
         assert str(sum(entry.group == group for entry in everything())) in out
     assert "fishbelly catalog limits" in out
 
@@ -76,7 +76,7 @@ def test_lists_fit_into_eighty_columns(words: tuple[str, ...], capsys: pytest.Ca
     assert max(map(len, said(capsys, *words).splitlines())) <= 80
 
 
-@pytest.mark.parametrize("group", ["material", "rolled section", "limit", "creep of timber"])
+@pytest.mark.parametrize("group", ["material", "rolled section", "limit", "creep of timber", "fastener"])
 def test_every_entry_in_full_fits_into_eighty_columns(group: str) -> None:
     from fishbelly.cli.catalog_tables import detail
 

@@ -49,7 +49,7 @@ def test_values_carry_their_si_units() -> None:
 
 def test_everything_has_a_source_and_values() -> None:
     entries = everything()
-    assert {entry.group for entry in entries} == {"material", "rolled section", "limit", "creep of timber"}
+    assert {entry.group for entry in entries} == {"material", "rolled section", "limit", "creep of timber", "fastener"}
     assert search("") == entries
     for entry in entries:
         assert entry.source
