@@ -11,11 +11,11 @@ from typing import Any
 
 from fishbelly.cli import deflect_grids
 from fishbelly.cli.cautions import FULL
-from fishbelly.cli.file_grids import answers, checks, per_combination, section_details, stations, stress
+from fishbelly.cli.file_grids import answers, checks, joined, per_combination, section_details, stations, stress
 from fishbelly.cli.files_csv import head
 from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
-from fishbelly.cli.joint_grids import joint_flows, joints
+from fishbelly.cli.joint_grids import fastening, joint_flows, joints
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
 from fishbelly.cli.tables import SECTION_AXES, STIFFNESS_AXES
 from fishbelly.cli.tables_deflect import AXES
@@ -106,7 +106,18 @@ def _beside(data: dict[str, Any]) -> list[Grid]:
     if not any(c["joints"] for c in data["combinations"]):
         return _titled(deflect_beside(data))
     made = (("Joints and cut-offs", joints), ("Flow along joints", joint_flows))
-    return [*(per_combination(data, title, make) for title, make in made), *_titled(deflect_beside(data))]
+    return [
+        *(per_combination(data, title, make) for title, make in made),
+        *_fastening(data),
+        *_titled(deflect_beside(data)),
+    ]
+
+
+def _fastening(data: dict[str, Any]) -> list[Grid]:
+    """Fasteners and theoretical cut-offs of those combinations that have any."""
+    pairs = [(c["name"], fastening(c, deflect_grids.noise_of(c, data["length"]))) for c in data["combinations"]]
+    there = [(name, grid) for name, grid in pairs if grid is not None]
+    return [joined("Fastening", there)] if there else []
 
 
 def _titled(grids: list[Grid]) -> list[Grid]:

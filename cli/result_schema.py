@@ -108,7 +108,9 @@ def _section() -> Schema:
                 "properties transformed to one material", _TO | _TRANSFORMED | {"n": ratios} | levels
             ),
         },
-        {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)} | twist_schema() | trade_schema(),
+        {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)}
+        | twist_schema()
+        | trade_schema(),
     )
 
 
@@ -335,7 +337,10 @@ def _deflect() -> Schema:
 def _catalog() -> Schema:
     values = {"type": "object", "description": "values by name", "additionalProperties": {"type": ["number", "string"]}}
     entry = {
-        "group": {"enum": ["material", "rolled section", "limit", "creep of timber", "fastener"], "description": "what it is"},
+        "group": {
+            "enum": ["material", "rolled section", "limit", "creep of timber", "fastener"],
+            "description": "what it is",
+        },
         "name": _text("name by which a job asks for it"),
         "kind": _text("what kind of it"),
         "values": values,

@@ -10,7 +10,7 @@ from fishbelly.cli import deflect_grids as grids
 from fishbelly.cli.cautions import LINE
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
-from fishbelly.cli.joint_grids import joint_flows, joints
+from fishbelly.cli.joint_grids import fastening, joint_flows, joints
 from fishbelly.cli.station_choice import chosen
 from fishbelly.cli.text_table import clean, fits, paragraph, render, shown_width
 from fishbelly.cli.without_grids import deflect_beside
@@ -75,6 +75,7 @@ def _combination(c: Row, length: float, style: str, listed: bool, earlier: Seque
         grids.ends(c, noise),
         _without(grids.stress(c, noise), "shear at x"),
         joints(c, noise),
+        *(grid for grid in (fastening(c, noise),) if grid is not None),
         joint_flows(c, noise),
     ]
     for grid in tables:

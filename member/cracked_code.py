@@ -97,7 +97,9 @@ def one_value(analysis: Analysis, combination: Combination, rule: str, band: str
         When the member bends sideways too, has nothing that cracks, or when moments do not settle.
     """
     if analysis.planes > 1:
-        raise CannotCompute(f"{rule} has an effective second moment for bending in one plane, and the member bends in two")
+        raise CannotCompute(
+            f"{rule} has an effective second moment for bending in one plane, and the member bends in two"
+        )
     if not cracking_parts(analysis.member):
         raise CannotCompute(f"{rule} wants the tensile stress at which concrete cracks: give its material `cracking`")
     combined = analysis.combine(combination, band)
@@ -130,7 +132,7 @@ class _Work:
         return SpanValue(span, float(np.mean(each)), tuple(found))
 
     def _critical(self, span: Span, total: Response) -> list[tuple[float, float, str]]:
-        """Places of the largest sagging moment and of hogging ends, or the support of an overhang, with moment, side."""
+        """Largest sagging moment and hogging ends, or the support of an overhang: place, moment, side."""
         panels = self.analysis.profile.panels
         M = total.M[0] + total.N * self.analysis.frame.centre[0]
         size = NEGLIGIBLE * float(np.abs(M).max(initial=0.0))

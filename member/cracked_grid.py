@@ -32,7 +32,7 @@ def split(analysis: Analysis, places: Iterable[float]) -> Analysis:
     close = CLOSE * analysis.member.length
     borders = np.concatenate((old.a, old.b[-1:]))
     pointed = np.abs(old.anchor) == 2
-    wanted = []
+    wanted: list[float] = []
     for x in sorted(places):
         near = bool(np.abs(borders - x).min() <= close) or (bool(wanted) and x - wanted[-1] <= close)
         if not near and 0.0 < x < analysis.member.length and not pointed[old.find(np.array([x]))[0]]:
@@ -95,7 +95,7 @@ def roots(panels: Panels, field: Array) -> list[float]:
     """
     rule, close = panels.rule, CLOSE * float(panels.b[-1])
     found: list[float] = []
-    usable = np.isfinite(field).all(axis=1)
+    usable = np.asarray(np.isfinite(field).all(axis=1))
     safe = np.where(usable[:, None], field, 1.0)
     left, right = panels.ends(safe)
     values = np.concatenate((left[:, None], safe, right[:, None]), axis=1)

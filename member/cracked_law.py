@@ -154,7 +154,7 @@ class CrackedLaw:
         return np.asarray(np.max([v.max(axis=0) for v in fibres.values()], axis=0))
 
     def stress(self, part: int, plane: Array, state: int) -> Array:
-        """Stress of a part as a plane v0 + v1 c0 + v2 c1, shape (3, K, n) [Pa, Pa/m], tension of cracked parts not cut off.
+        """Stress of a part as a plane v0 + v1 c0 + v2 c1, (3, K, n) [Pa, Pa/m], tension of cracked parts not cut off.
 
         `state`: 0 of state I, 1 of state II, for their free strain.
         """

@@ -151,14 +151,12 @@ class Phases:
         loaded: dict[int, Array] = {}
         for share, (forces, near) in zip(self.order, starts, strict=True):
             new = self.loaded(share)
-            more = {k: new.get(k, 0.0) - loaded.get(k, 0.0) for k in {*new, *loaded}}
+            more = _sum(new, {k: -v for k, v in loaded.items()})
             free = tuple(_sum(own, more) for own in inherited)
             rule = None if all_cracked else self.stiffening
             moduli = self.analysis.moduli(share.key)
             planar = self.analysis.planes == 1
-            law = CrackedLaw(
-                self.sections, moduli, self.never, self.cracking, mask, rule, (free[0], free[1]), planar
-            )
+            law = CrackedLaw(self.sections, moduli, self.never, self.cracking, mask, rule, (free[0], free[1]), planar)
             phase = self.phase(share, found[-1].closed if found else None)
             found.append(Solved(law, close(self.analysis, self.layout, law, phase, forces, near, closed)))
             loaded = new
@@ -186,7 +184,7 @@ class Phases:
 
     @staticmethod
     def _known(state: LawState) -> Mask:
-        return np.isfinite(state.cracked.plane).all(axis=0)
+        return np.asarray(np.isfinite(state.cracked.plane).all(axis=0))
 
     def uncracked(self) -> list[Forces]:
         """Forces of the loads so far in the uncracked member, for every phase."""

@@ -211,7 +211,7 @@ class _Run:
         worst = max(solved, key=lambda s: s.closed.residual)
         raise CannotCompute(
             f"cracks of combination {self.combined.combination.name} did not settle in {MOST_SEARCHES} searches: "
-            f"they still move by {gap:.3g} m; forces change by {worst.closed.residual:.1e} at x = {worst.closed.at:.6g} m"
+            f"they still move by {gap:.3g} m, forces by {worst.closed.residual:.1e} at x = {worst.closed.at:.6g} m"
         )
 
     def _moved(self, own: Stretches, found: Array, borders: Array) -> Stretches:
@@ -238,7 +238,9 @@ class _Run:
         with np.errstate(all="ignore"):
             return phases.solve(mask, starts, self.everywhere, closed)
 
-    def _solve(self, analysis: Analysis, cracked: Stretches, near: Sequence[Solved], closed: float) -> tuple[Solved, ...]:
+    def _solve(
+        self, analysis: Analysis, cracked: Stretches, near: Sequence[Solved], closed: float
+    ) -> tuple[Solved, ...]:
         phases = self._phases(analysis)
         mask = inside(analysis.profile.panels, cracked)
         starts: list[tuple[Forces, LawState | None]] = [(_carried_over(analysis, s), None) for s in near]

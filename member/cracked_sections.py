@@ -19,7 +19,7 @@ from fishbelly.member.forces import Forces
 from fishbelly.sections.clipping import at_stations, moved
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.fibres import arc_data, fibres
-from fishbelly.sections.no_tension import FreePlanes, largest_shares, solve_section
+from fishbelly.sections.no_tension import FreePlanes, SectionState, largest_shares, solve_section
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -131,39 +131,24 @@ class CrackedSections:
         start : ndarray, shape (3, K, n), optional
             Strains near the ones looked for.
         """
-        shape = where.shape
-        plane = np.full((3, where.size), np.nan)
-        flexibility = np.zeros((where.size, 3, 3))
-        carried, converged = np.ones(where.size, dtype=bool), np.ones(where.size, dtype=bool)
+        found = _Collected.of(where.size)
         load = SIGNS[:, None] * np.stack((forces.N.ravel(), forces.M[0].ravel(), forces.M[1].ravel()))
         near = None if start is None else SIGNS[:, None] * start.reshape(3, -1)
-        rounds = 0
         for number, g in enumerate(self.frame.profile.groups):
             index, stations = self.points(number, where)
             if not index.size:
                 continue
-            parts = g.placed.index
-            section = self.section(number, stations)
-            which = np.array([i in tensionless for i in parts])
+            which = np.array([i in tensionless for i in g.placed.index])
             state = solve_section(
-                section,
+                self.section(number, stations),
                 g.modulus(E)[:, stations],
                 which,
-                _free_of(free, parts, index),
+                _free_of(free, g.placed.index, index),
                 load[:, index],
                 None if near is None else near[:, index],
             )
-            plane[:, index] = SIGNS[:, None] * state.plane
-            flexibility[index] = _inverse(state.matrix)
-            carried[index], converged[index] = state.carried, state.converged
-            rounds = max(rounds, state.rounds)
-        return PointStates(
-            plane.reshape(3, *shape),
-            flexibility.reshape(*shape, 3, 3),
-            carried.reshape(shape),
-            converged.reshape(shape),
-            rounds,
-        )
+            found.take(index, state)
+        return found.states(where.shape)
 
     def tension(self, part: int, stress: Array, planar: bool) -> Array:
         """Stress of a part at the fibres where it may be largest, shape (C, K, n); -inf where the part is not.
@@ -207,6 +192,37 @@ class CrackedSections:
             if index.size:
                 result[index] = largest_shares(self.section(number, stations), load[:, index])
         return result.reshape(where.shape)
+
+
+@dataclass(eq=False)
+class _Collected:
+    """States of all groups put together, flat."""
+
+    plane: Array
+    flexibility: Array
+    carried: Mask
+    converged: Mask
+    rounds: int = 0
+
+    @classmethod
+    def of(cls, points: int) -> _Collected:
+        true = np.ones(points, dtype=bool)
+        return cls(np.full((3, points), np.nan), np.zeros((points, 3, 3)), true, true.copy())
+
+    def take(self, index: NDArray[np.intp], state: SectionState) -> None:
+        self.plane[:, index] = SIGNS[:, None] * state.plane
+        self.flexibility[index] = _inverse(state.matrix)
+        self.carried[index], self.converged[index] = state.carried, state.converged
+        self.rounds = max(self.rounds, state.rounds)
+
+    def states(self, shape: tuple[int, ...]) -> PointStates:
+        return PointStates(
+            self.plane.reshape(3, *shape),
+            self.flexibility.reshape(*shape, 3, 3),
+            self.carried.reshape(shape),
+            self.converged.reshape(shape),
+            self.rounds,
+        )
 
 
 def _free_of(free: Planes, parts: tuple[int, ...], index: NDArray[np.intp]) -> FreePlanes:

@@ -77,7 +77,7 @@ def total_actions(loads: Sequence[Actions], factors: Array) -> Actions:
     """Sum what several atoms put on the grid, with factors; free strain left out."""
     names = ("q", "n", "m", "P", "F", "C")
     sums = {k: sum(f * getattr(a, k) for f, a in zip(factors, loads, strict=True)) for k in names}
-    return Actions(**sums)  # type: ignore[arg-type]
+    return Actions(**sums)
 
 
 def close(
@@ -185,5 +185,3 @@ def slid_after(closed: Closed, slide: Array) -> Array:
     """Shear angle of a closed phase less what its shear forces would give on other moduli, shape (2, K, n)."""
     V, r = closed.response.V, closed.response
     return np.asarray(r.shear - np.stack((V[0] * slide[0] + V[1] * slide[2], V[1] * slide[1] + V[0] * slide[2])))
-
-

@@ -74,7 +74,9 @@ class StripSection:
         gap = np.nan_to_num(np.diff(y, axis=0))
         return np.array([np.where(owner[:-1] == part, gap, 0.0).sum(axis=0) for part in range(len(self.parts))])
 
-    def forces(self, strain: Plane, E: Array, tensionless: frozenset[int], free: Mapping[int, Plane]) -> tuple[float, float]:
+    def forces(
+        self, strain: Plane, E: Array, tensionless: frozenset[int], free: Mapping[int, Plane]
+    ) -> tuple[float, float]:
         """N and M about z = 0 of a strain e0 - k z.
 
         Parameters

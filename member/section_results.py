@@ -29,9 +29,7 @@ Data = dict[str, Any]
 COLUMNS = ("EA", "EI_y", "EI_z", "EI_yz", "GA_z", "z_c", "y_c", "mass", "z_top", "z_bottom")
 
 
-def section_at(
-    member: Member, x: float, side: str = "right", to: str | None = None, stage: str | None = None
-) -> Data:
+def section_at(member: Member, x: float, side: str = "right", to: str | None = None, stage: str | None = None) -> Data:
     """Everything `fishbelly section` tells about the cross-section at x.
 
     Parameters

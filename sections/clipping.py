@@ -92,9 +92,7 @@ def clipped_moments(section: Composition, part: int, line: Array) -> Array:
     return total
 
 
-def clipped_outline(
-    outline: Outline, line: Array, whole: Array | None = None, box: Bounds | None = None
-) -> Array:
+def clipped_outline(outline: Outline, line: Array, whole: Array | None = None, box: Bounds | None = None) -> Array:
     """Moments of the region of an outline where a linear function is below zero.
 
     Parameters

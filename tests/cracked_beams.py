@@ -31,9 +31,7 @@ def at_level(z: float | Law, y: float = 0.0) -> Placing:
 
 def row_of_bars(name: str, count: int, diameter: float, z: float | Law, end: float, y: float = 0.0) -> Part:
     """A row of round bars at a level, 60 mm apart."""
-    return part(
-        name, "bars", end, material="bars", place=at_level(z, y), count=count, diameter=diameter, spacing=0.06
-    )
+    return part(name, "bars", end, material="bars", place=at_level(z, y), count=count, diameter=diameter, spacing=0.06)
 
 
 def strip_of_bars(name: str, area: float, z: float, end: float, width: float = 0.2) -> Part:
@@ -99,5 +97,3 @@ def rectangle_stiffness(b: float, h: float, n_area: float, d: float, E: float) -
     uncracked = b * h**3 / 12.0 + b * h * (h / 2.0 - c) ** 2 + n_area * (d - c) ** 2
     x = (-n_area + math.sqrt(n_area**2 + 2.0 * b * n_area * d)) / b
     return E * uncracked, E * (b * x**3 / 3.0 + n_area * (d - x) ** 2)
-
-

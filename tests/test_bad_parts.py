@@ -223,6 +223,10 @@ BAD = {
         BASE + '[[opening]]\nat = "3 m"\nlength = "100 mm"\n',
         ":11: opening 1, depth: expected a length, but it is missing",
     ),
+    "notch reach by a rule": (
+        BASE + '[[notch]]\nof = "beam"\ndepth = "20 mm"\nfrom = "0 m"\nto = "1 m"\nreach = "EN 1995-1-1"\n',
+        ':16: notch 1, reach: expected a length such as "12 mm", got "EN 1995-1-1"; no published rule for the reach of a notch is in the catalogue: state the length',
+    ),
 }
 
 

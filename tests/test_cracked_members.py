@@ -333,6 +333,7 @@ def test_history_in_continuous_spans_settles() -> None:
 def test_masonry_column_opens_and_its_limit() -> None:
     """No tension at all: a pier under an eccentric thrust, the opening found as a root, and what it cannot carry."""
     brick = Material("brick", 5e9, poisson=0.2, no_tension=True)
+
     def pier(push: float) -> Member:
         return Member(
             4.0,
@@ -342,6 +343,7 @@ def test_masonry_column_opens_and_its_limit() -> None:
             loads=(Axial(4.0, -3e5), Point(4.0, push)),
             shear=False,
         )
+
     N, b, h, E = -3e5, 1.0, 0.6, 5e9
     r = solved(pier(15e3))
     # opens where M = N h / 6; beyond, k = -2 N / (9 b E c^2), c from the force to the edge

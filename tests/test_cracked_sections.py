@@ -196,7 +196,7 @@ def test_uncracked_under_enough_compression() -> None:
 
 
 def test_what_no_tension_cannot_carry() -> None:
-    """Without bars nothing is carried in tension or beyond the edge, and the largest moment is N times the way there."""
+    """Without bars nothing is carried in tension or beyond the edge; the largest moment is N times the way there."""
     section, E = Composition((box(0.3, 0.5),)), np.array([[5e9]])
     forces = np.array([[1e3, 0.0, -1e5, -1e5], [0.0, 1e3, 0.26e5, 0.2e5], [0.0] * 4])
     state = solve_section(

@@ -229,7 +229,7 @@ def test_the_depth_is_drawn_with_the_factor_that_is_stated() -> None:
 
 def test_the_side_view_follows_haunches_notches_and_steps() -> None:
     view = side_view(job("haunched").member)
-    assert view.edges_at(15.0)[0] == pytest.approx(-0.9 - 0.7 - 0.03, abs=1e-6)
+    assert view.edges_at(15.0)[0] == pytest.approx(-0.9 - 0.7 - 0.03 * math.hypot(1.0, 0.35), abs=1e-6)
     assert view.edges_at(5.0) == pytest.approx((-0.9, 0.2), abs=1e-9)
     holed = side_view(job("holed").member)
     assert holed.edges_at(0.2)[1] == pytest.approx(-0.06, abs=1e-9)

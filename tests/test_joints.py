@@ -439,7 +439,7 @@ def test_bearings_that_lift_off_keep_the_worst_joint():
 def test_joints_in_the_table():
     said = deflect_table(deflect(CUT), "metric")
     assert "Joints and cut-offs" in said and "Largest flow along each joint" in said
-    assert "run to" in said and "plate, start" in said
+    assert "run to" in said and "Fastening at the ends" in said
 
 
 # ---- the key

@@ -39,7 +39,9 @@ def strip(area_n: float, depth: float, width: float) -> tuple[Any, float]:
     return rectangle({"width": width * one, "depth": THIN * one}).moved(0.0, -depth), area_n / (width * THIN)
 
 
-def cracked(b: float, h: float, bars: list[tuple[float, float]], M: float, tension: bool = False) -> tuple[float, float]:
+def cracked(
+    b: float, h: float, bars: list[tuple[float, float]], M: float, tension: bool = False
+) -> tuple[float, float]:
     """Strain at the top and curvature for E = 1 of concrete; bars as (n A, depth)."""
     one = np.ones(1)
     concrete = rectangle({"width": b * one, "depth": h * one}).moved(0.0, -0.5 * h)
