@@ -9,6 +9,7 @@ from typing import Any
 from fishbelly.cli import deflect_grids as grids
 from fishbelly.cli.grid import TEXT, Column, Grid, column
 from fishbelly.cli.section_grids import section_parts, section_stresses
+from fishbelly.cli.stage_grids import stage_tables, staged
 
 Row = Mapping[str, Any]
 
@@ -112,6 +113,28 @@ def stress(data: Row) -> Grid:
         which = one.title if one.title in ("max", "min") else which
         columns.append(replace(one, title=f"{one.title} of {which}") if one.title in ("at x", "z") else one)
     return replace(grid, columns=tuple(columns))
+
+
+_STAGE_TITLES = {
+    "Deflection by stage": "Stage deflection",
+    "Share of the bending moment by part": "Stage moment by part",
+    "Stress by part at the end of each stage": "Stage stress",
+    "Supports at the end of each stage": "Stage supports",
+    "Supports taken away": "Supports taken away",
+}
+"""Short titles of the tables of stages, which name worksheets."""
+
+
+def stages(data: Row) -> list[Grid]:
+    """Write what happened stage by stage to all combinations, one grid a question; none for a job without stages."""
+    if not staged(data):
+        return []
+    kinds: dict[str, list[tuple[str, Grid]]] = {}
+    for c in data["combinations"]:
+        noise = grids.noise_of(c, data["length"]).deflection
+        for grid in stage_tables(data, c["name"], noise, across=False):
+            kinds.setdefault(grid.title, []).append((c["name"], grid))
+    return [joined(_STAGE_TITLES[title], pairs) for title, pairs in kinds.items()]
 
 
 def _no_envelope(count: int, patterned: Row | None) -> tuple[Column, ...]:

@@ -7,7 +7,7 @@ import io
 from typing import Any
 
 from fishbelly.cli.cautions import LINE
-from fishbelly.cli.file_grids import OF_STATIONS, section_details, stations
+from fishbelly.cli.file_grids import OF_STATIONS, section_details, stages, stations
 from fishbelly.cli.grid import Grid, unit_of
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
 
@@ -31,7 +31,7 @@ def csv_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
     -------
     bytes
         UTF-8, fields with commas, lines as RFC 4180 has them. The first line is the head: a title and, in
-        brackets, the unit. Numbers have a point and ten figures; what does not exist is empty. The notes
+        brackets, the unit. A job with stages has their tables after that along x, each after an empty line. Numbers have a point and ten figures; what does not exist is empty. The notes
         stand at the end, after an empty line, one a line, each after the word "note".
     """
     style = job.style
@@ -39,6 +39,8 @@ def csv_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
         rows = _section(data, style)
     else:
         rows = _rows(stations(data) if command == "deflect" else stiffness_grid(data, full=True), style)
+    for grid in stages(data) if command == "deflect" else ():
+        rows += [[], *_rows(grid.without_empty(), style)]
     said = [OF_STATIONS] if command == "deflect" else []
     rows += [[], *(["note", _harmless(str(note))] for note in (*data.get("notes", ()), *said, LINE))]
     out = io.StringIO()

@@ -204,4 +204,6 @@ def _member(draft: Draft, top: JobTable) -> Member:
         title=top.title,
         note=top.note,
         inclined=top.inclined,
+        tension_stiffening=top.tension_stiffening,
+        cracks=top.cracks,
     )

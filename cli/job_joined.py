@@ -60,20 +60,10 @@ class JoinedReader(Reader):
     def read(self, value: Any) -> Joined:
         """Read the joint; every key that is wrong is told."""
         if value == "apart":
-            joined = Joined(apart=True)
-        elif not isinstance(value, dict) or not value:
+            return Joined(apart=True)
+        if not isinstance(value, dict) or not value:
             raise ValueFault(Ill((), self.words, as_written(value)))
-        else:
-            joined = _read(value)
-        _refuse_slip(joined, value)
-        return joined
-
-
-def _refuse_slip(joined: Joined, value: Any) -> None:
-    """Refuse what this version cannot compute; nothing else knows that it cannot."""
-    if joined.soft:
-        path = () if joined.apart else (next(k for k in _SLIPS if k in value),)
-        raise ValueFault(Ill(path, "", "not built yet in this version: joints that slip"))
+        return _read(value)
 
 
 def _read(table: Mapping[str, Any]) -> Joined:

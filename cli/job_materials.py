@@ -124,4 +124,4 @@ def own_material(name: str, report: Report, model: type[MaterialTable] = Materia
     strength = None if table.strength is None else Strength(**table.strength)
     if strength is None and base is not None:
         strength = base.strength
-    return Material(name, E, band=band, strength=strength, **values)
+    return Material(name, E, band=band, strength=strength, no_tension=table.no_tension, **values)

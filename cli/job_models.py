@@ -34,11 +34,10 @@ from fishbelly.cli.job_types import (
     ill,
 )
 from fishbelly.cli.quantities import Kind
+from fishbelly.sections.effective_inertia import RULES
 
 NOT_BUILT: dict[str, frozenset[str]] = {
-    "": frozenset({"tension_stiffening", "cracks", "travel", "mass"}),
-    "material": frozenset({"no_tension"}),
-    "support": frozenset({"slip"}),
+    "": frozenset({"travel", "mass"}),
 }
 """Keys of the contract, by table, that this version refuses by name."""
 
@@ -81,6 +80,8 @@ class JobTable(Table):
     rises: Annotated[float, Quantity(Kind.ANGLE)] = 0.0
     shear: Yes = True
     inclined: Annotated[str, Word("along", "cut")] = "along"
+    tension_stiffening: Annotated[str | None, Word(*RULES)] = None
+    cracks: Annotated[str, Word("history", "by combination")] = "history"
     camber: Annotated[Any, Camber()] = None
 
 
@@ -138,6 +139,7 @@ class MaterialTable(Table):
     strength: Annotated[dict[str, float] | None, StrengthReader()] = None
     yield_: MaybeStress = Field(None, alias="yield")
     cracking: MaybeStress = None
+    no_tension: Yes = False
 
 
 class Reach(Quantity):
@@ -211,6 +213,7 @@ class SupportTable(Table):
     sinks: MaybeLength = None
     case: Name = "settlement"
     only: Annotated[str | None, Word("up")] = None
+    slip: Annotated[str | None, Word("free")] = None
     stage: MaybeName = None
     until: MaybeName = None
 

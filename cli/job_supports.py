@@ -108,6 +108,7 @@ def _support(table: SupportTable, name: str, anchor: bool, length: float) -> Sup
         sinks=table.sinks or 0.0,
         case=table.case,
         only_up=table.only == "up",
+        slip_free=table.slip == "free",
         stage=table.stage,
         until=table.until,
     )

@@ -15,6 +15,7 @@ import click
 
 from fishbelly.cli.command_group import LazyGroup
 from fishbelly.cli.last_net import DONE, NOT_MET, WRONG, caught, discard_stdout
+from fishbelly.cli.stage_option import STAGE, known_stage
 from fishbelly.cli.without_option import WITHOUT, beside, known_parts
 
 NOT_BUILT = {
@@ -118,7 +119,6 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
             help="Also write FILE: .csv (the table along x), .json, .xlsx, .png, .svg or .pdf (repeatable).",
         ),
         click.option("--force", is_flag=True, help="Overwrite an existing file."),
-        click.option("--stage", expose_value=False, hidden=True, callback=_refused("--stage")),
     )
     for option in reversed(options):
         command = option(command)
@@ -138,6 +138,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
     help="Side of a break.",
 )
 @click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
+@STAGE
 @WITHOUT
 @_outputs
 def section(
@@ -145,6 +146,7 @@ def section(
     places: tuple[str, ...],
     side: str,
     to: str | None,
+    stage: str | None,
     left_out: tuple[str, ...],
     as_json: bool,
     outputs: tuple[str, ...],
@@ -161,12 +163,13 @@ def section(
     from fishbelly.member.without import section_without
 
     _known_material(to, read.member)
+    known_stage(stage, read.member)
     known_parts(left_out, read.member)
     from fishbelly.cli.patience import patience
 
     with patience("cutting the section"):
-        data = section_at(read.member, at[0], side, to)
-        beside(data, left_out, lambda: section_without(data, read.member, left_out))
+        data = section_at(read.member, at[0], side, to, stage)
+        beside(data, left_out, lambda: section_without(data, read.member, left_out, stage))
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
 
@@ -182,6 +185,7 @@ def section(
 @click.option("--equal", type=click.IntRange(1, 10_000), metavar="N", help="List N equal steps instead.")
 @click.option("--breaks", is_flag=True, help="List the breaks alone.")
 @click.option("--to", metavar="MATERIAL", help="Also give A, I, W and the axis, transformed to one material.")
+@STAGE
 @WITHOUT
 @_outputs
 def stiffness(
@@ -190,6 +194,7 @@ def stiffness(
     equal: int | None,
     breaks: bool,
     to: str | None,
+    stage: str | None,
     left_out: tuple[str, ...],
     as_json: bool,
     outputs: tuple[str, ...],
@@ -204,6 +209,7 @@ def stiffness(
         raise click.UsageError("expected one of --at, --equal and --breaks, got more")
     read, places = _read(job, at, outputs, force)
     _known_material(to, read.member)
+    known_stage(stage, read.member)
     known_parts(left_out, read.member)
     from fishbelly.member.places import places_along
     from fishbelly.member.section_results import stiffness as table
@@ -214,8 +220,8 @@ def stiffness(
     from fishbelly.cli.patience import patience
 
     with patience("sampling the member"):
-        data = table(read.member, places or None, to)
-        beside(data, left_out, lambda: stiffness_without(data, read.member, left_out))
+        data = table(read.member, places or None, to, stage)
+        beside(data, left_out, lambda: stiffness_without(data, read.member, left_out, stage))
     return _finish("stiffness", data, read, as_json, outputs, force, listed=bool(places))
 
 
@@ -238,11 +244,13 @@ def _known_material(to: str | None, member: Any) -> None:
     help='Place to list instead of the default ones, such as "1.2 m" (repeatable).',
 )
 @click.option("--second-order", is_flag=True, expose_value=False, hidden=True, callback=_refused("--second-order"))
+@STAGE
 @WITHOUT
 @_outputs
 def deflect(
     job: str,
     at: tuple[str, ...],
+    stage: str | None,
     left_out: tuple[str, ...],
     as_json: bool,
     outputs: tuple[str, ...],
@@ -253,6 +261,7 @@ def deflect(
     Exit status 1 when a limit is not met. Example: fishbelly deflect my-beam.toml -o result.xlsx
     """
     read, places = _read(job, at, outputs, force)
+    known_stage(stage, read.member)
     known_parts(left_out, read.member)
     from fishbelly.cli.format_quantity import format_value
     from fishbelly.cli.patience import patience
@@ -260,8 +269,8 @@ def deflect(
     from fishbelly.member.without import deflect_without
 
     with patience("solving the member"):
-        data = solve(read.member, places or None)
-        beside(data, left_out, lambda: deflect_without(data, read.member, left_out, places or None))
+        data = solve(read.member, places or None, stage)
+        beside(data, left_out, lambda: deflect_without(data, read.member, left_out, places or None, stage))
     said = [note.say(lambda value, what: format_value(value, what, read.style)) for note in data["notes"]]
     data["notes"] = [*read.warnings, *said]
     status = _finish("deflect", data, read, as_json, outputs, force, listed=bool(places))

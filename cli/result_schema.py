@@ -7,12 +7,12 @@ from fishbelly.cli.job_schema import DIALECT
 from fishbelly.cli.result_schema_joints import joints_schema
 from fishbelly.cli.result_schema_section import twist_schema
 from fishbelly.cli.result_schema_stages import stages_schema
+from fishbelly.cli.result_schema_trade import trade_schema, width_schema
 from fishbelly.cli.result_schema_without import (
     deflect_without_schema,
     section_without_schema,
     stiffness_without_schema,
 )
-from fishbelly.cli.result_schema_trade import trade_schema, width_schema
 from fishbelly.cli.schema_words import Schema
 from fishbelly.cli.schema_words import array as _list
 from fishbelly.cli.schema_words import maybe as _maybe
@@ -57,6 +57,13 @@ _TRANSFORMED = {
 _TO = {"to": _text("material to which the section is transformed"), "E": _number("its modulus", "Pa")}
 
 
+_PRINCIPAL = {
+    "EI_1": _maybe(_number("largest bending stiffness", "N m2")),
+    "EI_2": _maybe(_number("smallest", "N m2")),
+    "angle": _maybe(_number("angle of the first principal axis", "rad")),
+}
+
+
 def _angles(words: str) -> Schema:
     return {"type": "object", "description": words, "additionalProperties": _number("angle", "rad")}
 
@@ -87,11 +94,6 @@ def _section() -> Schema:
     leaning = _angles("angle to the axis of flanges that count along their slope; all: a plate")
     ratios = {"type": "object", "description": "ratio of moduli by material", "additionalProperties": _number("ratio")}
     levels = {"top": _number("level of the section's top", "m"), "bottom": _number("level of its bottom", "m")}
-    principal = {
-        "EI_1": _maybe(_number("largest bending stiffness", "N m2")),
-        "EI_2": _maybe(_number("smallest", "N m2")),
-        "angle": _maybe(_number("angle of the first principal axis", "rad")),
-    }
     shears = {"GA_y": _maybe(_number("shear stiffness sideways", "N")), "GA_z": _GA_Z}
     return _object(
         "The cross-section at one place.",
@@ -102,7 +104,7 @@ def _section() -> Schema:
         | shears
         | _CENTROID
         | {
-            "principal": _object("principal axes", principal),
+            "principal": _object("principal axes", _PRINCIPAL),
             "parts": _list("parts there", _object("a part", part, {"inclined": leaning} | width_schema())),
             "transformed": _object(
                 "properties transformed to one material", _TO | _TRANSFORMED | {"n": ratios} | levels

@@ -11,6 +11,7 @@ from fishbelly.cli.cautions import LINE
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
 from fishbelly.cli.joint_grids import fastening, joint_flows, joints
+from fishbelly.cli.stage_grids import stage_tables, staged, story
 from fishbelly.cli.station_choice import chosen
 from fishbelly.cli.text_table import clean, fits, paragraph, render, shown_width
 from fishbelly.cli.without_grids import deflect_beside
@@ -45,11 +46,14 @@ def deflect_table(data: Row, style: str, listed: bool = False) -> str:
         Lines of at most 80 columns.
     """
     lines = paragraph(data["title"]) if data.get("title") else []
-    lines += [f"Deflection of a member of length {_at(data['length'], style)}", "", *paragraph(AXES), ""]
+    when = f", at the end of stage {data['stage']}" if data.get("stage") else ""
+    lines += [*paragraph(f"Deflection of a member of length {_at(data['length'], style)}{when}"), ""]
+    lines += [*paragraph(AXES), ""]
     if len(data["combinations"]) > 1:
         lines += [*_headed(grids.summary(data), style), ""]
     for k, combination in enumerate(data["combinations"]):
         lines += _combination(combination, data["length"], style, listed, data["combinations"][:k])
+    lines += _stages(data, style)
     for grid in deflect_beside(data):
         lines += [*_headed(grid, style), ""]
     if data.get("notes"):
@@ -88,6 +92,23 @@ def _combination(c: Row, length: float, style: str, listed: bool, earlier: Seque
     if c.get("cross_check") is not None:
         lines += [*_second_method(c["cross_check"], noise, style), ""]
     return [*lines, *_stations(c, noise, style, listed), ""]
+
+
+def _stages(data: Row, style: str) -> list[str]:
+    """Tell what happened stage by stage, then to every combination."""
+    if not staged(data):
+        return []
+    lines = ["Stage by stage", "--------------", ""]
+    for number, stage in enumerate(data["stages"], 1):
+        lines += paragraph(story(stage, number), "  ", "    ")
+    lines.append("")
+    several = len(data["combinations"]) > 1
+    for k, c in enumerate(data["combinations"]):
+        if several:
+            lines += [*paragraph(f"Combination {c['name']}, stage by stage"), ""]
+        for grid in stage_tables(data, c["name"], grids.noise_of(c, data["length"]).deflection):
+            lines += [*_headed(replace(grid, note="") if k else grid, style), ""]
+    return lines
 
 
 def _sources(c: Row, earlier: Sequence[Row]) -> list[str]:

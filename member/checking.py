@@ -24,6 +24,7 @@ from fishbelly.member.draft import (
     repeated_names,
     unknown_names,
 )
+from fishbelly.sections.effective_inertia import RULES
 
 if TYPE_CHECKING:
     from fishbelly.member.description import Member
@@ -94,6 +95,10 @@ def _all(draft: Draft) -> Iterator[Problem]:
         return
     if abs(draft.rises) > 0.5 * math.pi * (1.0 + 1e-12):
         yield Problem(("rises",), "an angle from -90 to 90 deg", f"{math.degrees(draft.rises):g} deg")
+    if draft.tension_stiffening is not None and draft.tension_stiffening not in RULES:
+        yield Problem(("tension_stiffening",), f"one of {', '.join(RULES)}", repr(draft.tension_stiffening))
+    if draft.cracks not in ("history", "by combination"):
+        yield Problem(("cracks",), '"history" or "by combination"', repr(draft.cracks))
     if not draft.parts:
         yield Problem(("part",), "at least one part", "")
     elif all(p is not None and p.cuts for p in draft.parts):

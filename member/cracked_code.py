@@ -74,7 +74,9 @@ class OneValue:
     rounds: int
 
 
-def one_value(analysis: Analysis, combination: Combination, rule: str, band: str = "nominal") -> OneValue:
+def one_value(
+    analysis: Analysis, combination: Combination, rule: str, band: str = "nominal", shear: bool | None = None
+) -> OneValue:
     """Response of a combination with I_e of ACI 318, one for each span.
 
     Moments in the span are those of the member with these stiffnesses, brought into agreement. Free strain acts on the
@@ -90,6 +92,8 @@ def one_value(analysis: Analysis, combination: Combination, rule: str, band: str
         Branson's or Bischoff's form.
     band : str
         Which end of the materials' bands of E.
+    shear : bool, optional
+        Whether shear deformation counts; default as the member says.
 
     Raises
     ------
@@ -103,7 +107,8 @@ def one_value(analysis: Analysis, combination: Combination, rule: str, band: str
     if not cracking_parts(analysis.member):
         raise CannotCompute(f"{rule} wants the tensile stress at which concrete cracks: give its material `cracking`")
     combined = analysis.combine(combination, band)
-    work = _Work(analysis, combined.shares, combined.lifted, rule)
+    sheared = analysis.member.shear if shear is None else shear
+    work = _Work(analysis, combined.shares, combined.lifted, rule, sheared)
     total, size = combined.total, np.inf
     for count in range(1, MOST_ROUNDS + 1):
         before, values = total, [work.value(span, total) for span in spans(analysis.member, combined.lifted)]
@@ -120,6 +125,7 @@ class _Work:
     shares: tuple[Share, ...]
     lifted: frozenset[str]
     rule: str
+    shear: bool
 
     def value(self, span: Span, total: Response) -> SpanValue:
         """Effective second moment of a span under the moments of a response."""
@@ -204,7 +210,7 @@ class _Work:
         total: Response | None = None
         for share in self.shares:
             moduli = a.moduli(share.key)
-            law = ElasticLaw.of(a.frame, moduli, a.planes, a.member.shear)
+            law = ElasticLaw.of(a.frame, moduli, a.planes, self.shear)
             bend = law.bend.copy()
             for value in values:
                 first, stop = a.profile.panels.border(value.span.start), a.profile.panels.border(value.span.end)

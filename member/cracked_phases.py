@@ -55,12 +55,15 @@ class Phases:
         Bearings that have lifted off.
     rule : str or None
         Rule of tension stiffening along x.
+    shear : bool
+        Whether shear deformation counts, where the member says so.
     """
 
     analysis: Analysis
     shares: tuple[Share, ...]
     lifted: frozenset[str]
     rule: str | None = None
+    shear: bool = True
     sections: CrackedSections = field(init=False, repr=False)
 
     def __post_init__(self) -> None:
@@ -110,7 +113,7 @@ class Phases:
     def slide(self, share: Share) -> Array:
         """Shear flexibility of a phase: that of the uncracked section, shape (3, K, n)."""
         a = self.analysis
-        if not a.member.shear:
+        if not (a.member.shear and self.shear):
             return np.zeros((3, *a.profile.panels.x.shape))
         return ElasticLaw.of(a.frame, a.moduli(share.key), a.planes, True).slide
 

@@ -25,6 +25,7 @@ from fishbelly.member.faults import CannotCompute, NoStiffness
 from fishbelly.member.forces import Forces
 from fishbelly.member.panels import POINTS
 from fishbelly.member.response import Response
+from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.sections.chebyshev import rule
 
 Array = NDArray[np.float64]
@@ -153,10 +154,21 @@ def cracked_response(
     return run.go()
 
 
+def bending_alone(r: CrackedResponse, rule: str | None) -> Response:
+    """Response of the same cracks, rigid in shear."""
+    if not r.phases:
+        return r.analysis.superposed(r.combined.shares, r.combined.lifted, shear=False)
+    phases = Phases(r.analysis, r.combined.shares, r.combined.lifted, rule, shear=False)
+    starts: list[tuple[Forces, LawState | None]] = [(_carried_over(r.analysis, s), s.closed.state) for s in r.phases]
+    return phases.solve(r.phases[-1].law.mask, starts)[-1].closed.response
+
+
 def _built(analysis: Analysis, combination: Combination) -> None:
     """See that nothing is asked for that has to be followed through cracking and is not."""
     if len(analysis.views) > 1:
         raise CannotCompute("stages together with parts that crack are not built: leave out one of the two")
+    if has_soft_joints(analysis.member):
+        raise CannotCompute("joints that slip together with parts that crack are not built: leave out one of the two")
     for atom in analysis.atoms:
         if atom.span is not None and combination.factors.get(atom.case, 0.0):
             raise CannotCompute("pattern loads together with parts that crack are not built: give every arrangement")

@@ -162,6 +162,14 @@ class CrackedSections:
         planar : bool
             Bending in the vertical plane alone.
         """
+        values = self.fibres(part, stress, planar)[0]
+        return np.where(np.isnan(values), -np.inf, values)
+
+    def fibres(self, part: int, stress: Array, planar: bool) -> Array:
+        """Stress, y and z of the fibres where a part's stress may be largest, shape (3, C, K, n); NaN without the part.
+
+        Parameters as in `tension`.
+        """
         everywhere = np.ones(stress.shape[1:], dtype=bool)
         flat = stress.reshape(3, -1)
         line = self.frame.line
@@ -173,15 +181,15 @@ class CrackedSections:
             k = g.placed.index.index(part)
             y, z = (v[:, stations] for v in fibres(g.composition, k, planar))
             v = flat[:, index]
-            values = v[0] + v[1] * (z - line[0]) + v[2] * (-y - line[1])
             if not planar:
-                values = np.concatenate((values, _on_arcs(arc_data(g.composition, k)[:, :, stations], v, line)))
-            rows.append((index, np.where(np.isnan(values), -np.inf, values)))
-        count = max((values.shape[0] for _, values in rows), default=1)
-        result = np.full((count, flat.shape[1]), -np.inf)
-        for index, values in rows:
-            result[: values.shape[0], index] = values
-        return result.reshape(count, *stress.shape[1:])
+                more = _on_arcs(arc_data(g.composition, k)[:, :, stations], v)
+                y, z = np.concatenate((y, more[0])), np.concatenate((z, more[1]))
+            rows.append((index, np.stack((v[0] + v[1] * (z - line[0]) + v[2] * (-y - line[1]), y, z))))
+        count = max((found.shape[1] for _, found in rows), default=1)
+        result = np.full((3, count, flat.shape[1]), np.nan)
+        for index, found in rows:
+            result[:, : found.shape[1], index] = found
+        return result.reshape(3, count, *stress.shape[1:])
 
     def shares_carried(self, where: Mask, forces: Forces) -> Array:
         """How many times its moment a section without tension can carry at its axial force; inf elsewhere, (K, n)."""
@@ -243,12 +251,11 @@ def _inverse(matrix: Array) -> Array:
     return np.asarray(np.linalg.inv(scaled) / both * (SIGNS[:, None] * SIGNS))
 
 
-def _on_arcs(arcs: Array, v: Array, line: Array) -> Array:
-    """Stress at the point of each outward arc where a plane is largest, shape (E, S); arcs of shape (5, E, S)."""
+def _on_arcs(arcs: Array, v: Array) -> tuple[Array, Array]:
+    """Point y, z of each outward arc where a stress plane is largest, each (E, S); arcs of shape (5, E, S)."""
     y_c, z_c, radius, start, turn = arcs
     angle = np.arctan2(v[1], -v[2])
     passed = np.mod(angle - start, 2.0 * np.pi)
     nearest = np.where(passed - turn < 2.0 * np.pi - passed, start + turn, start)
     angle = np.where(passed <= turn, angle, nearest)
-    y, z = y_c + radius * np.cos(angle), z_c + radius * np.sin(angle)
-    return np.asarray(v[0] + v[1] * (z - line[0]) + v[2] * (-y - line[1]))
+    return y_c + radius * np.cos(angle), z_c + radius * np.sin(angle)

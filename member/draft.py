@@ -95,7 +95,7 @@ class Draft:
         Names that are given, by kind: "part", "material", "station", "combination", "case".
     references : sequence of Reference
         Places that name something.
-    rises, shear, camber
+    rises, shear, camber, tension_stiffening, cracks
         As in `Member`.
     """
 
@@ -117,6 +117,8 @@ class Draft:
     rises: float = 0.0
     shear: bool = True
     camber: float | Law | None = None
+    tension_stiffening: str | None = None
+    cracks: str = "history"
 
     @property
     def slack(self) -> float:

@@ -12,6 +12,7 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
+from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_data, cracked_stresses, pieces_of
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Limit, Member
 from fishbelly.member.extremes import Extreme, largest, values_at
@@ -23,6 +24,7 @@ from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading, loadings
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.places import default_places
+from fishbelly.member.response import Response
 from fishbelly.member.spans import Span, spans
 from fishbelly.member.stage_results import since, stage_rows
 from fishbelly.member.stage_view import stage_number
@@ -65,7 +67,10 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
     upto = number if stage is not None and number < len(member.stages) - 1 else None
     analysis = Analysis.of(member, wanted or ())
     _in_range(analysis)
-    combinations = [_combination(analysis, analysis.combine(c, upto=upto), wanted) for c in member.combinations]
+    combinations = [
+        _combination(analysis, analysis.combine(c, upto=upto), wanted) if case is None else _cracked(case, wanted)
+        for c, case in zip(member.combinations, cracked_cases(analysis), strict=True)
+    ]
     data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "length": member.length}
     if stage is not None:
         data["stage"] = stage
@@ -109,13 +114,38 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
     """Results of one combination or arrangement; `check` asks the second method too."""
     loading = loadings(analysis, combined)
     p = pieces(analysis, loading)
+    told = deflections(analysis, combined, p)
+    data = _told(analysis, combined, p, told, part_stresses(analysis, loading), wanted)
+    data["joints"] = joints(analysis, combined, loading, p)
+    data["cross_check"] = cross_check(analysis, combined, told) if check else None
+    if combined.patterns:
+        data["envelope"] = envelope_rows(analysis, p, data["stations"])
+    return data
+
+
+def _cracked(case: CrackedCase, wanted: list[float] | None) -> Data:
+    """Results of one combination that cracks the member."""
+    p = pieces_of(case)
+    told = deflections(case.analysis, case.chosen, p, case.bent)
+    data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted)
+    return data | {"cracked": cracked_data(case)}
+
+
+def _told(
+    analysis: Analysis,
+    combined: Combined,
+    p: Pieces,
+    deflection: Data,
+    stresses: Sequence[PartStress],
+    wanted: list[float] | None,
+) -> Data:
+    """What is told of every combination."""
     apexes = judge(analysis.profile.panels, combined.total)
-    stresses = part_stresses(analysis, loading)
     checks = _checks(analysis, combined, p, stresses)
     data: Data = {
         "name": combined.combination.name,
         "for": combined.combination.purpose,
-        "deflection": deflections(analysis, combined, p),
+        "deflection": deflection,
         "moment": _moments(analysis, p),
         "shear": _shears(analysis, p),
         "supports": _supports(analysis, combined, p),
@@ -123,20 +153,17 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
         "spans": _spans(analysis, combined, p),
         "checks": [_check(c) for c in checks],
         "stress": [_stress(s) for s in stresses],
-        "joints": joints(analysis, combined, loading, p),
+        "joints": [],
+        "cross_check": None,
+        "stations": station_rows(analysis, p, apexes, wanted),
     }
-    data["cross_check"] = cross_check(analysis, combined, data["deflection"]) if check else None
-    stations = station_rows(analysis, p, apexes, wanted)
-    data["stations"] = stations
-    if combined.patterns:
-        data["envelope"] = envelope_rows(analysis, p, stations)
     if combined.lifted:
         data["lifted"] = sorted(combined.lifted)
     return data
 
 
-def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
-    """Largest deflections down, up and across."""
+def deflections(analysis: Analysis, combined: Combined, p: Pieces, bent: Response | None = None) -> Data:
+    """Largest deflections down, up and across; `bent` is the response without shear, where it is known already."""
     panels = analysis.profile.panels
     down, up = largest(panels, p.deflection[0]), largest(panels, -p.deflection[0])
     aside = [largest(panels, s * p.deflection[1]) for s in (1.0, -1.0)]
@@ -144,13 +171,13 @@ def deflections(analysis: Analysis, combined: Combined, p: Pieces) -> Data:
     sign = 1.0 if across is aside[0] else -1.0
     size = max(abs(down.value), abs(up.value), abs(across.value), analysis.round_off(combined.total) / NEGLIGIBLE)
     return {
-        "down": _shear_part(analysis, combined, down) if down.value > NEGLIGIBLE * size else None,
+        "down": _shear_part(analysis, combined, down, bent) if down.value > NEGLIGIBLE * size else None,
         "up": {"value": up.value, "at": up.at} if up.value > NEGLIGIBLE * size else None,
         "across": {"value": sign * across.value, "at": across.at} if across.value > NEGLIGIBLE * size else None,
     }
 
 
-def _shear_part(analysis: Analysis, combined: Combined, e: Extreme) -> Data:
+def _shear_part(analysis: Analysis, combined: Combined, e: Extreme, bent: Response | None = None) -> Data:
     """Largest deflection down with the part that shear deformation has in it."""
     if not analysis.member.shear:
         return {"value": e.value, "at": e.at, "shear_part": 0.0}
@@ -158,10 +185,11 @@ def _shear_part(analysis: Analysis, combined: Combined, e: Extreme) -> Data:
     for mask, on in zip(combined.patterns, e.on, strict=True):
         if not on:
             off |= mask
-    stiff = analysis.superposed(combined.shares, combined.lifted, shear=False, off=off, upto=combined.upto)
+    if bent is None:
+        bent = analysis.superposed(combined.shares, combined.lifted, shear=False, off=off, upto=combined.upto)
     side = "left" if e.at >= analysis.member.length else "right"
-    bent = values_at(analysis.profile.panels, stiff.deflection[0], np.array([e.at]), side)
-    return {"value": e.value, "at": e.at, "shear_part": e.value - float(bent[0])}
+    alone = values_at(analysis.profile.panels, bent.deflection[0], np.array([e.at]), side)
+    return {"value": e.value, "at": e.at, "shear_part": e.value - float(alone[0])}
 
 
 def _both(panels: Panels, field: Array) -> tuple[Extreme, Extreme, float]:

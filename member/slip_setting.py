@@ -15,6 +15,7 @@ from fishbelly.member.stage_view import StageView, stage_views
 
 if TYPE_CHECKING:
     from fishbelly.member.section_law import ElasticLaw
+    from fishbelly.member.slip_layers import Layers
     from fishbelly.member.slip_tie import Tie
 
 Array = NDArray[np.float64]
@@ -47,7 +48,7 @@ def tied(
     absent : collection of str
         Supports that hold nothing.
     """
-    from fishbelly.member.slip_grid import fastener_springs, pitch_matters
+    from fishbelly.member.slip_grid import fastener_springs
     from fishbelly.member.slip_law import SlipLaw
     from fishbelly.member.slip_layers import joint_stiffness, layers_of
     from fishbelly.member.slip_tie import Tie, stage_joint_creep
@@ -58,15 +59,24 @@ def tied(
     creep = np.zeros(len(layers.joints)) if stage is None else stage_joint_creep(layers, stage.creep)
     chi = 1.0 if stage is None else stage.ageing
     stiffness = {"now": now, "softened": now, "aged": now / (1.0 + chi * creep)}
-    short = joint_stiffness(layers)
-    single = pitch_matters(SlipLaw.of(frame, frame.short, short, 1, False), short)
+    single = one_by_one(frame, layers)
 
     def law(moduli: Moduli, what: str) -> ElasticLaw:
         smeared, springs = fastener_springs(frame, layers, stiffness[what], single)
         # the two laws are used alike: strains under forces, shear flexibility
         return cast("ElasticLaw", SlipLaw.of(frame, moduli, smeared, planes, shear, springs, absent))
 
-    return Tie(layers, stiffness, creep), law
+    return Tie(layers, stiffness, creep, fastener_springs(frame, layers, now, single)[1]), law
+
+
+def one_by_one(frame: Frame, layers: Layers) -> NDArray[np.bool_]:
+    """Whether the fasteners of each joint are taken one by one in a stage, as their pitch matters, shape (J,)."""
+    from fishbelly.member.slip_grid import pitch_matters
+    from fishbelly.member.slip_law import SlipLaw
+    from fishbelly.member.slip_layers import joint_stiffness
+
+    short = joint_stiffness(layers)
+    return pitch_matters(SlipLaw.of(frame, frame.short, short, 1, False), short)
 
 
 def joint_borders(member: Member, more: tuple[float, ...]) -> tuple[float, ...]:

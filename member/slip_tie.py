@@ -45,6 +45,23 @@ class Layered:
         """Strain of a part on the analysis line, shape (A, K, n)."""
         return np.asarray(self.strain[self.layers.of(part)])
 
+    @property
+    def locked(self) -> LockedIn:
+        """What it leaves in the joints."""
+        return LockedIn(self.flow, self.fasteners)
+
+
+@dataclass(frozen=True, eq=False)
+class LockedIn:
+    """What joints carry that creeps: flow, shape (J, A, K, n) [N/m], and fasteners, shape (J, A, K + 1) [N]."""
+
+    flow: Array
+    fasteners: Array
+
+    def plus(self, step: Layered) -> LockedIn:
+        """Return the sum with what a step has left in them."""
+        return LockedIn(self.flow + step.flow, self.fasteners + step.fasteners)
+
 
 @dataclass(frozen=True, eq=False)
 class Tie:
@@ -58,11 +75,14 @@ class Tie:
         Stiffness of the joints per length, single fasteners counted [N/m2]: "now" and, where creep runs off, "aged".
     creep : ndarray, shape (J,)
         Creep factor of the joints that runs off in the stage.
+    springs : ndarray, shape (K + 1, J)
+        Stiffness "now" of fasteners that are taken one by one, at the borders of the grid [N/m].
     """
 
     layers: Layers
     stiffness: Mapping[str, Array]
     creep: Array = field(default_factory=lambda: np.zeros(0))
+    springs: Array | None = None
 
     def held(self, each: Sequence[tuple[int, Forces]], there: Collection[int], shape: tuple[int, ...]) -> LayeredForces:
         """Forces given part by part in their layers; those of a layer that has gone act on the one it stood on."""
@@ -82,12 +102,17 @@ class Tie:
         """Forces that hold the free strain of some atoms back, layer by layer."""
         return [layered_free_forces(frame, self.layers, a.free, moduli) for a in loads]
 
-    def crept(self, held: Forces, flow: Array) -> Forces:
-        """Add the slip that creeps under locked-in flows, shape (J, A, K, n)."""
+    def crept(self, held: Forces, locked: LockedIn) -> Forces:
+        """Add the slip that creeps under what joints have locked in: flow along them, force of single fasteners."""
         assert isinstance(held, LayeredForces)
         k = self.stiffness["now"]
         share = self.creep / np.where(k > 0.0, k, np.inf)
-        slips = share[:, None, None, None] * flow
+        slips = share[:, None, None, None] * locked.flow
+        if self.springs is not None and np.any(self.springs):
+            # a fastener stands at the left border of a panel, and its slip is looked at there alone
+            springs = np.where(self.springs > 0.0, self.springs, np.inf)[:-1].T
+            single = (self.creep[:, None] / springs)[:, None] * locked.fasteners[..., :-1]
+            slips = np.where(np.any(self.springs, axis=0)[:, None, None, None], single[..., None], slips)
         return LayeredForces(held.N, held.V, held.M, held.layers, slips)
 
     def layered(self, strains: Strains, which: Sequence[int], count: int) -> Layered:

@@ -26,7 +26,7 @@ from fishbelly.member.stage_view import StageView
 
 if TYPE_CHECKING:
     from fishbelly.member.nodes import Layout
-    from fishbelly.member.slip_tie import Layered, Tie
+    from fishbelly.member.slip_tie import Layered, LockedIn, Tie
 
 Array = NDArray[np.float64]
 Planes = dict[int, Array]
@@ -138,7 +138,7 @@ class _Record:
     stress: Planes = field(default_factory=dict)
     creeping: Planes = field(default_factory=dict)
     creeping_shear: Array | None = None
-    creeping_flow: Array | None = None
+    creeping_slip: LockedIn | None = None
 
     def added(self, steps: list[Step]) -> list[Step]:
         """Take steps in, and return them."""
@@ -156,8 +156,8 @@ class _Record:
             V = step.response.V
             self.creeping_shear = V if self.creeping_shear is None else self.creeping_shear + V
             if step.layered is not None:
-                flow = step.layered.flow
-                self.creeping_flow = flow if self.creeping_flow is None else self.creeping_flow + flow
+                before = self.creeping_slip
+                self.creeping_slip = step.layered.locked if before is None else before.plus(step.layered)
 
 
 def _accumulate(total: Planes, more: Mapping[int, Array]) -> None:
@@ -363,8 +363,8 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int) -> list[S
     if record.creeping_shear is not None and np.any(law.slide):
         soft, now = s.law(s.softened, "softened").slide, s.law(s.moduli, "now").slide
         held = held.plus(sheared(law.slide, soft - now, record.creeping_shear))
-    if s.tie is not None and record.creeping_flow is not None:
-        held = s.tie.crept(held, record.creeping_flow)
+    if s.tie is not None and record.creeping_slip is not None:
+        held = s.tie.crept(held, record.creeping_slip)
     if not held.any:
         return []
     none = [_reversed(s, record.response.reactions[k], frozenset()) for k in which]

@@ -108,7 +108,7 @@ def _stage(s: Stage, cases: set[str]) -> Stage:
     return replace(s, cases=tuple(c for c in s.cases if c in cases))
 
 
-def section_without(data: Data, member: Member, names: Sequence[str]) -> Data:
+def section_without(data: Data, member: Member, names: Sequence[str], stage: str | None = None) -> Data:
     """Set the section without some parts beside the one at hand.
 
     Parameters
@@ -119,6 +119,8 @@ def section_without(data: Data, member: Member, names: Sequence[str]) -> Data:
         The whole member.
     names : sequence of str
         Parts left out.
+    stage : str, optional
+        Stage that was asked for.
 
     Returns
     -------
@@ -128,14 +130,14 @@ def section_without(data: Data, member: Member, names: Sequence[str]) -> Data:
     from fishbelly.member.section_results import section_at
 
     try:
-        bare = section_at(without(member, names), data["x"], data["side"], None)
+        bare = section_at(without(member, names), data["x"], data["side"], None, stage)
     except CannotCompute as error:
         raise CannotCompute(f"without {', '.join(names)}: {error}") from None
     kept = {key: bare[key] for key in ("EA", "EI_y", "EI_z", "EI_yz", "GA_y", "GA_z", "y_c", "z_c", "mass")}
     return {"parts": list(names)} | kept | {"gain": _gains(data, bare)}
 
 
-def stiffness_without(data: Data, member: Member, names: Sequence[str]) -> Data:
+def stiffness_without(data: Data, member: Member, names: Sequence[str], stage: str | None = None) -> Data:
     """Set the stiffness without some parts beside that along the member, at the same stations.
 
     Parameters
@@ -146,6 +148,8 @@ def stiffness_without(data: Data, member: Member, names: Sequence[str]) -> Data:
         The whole member.
     names : sequence of str
         Parts left out.
+    stage : str, optional
+        Stage that was asked for.
     """
     from fishbelly.member.section_results import COLUMNS, profile_at
 
@@ -155,7 +159,7 @@ def stiffness_without(data: Data, member: Member, names: Sequence[str]) -> Data:
         "left" if (k < last and places[k + 1] == x) or x >= member.length else "right" for k, x in enumerate(places)
     ]
     try:
-        table = profile_at(without(member, names), np.array(places), sides)
+        table = profile_at(without(member, names), np.array(places), sides, stage)
     except CannotCompute as error:
         raise CannotCompute(f"without {', '.join(names)}: {error}") from None
     rows = []
@@ -169,7 +173,13 @@ def _gains(whole: Data, bare: Data) -> dict[str, float | None]:
     return {key: _ratio(whole[key], bare[key]) for key in STIFFNESSES}
 
 
-def deflect_without(data: Data, member: Member, names: Sequence[str], at: Iterable[float] | None = None) -> Data:
+def deflect_without(
+    data: Data,
+    member: Member,
+    names: Sequence[str],
+    at: Iterable[float] | None = None,
+    stage: str | None = None,
+) -> Data:
     """Set deflections and stresses without some parts beside those with them.
 
     Parameters
@@ -182,6 +192,8 @@ def deflect_without(data: Data, member: Member, names: Sequence[str], at: Iterab
         Parts left out.
     at : iterable of float, optional
         Places that were asked for [m].
+    stage : str, optional
+        Stage that was asked for.
 
     Returns
     -------
@@ -199,7 +211,7 @@ def deflect_without(data: Data, member: Member, names: Sequence[str], at: Iterab
     from fishbelly.member.results import deflect
 
     try:
-        bare = deflect(without(member, names), at)
+        bare = deflect(without(member, names), at, stage)
     except CannotCompute as error:
         raise CannotCompute(f"without {', '.join(names)}: {error}") from None
     rows = []

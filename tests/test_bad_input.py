@@ -56,13 +56,9 @@ BAD = {
     ),
     # not built yet
     "stage": (BASE + '[[stage]]\nname = "a"\n', ":11: [[stage]]: not built yet in this version"),
-    "joined": (
-        BASE + 'joined = "apart"\n',
-        ':11: part "beam", joined: not built yet in this version: joints that slip',
-    ),
-    "no tension": (
-        BASE.replace("poisson", "no_tension = true\npoisson"),
-        ':4: material "steel": key "no_tension": not built yet in this version',
+    "rule of tension stiffening": (
+        'tension_stiffening = "EN 1992"\n' + BASE,
+        ':1: tension_stiffening: expected one of "EN 1992-1-1", "ACI 318-14", "ACI 318-19", got "EN 1992"',
     ),
     # materials
     "unknown material": (

@@ -1,0 +1,233 @@
+"""What results tell of combinations that crack a member: the chosen response, and others beside it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.cracked_code import OneValue, SpanValue, one_value
+from fishbelly.member.cracked_history import cracked_responses
+from fishbelly.member.cracked_response import CrackedResponse, bending_alone, cracked_response, may_crack
+from fishbelly.member.cracked_sections import no_tension_parts
+from fishbelly.member.extremes import largest
+from fishbelly.member.faults import CannotCompute
+from fishbelly.member.pieces import Pieces
+from fishbelly.member.response import Response
+from fishbelly.member.slip_layers import has_soft_joints
+from fishbelly.member.stresses import PartStress, StressPeak
+from fishbelly.sections.effective_inertia import EN
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+NEGLIGIBLE = 1e-9
+
+
+@dataclass(frozen=True, eq=False)
+class CrackedCase:
+    """One combination that cracks the member.
+
+    Parameters
+    ----------
+    along : CrackedResponse
+        Section by section along x, by the rule of tension stiffening.
+    rule : str or None
+        The rule.
+    one : OneValue or None
+        By the code's one effective stiffness for each span, where the rule is one of ACI 318.
+    chosen : Combined
+        The combination with the response that results are of: the code's one value by ACI 318, else along x.
+    bent : Response
+        The same, rigid in shear.
+    everywhere : Response or None
+        Cracked everywhere, without tension stiffening; None where that cannot be carried.
+    """
+
+    along: CrackedResponse
+    rule: str | None
+    one: OneValue | None
+    chosen: Combined
+    bent: Response
+    everywhere: CrackedResponse | None
+
+    @property
+    def analysis(self) -> Analysis:
+        """The grid, with borders where cracks begin."""
+        return self.along.analysis
+
+
+def cracked_cases(analysis: Analysis) -> tuple[CrackedCase | None, ...]:
+    """Every combination of a member that cracks it; None for those that do not.
+
+    Stages, pattern loads and joints that slip are not followed through cracking: without a part that never carries
+    tension and without a rule of tension stiffening the member then counts as uncracked, and a note says so.
+
+    Raises
+    ------
+    CannotCompute
+        When the numbers cannot be had.
+    """
+    member = analysis.member
+    none: tuple[CrackedCase | None, ...] = (None,) * len(member.combinations)
+    if not may_crack(member) or (_unbuilt(analysis) and not _asked(analysis)):
+        return none
+    rule = member.tension_stiffening
+    found = cracked_responses(analysis, member.combinations, rule)
+    return tuple(_case(r, rule) if r.phases else None for r in found)
+
+
+def _asked(analysis: Analysis) -> bool:
+    member = analysis.member
+    return bool(no_tension_parts(member)) or member.tension_stiffening is not None
+
+
+def _unbuilt(analysis: Analysis) -> bool:
+    return len(analysis.views) > 1 or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
+
+
+def _case(r: CrackedResponse, rule: str | None) -> CrackedCase:
+    combination = r.combined.combination
+    everywhere: CrackedResponse | None
+    try:
+        everywhere = cracked_response(r.analysis, combination, everywhere=True)
+    except CannotCompute:
+        everywhere = None
+    if rule in (None, EN):
+        return CrackedCase(r, rule, None, r.combined, bending_alone(r, rule), everywhere)
+    assert rule is not None
+    one = one_value(r.analysis, combination, rule)
+    chosen = Combined(
+        combination, r.combined.shares, r.combined.lifted, r.combined.patterns, one.response, r.combined.upto
+    )
+    return CrackedCase(r, rule, one, chosen, one_value(r.analysis, combination, rule, shear=False).response, everywhere)
+
+
+def pieces_of(case: CrackedCase) -> Pieces:
+    """Fields of the chosen response; it has no pattern loads."""
+    r, frame = case.chosen.total, case.analysis.frame
+    one = (slice(None), None)
+    return Pieces(
+        r.N[None],
+        r.V[0][None],
+        (r.M[0] + r.N * frame.centre[0])[None],
+        (r.M[0] - r.N * frame.line[0])[None],
+        r.rotation[one],
+        r.shear[one],
+        r.deflection[one],
+        r.reactions[None],
+    )
+
+
+def cracked_stresses(case: CrackedCase) -> tuple[PartStress, ...]:
+    """Extreme stresses of every part: at a crack where the member is cracked, without tension stiffening."""
+    solved = case.along.phases[-1]
+    law, state = solved.law, solved.closed.state
+    analysis, mask = case.analysis, solved.law.mask
+    brittle = law.never | frozenset(law.cracking)
+    found = []
+    for index, part in enumerate(analysis.member.parts):
+        if part.cuts or part.material is None:
+            continue
+        first = law.stress(index, state.uncracked.plane, 0)
+        second = np.where(np.isfinite(state.cracked.plane), state.cracked.plane, 0.0)
+        plane = np.where(mask, law.stress(index, second, 1), first)
+        none = (mask if index in brittle else np.zeros_like(mask)) | (index in law.never)
+        peaks = [_peak(case, index, plane, none, sign) for sign in (1.0, -1.0)]
+        found.append(PartStress(part.name, *peaks))
+    size = max((abs(p.value) for s in found for p in (s.highest, s.lowest) if p is not None), default=0.0)
+    return tuple(PartStress(s.part, _told(s.highest, size), _told(s.lowest, size)) for s in found)
+
+
+def _told(peak: StressPeak | None, size: float) -> StressPeak | None:
+    return None if peak is None or abs(peak.value) <= NEGLIGIBLE * size else peak
+
+
+def _peak(case: CrackedCase, index: int, plane: Array, none: NDArray[np.bool_], sign: float) -> StressPeak | None:
+    """Largest of sign times stress, no tension where there is `none`."""
+    law, panels = case.along.phases[-1].law, case.analysis.profile.panels
+    values, y, z = law.sections.fibres(index, sign * plane, law.planar)
+    stress = np.where(none, np.minimum(sign * values, 0.0), sign * values) * sign
+    best: StressPeak | None = None
+    for c in range(stress.shape[0]):
+        there = ~np.isnan(stress[c]).any(axis=1)
+        edges = np.flatnonzero(np.diff(np.concatenate(([0], there.astype(int), [0]))))
+        for first, stop in zip(edges[::2], edges[1::2], strict=True):
+            top = largest(panels, np.nan_to_num(stress[c]), int(first), int(stop))
+            if best is None or top.value > sign * best.value:
+                k = int(np.clip(panels.find(np.array([top.at]))[0], first, stop - 1))
+                basis = panels.rule.basis(panels.local(np.array([k]), np.array([top.at])))[0]
+                best = StressPeak(sign * top.value, top.at, float(basis @ z[c, k]), float(basis @ y[c, k]))
+    if best is None or sign * best.value <= 0.0:
+        return None
+    return best
+
+
+def cracked_data(case: CrackedCase) -> Data:
+    """What stands under ``cracked`` in the results of a combination."""
+    r, done = case.along, case.along.convergence
+    data: Data = {
+        "rule": case.rule,
+        "from_history": bool(set(r.stretches) - set(r.own)) and case.analysis.member.cracks == "history",
+        "stretches": [{"from": a, "to": b} for a, b in r.stretches],
+        "convergence": {
+            "status": done.status,
+            "rounds": done.rounds,
+            "residual": done.residual,
+            "at": done.at,
+        },
+        "uncracked": _deepest(r.uncracked, case.analysis),
+        "along": _deepest(r.total, case.analysis),
+        "everywhere": None
+        if case.everywhere is None
+        else _deepest(case.everywhere.total, case.everywhere.analysis),
+    }
+    if case.one is not None:
+        data["one_value"] = _deepest(case.one.response, case.analysis) | {
+            "spans": [_span(s) for s in case.one.spans]
+        }
+    elif case.rule == EN and case.everywhere is not None:
+        data["one_value"] = _between(case, case.everywhere)
+    return data
+
+
+def _deepest(response: Response, analysis: Analysis) -> Data:
+    """Largest deflection by size in the plane of the loads, with its sign, downwards positive."""
+    panels = analysis.profile.panels
+    both = [(s, largest(panels, s * response.deflection[0])) for s in (1.0, -1.0)]
+    sign, found = max(both, key=lambda pair: pair[1].value)
+    return {"value": sign * found.value, "at": found.at}
+
+
+def _span(value: SpanValue) -> Data:
+    return {
+        "span": value.span.label,
+        "I_effective": value.effective,
+        "sections": [
+            {
+                "at": s.at,
+                "M": s.moment,
+                "M_cracking": s.cracking,
+                "I_gross": s.gross,
+                "I_cracked": s.cracked,
+                "I_effective": s.effective,
+            }
+            for s in value.sections
+        ],
+    }
+
+
+def _between(case: CrackedCase, everywhere: CrackedResponse) -> Data:
+    """EN 1992-1-1, 7.4.3(7): between uncracked and cracked throughout, by zeta of the most cracked section."""
+    state = case.along.state
+    assert state is not None
+    rule = case.along.phases[-1].law.stiffening
+    assert rule is not None
+    most = largest(case.analysis.profile.panels, np.where(np.isfinite(state.over), state.over, 0.0))
+    zeta = float(rule.zeta(1.0 / most.value if most.value > 0.0 else np.inf, 1.0))
+    one, other = _deepest(case.along.uncracked, case.analysis), _deepest(everywhere.total, everywhere.analysis)
+    value = (1.0 - zeta) * one["value"] + zeta * other["value"]
+    return {"value": value, "at": other["at"], "zeta": zeta, "section": most.at}
