@@ -31,8 +31,9 @@ def csv_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
     -------
     bytes
         UTF-8, fields with commas, lines as RFC 4180 has them. The first line is the head: a title and, in
-        brackets, the unit. A job with stages has their tables after that along x, each after an empty line. Numbers have a point and ten figures; what does not exist is empty. The notes
-        stand at the end, after an empty line, one a line, each after the word "note".
+        brackets, the unit. Numbers have a point and ten figures; what does not exist is empty. A job with stages
+        has their tables after that along x, each after an empty line. The notes stand at the end, after an empty
+        line, one a line, each after the word "note".
     """
     style = job.style
     if command == "section":
@@ -40,7 +41,7 @@ def csv_bytes(command: str, data: dict[str, Any], job: Any) -> bytes:
     else:
         rows = _rows(stations(data) if command == "deflect" else stiffness_grid(data, full=True), style)
     for grid in stages(data) if command == "deflect" else ():
-        rows += [[], *_rows(grid.without_empty(), style)]
+        rows += [[], *_rows(grid, style)]
     said = [OF_STATIONS] if command == "deflect" else []
     rows += [[], *(["note", _harmless(str(note))] for note in (*data.get("notes", ()), *said, LINE))]
     out = io.StringIO()

@@ -11,7 +11,7 @@ from typing import Any
 
 from fishbelly.cli import deflect_grids
 from fishbelly.cli.cautions import FULL
-from fishbelly.cli.file_grids import answers, checks, joined, per_combination, section_details, stations, stress
+from fishbelly.cli.file_grids import answers, checks, joined, per_combination, section_details, stages, stations, stress
 from fishbelly.cli.files_csv import head
 from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
@@ -87,7 +87,7 @@ def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
     from fishbelly.member.section_results import stiffness
 
     places = [s["x"] for s in data["combinations"][0]["stations"]]
-    table = stiffness(job.member, places)
+    table = stiffness(job.member, places, stage=data.get("stage"))
     return [
         answers(data),
         *checks(data),
@@ -95,6 +95,7 @@ def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
         per_combination(data, "Spans", deflect_grids.spans),
         per_combination(data, "Ends", deflect_grids.ends),
         stress(data),
+        *stages(data),
         *_beside(data),
         stations(data),
         replace(stiffness_grid(table), title="EI"),

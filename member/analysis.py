@@ -354,7 +354,9 @@ class Analysis:
         arm = 1e-12 * size + 16.0 * float(np.finfo(float).eps) * far
         moment = 1e-12 * float(np.abs(total.M).max()) + arm * float(np.abs(total.N).max())
         longest = max((span.length for span in spans(self.member)), default=self.member.length)
-        return moment / stiff * longest**2
+        # free strain alone leaves a curvature that is nothing but the strain's own round-off over the section's size
+        strain = 16.0 * float(np.finfo(float).eps) * float(np.abs(total.axial).max())
+        return (moment / stiff + strain / size) * longest**2
 
     def _patterns(self, combination: Combination) -> tuple[NDArray[np.bool_], ...]:
         """Atoms of `pattern` loads, those of one span and case together."""

@@ -148,9 +148,9 @@ def frame(
     holds = _holds(ground, [(i, s, node[b]) for i, s, b in working], planes, homes or {})
     places = [float(np.append(ground.intervals.a, ground.intervals.b[-1])[b]) for b in borders]
     holds += _references(holds, node[working[0][2]], places, planes)
-    hinges = {node[b]: float(ground.level("centroid", x)[0]) for b, x in hinged.items() if 0 < b < count}
+    at_nodes = {node[b]: float(ground.level("centroid", x)[0]) for b, x in hinged.items() if 0 < b < count}
     cut = Segments.at(ground.intervals, borders, {b for _, _, b in working})
-    return Frame(tuple(borders), tuple(holds), hinges, cut, planes)
+    return Frame(tuple(borders), tuple(holds), at_nodes, cut, planes)
 
 
 def _holds(

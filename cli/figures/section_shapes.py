@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.description import Member
-from fishbelly.member.geometry import Geometry
+from fishbelly.member.stage_section import in_stage
 from fishbelly.sections.outlines import Outline
 
 Array = NDArray[np.float64]
@@ -17,7 +17,7 @@ _TURN = np.pi / 24.0
 """Angle of an arc that one chord stands for [rad]."""
 
 
-def part_shapes(member: Member, x: float, side: str = "right") -> list[tuple[int, Any]]:
+def part_shapes(member: Member, x: float, side: str = "right", stage: str | None = None) -> list[tuple[int, Any]]:
     """Polygons (y, z) [m] of the parts at x, cuts and later parts taken off, in the member's order.
 
     Parameters
@@ -28,6 +28,8 @@ def part_shapes(member: Member, x: float, side: str = "right") -> list[tuple[int
         Place [m].
     side : {"right", "left"}
         Which side of a break.
+    stage : str, optional
+        Stage of which they are; default the last.
 
     Returns
     -------
@@ -37,7 +39,7 @@ def part_shapes(member: Member, x: float, side: str = "right") -> list[tuple[int
     from shapely.ops import unary_union
 
     side = "left" if x >= member.length * (1.0 - 1e-12) else "right" if x <= member.length * 1e-12 else side
-    placed = Geometry(member).place(np.array([x]), side)
+    placed = in_stage(member, stage).geometry.place(np.array([x]), side)
     whole = [_polygon(o) for o in placed.outlines]
     cuts = [(_polygon(c.outline), c.targets) for c in placed.cuts if c.mass]
     found = []
