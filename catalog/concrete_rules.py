@@ -6,6 +6,7 @@ Strengths are those of cylinders. The rules are written in psi; they are taken s
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 
 _PSI = 0.45359237 * 9.80665 / 0.0254**2
 _KSI = 1e3 * _PSI
@@ -107,7 +108,7 @@ def aci_long_term(months: float, compression_steel: float = 0.0) -> float:
     if not compression_steel >= 0.0:
         raise ValueError(f"expected a ratio of steel of 0 or more, got {compression_steel:g}")
     factor = _TIME[-1][1]
-    for (start, low), (end, high) in zip(_TIME, _TIME[1:], strict=False):
+    for (start, low), (end, high) in pairwise(_TIME):
         if months <= end:
             factor = low + (high - low) * (months - start) / (end - start)
             break

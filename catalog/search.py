@@ -119,6 +119,12 @@ def k_def_entries() -> list[Entry]:
     ]
 
 
+_SLIP_RULES = (
+    "ρ_m of two timbers is the root of the product; twice as much to steel or concrete, by the timber's density "
+    "alone (7.1(2), (3)); K_u = 2/3 K_ser"
+)
+
+
 def fastener_entry(fastener: Fastener) -> Entry:
     """Entry of a kind of fastener: its slip modulus at a usual size in a few timbers, as examples of its formula."""
     values: list[Value] = []
@@ -133,10 +139,7 @@ def fastener_entry(fastener: Fastener) -> Entry:
         steel = slip_modulus(fastener.name, fastener.size, density, to_steel_or_concrete=True)
         values.append(("C24 to steel", steel, "N/m"))
     formula = fastener.formula if fastener.constant is not None else f"K_ser = {fastener.formula} (N/mm, kg/m3, mm)"
-    rules = "" if fastener.constant is not None else (
-        "ρ_m of two timbers is the root of the product; twice as much to steel or concrete, by the timber's density "
-        "alone (7.1(2), (3)); K_u = 2/3 K_ser"
-    )
+    rules = "" if fastener.constant is not None else _SLIP_RULES
     said = "; ".join(text for text in (fastener.words, formula, fastener.note, rules) if text)
     return Entry("fastener", fastener.name, fastener.kind, tuple(values), fastener.source, said)
 

@@ -64,7 +64,12 @@ def _from_catalogue(entry: CatalogMaterial | Material, report: Report) -> Materi
     if isinstance(entry, Material):
         return entry
     report.published[entry.name] = entry
-    return Material(entry.name, **{key: getattr(entry, key) for key in _SAME})
+    return Material(entry.name, **{key: getattr(entry, key) for key in _SAME}, cracks=_asks_for_cracks(report))
+
+
+def _asks_for_cracks(report: Report) -> bool:
+    """Whether a job has a key that speaks of cracks: then concrete of the catalogue cracks too, not only in a note."""
+    return any(key in report.data for key in ("tension_stiffening", "cracks"))
 
 
 def own_material(name: str, report: Report, model: type[MaterialTable] = MaterialTable) -> Material | None:
@@ -121,7 +126,8 @@ def own_material(name: str, report: Report, model: type[MaterialTable] = Materia
         band = base.band
     if band is not None and not band[0] <= E <= band[1]:
         report.warnings.append(f'material "{name}": its E lies outside its band')
+    cracks = table.cracking is not None or _asks_for_cracks(report)
     strength = None if table.strength is None else Strength(**table.strength)
     if strength is None and base is not None:
         strength = base.strength
-    return Material(name, E, band=band, strength=strength, no_tension=table.no_tension, **values)
+    return Material(name, E, band=band, strength=strength, no_tension=table.no_tension, cracks=cracks, **values)

@@ -39,7 +39,7 @@ KEYS: dict[str, dict[str, str]] = {
         "band": "lowest and highest E; results are given for both as well",
         "strength": "allowable stress, or { tension, compression, shear }: each part's worst fibre is a check",
         "yield": "stress above which an elastic result no longer holds; a note says where",
-        "cracking": "tensile stress at which it cracks; from there on the place carries no tension",
+        "cracking": "tensile stress at which it cracks; written here, or with a key for cracks, it does; else a note alone",
         "no_tension": "true: it carries compression only, as masonry does",
     },
     "part": {

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from fishbelly.cli.catalog_properties import MEANINGS
 from fishbelly.cli.job_schema import DIALECT
+from fishbelly.cli.result_schema_cracked import cracked_schema
 from fishbelly.cli.result_schema_joints import joints_schema
 from fishbelly.cli.result_schema_section import twist_schema
 from fishbelly.cli.result_schema_stages import stages_schema
@@ -317,6 +318,7 @@ def _combination() -> Schema:
         {
             "envelope": _envelope(),
             "lifted": _list("names of the bearings that have lifted off", {"type": "string"}),
+            "cracked": cracked_schema(),
         },
     )
 

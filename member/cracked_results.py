@@ -171,7 +171,7 @@ def cracked_data(case: CrackedCase) -> Data:
     r, done = case.along, case.along.convergence
     data: Data = {
         "rule": case.rule,
-        "from_history": bool(set(r.stretches) - set(r.own)) and case.analysis.member.cracks == "history",
+        "from_history": _more(r),
         "stretches": [{"from": a, "to": b} for a, b in r.stretches],
         "convergence": {
             "status": done.status,
@@ -192,6 +192,12 @@ def cracked_data(case: CrackedCase) -> Data:
     elif case.rule == EN and case.everywhere is not None:
         data["one_value"] = _between(case, case.everywhere)
     return data
+
+
+def _more(r: CrackedResponse) -> bool:
+    """Whether other combinations have cracked places that this one does not crack by itself."""
+    close = 1e-6 * r.analysis.member.length
+    return not all(any(a <= x + close and b >= y - close for a, b in r.own) for x, y in r.stretches)
 
 
 def _deepest(response: Response, analysis: Analysis) -> Data:

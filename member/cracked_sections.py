@@ -41,6 +41,7 @@ def cracking_parts(member: Member) -> dict[int, float]:
         k: stress
         for k, p in enumerate(member.parts)
         if p.material
+        and member.material(p.material).cracks
         and not member.material(p.material).no_tension
         and (stress := member.material(p.material).cracking) is not None
     }

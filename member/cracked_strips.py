@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -90,22 +91,40 @@ class StripSection:
         free : mapping
             Free strain of parts, e + a z.
         """
-        lines = [(strain[0] - free.get(i, (0.0, 0.0))[0], -strain[1] - free.get(i, (0.0, 0.0))[1]) for i in self.parts]
-        zeros = [-e / a for (e, a), i in zip(lines, self.parts, strict=True) if a != 0.0 and i in tensionless]
-        inner = [z for z in zeros if self.levels[0] < z < self.levels[-1]]
-        levels = np.unique(np.concatenate((self.levels, inner)))
-        half, middle = 0.5 * np.diff(levels)[:, None], 0.5 * (levels[1:] + levels[:-1])[:, None]
-        # crowded to the ends of a strip, where an arc begins like a root
-        z = (middle + half * np.sin(0.5 * np.pi * _GAUSS[0])).ravel()
-        dz = (half * 0.5 * np.pi * np.cos(0.5 * np.pi * _GAUSS[0]) * _GAUSS[1]).ravel()
         N = M = 0.0
-        for width, (e, a), i in zip(self.widths(z), lines, self.parts, strict=True):
-            stress = E[i] * (e + a * z)
-            if i in tensionless:
-                stress = np.minimum(stress, 0.0)
-            N += float((stress * width) @ dz)
-            M -= float((stress * width * z) @ dz)
-        return N, M
+        for k, i in enumerate(self.parts):
+            e, a = strain[0] - free.get(i, (0.0, 0.0))[0], -strain[1] - free.get(i, (0.0, 0.0))[1]
+            A, S, second = self._compressed(k, e, a) if i in tensionless else self.slabs[:, k].sum(axis=1)
+            N += float(E[i]) * (e * A + a * S)
+            M -= float(E[i]) * (e * S + a * second)
+        return float(N), float(M)
+
+    @cached_property
+    def slabs(self) -> Array:
+        """Area, first and second moment about z = 0 of each part between levels, shape (3, P, K)."""
+        return self._integrals(self.levels[:-1], self.levels[1:])
+
+    def _integrals(self, low: Array, high: Array) -> Array:
+        half, middle = 0.5 * (high - low)[:, None], 0.5 * (high + low)[:, None]
+        # crowded to the ends of a strip, where an arc begins like a root
+        z = middle + half * np.sin(0.5 * np.pi * _GAUSS[0])
+        dz = half * 0.5 * np.pi * np.cos(0.5 * np.pi * _GAUSS[0]) * _GAUSS[1]
+        width = self.widths(z.ravel()).reshape(len(self.parts), *z.shape)
+        return np.stack([(width * z**power * dz).sum(axis=2) for power in range(3)])
+
+    def _compressed(self, part: int, e: float, a: float) -> Array:
+        """Area and moments of a part where e + a z is below zero."""
+        low, high = self.levels[:-1], self.levels[1:]
+        if a == 0.0:
+            return self.slabs[:, part].sum(axis=1) * (e < 0.0)
+        zero = -e / a
+        whole = high <= zero if a > 0.0 else low >= zero
+        total = self.slabs[:, part][:, whole].sum(axis=1)
+        k = np.flatnonzero((low < zero) & (zero < high))
+        if k.size:
+            ends = (low[k], np.array([zero])) if a > 0.0 else (np.array([zero]), high[k])
+            total = total + self._integrals(*ends)[:, part, 0]
+        return np.asarray(total)
 
 
 def strip_strain(

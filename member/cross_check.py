@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined, ModuliKey, Share
-from fishbelly.member.description import Support
+from fishbelly.member.description import Member, Support
 from fishbelly.member.extremes import values_at
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.loads import Load, Shrinkage
@@ -21,10 +21,12 @@ from fishbelly.member.second_method import SecondResult, second_method
 from fishbelly.member.second_sections import Slide
 from fishbelly.member.second_stages import ModuliOf, StagedShare, staged_method
 from fishbelly.member.section_law import SLIDE_SIGNS
+from fishbelly.member.slip_layers import has_soft_joints, layers_of
 
 Array = NDArray[np.float64]
 
 METHOD = "strips of the placed outlines, own statics, moment-area integrals"
+SLIP_METHOD = "strips of the placed outlines, displacements of all layers, collocation at Gauss points"
 AGREES = 1e-6
 """Difference of the two methods, of the largest deflection, above which the answer is withheld."""
 
@@ -48,7 +50,8 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
     -------
     dict or None
         Method, place [m], value [m], difference over the largest deflection, the second method's own error, and
-        the residual of reactions against loads; None where nothing deflects.
+        the residual of reactions against loads; None where nothing deflects, or where the second method does not
+        know the case (`covered`).
 
     Raises
     ------
@@ -56,7 +59,7 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
         When the two methods do not agree.
     """
     entries = [(k, e) for k, e in deflection.items() if e is not None]
-    if not entries:
+    if not entries or not covered(analysis.member):
         return None
     way, entry = max(entries, key=lambda pair: abs(pair[1]["value"]))
     at, plane = entry["at"], 1 if way == "across" else 0
@@ -75,7 +78,7 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
             f"the first {first:.9g} m: difference {difference:.1e} of the largest deflection"
         )
     return {
-        "method": METHOD,
+        "method": SLIP_METHOD if has_soft_joints(analysis.member) else METHOD,
         "at": at,
         "value": value,
         "difference": difference,
@@ -83,6 +86,11 @@ def cross_check(analysis: Analysis, combined: Combined, deflection: dict[str, An
         "equilibrium": _residual(analysis, combined),
         "work": None if second.work_check is None else dict(second.work_check),
     }
+
+
+def covered(member: Member) -> bool:
+    """Whether the second method knows the case: a hinge that opens later is not known to it where parts slip."""
+    return not has_soft_joints(member) or not any(h.stage is not None for h in member.hinges)
 
 
 def second_of(analysis: Analysis, combined: Combined, x: Array) -> SecondResult:
@@ -95,10 +103,17 @@ def second_of(analysis: Analysis, combined: Combined, x: Array) -> SecondResult:
     x : ndarray, shape (X,)
         Places at which deflections are wanted [m].
     """
-    if analysis.member.stages:
+    if analysis.member.stages or has_soft_joints(analysis.member):
         # shrinkage with its own creep in a long-term stage finds its moduli by itself
         given = [share for share in combined.shares if share.key.long_term or not share.key.own]
         shares = [_staged(analysis, combined, share) for share in given]
+        if has_soft_joints(analysis.member):
+            from fishbelly.member.second_slip import slip_method
+            from fishbelly.member.slip_setting import one_by_one
+
+            layers = layers_of(analysis.member)
+            single = [one_by_one(frame, layers) for frame in analysis.frames]
+            return slip_method(analysis.member, x, shares, single, combined.lifted, combined.upto)
         return staged_method(analysis.member, x, shares, combined.lifted, combined.upto)
     return second_method(
         analysis.member,

@@ -73,6 +73,8 @@ class Material:
         Tensile stress at which it cracks [Pa].
     no_tension : bool
         It carries no tension at all.
+    cracks : bool
+        Where `cracking` is passed it cracks; otherwise it counts as uncracked and a note says so.
     """
 
     name: str
@@ -87,6 +89,7 @@ class Material:
     yield_strength: float | None = None
     cracking: float | None = None
     no_tension: bool = False
+    cracks: bool = True
 
     @property
     def shear_modulus(self) -> float | None:

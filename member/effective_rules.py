@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from fishbelly.member.spans import Span
 
@@ -124,7 +125,7 @@ def outside_figure(layout: Layout) -> bool:
     Neighbouring spans should be 2/3 to 1.5 times each other, a cantilever shorter than half its span.
     """
     inner = [s for s in layout.spans if not s.overhang]
-    ratios = [a.length / b.length for a, b in zip(inner, inner[1:], strict=False)]
+    ratios = [a.length / b.length for a, b in pairwise(inner)]
     far = any(not 2.0 / 3.0 - 1e-9 <= ratio <= 1.5 + 1e-9 for ratio in ratios)
     for overhang in (s for s in layout.spans if s.overhang):
         if inner:

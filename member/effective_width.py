@@ -61,13 +61,14 @@ def layout_of(member: Member, part: Part) -> Layout:
     assert rule is not None
     half = 0.5 * part.shape.dimensions["width"].extremes(part.start, part.end)[1]
     between = None if rule.web_spacing is None else 0.5 * rule.web_spacing
-    sides = tuple(next(v for v in pair if v is not None) for pair in ((between, rule.edge, half), (rule.edge, between, half)))
+    towards_web = next(v for v in (between, rule.edge, half) if v is not None)
+    towards_edge = next(v for v in (rule.edge, between, half) if v is not None)
     lasting = [s for s in member.supports if s.until is None]
     gone = [s.name for s in member.supports if s.until is not None]
     places = [s.at for s in lasting if s.down > 0.0]
     rigid = {s.at for s in lasting if math.isinf(s.rotation)}
     held = (min(places, default=0.0) in rigid, max(places, default=0.0) in rigid)
-    return Layout((sides[0], sides[1]), web_width(member, part), spans(member, gone), held)
+    return Layout((towards_web, towards_edge), web_width(member, part), spans(member, gone), held)
 
 
 def web_width(member: Member, part: Part) -> float:
@@ -86,10 +87,10 @@ def web_width(member: Member, part: Part) -> float:
 def width_at(member: Member, part: Part, x: float, side: str = "right") -> tuple[float, float]:
     """Given and effective width of a part at x, seen from one side [m]."""
     given = float(part.shape.dimensions["width"](np.array([x]), side)[0])
-    tiny = 1e-9 * member.length
+    # a place is looked at from a little inside its side
+    inside = x + (1e-9 if side == "right" else -1e-9) * member.length
     for zone in effective_zones(member, part):
-        inside = zone.start - tiny <= x < zone.end - tiny if side == "right" else zone.start + tiny < x <= zone.end + tiny
-        if inside:
+        if zone.start <= inside <= zone.end:
             return given, min(given, zone.width)
     return given, given
 

@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.breakpoints import breakpoints
+from fishbelly.member.cracked_notes import cracked_notes
 from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
 from fishbelly.member.notes_effective import effective_widths
@@ -160,7 +161,7 @@ def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
                         },
                     )
             top = s["max"]
-            if material.cracking is not None and top is not None and top["value"] > material.cracking:
+            if "cracked" not in c and material.cracking is not None and top is not None and top["value"] > material.cracking:
                 yield Note(
                     f"{s['part']}: tension {{found}} at x = {{at}} is above the cracking stress {{limit}} "
                     f"in {c['name']}, and is counted as uncracked",
@@ -300,6 +301,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _moduli_apart,
     _lasting,
     _stressed,
+    cracked_notes,
     joints_short,
     joints_full,
     effective_widths,

@@ -31,9 +31,8 @@ def _note(member: Member, part: Part) -> Note:
     assert part.effective is not None
     given = part.shape.dimensions["width"]
     least, most = given.extremes(part.start, part.end)
-    counts = [
-        min(zone.width, value) for zone in effective_zones(member, part) for value in given.extremes(zone.start, zone.end)
-    ]
+    zones = effective_zones(member, part)
+    counts = [min(zone.width, value) for zone in zones for value in given.extremes(zone.start, zone.end)]
     values = {"low": (min(counts), "length"), "high": (max(counts), "length"), "given": (most, "length")}
     same = max(counts) - min(counts) <= 1e-9 * most
     web = web_width(member, part)

@@ -12,6 +12,7 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
+from fishbelly.member.cracked_check import cracked_check
 from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_data, cracked_stresses, pieces_of
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Limit, Member
@@ -24,6 +25,7 @@ from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading, loadings
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.places import default_places
+from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.member.response import Response
 from fishbelly.member.spans import Span, spans
 from fishbelly.member.stage_results import since, stage_rows
@@ -71,6 +73,10 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
         _combination(analysis, analysis.combine(c, upto=upto), wanted) if case is None else _cracked(case, wanted)
         for c, case in zip(member.combinations, cracked_cases(analysis), strict=True)
     ]
+    if has_soft_joints(member):
+        from fishbelly.member.slip_report import add_slip
+
+        add_slip(analysis, upto, combinations, _largest)
     data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "length": member.length}
     if stage is not None:
         data["stage"] = stage
@@ -79,6 +85,11 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
         "combinations": combinations,
         "stages": stage_rows(analysis, combinations, _deflection_and_stress)[: number + 1],
     }
+
+
+def _largest(analysis: Analysis, combined: Combined) -> Data:
+    """Largest deflections of a combination."""
+    return deflections(analysis, combined, pieces(analysis, loadings(analysis, combined)))
 
 
 def _in_range(analysis: Analysis) -> None:
@@ -128,7 +139,7 @@ def _cracked(case: CrackedCase, wanted: list[float] | None) -> Data:
     p = pieces_of(case)
     told = deflections(case.analysis, case.chosen, p, case.bent)
     data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted)
-    return data | {"cracked": cracked_data(case)}
+    return data | {"cross_check": cracked_check(case.along), "cracked": cracked_data(case)}
 
 
 def _told(

@@ -189,10 +189,12 @@ def reactions(
         balance += s.pressed - s.spring @ moved
         forces = np.linalg.lstsq(s.H.T, -balance, rcond=None)[0][s.H.shape[0] - len(s.holds) :]
         for h, force in zip(s.holds, forces, strict=True):
+            if h.number < 0:
+                continue
             size = float(np.linalg.norm((h.row * scale.q) @ (s.after if h.after and right is not None else s.before)))
             found[h.number] = found.get(h.number, 0.0) + float(force) * scale.work / size
         for h in border.held:
-            if np.isfinite(h.stiffness):
+            if h.number >= 0 and np.isfinite(h.stiffness):
                 row = (h.row * scale.q) @ (s.after if h.after and right is not None else s.before)
                 found[h.number] = h.stiffness * (h.at - float(row @ moved))
     return found

@@ -16,6 +16,7 @@ from fishbelly.member.faults import NotLinear
 from fishbelly.member.panels import Panels
 from fishbelly.member.response import Response
 from fishbelly.member.section_results import COLUMNS, profile_at
+from fishbelly.member.stage_view import stage_number
 
 Array = NDArray[np.float64]
 
@@ -37,11 +38,14 @@ class Result:
         Fields at the grid points.
     linear : bool
         Whether results of this member add.
+    stage : int
+        Number of the stage at whose end it is; below 0 the last.
     """
 
     analysis: Analysis
     response: Response
     linear: bool = True
+    stage: int = -1
 
     def __add__(self, other: Result) -> Result:
         """Superpose two results of one solved member."""
@@ -49,12 +53,14 @@ class Result:
         other._must_be_linear()
         if other.analysis is not self.analysis:
             raise ValueError("expected results of one solved member, got results of two")
-        return Result(self.analysis, self.response + other.response)
+        if other.stage != self.stage:
+            raise ValueError("expected results at the end of one stage, got results at the end of two")
+        return Result(self.analysis, self.response + other.response, stage=self.stage)
 
     def __mul__(self, factor: float) -> Result:
         """Scale a result."""
         self._must_be_linear()
-        return Result(self.analysis, self.response * float(factor))
+        return Result(self.analysis, self.response * float(factor), stage=self.stage)
 
     __rmul__ = __mul__
 
@@ -78,7 +84,7 @@ class Result:
             "across": r.deflection[1],
             "rotation": r.rotation[0],
             "slope": r.slope[0],
-            "moment": r.M[0] + r.N * self.analysis.frame.centre[0],
+            "moment": r.M[0] + r.N * self.analysis.frames[self.stage].centre[0],
             "shear": r.V[0],
             "axial": r.N,
         }
@@ -160,18 +166,23 @@ class Solved:
             raise KeyError(f"expected one of the cases {', '.join(member.cases)}, got {name!r}")
         return self._result(Combination(name, {name: 1.0}))
 
-    def combination(self, name: str) -> Result:
-        """Response to a combination of the description, lifting bearings and sustained shares counted."""
+    def combination(self, name: str, stage: str | None = None) -> Result:
+        """Response to a combination of the description, lifting bearings and sustained shares counted.
+
+        `stage`: name of the stage at whose end; default the last.
+        """
+        number = -1 if stage is None else stage_number(self.analysis.member, stage)
         for c in self.analysis.member.combinations:
             if c.name == name:
-                return self._result(c)
+                return self._result(c, number if number < len(self.analysis.views) - 1 else -1)
         names = ", ".join(c.name for c in self.analysis.member.combinations)
         raise KeyError(f"expected one of the combinations {names}, got {name!r}")
 
-    def _result(self, combination: Combination) -> Result:
-        total = self.analysis.combine(combination).total
+    def _result(self, combination: Combination, stage: int = -1) -> Result:
+        total = self.analysis.combine(combination, upto=None if stage < 0 else stage).total
         judge(self.analysis.profile.panels, total)
-        return Result(self.analysis, total, not any(s.only_up for s in self.analysis.member.supports))
+        linear = not any(s.only_up for s in self.analysis.member.supports)
+        return Result(self.analysis, total, linear, stage)
 
 
 def solve(member: Member) -> Solved:

@@ -12,6 +12,7 @@ singular points); G. E. Karniadakis and S. J. Sherwin, Spectral/hp Element Metho
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import lru_cache
 
@@ -202,7 +203,11 @@ def _products(degree: int) -> tuple[Array, Array, NDArray[np.intp]]:
     return np.ascontiguousarray(first), second, take.ravel()
 
 
-def stiffness(degree: int, metric: Array) -> Array:
+_AT_ONCE = 16
+"""Elements whose matrices are worked out together: they stay in the processor's cache."""
+
+
+def stiffness(degree: int, metric: Array) -> Iterator[tuple[slice, Array]]:
     """Stiffness of elements from their metric: corners first, then sides, then the inner nodes.
 
     Parameters
@@ -212,19 +217,28 @@ def stiffness(degree: int, metric: Array) -> Array:
     metric : ndarray, shape (3, N, n * n)
         Weights of the products of derivatives by xx, xy, yy at the quadrature points, quadrature weights included.
 
-    Returns
-    -------
-    ndarray, shape (N, (p + 1)², (p + 1)²)
+    Yields
+    ------
+    some : slice
+        A few elements.
+    matrices : ndarray, shape (few, (p + 1)², (p + 1)²)
+        Theirs; the next ones are written over them.
     """
     first, second, take = _products(degree)
-    n = degree + 2
-    count, m = metric.shape[1], (degree + 1) ** 2
+    n, m, count = degree + 2, (degree + 1) ** 2, metric.shape[1]
     c = metric.reshape(3, count, n, n)
-    middle = np.empty((count, 4, n, m))
-    for k, which in enumerate((0, 1, 1, 2)):
-        np.matmul(c[which], second[k], out=middle[:, k])
-    whole = first @ middle.reshape(count, 4 * n, m)
-    return np.asarray(whole.reshape(count, m * m)[:, take].reshape(count, m, m))
+    # room that is used again and again: fresh memory would cost more than the sums
+    few = min(count, _AT_ONCE)
+    middle, whole, ordered = np.empty((few, 4, n, m)), np.empty((few, m, m)), np.empty((few, m * m))
+    for start in range(0, count, few):
+        some = slice(start, min(start + few, count))
+        size = some.stop - start
+        for k, which in enumerate((0, 1, 1, 2)):
+            np.matmul(c[which, some], second[k], out=middle[:size, k])
+        np.matmul(first, middle[:size].reshape(size, 4 * n, m), out=whole[:size])
+        # "clip" only says that numpy may write where it is told to
+        np.take(whole[:size].reshape(size, m * m), take, axis=1, out=ordered[:size], mode="clip")
+        yield some, ordered[:size].reshape(size, m, m)
 
 
 def loads(degree: int, density: Array) -> Array:

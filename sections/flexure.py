@@ -23,8 +23,13 @@ from fishbelly.sections.stiffness import SectionStiffness
 
 Array = NDArray[np.float64]
 
-STRAIGHT_DEGREE, CURVED_DEGREE = 7, 8
-"""Degree of the elements unless told otherwise: without arcs and with them. Own trials: 1e-7 and 1e-6 of F."""
+BARS_DEGREE, STRAIGHT_DEGREE, CURVED_DEGREE = 6, 7, 8
+"""Degree of the elements unless told otherwise: one straight material with bars in it, without arcs, with them.
+
+Own trials: 1e-7 of F; up to 1e-6 with arcs, or where two materials end at a re-entrant corner.
+"""
+_SLIM = 0.2
+"""Circles smaller than this share of the section are bars: what they disturb is small."""
 _FINER = 3
 """By how much the degree is raised for an estimate of the error."""
 
@@ -113,12 +118,12 @@ def flexure(
     angle = main_direction(section)
     asked = (section, E, G, clusters, share_angle)
     section = turned_section(section, -angle)
-    p = _degree(section) if degree is None else degree
+    c = cuts(section)
+    p = _degree(section, E, G, float(c.size.min())) if degree is None else degree
     sums = _Sums(G.shape[1])
     for shared in shared_meshes(section, E, G, clusters):
         sums.add(shared, warping(shared, E[:, shared.rows], G[:, shared.rows], p), share_angle)
     F, torque = sums.together(share_angle)
-    c = cuts(section)
     centre = np.stack((c.middle_z - torque[:, 1], c.middle_y + torque[:, 0]), axis=-1)
     # (z, y) of the turned section to those asked for
     cos, sin = np.cos(angle), np.sin(angle)
@@ -127,9 +132,16 @@ def flexure(
     return Flexure(F[:, 0, 0], F[:, 1, 1], F[:, 0, 1], centre[:, 1], centre[:, 0], sums.pieces, p, asked)
 
 
-def _degree(section: Composition) -> int:
-    curved = any(np.any(o.bulge) for o in (*section.outlines, *(c[0] for c in section.cuts)))
-    return CURVED_DEGREE if curved else STRAIGHT_DEGREE
+def _degree(section: Composition, E: Array, G: Array, size: float) -> int:
+    """Degree that keeps what `STRAIGHT_DEGREE` promises; size of the section [m]."""
+    if any(np.any(c[0].bulge) for c in section.cuts):
+        return CURVED_DEGREE
+    bars = [i for i, o in enumerate(section.outlines) if np.all(o.bulge) and np.ptp(o.z, axis=1).max() < _SLIM * size]
+    rest = [i for i in range(len(section.outlines)) if i not in bars]
+    if not rest or any(np.any(section.outlines[i].bulge) for i in rest):
+        return CURVED_DEGREE
+    one = np.all(E[rest] == E[rest[0]]) and np.all(G[rest] == G[rest[0]])
+    return BARS_DEGREE if bars and one else STRAIGHT_DEGREE
 
 
 class _Sums:

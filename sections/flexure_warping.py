@@ -176,12 +176,14 @@ def condensed(s: Shaped, weight: Array, node_loads: Array, degree: int) -> Probl
             scale * (s.y_x**2 + s.z_x**2),
         )
     ).reshape(3, count * stations, points)
-    whole = elements.stiffness(degree, metric)
     rim, cases = 4 * degree, node_loads.shape[2]
-    right = np.concatenate((whole[:, rim:, :rim], node_loads[:, rim:]), axis=2)
-    inner = np.asarray(np.linalg.solve(whole[:, rim:, rim:], right), dtype=float)
-    reduced = np.concatenate((whole[:, :rim, :rim], node_loads[:, :rim]), axis=2)
-    reduced -= np.swapaxes(right[:, :, :rim], 1, 2) @ inner
+    inner = np.empty((count * stations, (degree - 1) ** 2, rim + cases))
+    reduced = np.empty((count * stations, rim, rim + cases))
+    for some, whole in elements.stiffness(degree, metric):
+        right = np.concatenate((whole[:, rim:, :rim], node_loads[some, rim:]), axis=2)
+        inner[some] = np.linalg.solve(whole[:, rim:, rim:], right)
+        reduced[some, :, :rim], reduced[some, :, rim:] = whole[:, :rim, :rim], node_loads[some, :rim]
+        reduced[some] -= np.swapaxes(right[:, :, :rim], 1, 2) @ inner[some]
     inside = np.swapaxes(node_loads[:, rim:], 1, 2) @ inner[:, :, rim:]
     shape = (count, stations)
     return Problem(

@@ -21,6 +21,8 @@ Index = NDArray[np.intp]
 
 _LEAF = 6
 """Elements that are put together before anything is eliminated."""
+_MANY = 100
+"""Elements from which on it pays to count rows and columns of them rather than metres."""
 
 
 @dataclass(eq=False)
@@ -33,15 +35,18 @@ class Front:
         Unknowns of its matrix, those to be eliminated first.
     gone : int
         How many are eliminated.
-    elements : list of (int, ndarray, ndarray)
-        Elements put in: number, its rows, and where they go.
+    elements : ndarray of int, shape (e,)
+        Elements put in.
+    places : ndarray of int, shape (e, m)
+        Where their unknowns go; past the last for those that are held.
     merged : list of (Front, ndarray)
         Fronts put in and where their remaining unknowns go.
     """
 
     known: Index
     gone: int
-    elements: list[tuple[int, Index, Index]]
+    elements: Index
+    places: Index
     merged: list[tuple[Front, Index]]
     solved: Array | None = field(default=None, repr=False)
 
@@ -62,7 +67,7 @@ def fronts(unknowns: Index, middles: Array) -> list[Front]:
         Each after those merged into it; the last eliminates all that is left.
     """
     count = int(unknowns.max()) + 1
-    order = _halved(np.arange(len(unknowns)), middles)
+    order = _halved(np.arange(len(unknowns)), _ranks(middles) if len(middles) > _MANY else middles)
     place = np.empty(len(unknowns), dtype=np.intp)
     place[np.concatenate(order)] = np.arange(len(unknowns))
     held = unknowns < 0
@@ -74,6 +79,13 @@ def fronts(unknowns: Index, middles: Array) -> list[Front]:
     made: list[Front] = []
     _build(order, 0, len(order), unknowns, first, last, np.cumsum([0, *(len(o) for o in order)]), made)
     return made
+
+
+def _ranks(middles: Array) -> Array:
+    """Number of the row and of the column that each point stands in."""
+    near = 1e-5 * np.ptp(middles, axis=0)
+    rounded = np.round(middles / np.where(near > 0.0, near, 1.0))
+    return np.stack([np.unique(c, return_inverse=True)[1] for c in rounded.T], axis=1).astype(float)
 
 
 def _halved(elements: Index, middles: Array) -> list[Index]:
@@ -99,14 +111,12 @@ def _build(
         mine = _each_once(np.concatenate([f.known[f.gone :] for f in merged]), first.size)
     inside = (first[mine] >= starts[a]) & (last[mine] < starts[b])
     known = np.concatenate((mine[inside], mine[~inside]))
-    where = np.empty(first.size, dtype=np.intp)
+    # the last two places are those of -1 and -2
+    where = np.full(first.size + 2, known.size)
     where[known] = np.arange(known.size)
-    elements = []
-    if b - a == 1:
-        for e in leaves[a]:
-            free = np.flatnonzero(unknowns[e] >= 0)
-            elements.append((int(e), free, where[unknowns[e][free]]))
-    made.append(Front(known, int(inside.sum()), elements, [(f, where[f.known[f.gone :]]) for f in merged]))
+    elements = leaves[a] if b - a == 1 else leaves[a][:0]
+    merges = [(f, where[f.known[f.gone :]]) for f in merged]
+    made.append(Front(known, int(inside.sum()), elements, where[unknowns[elements]], merges))
     return made[-1]
 
 
@@ -138,21 +148,16 @@ def eliminate(order: list[Front], matrices: Array, loads: Array, keep: bool = Fa
     """
     stations, cases = loads.shape[1], loads.shape[3]
     total = np.zeros((stations, cases, cases))
-    left: dict[int, tuple[Array, Array]] = {}
+    left: dict[int, Array] = {}
+    rows = np.concatenate((matrices, loads), axis=3)
     for front in order:
         size, g = front.known.size, front.gone
-        k = np.zeros((stations, size, size + cases))
-        for e, rows, at in front.elements:
-            if rows.size == matrices.shape[2]:
-                k[:, at[:, None], at] += matrices[e]
-                k[:, at, size:] += loads[e]
-            else:
-                k[:, at[:, None], at] += matrices[e][:, rows[:, None], rows]
-                k[:, at, size:] += loads[e][:, rows]
+        if front.elements.size:
+            k = _put_together(front, rows)
+        else:
+            k = np.zeros((stations, size, size + cases))
         for other, at in front.merged:
-            a, b = left.pop(id(other))
-            k[:, at[:, None], at] += a
-            k[:, at, size:] += b
+            k[:, at[:, None], np.concatenate((at, np.arange(size, size + cases)))] += left.pop(id(other))
         if g:
             x = np.linalg.solve(k[:, :g, :g], k[:, :g, g:])
             total += np.swapaxes(k[:, :g, size:], 1, 2) @ x[:, :, size - g :]
@@ -160,8 +165,23 @@ def eliminate(order: list[Front], matrices: Array, loads: Array, keep: bool = Fa
             front.solved = x if keep else None
         else:
             rest = k
-        left[id(front)] = rest[:, :, : size - g], rest[:, :, size - g :]
+        left[id(front)] = rest
     return total
+
+
+def _put_together(front: Front, rows: Array) -> Array:
+    """Matrix and loads of the elements of a front, shape (T, known, known + R); rows of shape (N, T, m, m + R)."""
+    size, cases = front.known.size, rows.shape[3] - rows.shape[2]
+    wide = size + cases + 1
+    at = front.places
+    columns = np.empty((at.shape[0], at.shape[1] + cases), dtype=np.intp)
+    columns[:, : at.shape[1]] = np.where(at == size, size + cases, at)
+    columns[:, at.shape[1] :] = np.arange(size, size + cases)
+    place = (at[:, :, None] * wide + columns[:, None, :]).ravel()
+    values = rows[front.elements]
+    # what is held goes to a last row and a last column, which are left off
+    summed = [np.bincount(place, values[:, t].ravel(), (size + 1) * wide) for t in range(values.shape[1])]
+    return np.stack(summed).reshape(-1, size + 1, wide)[:, :size, :-1]
 
 
 def solution(order: list[Front], count: int) -> Array:

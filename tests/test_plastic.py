@@ -32,9 +32,8 @@ def test_tube_and_unsymmetric_i() -> None:
     assert moment == pytest.approx((0.2**3 - 0.18**3) / 6, rel=1e-9)
     assert z == pytest.approx(0.0, abs=1e-15)
     # 150 x 10 over 100 x 10, web 280 x 8: half of the area 4740 is 2370, 1370 above the lower flange
-    moment, z = bent(
-        drawn("I", depth=0.3, top_width=0.15, bottom_width=0.1, top_flange=0.01, bottom_flange=0.01, web=0.008, radius=0.0)
-    )
+    flanges = {"top_width": 0.15, "bottom_width": 0.1, "top_flange": 0.01, "bottom_flange": 0.01}
+    moment, z = bent(drawn("I", depth=0.3, web=0.008, radius=0.0, **flanges))
     up = 0.01 + 1.37e-3 / 0.008
     assert z == pytest.approx(up - 0.15, rel=1e-12)
     below = 0.1 * 0.01 * (up - 0.005) + 0.008 * (up - 0.01) ** 2 / 2
@@ -67,9 +66,7 @@ def test_overlaps_and_cuts_count_once() -> None:
 
 
 @settings(max_examples=25, deadline=None)
-@given(
-    st.floats(0.02, 0.3), st.floats(0.02, 0.3), st.floats(0.01, 0.2), st.floats(0.1, 20.0), st.floats(-5.0, 5.0)
-)
+@given(st.floats(0.02, 0.3), st.floats(0.02, 0.3), st.floats(0.01, 0.2), st.floats(0.1, 20.0), st.floats(-5.0, 5.0))
 def test_properties(width: float, depth: float, diameter: float, ratio: float, level: float) -> None:
     """Turned over it is the same, moved it is the same, stronger parts never make it weaker."""
     block, bar = drawn("rectangle", width=width, depth=depth), drawn("circle", diameter=diameter)

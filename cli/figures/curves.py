@@ -43,24 +43,27 @@ def section_places(member: Member) -> Array:
 
 
 class Curves:
-    """A solved member whose fields are drawn."""
+    """A solved member whose fields are drawn, at the end of a stage; default the last."""
 
-    def __init__(self, member: Member, analysis: Analysis | None = None) -> None:
+    def __init__(self, member: Member, analysis: Analysis | None = None, stage: str | None = None) -> None:
         self.member = member
         self.analysis = Analysis.of(member) if analysis is None else analysis
         self.places = response_places(member)
-        self._results: dict[str, Result] = {}
+        self.stage = stage
+        self._results: dict[tuple[str, str | None], Result] = {}
 
-    def result(self, combination: Mapping[str, Any]) -> Result:
-        """Solve a combination of the results, once."""
-        name = str(combination["name"])
+    def result(self, combination: Mapping[str, Any], stage: str | None = None) -> Result:
+        """Solve a combination of the results, once; at the end of the stage of these curves or of another one."""
+        name = str(combination["name"]), stage or self.stage
         if name not in self._results:
-            self._results[name] = Solved(self.analysis).combination(name)
+            self._results[name] = Solved(self.analysis).combination(*name)
         return self._results[name]
 
-    def along(self, combination: Mapping[str, Any], quantity: str) -> tuple[Array, Array]:
+    def along(
+        self, combination: Mapping[str, Any], quantity: str, stage: str | None = None
+    ) -> tuple[Array, Array]:
         """Places [m] and values [SI] of a quantity of a combination of the results; every place twice, left first."""
-        result = self.result(combination)
+        result = self.result(combination, stage)
         x = np.repeat(self.places, 2)[1:-1]
         left, right = (_at(result, quantity, self.places, side) for side in ("left", "right"))
         y = np.empty(2 * self.places.size)
@@ -76,5 +79,5 @@ def _at(result: Result, quantity: str, places: Array, side: str) -> Array:
     """Values at places; besides the quantities of a result the moment of the sideways plane, of which +y is below."""
     if quantity != "moment across":
         return result.at(quantity, places, side)
-    field = result.response.M[1] + result.response.N * result.analysis.frame.centre[1]
+    field = result.response.M[1] + result.response.N * result.analysis.frames[result.stage].centre[1]
     return values_at(result.analysis.profile.panels, field, places, side)

@@ -48,12 +48,14 @@ def governing_place(combination: Mapping[str, Any]) -> tuple[float, str]:
     return float(max(moments, key=lambda m: abs(m["value"]))["at"]), "largest moment"
 
 
-def stress_bars(analysis: Analysis, combination: Mapping[str, Any], x: float) -> tuple[str, list[Bar]]:
+def stress_bars(
+    analysis: Analysis, combination: Mapping[str, Any], x: float, stage: str | None = None
+) -> tuple[str, list[Bar]]:
     """Stress over the depth at x, from the side of a break on which it is larger; no bars where it is round-off."""
     peaks = [abs(s[end]["value"]) for s in combination["stress"] for end in ("max", "min") if s[end] is not None]
     found = {}
     for side in ("right", "left"):
-        lines = stress_over_depth(analysis, str(combination["name"]), x, side)
+        lines = stress_over_depth(analysis, str(combination["name"]), x, side, stage)
         found[side] = [
             Bar(v.part, (float(v.z[0]), float(v.z[1])), (float(v.stress[0]), float(v.stress[1]))) for v in lines
         ]

@@ -71,7 +71,7 @@ def mark(
     """
     width, height = size_of(ax)
     (x0, x1), (y0, y1) = ax.get_xlim(), ax.get_ylim()
-    fine_x, fine_y = _dense((x - x0) / (x1 - x0) * width, (y - y0) / (y1 - y0) * height)
+    fine_x, fine_y = dense((x - x0) / (x1 - x0) * width, (y - y0) / (y1 - y0) * height)
     paper = [(float((at - x0) / (x1 - x0) * width), float((v - y0) / (y1 - y0) * height)) for v, at in extremes]
     nought = float(-y0 / (y1 - y0) * height)
     spots = Spots(width, height, fine_x, fine_y, nought if 0.0 < nought < height else None, paper)
@@ -100,7 +100,7 @@ def mark(
         ax.text(x1, y1 + 0.7 / height * (y1 - y0), "; ".join(crowded), ha="right", va="bottom", clip_on=False)
 
 
-def _dense(x: Array, y: Array) -> tuple[Array, Array]:
+def dense(x: Array, y: Array) -> tuple[Array, Array]:
     """Points of a line no farther apart than half a millimetre, up to a limit."""
     known = np.isfinite(x) & np.isfinite(y)
     x, y = x[known], y[known]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 from fishbelly.cli.cautions import LINE as CAUTION
@@ -13,6 +13,8 @@ from fishbelly.cli.figures import (
     response_lines,
     section_key,
     share_areas,
+    stage_lines,
+    stage_stresses,
     stiffness_lines,
     stress_depth,
 )
@@ -167,7 +169,13 @@ def stiffness_page(job: Any, data: Mapping[str, Any]) -> Any:
     return figure
 
 
-def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], governs: bool) -> Any:
+def deflect_page(
+    job: Any,
+    curves: Curves,
+    combination: Mapping[str, Any],
+    governs: bool,
+    stages: Sequence[Mapping[str, Any]] = (),
+) -> Any:
     """Draw one combination: elevation, moment, shear, slope, deflection, and stress where it governs.
 
     Parameters
@@ -180,6 +188,8 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
         One of the combinations of `fishbelly deflect`.
     governs : bool
         Whether it is the one whose checks are used most, of several.
+    stages : sequence of mapping
+        Stages of the results, where there are several: deflection and stress at the end of each are drawn too.
 
     Returns
     -------
@@ -191,8 +201,9 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
     chosen, zeros = quantities(curves, combination)
     x, why = governing_place(combination)
     sideways = bends_sideways(combination)
-    side, bars = stress_bars(curves.analysis, combination, x)
-    section = section_at(member, x, side)
+    side, bars = stress_bars(curves.analysis, combination, x, curves.stage)
+    section = section_at(member, x, side, stage=curves.stage)
+    later = _Stages(job, curves, combination, stages)
     with pens():
         column = _Column(member.title, _said(combination, factors, governs) + [zeros] * bool(zeros))
         bands = elevation.layout(side_view(member), job.style, cases)
@@ -200,6 +211,7 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
         tops = {q: column.room(_HEIGHTS[q], _HEAD + 1.0) for q in chosen}
         words = key.height(member, job.style)
         key_top = column.room(words, _AXIS + 1.0)
+        later.take(column)
         row = _SectionRow(job, section, _SMALL, column)
         wide = WIDTH - _SECTION_LEFT - RIGHT
         materials = section_key.materials_height(job, section, wide)
@@ -213,9 +225,38 @@ def deflect_page(job: Any, curves: Curves, combination: Mapping[str, Any], gover
             response_lines.plot(job, combination, quantity, ax, last, curves.along(combination, quantity), aside)
         key.plot(job, panel(figure, LEFT, key_top, ACROSS, words))
         where = " at mid-width" if sideways else ""
+        later.draw(figure)
         row.draw(figure, bars, f"Stress there{where} ({one_line(why)})")
         section_key.plot_materials(job, section, panel(figure, _SECTION_LEFT, materials_top, wide, materials))
     return figure
+
+
+class _Stages:
+    """Panels of what happened stage by stage; none for a job without stages."""
+
+    def __init__(
+        self, job: Any, curves: Curves, combination: Mapping[str, Any], stages: Sequence[Mapping[str, Any]]
+    ) -> None:
+        self.job, self.tops = job, (0.0, 0.0)
+        several = len(stages) > 1
+        self.lines = stage_lines.of_stages(curves, combination, [s["name"] for s in stages]) if several else []
+        self.rows = stage_stresses.rows_of(job, stages, str(combination["name"])) if several else []
+
+    def take(self, column: _Column) -> None:
+        """Take the room that they need."""
+        if self.lines:
+            top = column.room(stage_lines.HEIGHT, _HEAD + 1.0)
+            self.tops = (top, column.room(stage_stresses.height(self.rows), _AXIS + 4.0) if self.rows else 0.0)
+            column.y += 2.0
+
+    def draw(self, figure: Any) -> None:
+        """Draw them."""
+        if self.lines:
+            stage_lines.plot(self.job, self.lines, panel(figure, LEFT, self.tops[0], ACROSS, stage_lines.HEIGHT))
+        if self.rows:
+            wide = WIDTH - _SECTION_LEFT - RIGHT
+            ax = panel(figure, _SECTION_LEFT, self.tops[1], wide, stage_stresses.height(self.rows))
+            stage_stresses.plot(self.job, self.rows, ax)
 
 
 def _said(combination: Mapping[str, Any], factors: Mapping[str, float], governs: bool) -> list[str]:

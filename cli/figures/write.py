@@ -100,7 +100,7 @@ def _figures(command: str, data: Mapping[str, Any], job: Any, every: bool, analy
 
         combinations = data["combinations"]
         governs = governing_combination(combinations)
-        curves = Curves(job.member, analysis)
+        curves = Curves(job.member, analysis, data.get("stage"))
         chosen = range(len(combinations)) if every else (governs,)
         for k in chosen:
-            yield pages.deflect_page(job, curves, combinations[k], k == governs and len(combinations) > 1)
+            yield pages.deflect_page(job, curves, combinations[k], k == governs and len(combinations) > 1, data["stages"])

@@ -17,8 +17,8 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from commands import section as section_of
 from catalog_outlines import Ring, half_of_last_digit, moments, outline
+from commands import section as section_of
 
 from fishbelly.catalog.rolled import RolledSection, find_rolled
 

@@ -1,0 +1,186 @@
+"""The governing deflection of a cracked member once more: curvatures by strips, deflection by virtual work.
+
+Forces, cracked places, shear angles and what history left in the parts are taken over; section law, cracking, tension
+stiffening along x and integration are its own. The unit load stands on a simple beam between two supports, or on an
+overhang of one, cut free of everything else: virtual work holds with any forces in balance with it.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fishbelly.member.breakpoints import breakpoints
+from fishbelly.member.cracked_response import CrackedResponse
+from fishbelly.member.cracked_strips import Plane, StripSection, strip_strain
+from fishbelly.member.extremes import largest, values_at
+from fishbelly.member.faults import CannotCompute
+from fishbelly.member.spans import spans
+
+Array = NDArray[np.float64]
+Data = dict[str, Any]
+
+METHOD = "moment and curvature by strips, virtual work; forces taken over"
+AGREES = 1e-6
+"""Difference of the two methods, of the largest deflection, above which the answer is withheld."""
+_GAUSS = np.polynomial.legendre.leggauss(12)
+
+
+def cracked_check(r: CrackedResponse) -> Data | None:
+    """Compute the largest deflection section by section again.
+
+    Parameters
+    ----------
+    r : CrackedResponse
+        A combination that cracks the member.
+
+    Returns
+    -------
+    dict or None
+        As `cross_check` has it; None where the method does not reach: bending in two planes, hinges, no span or
+        overhang of two supports.
+
+    Raises
+    ------
+    CannotCompute
+        When the two methods do not agree.
+    """
+    panels = r.analysis.profile.panels
+    if r.analysis.planes > 1 or r.analysis.member.hinges or not r.phases:
+        return None
+    both = [(s, largest(panels, s * r.total.deflection[0])) for s in (1.0, -1.0)]
+    sign, top = max(both, key=lambda pair: pair[1].value)
+    if not top.value > 0.0:
+        return None
+    held = next((s for s in spans(r.analysis.member, r.combined.lifted) if s.start <= top.at <= s.end), None)
+    if held is None or held.overhang:
+        return None
+    value, size = _deflection(r, held.start, held.end, top.at), abs(top.value)
+    difference = abs(value - sign * top.value) / size
+    if not difference <= AGREES:
+        raise CannotCompute(
+            f"the second method gives {value:.9g} m at x = {top.at:.6g} m in {r.combined.combination.name}, the first "
+            f"{sign * top.value:.9g} m: difference {difference:.1e} of the largest deflection"
+        )
+    return {
+        "method": METHOD,
+        "at": top.at,
+        "value": value,
+        "difference": difference,
+        "error": AGREES,
+        "equilibrium": _residual(r),
+        "work": None,
+    }
+
+
+def _residual(r: CrackedResponse) -> float:
+    """Reactions plus loads, down, over the sum of their sizes."""
+    panels = r.analysis.profile.panels
+    factors = np.asarray(sum(s.factors for s in r.combined.shares))
+    loads = np.array([panels.integrate(a.q[0])[1].sum() + a.P[0].sum() for a in r.analysis.loads])
+    reactions = r.total.reactions[:, 0]
+    size = float(np.abs(loads) @ np.abs(factors) + np.abs(reactions).sum())
+    return abs(float(loads @ factors + reactions.sum())) / size if size else 0.0
+
+
+def _deflection(r: CrackedResponse, start: float, end: float, at: float) -> float:
+    """Deflection at a place between two supports, their own movements taken over."""
+    panels, length = r.analysis.profile.panels, end - start
+    borders = [x for x in breakpoints(r.analysis.member) if start < x < end]
+    borders += [x for pair in r.stretches for x in pair if start < x < end]
+    cuts = np.unique([start, *borders, at, end])
+    cuts = np.concatenate((cuts, 0.5 * (cuts[1:] + cuts[:-1])))
+    cuts.sort()
+    half, middle = 0.5 * np.diff(cuts)[:, None], 0.5 * (cuts[1:] + cuts[:-1])[:, None]
+    x, dx = (middle + half * _GAUSS[0]).ravel(), (half * _GAUSS[1]).ravel()
+    moment = np.where(x < at, (x - start) * (end - at), (end - x) * (at - start)) / length
+    shear = np.where(x < at, end - at, -(at - start)) / length
+    slid = values_at(panels, r.total.shear[0], x)
+    work = _Work(r)
+    bent = np.array([work.curvature(float(place)) for place in x])
+    ends = [float(values_at(panels, r.total.deflection[0], np.array([p]), s)[0]) for p, s in ((start, "right"), (end, "left"))]
+    chord = ends[0] + (ends[1] - ends[0]) * (at - start) / length
+    return chord + float((moment * bent + shear * slid) @ dx)
+
+
+@dataclass(eq=False)
+class _Work:
+    r: CrackedResponse
+    _sections: dict[bytes, StripSection] = field(default_factory=dict)
+    _known: dict[tuple[int, float, int], Plane] = field(default_factory=dict)
+
+    def curvature(self, x: float) -> float:
+        """Curvature at a place, cracked or not, by strips."""
+        solved = self.r.phases[-1]
+        law, r, frame = solved.law, self.r.total, self.r.analysis.frame
+        panels = self.r.analysis.profile.panels
+        at = np.array([x])
+        N, M = (float(values_at(panels, v, at)[0]) for v in (r.N, r.M[0]))
+        section = self._section(x)
+        first = self._strain(section, 0, x, N, M - N * float(frame.line[0]))
+        if not any(a < x < b for a, b in self.r.stretches):
+            return first[1]
+        second = self._strain(section, 1, x, N, M - N * float(frame.line[0]))
+        if law.stiffening is None:
+            return second[1]
+        over = self._over(section, first, self._free(0, x))
+        growth = second[1] / first[1] if first[1] else 1.0
+        zeta = float(law.stiffening.zeta(1.0 / over if over > 0.0 else np.inf, growth))
+        return (1.0 - zeta) * first[1] + zeta * second[1]
+
+    def _section(self, x: float) -> StripSection:
+        made = StripSection.at(self.r.analysis.member, x)
+        key = b"".join(e.tobytes() for e in made.loops) + bytes(str(made.parts), "ascii")
+        return self._sections.setdefault(key, made)
+
+    def _strain(self, section: StripSection, state: int, x: float, N: float, M: float) -> Plane:
+        law = self.r.phases[-1].law
+        free = self._free(state, x)
+        brittle = law.never | (frozenset(law.cracking) if state else frozenset())
+        E = self._moduli(section, x)
+        if free or abs(N) * float(np.ptp(section.levels)) > 1e-9 * abs(M) or not M:
+            return strip_strain(section, E, brittle, free, N, M)
+        # without axial force and free strain, strains grow with the moment
+        key = (id(section), float(np.sign(M)), state)
+        if key not in self._known or law.never or self._runs_in:
+            self._known[key] = strip_strain(section, E, brittle, free, 0.0, float(np.sign(M)))
+        e0, k = self._known[key]
+        return e0 * abs(M), k * abs(M)
+
+    @property
+    def _runs_in(self) -> bool:
+        return any(any(p.run_in) for p in self.r.analysis.member.parts)
+
+    def _moduli(self, section: StripSection, x: float) -> Array:
+        E = self.r.phases[-1].law.moduli.E.copy()
+        if self._runs_in:
+            profile, at = self.r.analysis.profile, np.array([x])
+            for i in section.parts:
+                E[i] = float(values_at(profile.panels, profile.part_modulus(i, E), at)[0])
+        return E
+
+    def _free(self, state: int, x: float) -> Mapping[int, Plane]:
+        """Free strain of the parts, e + a z, what history left counted."""
+        law, panels = self.r.phases[-1].law, self.r.analysis.profile.panels
+        line = float(self.r.analysis.frame.line[0])
+        found = {}
+        for part, planes in law.free[state].items():
+            v = values_at(panels, planes, np.array([x]))[:, 0]
+            if np.any(v):
+                found[part] = (float(v[0] - v[1] * line), float(v[1]))
+        return found
+
+    def _over(self, section: StripSection, strain: Plane, free: Mapping[int, Plane]) -> float:
+        """Largest tension over the stress at which a part cracks, at the ends of the parts."""
+        law, most = self.r.phases[-1].law, -np.inf
+        for k, i in enumerate(section.parts):
+            if i in law.cracking:
+                e, a = free.get(i, (0.0, 0.0))
+                levels = section.levels[[section.slabs[0, k].nonzero()[0][0], section.slabs[0, k].nonzero()[0][-1] + 1]]
+                stress = law.moduli.E[i] * (strain[0] - e + (-strain[1] - a) * levels)
+                most = max(most, float(stress.max()) / law.cracking[i])
+        return most
