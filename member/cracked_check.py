@@ -92,15 +92,15 @@ def _deflection(r: CrackedResponse, start: float, end: float, at: float) -> floa
     panels, length = r.analysis.profile.panels, end - start
     borders = [x for x in breakpoints(r.analysis.member) if start < x < end]
     borders += [x for pair in r.stretches for x in pair if start < x < end]
+    work = _Work(r)
     cuts = np.unique([start, *borders, at, end])
-    cuts = np.concatenate((cuts, 0.5 * (cuts[1:] + cuts[:-1])))
-    cuts.sort()
+    cuts = np.unique((*cuts, *work.kinks(cuts)))
+    cuts = np.unique((*cuts, *(0.5 * (cuts[1:] + cuts[:-1]))))
     half, middle = 0.5 * np.diff(cuts)[:, None], 0.5 * (cuts[1:] + cuts[:-1])[:, None]
     x, dx = (middle + half * _GAUSS[0]).ravel(), (half * _GAUSS[1]).ravel()
     moment = np.where(x < at, (x - start) * (end - at), (end - x) * (at - start)) / length
     shear = np.where(x < at, end - at, -(at - start)) / length
     slid = values_at(panels, r.total.shear[0], x)
-    work = _Work(r)
     bent = np.array([work.curvature(float(place)) for place in x])
     ends = [float(values_at(panels, r.total.deflection[0], np.array([p]), s)[0]) for p, s in ((start, "right"), (end, "left"))]
     chord = ends[0] + (ends[1] - ends[0]) * (at - start) / length
@@ -113,18 +113,50 @@ class _Work:
     _sections: dict[bytes, StripSection] = field(default_factory=dict)
     _known: dict[tuple[int, float, int], Plane] = field(default_factory=dict)
 
+    def forces(self, x: float) -> tuple[float, float]:
+        """Axial force and moment about the datum line."""
+        r, panels, at = self.r.total, self.r.analysis.profile.panels, np.array([x])
+        N, M = (float(values_at(panels, v, at)[0]) for v in (r.N, r.M[0]))
+        return N, M - N * float(self.r.analysis.frame.line[0])
+
+    def kinks(self, cuts: Array) -> list[float]:
+        """Places in stretches that other loads have cracked, from which on this one's tension stiffening counts."""
+        law = self.r.phases[-1].law
+        if law.stiffening is None or self.r.stretches == self.r.own:
+            return []
+        level, found = law.stiffening.starts_at, []
+        for a, b in zip(cuts[:-1], cuts[1:], strict=True):
+            inset = 1e-9 * (b - a)
+            low, high = float(a + inset), float(b - inset)
+            ends = [self.over(x) - level for x in (low, high)]
+            if ends[0] * ends[1] >= 0.0 or not any(p < 0.5 * (a + b) < q for p, q in self.r.stretches):
+                continue
+            for _ in range(40):
+                x = low + (high - low) * ends[0] / (ends[0] - ends[1])
+                value = self.over(x) - level
+                if abs(value) < 1e-9 or high - low < inset:
+                    break
+                # the end that stays counts half: both ends then close in
+                if value * ends[1] < 0.0:
+                    low, ends = high, [ends[1], value]
+                else:
+                    ends = [0.5 * ends[0], value]
+                high = x
+            found.append(x)
+        return found
+
+    def over(self, x: float) -> float:
+        """Largest tension over the stress at which a part cracks, uncracked."""
+        section = self._section(x)
+        return self._over(section, self._strain(section, 0, x, *self.forces(x)), self._free(0, x))
+
     def curvature(self, x: float) -> float:
         """Curvature at a place, cracked or not, by strips."""
-        solved = self.r.phases[-1]
-        law, r, frame = solved.law, self.r.total, self.r.analysis.frame
-        panels = self.r.analysis.profile.panels
-        at = np.array([x])
-        N, M = (float(values_at(panels, v, at)[0]) for v in (r.N, r.M[0]))
-        section = self._section(x)
-        first = self._strain(section, 0, x, N, M - N * float(frame.line[0]))
+        law, forces, section = self.r.phases[-1].law, self.forces(x), self._section(x)
+        first = self._strain(section, 0, x, *forces)
         if not any(a < x < b for a, b in self.r.stretches):
             return first[1]
-        second = self._strain(section, 1, x, N, M - N * float(frame.line[0]))
+        second = self._strain(section, 1, x, *forces)
         if law.stiffening is None:
             return second[1]
         over = self._over(section, first, self._free(0, x))
