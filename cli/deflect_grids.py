@@ -162,8 +162,8 @@ def _checks(title: str, what: str, rows: Sequence[Row]) -> Grid:
         for name, get, optional in (
             ("allowed", "allowed", False),
             ("found", "found", False),
-            ("low E", lambda c: c.get("band", {}).get("low"), True),
-            ("high E", lambda c: c.get("band", {}).get("high"), True),
+            ("band low", lambda c: c.get("band", {}).get("low"), True),
+            ("band high", lambda c: c.get("band", {}).get("high"), True),
         )
     ]
     return Grid(

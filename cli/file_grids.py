@@ -64,8 +64,8 @@ def answers(data: Row) -> Grid:
         column(rows, "down", "deflection", entry("deflection", "down", "value")),
         column(rows, "down at x", "position", entry("deflection", "down", "at")),
         column(rows, "shear part", "deflection", entry("deflection", "down", "shear_part")),
-        column(rows, "down, low E", "deflection", band("low"), optional=True),
-        column(rows, "down, high E", "deflection", band("high"), optional=True),
+        column(rows, "down, band low", "deflection", band("low"), optional=True),
+        column(rows, "down, band high", "deflection", band("high"), optional=True),
     ]
     for title, what, group, name in (
         ("up", "deflection", "deflection", "up"),

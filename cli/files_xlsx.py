@@ -17,6 +17,7 @@ from fishbelly.cli.format_quantity import format_position
 from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
 from fishbelly.cli.joint_grids import fastening, joint_flows, joints
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
+from fishbelly.cli.slip_grids import slip_bounds, slip_gamma, slip_joints
 from fishbelly.cli.tables import SECTION_AXES, STIFFNESS_AXES
 from fishbelly.cli.tables_deflect import AXES
 from fishbelly.cli.without_grids import deflect_beside, section_beside, stiffness_beside
@@ -110,6 +111,7 @@ def _beside(data: dict[str, Any]) -> list[Grid]:
     return [
         *(per_combination(data, title, make) for title, make in made),
         *_fastening(data),
+        *_slips(data),
         *_titled(deflect_beside(data)),
     ]
 
@@ -119,6 +121,14 @@ def _fastening(data: dict[str, Any]) -> list[Grid]:
     pairs = [(c["name"], fastening(c, deflect_grids.noise_of(c, data["length"]))) for c in data["combinations"]]
     there = [(name, grid) for name, grid in pairs if grid is not None]
     return [joined("Fastening", there)] if there else []
+
+
+def _slips(data: dict[str, Any]) -> list[Grid]:
+    """Joints that slip, both bounds and the gamma-method, where anything slips."""
+    if not any(c.get("slip") for c in data["combinations"]):
+        return []
+    made = (("Joints that slip", slip_joints), ("Both bounds", slip_bounds), ("Gamma-method", slip_gamma))
+    return [per_combination(data, title, make) for title, make in made]
 
 
 def _titled(grids: list[Grid]) -> list[Grid]:

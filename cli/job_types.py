@@ -227,10 +227,12 @@ class YesNo(Reader):
 
 
 class Many(Reader):
-    """A list of one thing; with `one`, a single one may stand alone. Read as a tuple."""
+    """A list of one thing; with `one`, a single one may stand alone, with `empty` none at all. Read as a tuple."""
 
-    def __init__(self, item: Reader, words: str, *, one: bool = False, count: int | None = None) -> None:
-        self.item, self.words, self.one, self.count = item, words, one, count
+    def __init__(
+        self, item: Reader, words: str, *, one: bool = False, count: int | None = None, empty: bool = False
+    ) -> None:
+        self.item, self.words, self.one, self.count, self.empty = item, words, one, count, empty
         several: dict[str, Any] = {"type": "array", "items": item.schema, "minItems": count or 1}
         self.schema = {"anyOf": [item.schema, several]} if one else several
         if count is not None:
@@ -240,7 +242,7 @@ class Many(Reader):
         """Read the list."""
         if self.one and not isinstance(value, list):
             return (self.item.read(value),)
-        if not isinstance(value, list) or not value or (self.count is not None and len(value) != self.count):
+        if not isinstance(value, list) or not (value or self.empty) or (self.count is not None and len(value) != self.count):
             raise ill(self.words, value)
         return tuple(gather(value, self.item.read))
 

@@ -7,6 +7,7 @@ from fishbelly.cli.job_schema import DIALECT
 from fishbelly.cli.result_schema_cracked import cracked_schema
 from fishbelly.cli.result_schema_joints import joints_schema
 from fishbelly.cli.result_schema_section import twist_schema
+from fishbelly.cli.result_schema_slip import slip_schema
 from fishbelly.cli.result_schema_stages import stages_schema
 from fishbelly.cli.result_schema_trade import trade_schema, width_schema
 from fishbelly.cli.result_schema_without import (
@@ -136,7 +137,7 @@ def _stiffness() -> Schema:
 
 
 _BAND = {
-    "band": _object("with E at the low and the high end of its band", {k: _maybe(_number(k)) for k in ("low", "high")})
+    "band": _object("with E, and joint stiffness, at the low and the high end of its band", {k: _maybe(_number(k)) for k in ("low", "high")})
 }
 
 
@@ -319,7 +320,8 @@ def _combination() -> Schema:
             "envelope": _envelope(),
             "lifted": _list("names of the bearings that have lifted off", {"type": "string"}),
             "cracked": cracked_schema(),
-        },
+        }
+        | slip_schema(),
     )
 
 

@@ -10,7 +10,7 @@ AT = number("place along the member", "m")
 def cracked_schema() -> Schema:
     """Return the schema of ``cracked`` in a combination."""
     deepest = {"value": number("largest deflection by size, downwards positive", "m"), "at": AT}
-    section = {
+    section: dict[str, Schema] = {
         "at": AT,
         "M": number("moment there", "N m"),
         "M_cracking": number("moment at which it cracks", "N m"),
@@ -18,7 +18,7 @@ def cracked_schema() -> Schema:
         "I_cracked": number("cracked, bars counted", "m4"),
         "I_effective": number("by the rule", "m4"),
     }
-    span = {
+    span: dict[str, Schema] = {
         "span": {"type": ["integer", "string"], "description": "its number, or left or right overhang"},
         "I_effective": number("the one value of the span", "m4"),
         "sections": array("its critical sections", record("a section", section)),
@@ -28,7 +28,7 @@ def cracked_schema() -> Schema:
         deepest,
         {"spans": array("spans", record("a span", span)), "zeta": number("share of the cracked state"), "section": AT},
     )
-    closed = {
+    closed: dict[str, Schema] = {
         "status": {"enum": ["closed", "cracks held"], "description": "how equilibrium closed"},
         "rounds": {"type": "integer", "description": "linear solutions in all"},
         "residual": number("change of the forces in the last round against the largest"),

@@ -115,7 +115,7 @@ def _deflections(rows: Sequence[Row], noise: float, across: bool) -> Grid:
         return None if found is None else found["value"]
 
     moved = [
-        column(rows, "so far", "deflection", lambda r: (_largest(r) or {}).get("value"), noise=noise),
+        column(rows, "so far", "deflection", lambda r: (_largest(r) or {}).get("value", 0.0), noise=noise),
         column(rows, "adds", "deflection", lambda r: r["own"]["deflection"], noise=noise),
         column(rows, "no creep", "deflection", quick, optional=True, noise=noise),
     ]

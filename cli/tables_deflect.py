@@ -11,6 +11,7 @@ from fishbelly.cli.cautions import LINE
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
 from fishbelly.cli.joint_grids import fastening, joint_flows, joints
+from fishbelly.cli.slip_grids import slip_lines
 from fishbelly.cli.stage_grids import stage_tables, staged, story
 from fishbelly.cli.station_choice import chosen
 from fishbelly.cli.text_table import clean, fits, paragraph, render, shown_width
@@ -89,6 +90,7 @@ def _combination(c: Row, length: float, style: str, listed: bool, earlier: Seque
             lines += [*_headed(grid if explained else replace(grid, note=""), style), ""]
             if grid.title.startswith("Limits of deflection"):
                 lines += _sources(c, earlier)
+    lines += slip_lines(c, noise, style, explained)
     if c.get("cross_check") is not None:
         lines += [*_second_method(c["cross_check"], noise, style), ""]
     return [*lines, *_stations(c, noise, style, listed), ""]
@@ -179,7 +181,7 @@ def _shear_share(entry: Row, noise: grids.Noise, style: str) -> str:
 def _band(entry: Row, scale: float, style: str) -> str:
     values = (entry["band"]["low"], entry["value"], entry["band"]["high"])
     numbers = [format_number(v, "deflection", style, scale=scale) for v in values]  # type: ignore[arg-type]
-    return f"with E low / nominal / high: {' / '.join(numbers)} {unit_label('deflection', style)}"  # type: ignore[arg-type]
+    return f"with low / nominal / high stiffness: {' / '.join(numbers)} {unit_label('deflection', style)}"  # type: ignore[arg-type]
 
 
 def _checked(checks: Sequence[Row]) -> str:

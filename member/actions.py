@@ -64,6 +64,8 @@ class Actions:
         Transverse forces, forces along x [N] and couples about the analysis line [N m] at the borders.
     free : tuple of Load
         Loads that give free strain.
+    opened : ndarray, shape (K + 1,), optional
+        Moment at borders with a hinge that opens there and goes [N m].
     """
 
     q: Array
@@ -73,6 +75,7 @@ class Actions:
     F: Array
     C: Array
     free: tuple[Load, ...] = ()
+    opened: Array | None = None
 
 
 @dataclass(frozen=True, eq=False)

@@ -245,7 +245,8 @@ class Analysis:
             def law(moduli: Moduli, _: str) -> ElasticLaw:
                 return ElasticLaw.of(frame, moduli, planes, shear)
 
-        return Setting(view, frame, place, mine, lasting, law, aged, softened, tie, self._homes)
+        short = mine if stage is None else self.moduli(replace(key, stage=k))
+        return Setting(view, frame, place, mine, short, lasting, law, aged, softened, tie, self._homes)
 
     @cached_property
     def _homes(self) -> dict[str, Frame]:

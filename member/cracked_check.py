@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from itertools import pairwise
 from typing import Any
 
 import numpy as np
@@ -102,7 +103,10 @@ def _deflection(r: CrackedResponse, start: float, end: float, at: float) -> floa
     shear = np.where(x < at, end - at, -(at - start)) / length
     slid = values_at(panels, r.total.shear[0], x)
     bent = np.array([work.curvature(float(place)) for place in x])
-    ends = [float(values_at(panels, r.total.deflection[0], np.array([p]), s)[0]) for p, s in ((start, "right"), (end, "left"))]
+    ends = [
+        float(values_at(panels, r.total.deflection[0], np.array([p]), s)[0])
+        for p, s in ((start, "right"), (end, "left"))
+    ]
     chord = ends[0] + (ends[1] - ends[0]) * (at - start) / length
     return chord + float((moment * bent + shear * slid) @ dx)
 
@@ -125,7 +129,7 @@ class _Work:
         if law.stiffening is None or self.r.stretches == self.r.own:
             return []
         level, found = law.stiffening.starts_at, []
-        for a, b in zip(cuts[:-1], cuts[1:], strict=True):
+        for a, b in pairwise(cuts):
             inset = 1e-9 * (b - a)
             low, high = float(a + inset), float(b - inset)
             ends = [self.over(x) - level for x in (low, high)]

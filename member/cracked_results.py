@@ -86,24 +86,33 @@ def _asked(analysis: Analysis) -> bool:
 
 
 def _unbuilt(analysis: Analysis) -> bool:
-    return len(analysis.views) > 1 or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
+    return (
+        len(analysis.views) > 1 or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
+    )
 
 
-def _case(r: CrackedResponse, rule: str | None) -> CrackedCase:
+def _case(r: CrackedResponse, rule: str | None, band: str = "nominal") -> CrackedCase:
     combination = r.combined.combination
     everywhere: CrackedResponse | None
     try:
-        everywhere = cracked_response(r.analysis, combination, everywhere=True)
+        everywhere = cracked_response(r.analysis, combination, band=band, everywhere=True)
     except CannotCompute:
         everywhere = None
     if rule in (None, EN):
         return CrackedCase(r, rule, None, r.combined, bending_alone(r, rule), everywhere)
     assert rule is not None
-    one = one_value(r.analysis, combination, rule)
+    one = one_value(r.analysis, combination, rule, band)
+    bent = one_value(r.analysis, combination, rule, band, shear=False).response
     chosen = Combined(
         combination, r.combined.shares, r.combined.lifted, r.combined.patterns, one.response, r.combined.upto
     )
-    return CrackedCase(r, rule, one, chosen, one_value(r.analysis, combination, rule, shear=False).response, everywhere)
+    return CrackedCase(r, rule, one, chosen, bent, everywhere)
+
+
+def in_band(case: CrackedCase, band: str) -> CrackedCase:
+    """Return the same combination at the low or high end of the materials' bands, places cracked so far held."""
+    held = case.along.stretches if case.analysis.member.cracks == "history" else ()
+    return _case(cracked_response(case.analysis, case.chosen.combination, case.rule, held, band), case.rule, band)
 
 
 def pieces_of(case: CrackedCase) -> Pieces:
@@ -124,6 +133,8 @@ def pieces_of(case: CrackedCase) -> Pieces:
 
 def cracked_stresses(case: CrackedCase) -> tuple[PartStress, ...]:
     """Extreme stresses of every part: at a crack where the member is cracked, without tension stiffening."""
+    if not case.along.phases:
+        return ()
     solved = case.along.phases[-1]
     law, state = solved.law, solved.closed.state
     analysis, mask = case.analysis, solved.law.mask
@@ -136,8 +147,8 @@ def cracked_stresses(case: CrackedCase) -> tuple[PartStress, ...]:
         second = np.where(np.isfinite(state.cracked.plane), state.cracked.plane, 0.0)
         plane = np.where(mask, law.stress(index, second, 1), first)
         none = (mask if index in brittle else np.zeros_like(mask)) | (index in law.never)
-        peaks = [_peak(case, index, plane, none, sign) for sign in (1.0, -1.0)]
-        found.append(PartStress(part.name, *peaks))
+        high, low = (_peak(case, index, plane, none, sign) for sign in (1.0, -1.0))
+        found.append(PartStress(part.name, high, low))
     size = max((abs(p.value) for s in found for p in (s.highest, s.lowest) if p is not None), default=0.0)
     return tuple(PartStress(s.part, _told(s.highest, size), _told(s.lowest, size)) for s in found)
 
@@ -181,14 +192,10 @@ def cracked_data(case: CrackedCase) -> Data:
         },
         "uncracked": _deepest(r.uncracked, case.analysis),
         "along": _deepest(r.total, case.analysis),
-        "everywhere": None
-        if case.everywhere is None
-        else _deepest(case.everywhere.total, case.everywhere.analysis),
+        "everywhere": None if case.everywhere is None else _deepest(case.everywhere.total, case.everywhere.analysis),
     }
     if case.one is not None:
-        data["one_value"] = _deepest(case.one.response, case.analysis) | {
-            "spans": [_span(s) for s in case.one.spans]
-        }
+        data["one_value"] = _deepest(case.one.response, case.analysis) | {"spans": [_span(s) for s in case.one.spans]}
     elif case.rule == EN and case.everywhere is not None:
         data["one_value"] = _between(case, case.everywhere)
     return data

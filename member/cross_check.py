@@ -19,8 +19,10 @@ from fishbelly.member.profile import Profile
 from fishbelly.member.second_loads import LoadShare
 from fishbelly.member.second_method import SecondResult, second_method
 from fishbelly.member.second_sections import Slide
-from fishbelly.member.second_stages import ModuliOf, StagedShare, staged_method
+from fishbelly.member.second_shares import ModuliOf, StagedShare
+from fishbelly.member.second_stages import staged_method
 from fishbelly.member.section_law import SLIDE_SIGNS
+from fishbelly.member.shear_sets import shear_of_parts
 from fishbelly.member.slip_layers import has_soft_joints, layers_of
 
 Array = NDArray[np.float64]
@@ -142,7 +144,10 @@ def _staged(analysis: Analysis, combined: Combined, share: Share) -> StagedShare
 
     def slide(which: ModuliOf) -> Slide:
         wanted = replace(key, stage=which.stage, long_term=which.long_term, own=which.own, aged=which.aged)
-        return _slide(analysis.frames[which.stage].profile, analysis.moduli(wanted))
+        profile = analysis.frames[which.stage].profile
+        if which.parts is not None:
+            return _along(profile, shear_of_parts(profile, which.parts, analysis.moduli(wanted)))
+        return _slide(profile, analysis.moduli(wanted))
 
     return StagedShare(
         _factors(combined, key),
@@ -175,10 +180,14 @@ def _only(analysis: Analysis, key: ModuliKey) -> Callable[[Load | Support], bool
 
 def _slide(profile: Profile, moduli: Moduli) -> Slide:
     """1/GA along x, taken over from the first method."""
+    return _along(profile, (SLIDE_SIGNS * profile.shear_flexibility(moduli))[:, profile.row])
+
+
+def _along(profile: Profile, fields: Array) -> Slide:
+    """1/GA of each plane (3, K, n) as a function of x."""
 
     def slide(x: Array, plane: int) -> Array:
-        field = (SLIDE_SIGNS * profile.shear_flexibility(moduli))[plane][profile.row]
-        return values_at(profile.panels, field, np.asarray(x, dtype=float))
+        return values_at(profile.panels, fields[plane], np.asarray(x, dtype=float))
 
     return slide
 

@@ -13,7 +13,7 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.carried import PartForce, part_force
 from fishbelly.member.contacts import contacts
 from fishbelly.member.cut_offs import CutOff, cut_offs
-from fishbelly.member.description import Combination, Joined, Member
+from fishbelly.member.description import Combination, Member, Part
 from fishbelly.member.extremes import largest
 from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading
@@ -81,12 +81,12 @@ def _joint(
         fields = {"M": p.M, "V": p.V, "force": force.N, "shear": shear, "couple": force.M[0], "flow": force.flow}
         entry: Data = {"x": x} | {key: worst(inside(panels, field, k, name)) for key, field in fields.items()}
         entry["flow"] = _settled(entry["flow"], force, member.length)
-        entry["per_fastener"] = _per_fastener(joined, entry["flow"])
-        data[name] = entry | _fastening(joined, entry["force"]) | _cut_off(joined, force, panels, cut, name, entry)
-    data["flow"] = {"max": _largest_flow(panels, force, joined, member.length)}
+        entry["per_fastener"] = _per_fastener(part, entry["flow"])
+        data[name] = entry | _fastening(part, entry["force"]) | _cut_off(part, force, panels, cut, name, entry)
+    data["flow"] = {"max": _largest_flow(panels, force, part, member.length)}
     if joined is not None and joined.capacity is not None:
         most = abs(data["flow"]["max"]["value"])
-        data["flow"]["largest_pitch"] = joined.capacity * joined.rows / most if most > 0.0 else None
+        data["flow"]["largest_pitch"] = joined.capacity * side_by_side(part) / most if most > 0.0 else None
     return data
 
 
@@ -112,45 +112,55 @@ def _settled(flow: float, force: PartForce, length: float) -> float:
     return flow if abs(flow) > _STEADY * size / length else 0.0
 
 
-def _largest_flow(panels: Panels, force: PartForce, joined: Joined | None, length: float) -> Data:
+def _largest_flow(panels: Panels, force: PartForce, part: Part, length: float) -> Data:
     both = [(s, largest(panels, s * force.flow, force.first, force.stop)) for s in (1.0, -1.0)]
     # of equal ones the left
     sign, found = max(both, key=lambda b: b[1].value)
     if abs(both[0][1].value - both[1][1].value) <= _SAME * found.value:
         sign, found = min(both, key=lambda b: b[1].at)
     value = _settled(sign * found.value, force, length) + 0.0
-    return {"value": value, "at": found.at} | ({} if joined is None else {"per_fastener": _per_fastener(joined, value)})
+    return {"value": value, "at": found.at} | (
+        {} if part.joined is None else {"per_fastener": _per_fastener(part, value)}
+    )
 
 
-def _per_fastener(joined: Joined | None, flow: float) -> float | None:
-    if joined is None or joined.pitch is None:
+def side_by_side(part: Part) -> int:
+    """Fasteners at one place along a joint: its rows, of both copies where the part is a pair."""
+    assert part.joined is not None
+    return part.joined.rows * (2 if part.pair else 1)
+
+
+def _per_fastener(part: Part, flow: float) -> float | None:
+    if part.joined is None or part.joined.pitch is None:
         return None
-    return flow * joined.pitch / joined.rows
+    return flow * part.joined.pitch / side_by_side(part)
 
 
-def _fastening(joined: Joined | None, force: float) -> Data:
+def _fastening(part: Part, force: float) -> Data:
     """Fasteners needed to bring a force in, and the length they, or the weld, take for it at the given pitch."""
+    joined = part.joined
     if joined is None or (joined.capacity is None and joined.weld is None):
         return {}
     data: Data = {}
     if joined.capacity is not None:
         data["needed"] = math.ceil(abs(force) / joined.capacity - _WHOLE)
-    data["zone"] = anchorage(joined, force)
+    data["zone"] = anchorage(part, force)
     return data
 
 
-def anchorage(joined: Joined, force: float) -> float:
+def anchorage(part: Part, force: float) -> float:
     """Length of joint that brings a force in: whole rows of fasteners at their pitch, or weld [m]."""
+    joined = part.joined
+    assert joined is not None
     if joined.weld is not None:
         return abs(force) / joined.weld
     assert joined.capacity is not None and joined.pitch is not None
-    return math.ceil(abs(force) / (joined.capacity * joined.rows) - _WHOLE) * joined.pitch
+    return math.ceil(abs(force) / (joined.capacity * side_by_side(part)) - _WHOLE) * joined.pitch
 
 
-def _cut_off(
-    joined: Joined | None, force: PartForce, panels: Panels, cut: CutOff | None, end: str, entry: Data
-) -> Data:
+def _cut_off(part: Part, force: PartForce, panels: Panels, cut: CutOff | None, end: str, entry: Data) -> Data:
     """Theoretical cut-off of one end, and where the part then has to run to."""
+    joined = part.joined
     if cut is None:
         return {}
     x = cut.start if end == "start" else cut.end
@@ -159,7 +169,7 @@ def _cut_off(
         data["run_to"] = None
         if x is not None:
             carried = _force_at(force, panels, x, entry["force"])
-            length = anchorage(joined, carried)
+            length = anchorage(part, carried)
             data["run_to"] = x - length if end == "start" else x + length
     return data
 

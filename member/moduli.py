@@ -97,4 +97,6 @@ def _shear(material: Material, band: str) -> float:
 def has_band(member: Member) -> bool:
     """Whether any material has a band of E, or any joint one of its stiffness."""
     joined = (p.joined for p in member.parts)
-    return any(m.band is not None for m in member.materials) or any(j is not None and j.band is not None for j in joined)
+    return any(m.band is not None for m in member.materials) or any(
+        j is not None and j.band is not None for j in joined
+    )

@@ -15,8 +15,11 @@ from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
 from fishbelly.member.notes_effective import effective_widths
 from fishbelly.member.notes_joints import joints_full, joints_short
+from fishbelly.member.notes_slip import joints_slip
+from fishbelly.member.notes_stages import creep_in_one_step, idle_parts, one_stage
 from fishbelly.member.notes_twist import twisting
 from fishbelly.member.shortcuts import shortcuts
+from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.member.spans import spans
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.overlap import relation
@@ -79,6 +82,8 @@ def _overlap_area(section: Any, i: int, j: int) -> bool:
 
 def _apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     """Parts that touch without a joint, or do not touch, act together: EI with nothing joined beside it."""
+    if has_soft_joints(analysis.member):
+        return
     worst: tuple[float, float, float, tuple[str, ...], bool] | None = None
     short = analysis.moduli(ModuliKey())
     for group in analysis.profile.groups:
@@ -120,6 +125,8 @@ def _listed(names: Sequence[str]) -> str:
 
 
 def _moduli_apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
+    if has_soft_joints(analysis.member):
+        return
     used = {p.material for p in analysis.member.parts if p.material}
     stiff = sorted((analysis.member.material(n).E, n) for n in used)
     if stiff and stiff[-1][0] > 25.0 * stiff[0][0]:
@@ -131,14 +138,16 @@ def _moduli_apart(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
 
 def _lasting(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     member = analysis.member
-    if any(share for c in member.combinations for share in c.sustained.values()):
+    if analysis.creeps:
         return
+    if any(s.long_term for s in member.stages):
+        return
+    crept = {name for s in member.stages for name, phi in s.creep.items() if phi}
+    why = "no combination has a sustained share" + (", no stage lets it creep" if member.stages else "")
     for name in dict.fromkeys(p.material for p in member.parts if p.material):
         material = member.material(name)
-        if material.creep:
-            yield Note(
-                f"{name} creeps, and is used with its short-term modulus alone (no combination has a sustained share)"
-            )
+        if material.creep and name not in crept:
+            yield Note(f"{name} creeps, and is used with its short-term modulus alone ({why})")
 
 
 def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
@@ -161,7 +170,12 @@ def _stressed(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
                         },
                     )
             top = s["max"]
-            if "cracked" not in c and material.cracking is not None and top is not None and top["value"] > material.cracking:
+            if (
+                "cracked" not in c
+                and material.cracking is not None
+                and top is not None
+                and top["value"] > material.cracking
+            ):
                 yield Note(
                     f"{s['part']}: tension {{found}} at x = {{at}} is above the cracking stress {{limit}} "
                     f"in {c['name']}, and is counted as uncracked",
@@ -295,15 +309,18 @@ def _tiny(value: float) -> str:
 
 NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _cases,
+    idle_parts,
     _overlaps,
     _copies,
     _apart,
     _moduli_apart,
     _lasting,
+    creep_in_one_step,
     _stressed,
     cracked_notes,
     joints_short,
     joints_full,
+    joints_slip,
     effective_widths,
     _inclined,
     _deep,
@@ -315,6 +332,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     _large,
     _lifted,
     shortcuts,
+    one_stage,
     _verdict,
 )
 """What may be said, in order; a new note is one function and one line here."""

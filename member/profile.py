@@ -25,7 +25,7 @@ from fishbelly.member.shear_along import ShearAlong
 from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.flanges import flange_moments, working_moments
-from fishbelly.sections.shear_stiffness import ShearStiffness, shear_stiffness
+from fishbelly.sections.shear_stress import ShearStress, shear_stress
 from fishbelly.sections.stiffness import SectionStiffness, section_stiffness
 
 Array = NDArray[np.float64]
@@ -39,7 +39,7 @@ class Group:
     placed: PlacedParts
     composition: Composition
     over_opening: bool
-    _sheared: dict[tuple[int, bool], tuple[Moduli, ShearStiffness]] = field(default_factory=dict, repr=False)
+    _sheared: dict[tuple[int, bool], tuple[Moduli, ShearStress]] = field(default_factory=dict, repr=False)
     _stiff: dict[int, tuple[Moduli, SectionStiffness]] = field(default_factory=dict, repr=False)
 
     def modulus(self, values: Array) -> Array:
@@ -63,14 +63,14 @@ class Group:
             self._stiff[id(moduli)] = (moduli, section_stiffness(self.moments, self.modulus(moduli.E)))
         return self._stiff[id(moduli)][1]
 
-    def shear(self, moduli: Moduli, across: bool = False) -> ShearStiffness:
-        """Shear stiffness along z, or along y, for a set of moduli; computed once."""
+    def shear_stress(self, moduli: Moduli, across: bool = False) -> ShearStress:
+        """Largest shear stresses for V = 1 N along z, or along y, for a set of moduli; computed once."""
         key = (id(moduli), across)
         if key not in self._sheared:
-            self._sheared[key] = (moduli, self._shear(moduli, across))
+            self._sheared[key] = (moduli, self._shear_stress(moduli, across))
         return self._sheared[key][1]
 
-    def _shear(self, moduli: Moduli, across: bool) -> ShearStiffness:
+    def _shear_stress(self, moduli: Moduli, across: bool) -> ShearStress:
         stiffness = self.stiffness(moduli)
         if self.placed.flanges:
             # shear is that of the section as it is cut: the bending that goes with it weighs every part in full
@@ -84,7 +84,7 @@ class Group:
         if not np.all(moduli.G[list(self.placed.index)] > 0.0):
             # without a shear modulus only shear stresses are wanted, and stiffness shares them by E
             G = E
-        return shear_stiffness(section.levels, E, G, stiffness, self.over_opening)
+        return shear_stress(section.levels, E, G, stiffness, self.over_opening)
 
     @cached_property
     def _turned(self) -> Composition:

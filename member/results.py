@@ -13,7 +13,14 @@ from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
 from fishbelly.member.cracked_check import cracked_check
-from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_data, cracked_stresses, pieces_of
+from fishbelly.member.cracked_results import (
+    CrackedCase,
+    cracked_cases,
+    cracked_data,
+    cracked_stresses,
+    in_band,
+    pieces_of,
+)
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Limit, Member
 from fishbelly.member.extremes import Extreme, largest, values_at
@@ -25,8 +32,9 @@ from fishbelly.member.panels import Panels
 from fishbelly.member.part_forces import Loading, loadings
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.places import default_places
-from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.member.response import Response
+from fishbelly.member.result_rows import check_row, stress_row
+from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.member.spans import Span, spans
 from fishbelly.member.stage_results import since, stage_rows
 from fishbelly.member.stage_view import stage_number
@@ -117,7 +125,7 @@ def _deflection_and_stress(analysis: Analysis, combined: Combined, loading: Sequ
     """What every stage tells of a combination."""
     return {
         "deflection": deflections(analysis, combined, p),
-        "stress": [_stress(s) for s in part_stresses(analysis, loading)],
+        "stress": [stress_row(s) for s in part_stresses(analysis, loading)],
     }
 
 
@@ -139,6 +147,15 @@ def _cracked(case: CrackedCase, wanted: list[float] | None) -> Data:
     p = pieces_of(case)
     told = deflections(case.analysis, case.chosen, p, case.bent)
     data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted)
+    if has_band(case.analysis.member):
+        bands = {}
+        for band in ("low", "high"):
+            other = in_band(case, band)
+            p = pieces_of(other)
+            checks = _checks(other.analysis, other.chosen, p, cracked_stresses(other))
+            found = {c.limit: c.found for c in checks}
+            bands[band] = (deflections(other.analysis, other.chosen, p, other.bent), found)
+        _put_band(data, bands)
     return data | {"cross_check": cracked_check(case.along), "cracked": cracked_data(case)}
 
 
@@ -162,8 +179,8 @@ def _told(
         "supports": _supports(analysis, combined, p),
         "ends": _ends(analysis, p, apexes),
         "spans": _spans(analysis, combined, p),
-        "checks": [_check(c) for c in checks],
-        "stress": [_stress(s) for s in stresses],
+        "checks": [check_row(c) for c in checks],
+        "stress": [stress_row(s) for s in stresses],
         "joints": [],
         "cross_check": None,
         "stations": station_rows(analysis, p, apexes, wanted),
@@ -325,33 +342,6 @@ def _fields_of(analysis: Analysis, combined: Combined, limit: Limit, fields: Fie
     return Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined, at))
 
 
-def _check(c: Check) -> Data:
-    data: Data = {
-        "limit": c.limit,
-        "span": c.span,
-        "allowed": c.allowed,
-        "found": c.found,
-        "used": c.used,
-        "ok": c.ok,
-        "at": c.at,
-        "kind": c.kind,
-    }
-    if c.part is not None:
-        data |= {"part": c.part, "z": c.z}
-    if c.source:
-        data["source"] = c.source
-    return data
-
-
-def _stress(s: PartStress) -> Data:
-    data: Data = {"part": s.part}
-    for name, peak in (("max", s.highest), ("min", s.lowest)):
-        data[name] = None if peak is None else {"value": peak.value, "at": peak.at, "z": peak.z}
-    if s.shear is not None:
-        data["shear"] = {"value": s.shear.value, "at": s.shear.at, "z": s.shear.z}
-    return data
-
-
 def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
     """Add what the low and the high end of every material's band of E give, all low or all high together."""
     bands = {}
@@ -364,6 +354,11 @@ def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
         for c in (c for _, each in found for c in each):
             checks[c.limit] = max(c.found, checks.get(c.limit, -np.inf))
         bands[band] = (entries, checks)
+    _put_band(data, bands)
+
+
+def _put_band(data: Data, bands: dict[str, tuple[Data, dict[str, float]]]) -> None:
+    """Put values at both ends of the bands beside deflections and checks."""
     for name, entry in data["deflection"].items():
         if entry is not None:
             entry["band"] = {b: (v[0][name] or {}).get("value") for b, v in bands.items()}

@@ -73,6 +73,8 @@ class Record:
         Stress of each part [Pa].
     creeping, sliding : dict of int to ndarray; ndarray, shape (2, K, n)
         The part of it, and of V, that still creeps.
+    borne : dict of frozenset of int to ndarray, shape (2, K, n)
+        V by the parts that were there when it arrived.
     """
 
     N: Array
@@ -82,6 +84,7 @@ class Record:
     sliding: Array
     stress: Planes = field(default_factory=dict)
     creeping: Planes = field(default_factory=dict)
+    borne: dict[frozenset[int], Array] = field(default_factory=dict)
 
     @classmethod
     def empty(cls, ground: Ground) -> Record:
@@ -92,14 +95,17 @@ class Record:
             np.zeros(shape), np.zeros(two), np.zeros(two), np.zeros((len(ground.member.supports), 5)), np.zeros(two)
         )
 
-    def take(self, step: Solved, E: Array, free: Mapping[int, Array], creeps: bool) -> None:
+    def take(
+        self, step: Solved, E: Array, free: Mapping[int, Array], creeps: bool, parts: frozenset[int] = frozenset()
+    ) -> None:
         """Add what a step did, with moduli E (P,) [Pa] and free strain of parts as planes.
 
-        `creeps`: its stress creeps in later stages.
+        `creeps`: its stress creeps in later stages; `parts` that are there.
         """
         ground = step.ground
         f, s = step.fields, step.strain
         self.N, self.V, self.M = self.N + f.N, self.V + f.V, self.M + f.M
+        self.borne[parts] = self.borne.get(parts, 0.0) + f.V
         if creeps:
             self.sliding = self.sliding + f.V
         strain = np.stack((s.axial, -s.curvature[0], -s.curvature[1]))

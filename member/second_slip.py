@@ -13,17 +13,18 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from fishbelly.member.description import Member
-from fishbelly.member.loads import Axial, Point
+from fishbelly.member.loads import Axial, Point, Prestress, Shrinkage, Temperature
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, free_strain, pushes
 from fishbelly.member.second_method import ROUND_OFF, SecondResult
-from fishbelly.member.second_record import carried, line_moments, lost
+from fishbelly.member.second_record import Planes, carried, line_moments, lost
 from fishbelly.member.second_sections import flexibility
 from fishbelly.member.second_slip_grid import refined_site
 from fishbelly.member.second_slip_layers import Stack
 from fishbelly.member.second_slip_record import SlipRecord
 from fishbelly.member.second_slip_step import Acting, Moved, Problem, not_resolved, sheet
 from fishbelly.member.second_slip_ties import grips_of
-from fishbelly.member.second_stages import Life, ModuliOf, Site, StagedShare, _arriving, _lasting, _moduli, split
+from fishbelly.member.second_shares import ModuliOf, StagedShare, split
+from fishbelly.member.second_stages import Site, _arriving, _lasting, _moduli
 from fishbelly.member.second_statics import frame
 from fishbelly.member.second_step import coupled
 from fishbelly.member.stage_view import StageView
@@ -289,6 +290,16 @@ class SlipLife:
             z = float(ground.centroid[0, k, half] + ground.line[0])
             acting.n[self.stack.at_level(view.parts, float(x), z), k] += put.n[k]
 
-    _free = Life._free
-
-
+    def _free(self, ground: Ground, share: LoadShare) -> Planes:
+        """Free strain of the parts by the loads of a share, as planes about the line."""
+        found: Planes = {}
+        up = ground.sections.about[1] - ground.line[0]
+        for load in ground.member.loads:
+            factor = share.factor(load)
+            if not factor or not isinstance(load, Temperature | Shrinkage | Prestress):
+                continue
+            for k in sorted(ground.works or ()):
+                if ground.member.parts[k].material is not None:
+                    e, lean = free_strain(ground, load, k)
+                    found[k] = found.get(k, 0.0) + factor * np.stack((e - lean * up, lean, np.zeros_like(e)))
+        return found

@@ -108,7 +108,7 @@ def _set_of(border: Border, scale: Scale, ends: tuple[bool, bool]) -> _Set:
         second[border.split] = d + np.arange(int(border.split.sum()))
     count = int(second.max()) + 1
     before, after = np.eye(count)[columns], np.eye(count)[second]
-    rows = [(after[k], 0.0, None) for k in border.blank if ends[1]]
+    rows: list[tuple[Array, float, Held | None]] = [(after[k], 0.0, None) for k in border.blank if ends[1]]
     rows += [(r @ before - s @ after, 0.0, None) for r, s in _scaled_pairs(border.tied, scale.q)]
     spring, pressed = np.zeros((count, count)), np.zeros(count)
     for h in border.held:

@@ -111,7 +111,9 @@ class Stack:
         """Creep factor of every part's material, or that of its own."""
         parts = enumerate(self.member.parts)
         return {
-            k: own.get(p.name, self.member.material(p.material).creep or 0.0) for k, p in parts if p.material is not None
+            k: own.get(p.name, self.member.material(p.material).creep or 0.0)
+            for k, p in parts
+            if p.material is not None
         }
 
     def stiffness(self, band: str) -> Array:

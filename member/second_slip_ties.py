@@ -165,9 +165,7 @@ def _slips(stack: Stack, left: NDArray[np.bool_], right: NDArray[np.bool_], d: i
     return found
 
 
-def _floating(
-    ground: Ground, stack: Stack, there: NDArray[np.bool_], grips: Sequence[Grip]
-) -> list[tuple[int, int]]:
+def _floating(ground: Ground, stack: Stack, there: NDArray[np.bool_], grips: Sequence[Grip]) -> list[tuple[int, int]]:
     """Layers, and the border left of them, of whatever nothing holds along x: one of each group that hangs together."""
     L, K = there.shape
     group = np.arange(L * K).reshape(L, K)
@@ -193,7 +191,7 @@ def _floating(
         if g.what == "hold" and WAYS[g.way] == "along":
             side = g.border - 1 if g.border and there[g.layer, g.border - 1] else min(g.border, K - 1)
             held.add(int(group[g.layer, side]))
-    loose = {}
+    loose: dict[int, tuple[int, int]] = {}
     for at in range(L):
         for k in range(K):
             if there[at, k] and int(group[at, k]) not in held:

@@ -6,21 +6,22 @@ Nothing is shared with the first method but the description, its stages and modu
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from fishbelly.member.description import Member, Support
-from fishbelly.member.loads import Load, Prestress, SelfWeight, Shrinkage, Temperature
+from fishbelly.member.description import Member
+from fishbelly.member.loads import Prestress, SelfWeight, Shrinkage, Temperature
 from fishbelly.member.moduli import moduli
 from fishbelly.member.second_grid import RULE
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, free_strain, pushes
 from fishbelly.member.second_method import ROUND_OFF, SecondResult
 from fishbelly.member.second_record import Planes, Record, carried, line_moments, lost
 from fishbelly.member.second_sections import Sampled, Sections, Slide, flexibility, sample_stages, sections_on
+from fishbelly.member.second_shares import ModuliOf, StagedShare, split
 from fishbelly.member.second_statics import WAYS, Hold, frame, sinks
 from fishbelly.member.second_step import (
     Solved,
@@ -35,45 +36,6 @@ from fishbelly.member.second_step import (
 from fishbelly.member.stage_view import StageView, stage_views
 
 Array = NDArray[np.float64]
-Own = tuple[tuple[str, float], ...]
-
-
-@dataclass(frozen=True)
-class ModuliOf:
-    """Which moduli: of a stage, long-term or not, with own creep factors of parts; "aged", "softened" or neither."""
-
-    stage: int
-    long_term: bool = False
-    own: Own = ()
-    aged: str = ""
-
-
-@dataclass(frozen=True, eq=False)
-class StagedShare:
-    """Loads that go through the stages together.
-
-    Parameters
-    ----------
-    factors : mapping of str to float
-        Factor of each case; a case not named has factor 0.
-    band : {"nominal", "low", "high"}
-        Which end of each material's band.
-    long_term : bool
-        A sustained share: on long-term moduli in every stage; its stress does not creep again.
-    own : tuple of (str, float)
-        Creep factors of single parts that replace the material's, for a sustained share.
-    only : callable, optional
-        Asked for every load and every support that sinks: whether it belongs to this share.
-    slide : callable, optional
-        1/GA for moduli in a stage; without it shear is left out.
-    """
-
-    factors: Mapping[str, float]
-    band: str = "nominal"
-    long_term: bool = False
-    own: Own = ()
-    only: Callable[[Load | Support], bool] | None = None
-    slide: Callable[[ModuliOf], Slide] | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -223,34 +185,6 @@ def _lasting(share: StagedShare, view: StageView) -> ModuliOf:
     return ModuliOf(view.index, share.long_term or (view.stage is not None and view.stage.long_term), share.own)
 
 
-def split(member: Member, shares: Sequence[StagedShare]) -> list[StagedShare]:
-    """Give shrinkage that brings a creep factor of its own into a long-term stage a share of its own."""
-    slow = {case for s in member.stages if s.long_term for case in s.cases}
-    owns = dict.fromkeys(own for load in member.loads if load.case in slow and (own := _own_creep(load)) is not None)
-    found: list[StagedShare] = []
-    for share in shares:
-        if share.long_term or not owns:
-            found.append(share)
-            continue
-        found.append(replace(share, only=_having(share, None, slow)))
-        found += [replace(share, own=(own,), only=_having(share, own, slow)) for own in owns]
-    return found
-
-
-def _own_creep(load: Load | Support) -> tuple[str, float] | None:
-    return (load.part, load.creep) if isinstance(load, Shrinkage) and load.creep is not None else None
-
-
-def _having(share: StagedShare, own: tuple[str, float] | None, slow: set[str]) -> Callable[[Load | Support], bool]:
-    """Tell which loads bring an own creep factor into one of the slow cases; those that bring none where it is None."""
-
-    def belongs(load: Load | Support) -> bool:
-        mine = _own_creep(load) if load.case in slow else None
-        return mine == own and (share.only is None or share.only(load))
-
-    return belongs
-
-
 @dataclass(eq=False)
 class Life:
     """One share of the loads on its way through the stages."""
@@ -306,13 +240,17 @@ class Life:
         for k in gone:
             self._push_back(loads, k)
         opened = {x: m for x in view.hinges if x not in before.hinges and (m := self._moment_at(new, x))}
-        if not (np.any(loads.free) or np.any(loads.jumps) or opened):
+        if self.share.slide is not None:
+            loads = replace(loads, angle=self._bared(view))
+        if not (
+            np.any(loads.free) or np.any(loads.jumps) or opened or (loads.angle is not None and np.any(loads.angle))
+        ):
             return
         which = _lasting(self.share, view)
         solved, E = self._solve(view, which, loads, opened=opened)
         self.record.reactions[gone] = 0.0
         self.record.reactions += reactions_of(solved)
-        self.record.take(solved, E, {}, not which.long_term)
+        self.record.take(solved, E, {}, not which.long_term, view.parts)
         yield solved
 
     def _push_back(self, loads: Pushes, k: int) -> None:
@@ -351,21 +289,43 @@ class Life:
             return
         solved, E = self._solve(view, aged, loads)
         self.record.reactions += reactions_of(solved)
-        self.record.take(solved, E, free, True)
+        self.record.take(solved, E, free, True, view.parts)
         yield solved
 
     def _slid(self, ground: Ground, softened: Slide, short: Slide) -> Array:
         """Shear angle that creeps, V (1/GA softened - 1/GA), shape (2, K, n)."""
-        i, V = ground.intervals, self.record.sliding
+        return self._angle(ground, softened, short, self.record.sliding)
+
+    def _angle(self, ground: Ground, softer: Slide, stiffer: Slide, V: Array) -> Array:
+        """Shear angle V (1/GA softer - 1/GA stiffer), shape (2, K, n)."""
+        i = ground.intervals
         law = flexibility(ground.sections, ground.short)
         both = bool(np.any(V[1])) or coupled(ground, law, Pushes.none(i.x.shape))
         more = [
-            np.asarray(softened(i.x.ravel(), p) - short(i.x.ravel(), p)).reshape(i.x.shape)
+            np.asarray(softer(i.x.ravel(), p) - stiffer(i.x.ravel(), p)).reshape(i.x.shape)
             for p in range(3 if both else 1)
         ]
         if not both:
             return np.stack((more[0] * V[0], np.zeros_like(V[0])))
         return np.stack((more[0] * V[0] + more[2] * V[1], more[1] * V[1] + more[2] * V[0]))
+
+    def _bared(self, view: StageView) -> Array:
+        """Shear angle that V gains as some of the parts on which it arrived go, or are cut, shape (2, K, n)."""
+        assert self.share.slide is not None
+        ground, member = self._ground(view), self.site.member
+        cuts = frozenset(k for k in view.parts if member.parts[k].cuts)
+        total = np.zeros((2, *ground.intervals.x.shape))
+        for parts in list(self.record.borne):
+            left = (parts & view.parts) | cuts
+            if left != parts:
+                V = self.record.borne.pop(parts)
+                was, rest = (
+                    self.share.slide(ModuliOf(view.index, self.share.long_term, self.share.own, parts=which))
+                    for which in (parts, left)
+                )
+                total += self._angle(ground, rest, was, V)
+                self.record.borne[left] = self.record.borne.get(left, 0.0) + V
+        return total
 
     def _arrive(self, view: StageView) -> Iterator[Solved]:
         """Loads and settlements of the stage."""
@@ -377,7 +337,7 @@ class Life:
             return
         solved, E = self._solve(view, which, pushes(ground, mine), settling=mine)
         self.record.reactions += reactions_of(solved, mine)
-        self.record.take(solved, E, self._free(ground, mine), not which.long_term)
+        self.record.take(solved, E, self._free(ground, mine), not which.long_term, view.parts)
         yield solved
 
     def _free(self, ground: Ground, share: LoadShare) -> Planes:

@@ -1,4 +1,4 @@
-"""What results tell of joints that slip: slip and forces of fasteners, both bounds, and the gamma-method beside them."""
+"""What results tell of joints that slip: slip and forces of fasteners, both bounds, the gamma-method beside them."""
 
 from __future__ import annotations
 
@@ -49,6 +49,8 @@ def add_slip(analysis: Analysis, upto: int | None, combinations: Sequence[Data],
     report = _Report(analysis, layers_of(analysis.member), tell)
     by_name = {c.name: c for c in analysis.member.combinations}
     for data in combinations:
+        if "cracked" in data:
+            continue
         combination = by_name[data["name"]]
         combined = analysis.combine(combination, upto=upto)
         data["slip"] = report.joints(combined)
@@ -150,7 +152,7 @@ class _Report:
         return rows
 
     def _by_gamma(self, combined: Combined, span: GammaSpan, EI: float, deflection: Data) -> float | None:
-        """Largest deflection of a single span by its effective stiffness, shear as found; None where it says nothing."""
+        """Largest deflection of one span by its effective stiffness, shear as found; None where it says nothing."""
         combination, member = combined.combination, self.analysis.member
         used = {case for case, f in combination.factors.items() if f}
         strained = any(isinstance(v, Temperature | Shrinkage | Prestress) and v.case in used for v in member.loads)
@@ -232,5 +234,3 @@ def _most(analysis: Analysis, field: Array, first: int, stop: int) -> Extreme:
     if (down.value > up.value and not tie) or (tie and down.at < up.at):
         return Extreme(-down.value + 0.0, down.at, down.on)
     return Extreme(up.value + 0.0, up.at, up.on)
-
-

@@ -58,7 +58,8 @@ def tied(
     stage = view.stage
     creep = np.zeros(len(layers.joints)) if stage is None else stage_joint_creep(layers, stage.creep)
     chi = 1.0 if stage is None else stage.ageing
-    stiffness = {"now": now, "softened": now, "aged": now / (1.0 + chi * creep)}
+    short = joint_stiffness(layers, band, False, dict(own))
+    stiffness = {"now": now, "short": short, "aged": short / (1.0 + chi * creep)}
     single = one_by_one(frame, layers)
 
     def law(moduli: Moduli, what: str) -> ElasticLaw:
@@ -66,7 +67,7 @@ def tied(
         # the two laws are used alike: strains under forces, shear flexibility
         return cast("ElasticLaw", SlipLaw.of(frame, moduli, smeared, planes, shear, springs, absent))
 
-    return Tie(layers, stiffness, creep, fastener_springs(frame, layers, now, single)[1]), law
+    return Tie(layers, stiffness, creep, fastener_springs(frame, layers, short, single)[1]), law
 
 
 def one_by_one(frame: Frame, layers: Layers) -> NDArray[np.bool_]:

@@ -72,11 +72,12 @@ class Tie:
     layers : Layers
         Layers and joints of the member.
     stiffness : mapping of str to ndarray, shape (J,)
-        Stiffness of the joints per length, single fasteners counted [N/m2]: "now" and, where creep runs off, "aged".
+        Stiffness of the joints per length, single fasteners counted [N/m2]: "now" on which loads of the stage act,
+        "short" for those that do not last, and "aged" where creep runs off.
     creep : ndarray, shape (J,)
         Creep factor of the joints that runs off in the stage.
     springs : ndarray, shape (K + 1, J)
-        Stiffness "now" of fasteners that are taken one by one, at the borders of the grid [N/m].
+        Stiffness "short" of fasteners that are taken one by one, at the borders of the grid [N/m].
     """
 
     layers: Layers
@@ -105,7 +106,7 @@ class Tie:
     def crept(self, held: Forces, locked: LockedIn) -> Forces:
         """Add the slip that creeps under what joints have locked in: flow along them, force of single fasteners."""
         assert isinstance(held, LayeredForces)
-        k = self.stiffness["now"]
+        k = self.stiffness["short"]
         share = self.creep / np.where(k > 0.0, k, np.inf)
         slips = share[:, None, None, None] * locked.flow
         if self.springs is not None and np.any(self.springs):

@@ -22,6 +22,8 @@ from fishbelly.member.history_forces import resultant, sheared
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.response import Response, responded
 from fishbelly.member.section_law import ElasticLaw, Strains
+from fishbelly.member.shear_sets import shear_of_parts
+from fishbelly.member.spreading import nothing, spread, spread_planes
 from fishbelly.member.stage_view import StageView
 
 if TYPE_CHECKING:
@@ -97,10 +99,12 @@ class Setting:
         The stage, its grid, supports at work.
     moduli : Moduli
         Moduli on which loads of the stage act.
+    short : Moduli
+        The stage's moduli for loads that do not last.
     lasting : bool
-        Whether these are long-term.
+        Whether `moduli` are long-term.
     law : callable
-        Section law for a set of moduli and what it is: "now", "aged" or "softened".
+        Section law for a set of moduli and what the joints have: "now", "short" or "aged" stiffness.
     aged, softened : Moduli, optional
         Moduli divided by 1 + chi phi and by 1 + phi of the creep that runs off.
     tie : Tie, optional
@@ -113,6 +117,7 @@ class Setting:
     frame: Frame
     layout: Layout
     moduli: Moduli
+    short: Moduli
     lasting: bool
     law: Callable[[Moduli, str], ElasticLaw]
     aged: Moduli | None = None
@@ -138,6 +143,7 @@ class _Record:
     stress: Planes = field(default_factory=dict)
     creeping: Planes = field(default_factory=dict)
     creeping_shear: Array | None = None
+    shear_on: dict[frozenset[int], Array] = field(default_factory=dict)
     creeping_slip: LockedIn | None = None
 
     def added(self, steps: list[Step]) -> list[Step]:
@@ -146,8 +152,25 @@ class _Record:
             self.add(step)
         return steps
 
+    def sheared_off(self, s: Setting, held: Forces, slide: Array) -> Forces:
+        """Add the shear angle that what has been carried gains as parts go or are cut: V by the parts it arrived on."""
+        member, now = s.frame.profile.member, s.view.parts
+        cuts = frozenset(i for i in now if member.parts[i].cuts)
+        for parts in list(self.shear_on):
+            left = (parts & now) | cuts
+            if left == parts:
+                continue
+            V = self.shear_on.pop(parts)
+            was, rest = (shear_of_parts(s.frame.profile, which, s.short) for which in (parts, left))
+            held = held.plus(sheared(slide, rest - was, V))
+            self.shear_on[left] = self.shear_on.get(left, 0.0) + V
+        return held
+
     def add(self, step: Step) -> None:
         """Take a step in."""
+        view = step.frame.view
+        if view is not None:
+            self.shear_on[view.parts] = self.shear_on.get(view.parts, 0.0) + step.response.V
         self.response = self.response + step.response
         stress = {part: step.stress(part) for part in step.parts}
         _accumulate(self.stress, stress)
@@ -199,7 +222,7 @@ def life(
     """
     member = settings[0].frame.profile.member
     count, shape = len(atoms), settings[0].frame.profile.panels.x.shape
-    record = _Record(_nothing(count, shape, len(member.supports)))
+    record = _Record(nothing(count, shape, len(member.supports)))
     steps: list[Step] = []
     before: Setting | None = None
     for s in settings:
@@ -222,11 +245,6 @@ def life(
     return tuple(steps) or (_empty_step(settings[-1], record.response),)
 
 
-def _nothing(count: int, shape: tuple[int, ...], supports: int) -> Response:
-    one, two = np.zeros((count, *shape)), np.zeros((2, count, *shape))
-    return Response(one, two, two, one, two, two, two, two, np.zeros((count, supports, 5)))
-
-
 def _empty_step(s: Setting, response: Response) -> Step:
     return Step(s.view.index, "loads", response, s.moduli, s.frame, {}, False)
 
@@ -245,34 +263,13 @@ def _arrived(
     """Loads of the stage on its parts and moduli."""
     mine = [atoms[k] for k in which]
     found, strains = responded(s.frame, s.layout, law, mine, [loads[k] for k in which], free(s, which), planes)
-    strained = {part: _spread_planes(v, which, count) for part, v in free_planes(s, which).items()}
-    spread, layered = _spread(found, which, count), _layered(s, strains, which, count)
-    return Step(s.view.index, "loads", spread, s.moduli, s.frame, strained, not s.lasting, layered)
+    strained = {part: spread_planes(v, which, count) for part, v in free_planes(s, which).items()}
+    every, layered = spread(found, which, count), _layered(s, strains, which, count)
+    return Step(s.view.index, "loads", every, s.moduli, s.frame, strained, not s.lasting, layered)
 
 
 def _layered(s: Setting, strains: Strains, which: Sequence[int], count: int) -> Layered | None:
     return None if s.tie is None else s.tie.layered(strains, which, count)
-
-
-def _spread(r: Response, which: Sequence[int], count: int) -> Response:
-    """A response of some atoms as one of all of them, nothing for the others."""
-    if list(which) == list(range(count)):
-        return r
-    single = ("N", "axial", "reactions")
-    fields = []
-    for name in Response.__dataclass_fields__:
-        v = getattr(r, name)
-        axis = 0 if name in single else 1
-        full = np.zeros((*v.shape[:axis], count, *v.shape[axis + 1 :]))
-        full[(slice(None),) * axis + (list(which),)] = v
-        fields.append(full)
-    return Response(*fields)
-
-
-def _spread_planes(v: Array, which: Sequence[int], count: int) -> Array:
-    full = np.zeros((3, count, *v.shape[2:]))
-    full[:, list(which)] = v
-    return full
 
 
 def _released(
@@ -282,16 +279,19 @@ def _released(
     count, shape = record.response.N.shape[0], record.response.N.shape
     each = _carried(before, s, record) if before.view.parts != s.view.parts else []
     gone = s.view.gone - before.view.gone
-    if not gone and not any(np.any(f.N) or np.any(f.M) for _, f in each):
+    held = s.held(each, shape)
+    if np.any(law.slide):
+        held = record.sheared_off(s, held, law.slide)
+    pushes = [_reversed(s, record.response.reactions[k], gone, _opened(before, s, record, k)) for k in which]
+    if not gone and not held.any and not any(np.any(a.opened) for a in pushes):
         return []
-    pushes = [_reversed(s, record.response.reactions[k], gone) for k in which]
-    free = _of_atoms(s.held(each, shape), which)
+    free = _of_atoms(held, which)
     found, strains = responded(s.frame, s.layout, law, [Atom("")] * len(which), pushes, free, planes)
-    spread = _spread(found, which, count)
+    every = spread(found, which, count)
     numbers = _numbers(s.frame, gone)
-    spread.reactions[:, numbers] -= record.response.reactions[:, numbers]
+    every.reactions[:, numbers] -= record.response.reactions[:, numbers]
     layered = _layered(s, strains, which, count)
-    return [Step(s.view.index, "release", spread, s.moduli, s.frame, {}, not s.lasting, layered)]
+    return [Step(s.view.index, "release", every, s.moduli, s.frame, {}, not s.lasting, layered)]
 
 
 def _carried(before: Setting, s: Setting, record: _Record) -> list[tuple[int, Forces]]:
@@ -317,7 +317,19 @@ def _numbers(frame: Frame, names: frozenset[str]) -> list[int]:
     return [k for k, s in enumerate(frame.profile.member.supports) if s.name in names]
 
 
-def _reversed(s: Setting, reactions: Array, gone: frozenset[str]) -> Actions:
+def _opened(before: Setting, s: Setting, record: _Record, k: int) -> Array:
+    """Moment of one atom at borders with a hinge that opens, about the centroid there, shape (K + 1,)."""
+    panels = s.frame.profile.panels
+    found = np.zeros(panels.count + 1)
+    for x in s.view.hinges:
+        border = panels.border(x)
+        if x not in before.view.hinges and 0 < border < panels.count:
+            M, N = (v @ panels.rule.left for v in (record.response.M[0, k, border], record.response.N[k, border]))
+            found[border] = float(M + N * s.frame.centroid(x)[0])
+    return found
+
+
+def _reversed(s: Setting, reactions: Array, gone: frozenset[str], opened: Array | None = None) -> Actions:
     """Forces of supports that go, turned round, as loads on the member; reactions of one atom, shape (supports, 5)."""
     frame = s.frame
     panels = frame.profile.panels
@@ -330,6 +342,7 @@ def _reversed(s: Setting, reactions: Array, gone: frozenset[str]) -> Actions:
         np.zeros((2, borders)),
         np.zeros(borders),
         np.zeros((2, borders)),
+        opened=opened,
     )
     supports = frame.profile.member.supports
     for k in _numbers(frame, gone):
@@ -354,14 +367,14 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int) -> list[S
     for part, stress in record.creeping.items():
         phi = stage.creep.get(member.parts[part].material or "", 0.0)
         if phi and part in s.view.parts:
-            E = profile.part_modulus(part, s.moduli.E)
+            E = profile.part_modulus(part, s.short.E)
             free[part] = phi * stress / np.where(E > 0.0, E, np.inf)
             aged = profile.part_modulus(part, s.aged.E)
             each.append((part, resultant(aged * free[part], profile.part_moments(part, s.frame.line))))
     law = s.law(s.aged, "aged")
     held = s.held(each, shape)
     if record.creeping_shear is not None and np.any(law.slide):
-        soft, now = s.law(s.softened, "softened").slide, s.law(s.moduli, "now").slide
+        soft, now = s.law(s.softened, "short").slide, s.law(s.short, "short").slide
         held = held.plus(sheared(law.slide, soft - now, record.creeping_shear))
     if s.tie is not None and record.creeping_slip is not None:
         held = s.tie.crept(held, record.creeping_slip)
@@ -370,7 +383,7 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int) -> list[S
     none = [_reversed(s, record.response.reactions[k], frozenset()) for k in which]
     found, strains = responded(s.frame, s.layout, law, [Atom("")] * len(which), none, _of_atoms(held, which), planes)
     layered = _layered(s, strains, which, count)
-    return [Step(s.view.index, "creep", _spread(found, which, count), s.aged, s.frame, free, True, layered)]
+    return [Step(s.view.index, "creep", spread(found, which, count), s.aged, s.frame, free, True, layered)]
 
 
 def summed(steps: Sequence[Step], upto: int | None = None) -> Response:

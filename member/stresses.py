@@ -188,7 +188,7 @@ def _shear_level(analysis: Analysis, loading: Sequence[Loading], index: int, at:
     level = np.full(profile.rows, np.nan)
     for g in profile.groups:
         if index in g.placed.index:
-            level[g.rows] = g.shear(profile.short).level[g.placed.index.index(index)]
+            level[g.rows] = g.shear_stress(profile.short).level[g.placed.index.index(index)]
     places, levels = profile.panels.x.ravel(), level[profile.row].ravel()
     known = np.flatnonzero(~np.isnan(levels))
     return float(levels[known[int(np.argmin(np.abs(places[known] - at)))]])
@@ -204,7 +204,7 @@ def _shear_field(analysis: Analysis, loading: Sequence[Loading], index: int, pla
         profile = share.step.frame.profile
         peak = np.zeros(profile.rows)
         for g in (g for g in profile.groups if index in g.placed.index):
-            peak[g.rows] = g.shear(share.moduli, plane == 1).peak[g.placed.index.index(index)]
+            peak[g.rows] = g.shear_stress(share.moduli, plane == 1).peak[g.placed.index.index(index)]
         V = shear_in_webs(share, plane, share.step.frame.line) if any_inclined(profile) else share.response.V[plane]
         total = total + V * peak[profile.row]
     return total

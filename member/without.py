@@ -68,7 +68,7 @@ def without(member: Member, names: Collection[str]) -> Member:
         for o, level in zip(member.openings, levels, strict=True)
         if set(o.of) - gone
     )
-    loads = tuple(left for load in member.loads for left in _load(load, gone))
+    loads = left_of_loads(member.loads, gone)
     cases = {load.case for load in loads} | {s.case for s in member.supports if s.sinks}
     return replace(
         member,
@@ -77,9 +77,14 @@ def without(member: Member, names: Collection[str]) -> Member:
         haunches=tuple(h for h in member.haunches if h.of not in gone),
         openings=openings,
         loads=loads,
-        combinations=tuple(_combination(c, cases) for c in member.combinations),
+        combinations=tuple(of_cases(c, cases) for c in member.combinations),
         stages=tuple(_stage(s, cases) for s in member.stages),
     )
+
+
+def left_of_loads(loads: Iterable[Load], gone: Collection[str]) -> tuple[Load, ...]:
+    """Loads that are left where parts of some names are gone."""
+    return tuple(left for load in loads for left in _load(load, set(gone)))
 
 
 def _load(load: Load, gone: set[str]) -> Iterator[Load]:
@@ -99,7 +104,8 @@ def _load(load: Load, gone: set[str]) -> Iterator[Load]:
         yield load
 
 
-def _combination(c: Combination, cases: set[str]) -> Combination:
+def of_cases(c: Combination, cases: set[str]) -> Combination:
+    """Return a combination of those of its cases that are left."""
     factors, sustained = ({k: v for k, v in m.items() if k in cases} for m in (c.factors, c.sustained))
     return replace(c, factors=factors, sustained=sustained)
 

@@ -19,7 +19,10 @@ W, TURN, G, S, M, V = range(6)
 
 @dataclass
 class Stretch:
-    """From a to b: EA, level and EI of both layers and k as functions of x, load q; `joined` False: one layer."""
+    """From a to b: EA, level and EI of both layers and k as functions of x, load q, free strain of the upper layer.
+
+    `joined` False: one layer.
+    """
 
     a: float
     b: float
@@ -29,13 +32,14 @@ class Stretch:
     k: Law
     q: float = 0.0
     joined: bool = True
+    free: float = 0.0
 
     def slopes(self, x: np.ndarray, y: np.ndarray) -> np.ndarray:
         force = y[G] if self.joined else np.zeros_like(x)
         EA0, EA1 = self.EA[0](x), self.EA[1](x)
         c0, c1 = self.c[0](x), self.c[1](x)
         curved = (y[M] + (c1 - c0) * force) / self.EI(x)
-        e0, e1 = -force / EA0 + c0 * curved, force / EA1 + c1 * curved
+        e0, e1 = -force / EA0 + c0 * curved, force / EA1 + c1 * curved + self.free
         flow = self.k(x) * y[S] if self.joined else np.zeros_like(x)
         slip = e1 - e0 if self.joined else np.zeros_like(x)
         return np.stack((y[TURN], -curved, flow, slip, y[V], np.full_like(x, -self.q)))

@@ -268,7 +268,7 @@ def test_shear_stress_of_the_web_is_by_what_flanges_leave_of_v() -> None:
     pressed = -E * 0.3 * v * math.cos(math.atan(0.07)) ** 4 * (-0.3 - v / 2 - s["z_c"]) / s["EI_y"] * -1e5 * L
     assert pressed < 0.0
     left = 1e5 + pressed * -0.07
-    check_close(found["value"], left * float(group.shear(moduli(m)).peak[0, 0]), ROUND_OFF)
+    check_close(found["value"], left * float(group.shear_stress(moduli(m)).peak[0, 0]), ROUND_OFF)
     assert found["value"] > 2.0 * cut["value"]
 
 

@@ -21,7 +21,8 @@ from fishbelly.member.questions import Stage
 from fishbelly.member.second_loads import Ground
 from fishbelly.member.second_method import SecondResult
 from fishbelly.member.second_record import Record, carried, line_moments
-from fishbelly.member.second_stages import Life, Site, StagedShare, staged_method
+from fishbelly.member.second_shares import StagedShare
+from fishbelly.member.second_stages import Life, Site, staged_method
 from fishbelly.member.staging import Setting
 
 EXACT = 1e-11

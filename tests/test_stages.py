@@ -280,3 +280,32 @@ def test_a_stage_with_no_cases_and_a_part_that_comes_and_goes_unloaded_change_no
     more = run(staged(*loads, stages=stages, parts=(BEAM, replace(PLATE, stage="later"), guest)))
     check_close(more["deflection"]["down"]["value"], plain["deflection"]["down"]["value"], 1e-12)
     check_close(more["stress"][0]["min"]["value"], plain["stress"][0]["min"]["value"], 1e-12)
+
+
+def test_shear_passes_on_to_what_remains_when_a_part_goes() -> None:
+    """With shear too a plate taken off leaves the beam as if it had been alone all the time."""
+    stages = (Stage("both", ("dead",)), Stage("alone"))
+    parts = (BEAM, replace(PLATE, until="alone"))
+    both = staged(uniform(Q, L, case="dead"), stages=stages, parts=parts, shear=True)
+    alone = staged(uniform(Q, L, case="dead"), stages=(Stage("alone", ("dead",)),), parts=(BEAM,), shear=True)
+    check_close(run(both)["deflection"]["down"]["value"], run(alone)["deflection"]["down"]["value"], STAGED)
+
+
+def test_a_hinge_that_opens_gives_its_moment_back() -> None:
+    """A moment released at mid-span of a fixed beam: as if the hinge had always been there."""
+    supports = (fixed("A", 0.0, along=INF), fixed("B", L))
+    stages = (Stage("whole", ("dead",)), Stage("cut"))
+    loads = (uniform(Q, L, case="dead"),)
+    more = {"parts": (BEAM,), "supports": supports}
+    late = run(staged(*loads, stages=stages, hinges=(Hinge(L / 2.0, stage="cut"),), **more), L / 2.0, 0.0)
+    always = run(staged(*loads, stages=stages, hinges=(Hinge(L / 2.0),), **more), L / 2.0, 0.0)
+    assert abs(station(late, L / 2.0)["M"]) < 1e-9 * Q * L**2
+    check_close(station(late, L / 2.0)["deflection"], station(always, L / 2.0)["deflection"], STAGED)
+    check_close(station(late, 0.0)["M"], station(always, 0.0)["M"], STAGED)
+
+
+def test_creep_in_a_stage_that_is_long_term_too() -> None:
+    """What was locked in before creeps by the stage's creep; what arrives acts on long-term moduli."""
+    stages = (Stage("now", ("dead",)), Stage("slow", ("live",), long_term=True, creep={"timber": 1.0}))
+    member = staged(uniform(Q, L, case="dead"), uniform(Q, L, case="live"), stages=stages, parts=(BEAM,))
+    check_close(run(member)["deflection"]["down"]["value"], (2.0 + 1.6) * sag(Q, EI_BEAM), STAGED)

@@ -16,7 +16,9 @@ from worked_members import (
     runway_beam,
 )
 from worked_run import Values
+from worked_slip import footbridge
 from worked_sections import beam_with_openings, concrete_beam, corroded_lintel, plated_w_shape, z_purlin
+from worked_stages import flitch_in_two_stages, jacked_and_plated, plated_under_load
 
 ANSWERS: dict[str, Callable[[str], Values]] = {
     "beam-with-openings": beam_with_openings,
@@ -24,8 +26,12 @@ ANSWERS: dict[str, Callable[[str], Values]] = {
     "concrete-beam": concrete_beam,
     "continuous-beam": continuous_beam,
     "corroded-lintel": corroded_lintel,
+    "flitch-in-two-stages": flitch_in_two_stages,
+    "footbridge": footbridge,
     "gantry-arm": gantry_arm,
     "inclined-rafter": inclined_rafter,
+    "jacked-and-plated": jacked_and_plated,
+    "plated-under-load": plated_under_load,
     "plated-w-shape": plated_w_shape,
     "propped-cantilever": propped_cantilever,
     "runway-beam": runway_beam,

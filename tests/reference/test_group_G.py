@@ -1,8 +1,8 @@
-"""Group G: transformed sections and principal axes, run through ``fishbelly section`` on a job text.
+"""Group G: transformed sections, principal axes and torsion, run through ``fishbelly section`` on a job text.
 
-Every row run is one test named by its id; sources stand in the rows of ``group_G.json``, those marked "from memory"
-there are so. Rows that ask for torsion constants or Cowper's coefficients are not run: see
-``not_run.json``.
+Every row is one test named by its id; sources stand in the rows of ``group_G.json``, those marked "from memory"
+there are so. What no command prints, Cowper's coefficients and the largest stress of a twist, is asked of the package:
+see ``test_group_G_shear.py``.
 """
 
 import math

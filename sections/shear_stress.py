@@ -1,10 +1,9 @@
-"""Shear stiffness GA from level cuts: strain energy of the shear flow through each level.
+"""Largest shear stress of each part by level cuts: D. J. Jourawski's shear formula, as shear checks use it.
 
 On every level the shear flow q follows from the stresses above it and the shear strain is taken as one value
-across the level, q / sum(G width); then 1/GA = integral of q² / sum(G width) dz for a unit shear force. Exact
-for rectangles (5/6) and sandwiches; wide flanges, which carry shear sideways, come out too stiff.
-Source: energy form of D. J. Jourawski's shear formula, as in S. Timoshenko, Strength of Materials I, 3rd ed.,
-van Nostrand, 1955, art. 66.
+across the level, q / sum(G width); the stress of a part is G times that. The shear flow that flanges carry sideways
+is not in it. Shear stiffness is found otherwise, from the strain energy of the whole section (`flexure`).
+Source: S. Timoshenko, Strength of Materials I, 3rd ed., van Nostrand, 1955, art. 66.
 """
 
 from __future__ import annotations
@@ -25,28 +24,25 @@ _FIELDS = ("width", "first", "second", "left", "right")
 
 
 @dataclass(frozen=True, eq=False)
-class ShearStiffness:
-    """Shear stiffness, and the largest shear stress of each part.
+class ShearStress:
+    """Largest shear stress of each part for shear along z, V = 1 N.
 
     Parameters
     ----------
-    GA : ndarray, shape (S,)
-        Shear stiffness [N].
     peak : ndarray, shape (P, S)
-        Largest shear stress of each part for V = 1 N [1/m2].
+        Largest shear stress, without sign [1/m2].
     level : ndarray, shape (P, S)
         Where it is [m].
     """
 
-    GA: Array
     peak: Array
     level: Array
 
 
-def shear_stiffness(
+def shear_stress(
     levels: Levels, E: Array, G: Array, stiffness: SectionStiffness, share_angle: bool = False
-) -> ShearStiffness:
-    """Shear stiffness of a section for shear along z.
+) -> ShearStress:
+    """Largest shear stresses of a section for shear along z.
 
     Parameters
     ----------
@@ -57,12 +53,12 @@ def shear_stiffness(
     stiffness : SectionStiffness
         The section's bending stiffness.
     share_angle : bool
-        Pieces apart from each other share the shear angle (over an opening): GA is their sum. Otherwise
-        they share the curvature and each takes V as its own EI.
+        Pieces apart from each other share the shear angle (over an opening): each takes V as the shear stiffness
+        of its own level cuts. Otherwise they share the curvature and each takes V as its own EI.
 
     Returns
     -------
-    ShearStiffness
+    ShearStress
     """
     w = levels.widths
     weight = levels.stretch
@@ -79,7 +75,7 @@ def shear_stiffness(
     change = k_y[:, None, None] * (levels.z - centre) * ea
     change = change + k_z[:, None, None] * (ey - stiffness.y_c[:, None, None] * ea)
     flow = _from_bottom(change * weight)
-    return _energy(levels, G, flow, ga)
+    return _largest(levels, G, flow, ga)
 
 
 def _from_bottom(density: Array) -> Array:
@@ -90,18 +86,14 @@ def _from_bottom(density: Array) -> Array:
     return np.asarray(start[..., None] + density @ r.integrate.T)
 
 
-def _energy(levels: Levels, G: Array, flow: Array, ga: Array) -> ShearStiffness:
-    there = ga > 0.0
-    angle = np.where(there, flow, 0.0) / np.where(there, ga, 1.0)
-    flexibility = (angle * flow * levels.stretch * rule(ga.shape[-1]).weights).sum(axis=(1, 2))
+def _largest(levels: Levels, G: Array, flow: Array, ga: Array) -> ShearStress:
     steepest, at = _steepest(flow, ga, levels)
     met = levels.widths.width.max(axis=3) > 0.0
     per_slab = np.where(met, steepest, -1.0)
     slab = per_slab.argmax(axis=2)
     peak = np.maximum(np.take_along_axis(per_slab, slab[..., None], axis=2)[..., 0], 0.0) * G
     level = np.take_along_axis(np.broadcast_to(at, per_slab.shape), slab[..., None], axis=2)[..., 0]
-    with np.errstate(divide="ignore"):
-        return ShearStiffness(1.0 / flexibility, peak, level)
+    return ShearStress(peak, level)
 
 
 _FINE = 81
@@ -140,9 +132,9 @@ def _gaps(ga: Array, levels: Levels) -> NDArray[np.bool_]:
     return np.asarray(empty & below & above & (height > 1e-12 * size))
 
 
-def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStiffness:
+def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], share_angle: bool) -> ShearStress:
     """Sections in pieces one above the other; stations with the same gaps are taken together."""
-    total, peak, level = np.empty(gaps.shape[0]), np.zeros(G.shape), np.zeros(G.shape)
+    peak, level = np.zeros(G.shape), np.zeros(G.shape)
     patterns, which = np.unique(gaps, axis=0, return_inverse=True)
     for k, pattern in enumerate(patterns):
         rows = np.flatnonzero(np.ravel(which) == k)
@@ -150,24 +142,21 @@ def _piecewise(levels: Levels, E: Array, G: Array, gaps: NDArray[np.bool_], shar
         slabs = [np.flatnonzero((group == g) & ~pattern) for g in np.unique(group)]
         pieces = [_piece(levels, E[:, rows], G[:, rows], rows, mine) for mine in slabs if mine.size]
         ei, soft, peaks, places = (np.stack(v) for v in zip(*pieces, strict=True))
-        if share_angle:
-            total[rows] = soft.sum(axis=0)
-            shares = soft / total[rows]
-        else:
-            # a piece that stops short of nothing takes no part: its EI is zero
-            total[rows] = ei.sum(axis=0) ** 2 / (ei**2 / np.where(soft > 0.0, soft, np.inf)).sum(axis=0)
-            shares = ei / ei.sum(axis=0)
-        each = peaks * shares[:, None]
+        share = soft if share_angle else ei
+        each = peaks * (share / share.sum(axis=0))[:, None]
         highest = each.argmax(axis=0)
         peak[:, rows] = each.max(axis=0)
         level[:, rows] = np.take_along_axis(places, highest[None], axis=0)[0]
-    return ShearStiffness(total, peak, level)
+    return ShearStress(peak, level)
 
 
 def _piece(
     levels: Levels, E: Array, G: Array, rows: NDArray[np.intp], slabs: NDArray[np.intp]
 ) -> tuple[Array, Array, Array, Array]:
-    """EI, GA, peaks and their levels of the slabs of one piece at some stations, bending about its own centroid."""
+    """EI, shear stiffness, peaks and their levels of one piece at some stations, bending about its own centroid.
+
+    The stiffness is that of its level cuts, exact for rectangles; a piece without EI has none.
+    """
     weights = rule(levels.z.shape[-1]).weights
     at = np.ix_(rows, slabs)
     z, stretch = levels.z[at], levels.stretch[at]
@@ -179,5 +168,8 @@ def _piece(
     arm = z - ((ea * z * stretch @ weights).sum(axis=1) / safe)[:, None, None]
     ei = (ea * arm**2 * stretch @ weights).sum(axis=1)
     flow = _from_bottom(ea * arm * stretch / np.where(ei > 0.0, ei, 1.0)[:, None, None])
-    found = _energy(Levels(np.empty(0), z, stretch, widths), G, flow, ga)
-    return ei, np.where(ei > 0.0, found.GA, 0.0), found.peak, found.level
+    angle = np.where(ga > 0.0, flow, 0.0) / np.where(ga > 0.0, ga, 1.0)
+    flexibility = (angle * flow * stretch @ weights).sum(axis=1)
+    soft = np.where(ei > 0.0, 1.0 / np.where(ei > 0.0, flexibility, 1.0), 0.0)
+    found = _largest(Levels(np.empty(0), z, stretch, widths), G, flow, ga)
+    return ei, soft, found.peak, found.level
