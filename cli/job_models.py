@@ -299,7 +299,9 @@ class StageTable(Table):
     """``[[stage]]``."""
 
     name: Name
-    cases: Annotated[tuple[str, ...], Many(Text("a load case"), 'a list of load cases such as ["dead"]')] = ()
+    cases: Annotated[
+        tuple[str, ...], Many(Text("a load case"), 'a list of load cases such as ["dead"]', empty=True)
+    ] = ()
     long_term: Yes = False
     moduli: Annotated[
         dict[str, tuple[str, float]], TableOf(ModulusOrFactor(), 'a table such as { C24 = "9 GPa", concrete = 0.33 }')

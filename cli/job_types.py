@@ -233,7 +233,7 @@ class Many(Reader):
         self, item: Reader, words: str, *, one: bool = False, count: int | None = None, empty: bool = False
     ) -> None:
         self.item, self.words, self.one, self.count, self.empty = item, words, one, count, empty
-        several: dict[str, Any] = {"type": "array", "items": item.schema, "minItems": count or 1}
+        several: dict[str, Any] = {"type": "array", "items": item.schema, "minItems": 0 if empty else count or 1}
         self.schema = {"anyOf": [item.schema, several]} if one else several
         if count is not None:
             several["maxItems"] = count
@@ -242,7 +242,8 @@ class Many(Reader):
         """Read the list."""
         if self.one and not isinstance(value, list):
             return (self.item.read(value),)
-        if not isinstance(value, list) or not (value or self.empty) or (self.count is not None and len(value) != self.count):
+        wrong = not isinstance(value, list) or not (value or self.empty)
+        if wrong or (self.count is not None and len(value) != self.count):
             raise ill(self.words, value)
         return tuple(gather(value, self.item.read))
 

@@ -10,6 +10,8 @@ from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, column
 
 Row = Mapping[str, Any]
 
+_HEADS = 60
+"""Columns of a table that names of stages may take as heads."""
 _NOTHING = 1e-9
 """Forces below are noise [N]."""
 
@@ -167,7 +169,9 @@ def _shares(rows: Sequence[Row], across: bool) -> Grid:
     parts = [{"part": name} for name in dict.fromkeys(p["part"] for r in rows for p in r["carried"])]
     if len(parts) < 2:
         return Grid(title, ())
-    by_stage = [column(parts, r["stage"], PERCENT, _share(r, "share")) for r in rows]
+    heads, by_number = _heads(rows)
+    note += by_number
+    by_stage = [column(parts, head, PERCENT, _share(r, "share")) for head, r in zip(heads, rows, strict=True)]
     if quick:
         by_stage += [column(parts, "last, no creep", PERCENT, _share(rows[-1], "quick"))]
         note += "; last, no creep: what the last stage's would be if nothing crept"
@@ -178,6 +182,14 @@ def _quick(row: Row, part: str) -> Row:
     if "instantaneous" not in row:
         return {}
     return {"quick": next((p["share"] for p in row["instantaneous"]["carried"] if p["part"] == part), None)}
+
+
+def _heads(rows: Sequence[Row]) -> tuple[list[str], str]:
+    """Heads of a column a stage: the names, or where these are long the numbers, with words that say so."""
+    names = [str(r["stage"]) for r in rows]
+    if sum(len(name) + 2 for name in names) <= _HEADS:
+        return names, ""
+    return [f"stage {k}" for k in range(1, len(names) + 1)], "; stages by their number"
 
 
 def _share(row: Row, key: str) -> Callable[[Row], Any]:
@@ -234,12 +246,13 @@ def _forces(rows: Sequence[Row], across: bool) -> Grid:
     columns = [column(first, "support", TEXT, "name"), column(first, "x", "position", "at")]
     noise = max((abs(s["vertical"]) for r in rows for s in r["supports"]), default=0.0)
     by_stage = []
-    for r in rows:
+    heads, by_number = _heads(rows)
+    for head, r in zip(heads, rows, strict=True):
         forces = {s["name"]: s["vertical"] for s in r["supports"]}
-        by_stage.append(
-            column(first, r["stage"], "force", _named(forces), noise=max(1e-10 * noise, _NOTHING))
-        )
-    return Grid(title, (*columns, *_alike(by_stage)), "vertical force on the member, upwards; 0 where not there")
+        by_stage.append(column(first, head, "force", _named(forces), noise=max(1e-10 * noise, _NOTHING)))
+    return Grid(
+        title, (*columns, *_alike(by_stage)), f"vertical force on the member, upwards; 0 where not there{by_number}"
+    )
 
 
 def _named(values: Mapping[str, float]) -> Callable[[Row], Any]:

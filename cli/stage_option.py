@@ -11,10 +11,12 @@ STAGE = click.option("--stage", metavar="NAME", help="Stage of construction, at 
 
 def known_stage(name: str | None, member: Any) -> None:
     """See that a member has a stage of this name; raises `click.UsageError`, with the nearest name, where not."""
-    known = [s.name for s in member.stages] or ["all"]
-    if name is None or name in known:
+    known = [s.name for s in member.stages]
+    if name is None or name in (known or ["all"]):
         return
+    if not known:
+        raise click.UsageError(f'--stage: the job has no stages, got "{name}"')
     from fishbelly.cli.faults import suggest
 
-    hint = suggest(name, known) or ("the job has no stages" if not member.stages else f"stages are {', '.join(known)}")
-    raise click.UsageError(f'--stage: the job has no stage "{name}"; {hint}')
+    hint = suggest(name, known)
+    raise click.UsageError(f'--stage: the job has no stage "{name}"' + (f"; {hint}" if hint else ""))

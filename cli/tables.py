@@ -57,7 +57,7 @@ def section_table(data: Mapping[str, Any], style: str) -> str:
     """
     place = format_position(data["x"], style)  # type: ignore[arg-type]
     side = f", as it is just to the {data.get('side', 'right')} of it" if data.get("break", True) else ""
-    lines = [*_title(data, f"Cross-section at x = {place}{side}")]
+    lines = [*_title(data, f"Cross-section at x = {place}{side}{_stage(data)}")]
     lines += [*paragraph(SECTION_AXES), ""]
     for heading, values in section_lines(data):
         if all(value is None for *_, value in values):
@@ -73,6 +73,11 @@ def section_table(data: Mapping[str, Any], style: str) -> str:
 def _title(data: Mapping[str, Any], what: str) -> list[str]:
     title = paragraph(data["title"]) if data.get("title") else []
     return [*title, *paragraph(what), ""]
+
+
+def _stage(data: Mapping[str, Any]) -> str:
+    """Say which stage it is of, where the job has stages."""
+    return f", in stage {data['stage']}" if data.get("stage", "all") != "all" else ""
 
 
 def _headed(grid: Grid, style: str) -> list[str]:
@@ -138,7 +143,7 @@ def stiffness_table(data: Mapping[str, Any], style: str, listed: bool = False) -
         grid = replace(grid, columns=tuple(c for c in grid.columns if c.title != "EI_z"))
         if len(kept) < len(rows):
             said = ["", *paragraph(_LEFT_OUT.format(kept=len(kept), all=len(rows)))]
-    lines = [*_title(data, grid.title), *paragraph(STIFFNESS_AXES), "", *render(grid, style), *said, ""]
+    lines = [*_title(data, grid.title + _stage(data)), *paragraph(STIFFNESS_AXES), "", *render(grid, style), *said, ""]
     for beside in stiffness_beside(data):
         lines += [*_headed(beside if listed or not rows else beside.picked(kept), style), ""]
     return "\n".join([*lines, *_closing(data)]) + "\n"

@@ -94,8 +94,11 @@ def kinks(panels: Panels, phases: Sequence[Solved], cracked: Mask, start: float 
         rows = np.flatnonzero(where.any(axis=1))
         if not rows.size:
             continue
-        for curvature in state.uncracked.plane[1:]:
-            if np.abs(curvature).max() > 0.0:
+        curvatures = state.uncracked.plane[1:2] if law.planar else state.uncracked.plane[1:]
+        size = np.abs(curvatures).max()
+        for curvature in curvatures:
+            # a plane in which next to nothing bends has no places, only round-off
+            if np.abs(curvature).max() > 1e-9 * size:
                 found += [x for x in roots(panels, curvature) if where[panels.find(np.array([x]))[0], 0]]
         if start is not None:
             for field in (f for v in solved.fibres().values() for f in v):

@@ -1,4 +1,4 @@
-"""Notes of joints that slip: both bounds beside the result, slip that is neglected, a second value that is not had."""
+"""Notes of joints that slip: both bounds beside the result, slip that is neglected."""
 
 from __future__ import annotations
 
@@ -6,9 +6,7 @@ from collections.abc import Iterator, Sequence
 from typing import Any
 
 from fishbelly.member.analysis import Analysis
-from fishbelly.member.cross_check import covered
 from fishbelly.member.note import Note
-from fishbelly.member.slip_layers import has_soft_joints
 
 Data = dict[str, Any]
 
@@ -34,5 +32,3 @@ def joints_slip(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[No
             yield Note(
                 f"{part.name}: slip of its fasteners is neglected, as no `stiffness` is given; the deflection is larger"
             )
-    if has_soft_joints(analysis.member) and not covered(analysis.member):
-        yield Note("no second value: the second method does not know a hinge that opens later where parts slip")

@@ -15,21 +15,24 @@ from numpy.typing import ArrayLike, NDArray
 from fishbelly.member.description import Member
 from fishbelly.member.loads import Axial, Point, Prestress, Shrinkage, Temperature
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, free_strain, pushes
-from fishbelly.member.second_method import ROUND_OFF, SecondResult
+from fishbelly.member.second_method import SecondResult
 from fishbelly.member.second_record import Planes, carried, line_moments, lost
 from fishbelly.member.second_sections import flexibility
+from fishbelly.member.second_shares import ModuliOf, StagedShare, split
 from fishbelly.member.second_slip_grid import refined_site
 from fishbelly.member.second_slip_layers import Stack
 from fishbelly.member.second_slip_record import SlipRecord
 from fishbelly.member.second_slip_step import Acting, Moved, Problem, not_resolved, sheet
 from fishbelly.member.second_slip_ties import grips_of
-from fishbelly.member.second_shares import ModuliOf, StagedShare, split
 from fishbelly.member.second_stages import Site, _arriving, _lasting, _moduli
 from fishbelly.member.second_statics import frame
 from fishbelly.member.second_step import coupled
 from fishbelly.member.stage_view import StageView
 
 Array = NDArray[np.float64]
+
+ROUND_OFF = 1e-12
+"""Of the largest deflection: stiff joints, and props that leave little of it, cost some digits."""
 
 
 def slip_method(

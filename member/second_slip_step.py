@@ -12,7 +12,7 @@ from fishbelly.member.second_grid import RULE, GaussRule
 from fishbelly.member.second_loads import Ground, Pushes
 from fishbelly.member.second_record import line_moments
 from fishbelly.member.second_slip_borders import Border, Held, Scale, conditions, reactions
-from fishbelly.member.second_slip_chain import Linear, collocated, left_states
+from fishbelly.member.second_slip_chain import Between, Linear, collocated, left_states
 from fishbelly.member.second_slip_layers import Stack
 from fishbelly.member.second_slip_ties import Grip, borders_of
 from fishbelly.member.second_step import _SAFETY as SAFETY
@@ -189,13 +189,20 @@ class Problem:
         linear = collocated(A, b, stretch)
         y = left_states(linear, between)
         moved = self._read(acting, borders, linear, y)
-        rule = GaussRule.of(FEWER)
+        return Moved(**(vars(moved) | {"error": self._beside(A, b, between, moved)}))
+
+    def _beside(self, A: Array, b: Array, between: Between, moved: Moved) -> float:
+        """Difference of the deflections from those of a solution with fewer Gauss points [m]."""
+        stretch, rule = self.ground.intervals.stretch, GaussRule.of(FEWER)
         to = np.polynomial.legendre.legvander(rule.s, RULE.s.size - 1) @ RULE.coefficients
-        few = collocated(np.einsum("ij,kjab->kiab", to, A), np.einsum("ij,kja->kia", to, b), stretch @ to.T, rule)
-        other = left_states(few, between)
+        near = stretch @ to.T
+        few = collocated(np.einsum("ij,kjab->kiab", to, A), np.einsum("ij,kja->kia", to, b), near, rule)
+        y = left_states(few, between)
+        slopes = np.einsum("knij,kj->kni", few.slopes, y) + few.own
         w = slice(self.stack.count, self.stack.count + self.planes)
-        gap = float(np.abs((other - y)[:, w]).max()) * self.ground.member.length
-        return Moved(**(vars(moved) | {"error": gap}))
+        there = y[:, None, w] + np.einsum("ij,kj,kja->kia", rule.running, near, slopes[..., w])
+        here = moved.everywhere(self.ground)[: self.planes] @ to.T
+        return float(np.abs(there.transpose(2, 0, 1) * self.ground.member.length - here).max())
 
     def _equations(self, acting: Acting) -> tuple[Array, Array]:
         """A and b of y' = A y + b in units of `scale`, y = (u, w, rotation, N, V, -M)."""

@@ -220,9 +220,9 @@ def stiffness(
         for k in np.flatnonzero(keep)
     ]
     leaning = inclined_at(member, every, sides, there.geometry.works)
-    for row, k in zip(rows, np.flatnonzero(keep), strict=True):
-        if leaning[k]:
-            row["inclined"] = leaning[k]
+    for row, kept in zip(rows, np.flatnonzero(keep), strict=True):
+        if leaning[kept]:
+            row["inclined"] = leaning[kept]
     data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "stage": there.view.name}
     if to is not None:
         E = there.modulus(to)

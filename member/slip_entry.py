@@ -9,10 +9,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Frame
-from fishbelly.member.description import Support
+from fishbelly.member.description import Member, Support
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.loads import Axial, Point
 from fishbelly.member.slip_layers import Layers
+from fishbelly.member.stage_view import StageView
 from fishbelly.sections.placing import Bounds
 
 Array = NDArray[np.float64]
@@ -101,7 +102,32 @@ def _wanted(frame: Frame, gone: frozenset[str], hinges: tuple[float, ...]) -> di
     return found
 
 
+def see_nothing_opens(member: Member, view: StageView) -> None:
+    """See that nothing that keeps layers from slipping, or ties their ends, goes with what it carries.
+
+    Raises
+    ------
+    CannotCompute
+        When a support that holds the slip of all layers has gone, or a hinge opens in a later stage than the first.
+    """
+    if view.stage is None:
+        return
+    number = {s.name: k for k, s in enumerate(member.stages)}
+    for s in member.supports:
+        if s.until is not None and number[s.until] <= view.index and _holds_slip(s):
+            raise CannotCompute(
+                f"{s.name} holds the slip of all layers and goes in stage {s.until}, which cannot be computed; "
+                'with slip = "free" it holds none'
+            )
+    for h in member.hinges:
+        if h.stage is not None and 0 < number[h.stage] <= view.index:
+            raise CannotCompute(
+                f"a hinge opens in stage {h.stage} at x = {h.at:.6g} m, which cannot be computed where parts slip"
+            )
+
+
 def _holds_slip(support: Support) -> bool:
+    """Whether a support holds the slip of all layers: it holds the rotation rigidly, and does not let them slip."""
     return bool(np.isinf(support.rotation)) and not support.slip_free
 
 

@@ -48,12 +48,14 @@ def tied(
     absent : collection of str
         Supports that hold nothing.
     """
+    from fishbelly.member.slip_entry import see_nothing_opens
     from fishbelly.member.slip_grid import fastener_springs
     from fishbelly.member.slip_law import SlipLaw
     from fishbelly.member.slip_layers import joint_stiffness, layers_of
     from fishbelly.member.slip_tie import Tie, stage_joint_creep
 
     layers = layers_of(frame.profile.member)
+    see_nothing_opens(layers.member, view)
     now = joint_stiffness(layers, band, lasting, dict(own))
     stage = view.stage
     creep = np.zeros(len(layers.joints)) if stage is None else stage_joint_creep(layers, stage.creep)

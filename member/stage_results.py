@@ -59,7 +59,7 @@ def _row(analysis: Analysis, combined: Combined, view: StageView, tell: Tell) ->
     loading = loadings(analysis, combined)
     p = pieces(analysis, loading)
     at = _governing(analysis, p)
-    row = {"name": combined.combination.name} | tell(analysis, combined, loading, p)
+    row: Data = {"name": combined.combination.name} | tell(analysis, combined, loading, p)
     row["own"] = _own(analysis, combined, p, at)
     row |= _stiffness(analysis, view, at) | {"at": at}
     row["carried"] = _carried(analysis, loading, p, at)

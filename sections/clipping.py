@@ -10,10 +10,11 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.sections.area_moments import AreaMoments
+from fishbelly.sections.area_moments import AreaMoments, area_moments
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.level_cuts import events, pieces
 from fishbelly.sections.outlines import Outline, arcs
+from fishbelly.sections.overlap import relation
 from fishbelly.sections.placing import Bounds
 from fishbelly.sections.slab_moments import slab_moments
 
@@ -207,11 +208,45 @@ def _green(u: Array, t: Array, dt: Array) -> Array:
 
 
 def _across_slabs(section: Composition, part: int, line: Array) -> Array:
-    """The same where outlines cross: slabs between events, square to the line, as far as they lie below it."""
+    """The same where outlines cross: slabs between events, square to the line, as far as they lie below it.
+
+    What lies inside the part and apart from everything else taken off it, as bars do, needs no slabs.
+    """
+    reduced, alone = _reduced(section, part)
     c, s, level = _direction(line)
-    shapes = [_turned(o, c, s) for o in (*section.outlines, *(cut[0] for cut in section.cuts))]
+    shapes = [_turned(o, c, s) for o in (*reduced.outlines, *(cut[0] for cut in reduced.cuts))]
     p = pieces(shapes)
-    edges = events(p, section.meeting)
+    edges = events(p, reduced.meeting)
     edges = np.minimum(edges, np.maximum(level, edges[:, 0])[:, None])
-    found = slab_moments(p, edges, len(section.outlines), [cut[1] for cut in section.cuts])
-    return _turned_back(raw_moments(found.at(part)), c, s)
+    found = slab_moments(p, edges, len(reduced.outlines), [cut[1] for cut in reduced.cuts])
+    total = _turned_back(raw_moments(found.at(0)), c, s)
+    for outline, whole, box in alone:
+        total = total - clipped_outline(outline, line, whole, box)
+    return total
+
+
+def _reduced(section: Composition, part: int) -> tuple[Composition, list[tuple[Outline, Array, Bounds]]]:
+    """A part with what crosses it, as the first of a section, and what lies inside it alone."""
+    known: dict[int, tuple[Composition, list[tuple[Outline, Array, Bounds]]]]
+    known = section.__dict__.setdefault("_reduced_parts", {})
+    if part in known:
+        return known[part]
+    count = len(section.outlines)
+    outlines = [*section.outlines, *(cut[0] for cut in section.cuts)]
+    removers = [j for i, j in section.relations if i == part]
+    alone = [
+        j
+        for j in removers
+        if section.relations[part, j] == "inside"
+        and all(relation(outlines[j], outlines[k]) == "apart" for k in removers if k != j)
+    ]
+    kept = [part, *(j for j in removers if j < count and j not in alone)]
+    cuts = []
+    for j, (outline, targets, mass) in enumerate(section.cuts, start=count):
+        mine = tuple(kept.index(t) for t in targets if t in kept)
+        if mine and j not in alone:
+            cuts.append((outline, mine, mass))
+    reduced = Composition(tuple(outlines[k] for k in kept), tuple(cuts))
+    single = [(outlines[j], raw_moments(area_moments(outlines[j])), Bounds.of(outlines[j])) for j in alone]
+    known[part] = reduced, single
+    return known[part]

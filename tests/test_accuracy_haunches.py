@@ -85,7 +85,10 @@ def test_thrust_of_a_haunched_beam_held_along_at_both_ends() -> None:
 
 
 def test_parabolic_soffit_of_two_materials() -> None:
-    """A timber that deepens along a parabola with a steel plate under part of it."""
+    """A timber that deepens along a parabola with a steel plate under part of it.
+
+    Where the soffit slopes by tan a the plate stands t / cos a deep and counts with E cos⁴ a along the member.
+    """
     length = 8.0
     depth_law = parabola([0.0, 3.0], [0.9, 0.45], [3.0])
     timber = part("timber", "rectangle", length, material="timber", width=0.2, depth=depth_law)
@@ -100,8 +103,9 @@ def test_parabolic_soffit_of_two_materials() -> None:
         own = ea * h**2 / 12
         if not 1.5 < x < 6.5:
             return own
-        t = mp.mpf(0.012)
-        steel = E * mp.mpf(0.18) * t
+        cos = 1 / mp.sqrt(1 + (mp.mpf(0.1) * max(0, mp.mpf(3) - x)) ** 2)
+        t = mp.mpf(0.012) / cos
+        steel = E * cos**4 * mp.mpf(0.18) * t
         return own + steel * t**2 / 12 + ea * steel / (ea + steel) * ((h + t) / 2) ** 2
 
     found = run(member, 0.0, 2.0, 4.0)

@@ -22,10 +22,11 @@ from cracked_beams import (
 )
 
 from fishbelly.member.analysis import Analysis
+from fishbelly.member.cracked_check import cracked_check
 from fishbelly.member.cracked_code import one_value
 from fishbelly.member.cracked_history import cracked_responses
 from fishbelly.member.cracked_response import CrackedResponse, cracked_response
-from fishbelly.member.description import Combination, Material, Member
+from fishbelly.member.description import Combination, Material, Member, Opening
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import CannotCompute, NoStiffness
 from fishbelly.member.loads import Axial, Point, Shrinkage
@@ -195,3 +196,30 @@ def test_cracks_end_at_breaks() -> None:
     assert panels.a[k] == 1.5
     left, right = (values_at(panels, r.total.curvature[0], np.array([1.5]), s)[0] for s in ("left", "right"))
     assert left > 2.0 * right
+
+
+def test_opening_in_the_cracked_stretch() -> None:
+    """Panels are anchored at the opening: round-off of the plane in which nothing bends must not cut them up."""
+    member = simply(6.5, 20e3)
+    member = replace(member, openings=(Opening(4.0, ("beam",), diameter=0.1, level=-0.25),))
+    r = solved(member, EN)
+    assert r.analysis.profile.panels.count < 40
+    check = cracked_check(r)
+    assert check is not None and check["difference"] < 1e-7
+
+
+def test_round_column_cracks_askew() -> None:
+    """A ring of bars a little turned: state II by strips cannot be had askew, equilibrium of its fibres can."""
+    ring = [(0.2 * math.sin(a), 0.2 * math.cos(a)) for a in (k * math.pi / 3 + 0.2 for k in range(5))]
+    bars = [
+        part(f"bar {k}", "circle", 5.0, material="bars", diameter=0.02, place=at_level(-0.25 + z, y))
+        for k, (z, y) in enumerate(ring)
+    ]
+    column = part("column", "circle", 5.0, material="concrete", diameter=0.5)
+    member = Member(5.0, (column, *bars), (CONCRETE, BARS), supports=simple(5.0), loads=(uniform(40e3, 5.0),))
+    r = solved(member)
+    ((a, b),) = r.stretches
+    # the bars are not symmetric about the middle plane, the member is about its middle
+    assert a + b == pytest.approx(5.0, rel=1e-8)
+    assert abs(field(r, "deflection", 2.5, 1)) > 1e-3 * field(r, "deflection", 2.5) > 0.0
+    assert r.total.M[1].max() == pytest.approx(0.0, abs=1e-9 * r.total.M[0].max())

@@ -1,4 +1,4 @@
-"""Shear stiffness of sections as the member draws them, against closed forms; St Venant's flexure has tests of its own."""
+"""Shear stiffness of sections as the member draws them, against closed forms."""
 
 # ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations

@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from commands import INCH, KN, MM, MPA, changed, check_prints, deflect, down
+from commands import KN, MM, changed, check_prints, deflect, down
 from worked_answers import ANSWERS
 from worked_run import answer
 
@@ -24,31 +24,6 @@ def found(combination: Any, limit: str) -> dict[str, Any]:
     return next(c for c in combination["checks"] if c["limit"] == limit)
 
 
-def flitch_beam(text: str) -> Values:
-    result = deflect(text)["by_name"]
-    imposed, final = found(result["imposed"], "imposed load"), found(result["final"], "final")
-    return [
-        (imposed["found"] / MM, "7.15 mm"),
-        (imposed["allowed"] / MM, "11.67 mm"),
-        (final["found"] / MM, "14.58 mm"),
-        (final["allowed"] / MM, "16.80 mm"),
-        (final["used"] * 100, "87 %"),
-        (final["band"]["low"] / MM, "16.67 mm"),
-    ]
-
-
-def pump_shaft(text: str) -> Values:
-    result = deflect(text)["by_name"]["shut off"]
-    return [
-        (found(result, "seal face")["found"] / MM, "0.0623 mm"),
-        (found(result, "seal face")["allowed"] / MM, "0.08 mm"),
-        (found(result, "running clearance")["found"] / MM, "0.233 mm"),
-        (found(result, "running clearance")["allowed"] / MM, "0.30 mm"),
-        (found(result, "pump bearing")["found"] / 1e-3, "0.466 mrad"),
-        (-result["supports"][0]["vertical"], "1161 N"),
-    ]
-
-
 def notched_joist(text: str) -> Values:
     result = deflect(text)["by_name"]
     cuts = text[text.index("\n[[notch]]") : text.index("\n[[support]]")]
@@ -60,20 +35,6 @@ def notched_joist(text: str) -> Values:
         (found(result["all"], "all load")["allowed"] / MM, "14 mm"),
         (down(whole["imposed"]) / MM, "5.68 mm"),
         (down(whole["all"]) / MM, "8.71 mm"),
-    ]
-
-
-def tapered_arm(text: str) -> Values:
-    result = deflect(text)["by_name"]
-    dead, wind = found(result["dead"], "dead"), found(result["wind"], "wind")
-    both = found(result["dead and wind"], "both")
-    return [
-        (dead["found"] / INCH, "0.802 in"),
-        (dead["allowed"] / INCH, "2.20 in"),
-        (wind["found"] / INCH, "1.656 in"),
-        (wind["allowed"] / INCH, "2.93 in"),
-        (both["found"] / INCH, "1.840 in"),
-        (both["allowed"] / INCH, "3.52 in"),
     ]
 
 
@@ -93,32 +54,9 @@ def haunched_rafter(text: str) -> Values:
     ]
 
 
-def plated_beam(text: str) -> Values:
-    result = deflect(text)["by_name"]
-    plate = text[text.index('[[part]]\nname = "plate"') : text.index("[[support]]")]
-    bare = deflect(changed(text, (plate, "")))["by_name"]
-    beam = found(result["all"], "strength of beam")
-    return [
-        (down(result["imposed"]) / MM, "8.83 mm"),
-        (found(result["imposed"], "imposed load")["allowed"] / MM, "16.67 mm"),
-        (down(result["all"]) / MM, "14.80 mm"),
-        (found(result["all"], "all load")["allowed"] / MM, "24.00 mm"),
-        (beam["found"] / MPA, "141.1 MPa"),
-        (beam["allowed"] / MPA, "180 MPa"),
-        (beam["used"] * 100, "78 %"),
-        (found(result["all"], "strength of plate")["found"] / MPA, "102.7 MPa"),
-        (down(bare["imposed"]) / MM, "10.47 mm"),
-        (down(bare["all"]) / MM, "17.57 mm"),
-    ]
-
-
 EXPECTED: dict[str, Callable[[str], Values]] = {
-    "flitch-beam": flitch_beam,
     "haunched-rafter": haunched_rafter,
     "notched-joist": notched_joist,
-    "plated-beam": plated_beam,
-    "pump-shaft": pump_shaft,
-    "tapered-arm": tapered_arm,
     **ANSWERS,
 }
 
@@ -184,4 +122,4 @@ def test_from_start_to_answer_as_typed(tmp_path: Path) -> None:
     words = [*fishbelly, "deflect", job.name, "--json"]
     done = subprocess.run(words, capture_output=True, text=True, check=True, cwd=tmp_path)
     final = json.loads(done.stdout)["combinations"][1]
-    check_prints(down(final) / MM, "14.58")
+    check_prints(down(final) / MM, "14.72")

@@ -16,8 +16,9 @@ from worked_members import (
     runway_beam,
 )
 from worked_run import Values
-from worked_slip import footbridge
 from worked_sections import beam_with_openings, concrete_beam, corroded_lintel, plated_w_shape, z_purlin
+from worked_shear import flitch_beam, plated_beam, pump_shaft, tapered_arm
+from worked_slip import footbridge
 from worked_stages import flitch_in_two_stages, jacked_and_plated, plated_under_load
 
 ANSWERS: dict[str, Callable[[str], Values]] = {
@@ -26,14 +27,18 @@ ANSWERS: dict[str, Callable[[str], Values]] = {
     "concrete-beam": concrete_beam,
     "continuous-beam": continuous_beam,
     "corroded-lintel": corroded_lintel,
+    "flitch-beam": flitch_beam,
     "flitch-in-two-stages": flitch_in_two_stages,
     "footbridge": footbridge,
     "gantry-arm": gantry_arm,
     "inclined-rafter": inclined_rafter,
     "jacked-and-plated": jacked_and_plated,
+    "plated-beam": plated_beam,
     "plated-under-load": plated_under_load,
     "plated-w-shape": plated_w_shape,
     "propped-cantilever": propped_cantilever,
+    "pump-shaft": pump_shaft,
     "runway-beam": runway_beam,
+    "tapered-arm": tapered_arm,
     "z-purlin": z_purlin,
 }

@@ -59,9 +59,7 @@ class Curves:
             self._results[name] = Solved(self.analysis).combination(*name)
         return self._results[name]
 
-    def along(
-        self, combination: Mapping[str, Any], quantity: str, stage: str | None = None
-    ) -> tuple[Array, Array]:
+    def along(self, combination: Mapping[str, Any], quantity: str, stage: str | None = None) -> tuple[Array, Array]:
         """Places [m] and values [SI] of a quantity of a combination of the results; every place twice, left first."""
         result = self.result(combination, stage)
         x = np.repeat(self.places, 2)[1:-1]

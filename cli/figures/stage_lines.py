@@ -10,7 +10,7 @@ import numpy as np
 from fishbelly.cli.figures import lines
 from fishbelly.cli.figures.letters import Spots, shortened
 from fishbelly.cli.figures.lines import Array
-from fishbelly.cli.figures.paper import HEAVY, MEDIUM, own_panel, pens, size_of
+from fishbelly.cli.figures.paper import HEAVY, MEDIUM, own_panel, pens, size_of, text_width
 from fishbelly.cli.figures.supports import white
 from fishbelly.cli.figures.ticks import exact
 
@@ -71,17 +71,19 @@ def _names(ax: Any, job: Any, stages: Sequence[Line]) -> None:
     spots = Spots(width, height, every_x, every_y, nought if 0.0 < nought < height else None, dots)
     scale = max(float(np.abs(y).max()) for _, _, y in stages)
     crowded = []
-    for k, ((name, _, y), peak, dot) in enumerate(zip(stages, peaks, dots, strict=True), 1):
-        text = f"{k} {shortened(name, _WIDEST)}: {exact(float(y[peak]), 'deflection', job.style, scale)}"
+    for k in (len(stages), *range(1, len(stages))):  # the last one first: it is what matters most
+        (name, _, y), peak, dot = stages[k - 1], peaks[k - 1], dots[k - 1]
+        value = exact(float(y[peak]), "deflection", job.style, scale)
+        text = f"{k} {shortened(name, _WIDEST)}: {value}"
         found = spots.find(text, *dot)
         if found is None:
-            crowded.append(text)
+            crowded.append(f"{k}: {value}")
             continue
         place = (x0 + found[0] / width * (x1 - x0), y0 + found[1] / height * (y1 - y0))
         ax.plot([x0 + dot[0] / width * (x1 - x0)], [float(y[peak])], "o", ms=2.6, color="black", zorder=6)
         ax.text(*place, text, ha="center", va="center", zorder=7, bbox=white())
     if crowded:
-        over = shortened("; ".join(crowded), 0.55 * width)
+        over = shortened("; ".join(crowded), width - text_width(f"{WORDS} [mm]") - 3.0)
         ax.text(x1, y1 + 0.7 / height * (y1 - y0), over, ha="right", va="bottom", clip_on=False)
 
 

@@ -84,8 +84,8 @@ def plot(job: Any, rows: Sequence[Row], ax: Any = None) -> Any:
         left, right = _NAMES + beside, width - beside
         per = (right - left) / (high - low or 1.0)
         nought = left - low * per
-        unit = pretty(unit_label("stress", job.style))  # type: ignore[arg-type]
-        words = f"stress at the end of each stage [{unit}], smallest and largest of each part, tension positive"
+        unit = pretty(unit_label("stress", job.style))
+        words = f"Stress at the end of each stage [{unit}], smallest and largest of each part, tension positive"
         ax.text(0.0, tall + 0.8, words, ha="left", va="bottom", clip_on=False)
         ax.plot([nought, nought], [0.0, tall], color="black", lw=THIN, zorder=4)
         y, before = tall - 0.5, None
@@ -117,8 +117,14 @@ def _bar(ax: Any, job: Any, row: Row, first: bool, y: float, axis: tuple[float, 
     ax.add_patch(Rectangle((a, y - 0.4 * LINE), b - a, 0.8 * LINE, edgecolor="black", lw=MEDIUM, zorder=3, **look))
     for value, at, side in ((low, a, "right"), (high, b, "left")):
         if abs(value) > 1e-9 * scale:
-            x = min(at, nought) - 0.6 if side == "right" else max(at, nought) + 0.6
-            ax.text(x, y, _number(value, job.style, scale), ha=side, va="center", zorder=5)
+            text = _number(value, job.style, scale)
+            # beside the bar; on the other side of zero where there is no room between
+            off = abs(at - nought) < text_width(text) + 1.6
+            if side == "right":
+                x = min(at, nought) - 0.6 if at > nought and off else at - 0.6
+            else:
+                x = max(at, nought) + 0.6 if at < nought and off else at + 0.6
+            ax.text(x, y, text, ha=side, va="center", zorder=5)
 
 
 def _number(value: float, style: str, scale: float) -> str:

@@ -103,4 +103,6 @@ def _figures(command: str, data: Mapping[str, Any], job: Any, every: bool, analy
         curves = Curves(job.member, analysis, data.get("stage"))
         chosen = range(len(combinations)) if every else (governs,)
         for k in chosen:
-            yield pages.deflect_page(job, curves, combinations[k], k == governs and len(combinations) > 1, data["stages"])
+            yield pages.deflect_page(
+                job, curves, combinations[k], k == governs and len(combinations) > 1, data["stages"]
+            )

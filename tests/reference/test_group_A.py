@@ -149,7 +149,7 @@ def test_row(row: dict[str, Any]) -> None:
 
 @pytest.mark.parametrize("row", TRUE, ids=[row["id"] for row in TRUE])
 def test_true_torsion_constant(row: dict[str, Any]) -> None:
-    """GJ/G of the outline in cm4: the row's finite elements, and the tabulated value but for the row's own difference."""
+    """GJ/G of the outline in cm4: the row's finite elements, and the table's value but for the row's difference."""
     size = row["inputs"]["section"].removesuffix(" hot")
     job = (
         f'length = "1 m"\n[material.steel]\nE = "210 GPa"\nG = "81 GPa"\n[[part]]\nname = "beam"\n'
