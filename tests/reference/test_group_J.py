@@ -3,6 +3,7 @@
 import json
 
 import pytest
+from commands import deflect
 from printed import rows
 
 from fishbelly.catalog.concrete_rules import PERMANENT, aashto_modular_ratio
@@ -57,3 +58,58 @@ def test_J5() -> None:
     assert printed["longterm_multiplier"] == PERMANENT
     with pytest.raises(ValueError, match=r"at least 2\.4 ksi"):
         aashto_modular_ratio(2.3 * KSI)
+
+
+JOIST = """
+length = "4500 mm"
+[material.lvl]
+E = "13.8 GPa"
+G = "600 MPa"
+creep = 0.6
+[[part]]
+name = "joist"
+shape = "rectangle"
+material = "lvl"
+width = "45 mm"
+depth = "240 mm"
+[[support]]
+at = "0 mm"
+kind = "pin"
+[[support]]
+at = "4500 mm"
+kind = "roller"
+[[load]]
+kind = "uniform"
+value = "0.9 kN/m2"
+spacing = "400 mm"
+case = "permanent"
+[[load]]
+kind = "uniform"
+value = "2.0 kN/m2"
+spacing = "400 mm"
+case = "imposed"
+[[combination]]
+name = "at once"
+factors = { permanent = 1, imposed = 1 }
+[[combination]]
+name = "final"
+factors = { permanent = 1, imposed = 1 }
+sustained = { permanent = 1, imposed = 0.3 }
+"""
+
+
+def test_J8() -> None:
+    """Section 45 x 240, E 13.8 GPa and G 0.6 GPa: those of the series with which the row's two numbers come out."""
+    found, printed = deflect(JOIST)["by_name"], ROWS["J8"]["value"]
+    for name, key in (("at once", "winst"), ("final", "wfin")):
+        assert found[name]["deflection"]["down"]["value"] * 1e3 == pytest.approx(printed[key], rel=1e-9)
+
+
+def test_J3() -> None:
+    """Final modulus E / (1 + k_def), told by the deflection under a load that is sustained in full; G alike."""
+    text = JOIST.replace("13.8 GPa", "11 GPa").replace(
+        "sustained = { permanent = 1, imposed = 0.3 }", "sustained = { permanent = 1, imposed = 1 }"
+    )
+    found = deflect(text)["by_name"]
+    share = found["at once"]["deflection"]["down"]["value"] / found["final"]["deflection"]["down"]["value"]
+    assert 11000.0 * share == pytest.approx(ROWS["J3"]["value"]["Efin"], rel=1e-12)
