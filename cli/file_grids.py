@@ -7,6 +7,7 @@ from dataclasses import replace
 from typing import Any
 
 from fishbelly.cli import deflect_grids as grids
+from fishbelly.cli.fibre_grids import fibre_grids
 from fishbelly.cli.grid import TEXT, Column, Grid, column
 from fishbelly.cli.section_grids import section_parts, section_stresses
 from fishbelly.cli.stage_grids import stage_tables, staged
@@ -146,5 +147,5 @@ def _no_envelope(count: int, patterned: Row | None) -> tuple[Column, ...]:
 
 
 def section_details(data: Row) -> list[Grid]:
-    """Write the parts of a cross-section and their stresses."""
-    return [section_parts(data), section_stresses(data)]
+    """Write the parts of a cross-section and their stresses, at levels too where that was asked."""
+    return [section_parts(data), section_stresses(data), *fibre_grids(data)]

@@ -14,8 +14,10 @@ from typing import Any
 import click
 
 from fishbelly.cli.command_group import LazyGroup
+from fishbelly.cli.fibre_option import add_fibres, asked_fibres, fibres
 from fishbelly.cli.last_net import DONE, NOT_MET, WRONG, caught, discard_stdout
 from fishbelly.cli.stage_option import STAGE, known_stage
+from fishbelly.cli.typed_places import typed_place
 from fishbelly.cli.without_option import WITHOUT, beside, known_parts
 
 NOT_BUILT = {
@@ -138,6 +140,7 @@ def _outputs(command: Callable[..., Any]) -> Callable[..., Any]:
     help="Side of a break.",
 )
 @click.option("--to", metavar="MATERIAL", help="Material to transform the section to [default: the first part's].")
+@fibres
 @STAGE
 @WITHOUT
 @_outputs
@@ -146,6 +149,8 @@ def section(
     places: tuple[str, ...],
     side: str,
     to: str | None,
+    levels: tuple[str, ...],
+    combination: str | None,
     stage: str | None,
     left_out: tuple[str, ...],
     as_json: bool,
@@ -154,7 +159,7 @@ def section(
 ) -> int:
     """Show the cross-section at one place: stiffness, transformed properties, stress coefficients.
 
-    Example: fishbelly section my-beam.toml --at "1.2 m"
+    Example: fishbelly section my-beam.toml --at "1.2 m" --fibre "-120 mm"
     """
     if len(places) > 1:
         raise click.UsageError(f"--at: expected one place, got {len(places)}; `stiffness` takes several")
@@ -165,10 +170,12 @@ def section(
     _known_material(to, read.member)
     known_stage(stage, read.member)
     known_parts(left_out, read.member)
+    heights = asked_fibres(levels, combination, read.member)
     from fishbelly.cli.patience import patience
 
     with patience("cutting the section"):
         data = section_at(read.member, at[0], side, to, stage)
+        add_fibres(data, read.member, heights, combination, stage, read.style)
         beside(data, left_out, lambda: section_without(data, read.member, left_out, stage))
     return _finish("section", data, read, as_json, outputs, force, listed=True)
 
@@ -287,21 +294,7 @@ def _read(job: str, at: Sequence[str], outputs: Sequence[str], force: bool) -> t
 
         check_targets(outputs, force)
     read = read_job(job)
-    return read, [_place(text, read.member.length, read.style) for text in at]
-
-
-def _place(text: str, length: float, style: Any) -> float:
-    from fishbelly.cli.format_quantity import format_position
-    from fishbelly.cli.quantities import Kind, QuantityError, parse_quantity
-
-    try:
-        x = parse_quantity(text, Kind.LENGTH)
-    except QuantityError as error:
-        raise click.UsageError(f"--at: {error}") from None
-    if not -1e-9 * length <= x <= length * (1.0 + 1e-9):
-        limit = format_position(length, style)
-        raise click.UsageError(f'--at: expected a place on the member, 0 to {limit}, got "{text}"')
-    return min(max(x, 0.0), length)
+    return read, [typed_place(text, read.member.length, read.style) for text in at]
 
 
 def _finish(

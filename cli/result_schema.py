@@ -6,7 +6,7 @@ from fishbelly.cli.catalog_properties import MEANINGS
 from fishbelly.cli.job_schema import DIALECT
 from fishbelly.cli.result_schema_cracked import cracked_schema
 from fishbelly.cli.result_schema_joints import joints_schema
-from fishbelly.cli.result_schema_section import twist_schema
+from fishbelly.cli.result_schema_section import fibre_schema, twist_schema
 from fishbelly.cli.result_schema_slip import slip_schema
 from fishbelly.cli.result_schema_stages import stages_schema
 from fishbelly.cli.result_schema_trade import trade_schema, width_schema
@@ -114,6 +114,7 @@ def _section() -> Schema:
         },
         {"notes": _NOTES, "without": section_without_schema(_STIFFNESS | shears | _CENTROID)}
         | twist_schema()
+        | fibre_schema()
         | trade_schema(),
     )
 
@@ -137,7 +138,10 @@ def _stiffness() -> Schema:
 
 
 _BAND = {
-    "band": _object("with E, and joint stiffness, at the low and the high end of its band", {k: _maybe(_number(k)) for k in ("low", "high")})
+    "band": _object(
+        "with E, and joint stiffness, at the low and the high end of its band",
+        {k: _maybe(_number(k)) for k in ("low", "high")},
+    )
 }
 
 

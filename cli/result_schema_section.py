@@ -1,4 +1,4 @@
-"""JSON Schema of what `fishbelly section` tells of shear and torsion."""
+"""JSON Schema of what `fishbelly section` tells of shear and torsion, and of stress at a level."""
 
 from __future__ import annotations
 
@@ -30,3 +30,27 @@ def twist_schema() -> dict[str, Schema]:
         {"reason": text("why there is none")},
     )
     return {"shear": maybe(shear), "torsion": maybe(torsion)}
+
+
+def fibre_schema() -> dict[str, Schema]:
+    """Return the schema of `fibres`, which is there with ``--fibre`` alone."""
+    pair: Schema = {"type": "array", "items": {"type": "number"}, "minItems": 2, "maxItems": 2}
+    fibre = record(
+        "stress of a part at a level, all `pattern` loads on",
+        {
+            "combination": text("combination"),
+            "part": text("name of the part"),
+            "z": number("level", "m"),
+            "side": {
+                "enum": ["both", "below", "above"],
+                "description": "whether just below or just above the level, where the two differ",
+            },
+            "normal": number("stress along the part in the middle of its width there, tension positive", "Pa"),
+            "ends": pair | {"description": "the same at the left and right end of that width [Pa]"},
+            "shear": number("mean shear stress over the width, positive as the shear force", "Pa"),
+            "principal": pair | {"description": "largest and smallest principal stress [Pa]"},
+            "tau_max": number("largest shear stress, half their difference", "Pa"),
+            "angle": number("direction of the first from the axis, positive where it rises along x", "rad"),
+        },
+    )
+    return {"fibres": array("stress at levels, with --fibre", fibre)}

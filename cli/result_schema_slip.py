@@ -33,6 +33,9 @@ def _joint() -> Schema:
             "single": array("fasteners, where they are taken one by one", single),
             "stiffness": number("short-term stiffness per length, all rows, both copies of a pair", "N/m2"),
             "creep": maybe(number("creep factor of long-term values of it; null where nothing lasts")),
+            "creep_of_shrinkage": array(
+                "creep factors for shrinkage with one of its own", {"type": "number", "description": "creep factor"}
+            ),
             "creep_in_stages": array(
                 "creep factors that run off in stages",
                 record("one", {"stage": text("the stage"), "creep": number("creep factor")}),

@@ -59,6 +59,7 @@ def slip_joints(combination: Row, noise: Noise) -> Grid:
 def _creep(row: Row) -> str:
     """Write the creep factors of the joint that were used."""
     said = [] if row["creep"] is None else [f"{row['creep']:.4g}"]
+    said += [f"{v:.4g} with shrinkage" for v in row["creep_of_shrinkage"]]
     return "; ".join(said + [f"{v['creep']:.4g} in {v['stage']}" for v in row["creep_in_stages"]])
 
 
@@ -126,7 +127,8 @@ def slip_lines(combination: Row, noise: Noise, style: str, explained: bool) -> l
         return []
     lines: list[str] = []
     for grid in (slip_joints(combination, noise), slip_bounds(combination, noise)):
-        shown = grid if explained else replace(grid, note="")
+        columns = tuple(c for c in grid.columns if c.title != "creep")
+        shown = replace(grid, columns=columns, note=grid.note if explained else "")
         lines += [*paragraph(f"{shown.title} ({shown.note})" if shown.note else shown.title), *render(shown, style)]
         if grid.title == "Joints that slip":
             lines += [line for joint in combination["slip"] for line in _stiffness(joint, style)]
@@ -140,7 +142,8 @@ def _stiffness(joint: Row, style: str) -> list[str]:
     value = format_number(joint["stiffness"], "stress", style)  # type: ignore[arg-type]
     said = "not joined" if joint["stiffness"] == 0.0 else f"stiffness {value} {_PER_LENGTH[style]}"
     single = "; fasteners taken one by one" if joint["single"] else ""
-    return paragraph(f"{joint['part']} on {joint['to']}: {said}{single}", "  ", "    ")
+    creep = f", creep {_creep(joint)}" if _creep(joint) else ""
+    return paragraph(f"{joint['part']} on {joint['to']}: {said}{creep}{single}", "  ", "    ")
 
 
 def _by_gamma(row: Row, style: str) -> str:

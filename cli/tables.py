@@ -7,6 +7,7 @@ from dataclasses import replace
 from typing import Any
 
 from fishbelly.cli.cautions import LINE
+from fishbelly.cli.fibre_grids import fibre_grids
 from fishbelly.cli.format_quantity import NOTHING, format_number, format_position
 from fishbelly.cli.grid import Grid, unit_of
 from fishbelly.cli.section_grids import (
@@ -65,7 +66,7 @@ def section_table(data: Mapping[str, Any], style: str) -> str:
         lines += [*paragraph(heading), *_values(values, style), ""]
         if heading.startswith("Transformed") and len(data["transformed"].get("n") or {}) > 1:
             lines += [*_headed(ratios(data), style), ""]
-    for grid in (section_parts(data), section_stresses(data), *section_beside(data)):
+    for grid in (section_parts(data), section_stresses(data), *fibre_grids(data), *section_beside(data)):
         lines += [*_headed(grid, style), ""]
     return "\n".join([*lines, *_closing(data)]) + "\n"
 

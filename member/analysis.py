@@ -223,11 +223,11 @@ class Analysis:
         with_shear = self.member.shear if shear is None else shear
         name = (key, lifted, with_shear)
         if name not in self._histories:
-            settings = [self._setting(k, key, lifted, with_shear) for k in range(len(self.views))]
+            settings = [self.setting(k, key, lifted, with_shear) for k in range(len(self.views))]
             self._histories[name] = life(settings, self.atoms, self.loads, self._free, self._free_planes, self.planes)
         return self._histories[name]
 
-    def _setting(self, k: int, key: ModuliKey, lifted: frozenset[str], shear: bool) -> Setting:
+    def setting(self, k: int, key: ModuliKey, lifted: frozenset[str], shear: bool) -> Setting:
         """What a stage offers to loads on one set of moduli."""
         view, frame = self.views[k], self.frames[k]
         stage, planes = view.stage, self.planes

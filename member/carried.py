@@ -11,9 +11,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.history_forces import resultant
 from fishbelly.member.panels import Panels
-from fishbelly.member.part_forces import Loading, stress_planes
+from fishbelly.member.part_forces import Loading, resultants
 
 Array = NDArray[np.float64]
 
@@ -59,12 +58,11 @@ def part_force(loading: Sequence[Loading], index: int) -> PartForce | None:
     PartForce or None
         None where the part is not there in the stage asked for, or nothing of the loading has met it.
     """
-    planes = stress_planes(loading, index)
-    if planes is None:
+    carried = resultants(loading, index)
+    if carried is None:
         return None
     end = loading[0].end
     moments = end.profile.part_moments(index, end.line)
-    carried = resultant(np.swapaxes(planes, 0, 1), moments)
     area = np.where(moments[0] > 0.0, moments[0], 1.0)
     own = carried.M + carried.N * (moments[1:3] / area)[:, None]
     panels, part = end.profile.panels, end.profile.member.parts[index]

@@ -282,8 +282,8 @@ def _out_of_balance(layout: Layout, d: Determinate, a: Actions, dof: Dof) -> flo
         load = float(a.P[p, n.border])
     else:
         load = couple_at(layout, node, a, p)
-        # a moment that goes as a hinge opens turns the two sides against each other
-        kink = 0.0 if a.opened is None else float(a.opened[n.border])
+        # a moment that goes as a hinge opens turns the two sides against each other, in the vertical plane
+        kink = 0.0 if a.opened is None or p else float(a.opened[n.border])
         load = -kink if way == "turn right" else load + kink
     for number, seg in enumerate(layout.segments):
         for here, ends, sign in ((seg.left, d.left[number], -1.0), (seg.right, d.right[number], 1.0)):

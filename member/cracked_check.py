@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import breakpoints
-from fishbelly.member.cracked_response import CrackedResponse
+from fishbelly.member.cracked_found import CrackedResponse
 from fishbelly.member.cracked_strips import Plane, StripSection, strip_strain
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import CannotCompute

@@ -96,6 +96,8 @@ class CrackedLaw:
         Free strain of the parts in state I and in state II, what history left in them counted.
     planar : bool
         Bending in the vertical plane alone.
+    held : tuple of Forces
+        Forces that parts which are going still carry for the section, in state I and in state II; none where empty.
     """
 
     sections: CrackedSections
@@ -106,16 +108,18 @@ class CrackedLaw:
     stiffening: Stiffening | None
     free: tuple[Planes, Planes]
     planar: bool
+    held: tuple[Forces, ...] = ()
 
     def at(self, forces: Forces, near: LawState | None = None) -> LawState:
         """Return strains under forces; `near` is a state from which to start."""
         everywhere = np.ones(self.mask.shape, dtype=bool)
         E, brittle = self.moduli.E, self.never | frozenset(self.cracking)
+        own = [forces.plus(h, -1.0) for h in self.held] or [forces, forces]
         first = self.sections.states(
-            E, self.never, self.free[0], forces, everywhere, None if near is None else near.uncracked.plane
+            E, self.never, self.free[0], own[0], everywhere, None if near is None else near.uncracked.plane
         )
         start = first.plane if near is None else near.cracked.plane
-        second = self.sections.states(E, brittle, self.free[1], forces, self.mask, start)
+        second = self.sections.states(E, brittle, self.free[1], own[1], self.mask, start)
         over = self.over(self.fibres(first.plane))
         one, two = _softened(first, first), _softened(second, first)
         cracked = np.where(self.mask, two[0], one[0])

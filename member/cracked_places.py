@@ -8,8 +8,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from fishbelly.member.cracked_events import Solved
 from fishbelly.member.cracked_grid import roots
-from fishbelly.member.cracked_phases import Solved
 from fishbelly.member.panels import Panels
 
 Array = NDArray[np.float64]
@@ -67,7 +67,8 @@ def openings(panels: Panels, phases: Sequence[Solved]) -> list[float]:
     found: list[float] = []
     for solved in phases:
         law, plane = solved.law, solved.closed.state.uncracked.plane
-        if not np.any(solved.closed.response.N):
+        inherited = any(np.any(v) for v in law.free[0].values())
+        if not np.any(solved.closed.response.N) and not inherited:
             continue
         for part in law.never:
             for field in law.sections.tension(part, law.stress(part, plane, 0), law.planar):

@@ -2,107 +2,31 @@
 
 Where it cracks is found as roots along x, and the grid is given borders there, so that no panel has a kink. In a
 statically indeterminate member forces, cracks and stiffness depend on one another and are brought into agreement.
+With stages that is done stage by stage: what an earlier one has cracked stays cracked, and within a stage what its
+last event cracks counts as cracked in all of them.
 """
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass, replace
-
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.analysis import Analysis, Combined
-from fishbelly.member.cracked_grid import CLOSE, split
+from fishbelly.member.analysis import Analysis
+from fishbelly.member.cracked_found import CrackedResponse
+from fishbelly.member.cracked_grid import CLOSE
 from fishbelly.member.cracked_law import LawState
 from fishbelly.member.cracked_phases import Phases, Solved
-from fishbelly.member.cracked_places import Search, Stretches, inside, joined, kinks, openings, own_stretches
+from fishbelly.member.cracked_places import Stretches, joined
+from fishbelly.member.cracked_search import Run, carried_over
 from fishbelly.member.cracked_sections import cracking_parts, no_tension_parts
-from fishbelly.member.cracked_solve import CLOSED, radius
 from fishbelly.member.description import Combination, Member
-from fishbelly.member.extremes import values_at
-from fishbelly.member.faults import CannotCompute, NoStiffness
+from fishbelly.member.faults import CannotCompute
 from fishbelly.member.forces import Forces
-from fishbelly.member.panels import POINTS
 from fishbelly.member.response import Response
 from fishbelly.member.slip_layers import has_soft_joints
-from fishbelly.sections.chebyshev import rule
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
-
-MOST_SEARCHES = 40
-SETTLED = 1e-10
-"""Change of the ends of cracked stretches, as a share of the member's length, at which they count as found."""
-RESOLVED = 1e-10
-"""Last Chebyshev coefficients of strains against the largest strain of the member."""
-MOST_HALVINGS = 5
-
-
-@dataclass(frozen=True)
-class Convergence:
-    """How equilibrium closed.
-
-    Parameters
-    ----------
-    status : {"closed", "cracks held", "not closed"}
-        "cracks held": cracks that opened on the way were kept, because no state without them agreed with itself.
-    rounds : int
-        Linear solutions in all.
-    searches : int
-        How often the places of cracks were found anew.
-    residual : float
-        Change of the forces in the last round against the largest.
-    at : float
-        Where that change is largest [m].
-    """
-
-    status: str
-    rounds: int
-    searches: int
-    residual: float
-    at: float
-
-
-@dataclass(frozen=True, eq=False)
-class CrackedResponse:
-    """One combination on a member that cracks.
-
-    Parameters
-    ----------
-    analysis : Analysis
-        On a grid with borders where cracks begin.
-    combined : Combined
-        The combination, with the cracked response as its total.
-    uncracked : Response
-        The linear response, on the same grid.
-    phases : tuple of Solved
-        Sustained loads and then all loads, with the law; empty where nothing cracks.
-    stretches : tuple of (float, float)
-        Where it counts as cracked [m].
-    own : tuple of (float, float)
-        Where this combination cracks it by itself [m].
-    convergence : Convergence
-        How it closed.
-    """
-
-    analysis: Analysis
-    combined: Combined
-    uncracked: Response
-    phases: tuple[Solved, ...]
-    stretches: Stretches
-    own: Stretches
-    convergence: Convergence
-
-    @property
-    def total(self) -> Response:
-        """The response."""
-        return self.combined.total
-
-    @property
-    def state(self) -> LawState | None:
-        """Sections in the last phase; None where nothing cracks."""
-        return self.phases[-1].closed.state if self.phases else None
 
 
 def may_crack(member: Member) -> bool:
@@ -118,7 +42,7 @@ def cracked_response(
     band: str = "nominal",
     everywhere: bool = False,
 ) -> CrackedResponse:
-    """Response of a combination with cracks.
+    """Response of a combination with cracks, at the end of the last stage.
 
     Parameters
     ----------
@@ -142,235 +66,68 @@ def cracked_response(
     Raises
     ------
     NoStiffness
-        Where a section cannot carry its forces, with the place, the moment and what it can carry.
+        Where a section cannot carry its forces, with the place, the moment, what it can carry, and the stage.
     CannotCompute
-        When equilibrium does not close, or where a bearing that cannot pull or a pattern load would have to be
-        followed through cracking.
+        When equilibrium does not close, or where a bearing that cannot pull, a pattern load, a joint that slips or a
+        hinge that comes or goes would have to be followed through cracking.
+    """
+    found: CrackedResponse | None = None
+    for _ in analysis.views:
+        found = cracked_stage(analysis, combination, found, rule, held, band, everywhere)
+    assert found is not None
+    return found
+
+
+def cracked_stage(
+    analysis: Analysis,
+    combination: Combination,
+    before: CrackedResponse | None,
+    rule: str | None = None,
+    held: Stretches = (),
+    band: str = "nominal",
+    everywhere: bool = False,
+) -> CrackedResponse:
+    """One stage more of a combination with cracks; parameters and errors as in `cracked_response`.
+
+    Parameters
+    ----------
+    before : CrackedResponse or None
+        The end of the stage before; None for the first.
     """
     _built(analysis, combination)
-    combined = analysis.combine(combination, band)
+    stage = 0 if before is None else before.stage + 1
+    base = analysis if before is None else before.analysis
+    combined = base.combine(combination, band, stage if stage < len(analysis.views) - 1 else None)
     whole = ((0.0, analysis.member.length),)
-    run = _Run(analysis, combined, None if everywhere else rule, whole if everywhere else held, everywhere)
+    kept = () if before is None else before.stretches
+    held = whole if everywhere else joined([*kept, *held], CLOSE * analysis.member.length)
+    run = Run(base, combined, None if everywhere else rule, held, everywhere, stage, before)
     return run.go()
 
 
-def bending_alone(r: CrackedResponse, rule: str | None) -> Response:
+def bending_alone(r: CrackedResponse) -> Response:
     """Response of the same cracks, rigid in shear."""
     if not r.phases:
-        return r.analysis.superposed(r.combined.shares, r.combined.lifted, shear=False)
-    phases = Phases(r.analysis, r.combined.shares, r.combined.lifted, rule, shear=False)
-    starts: list[tuple[Forces, LawState | None]] = [(_carried_over(r.analysis, s), s.closed.state) for s in r.phases]
-    return phases.solve(r.phases[-1].law.mask, starts)[-1].closed.response
+        return r.analysis.superposed(r.combined.shares, r.combined.lifted, shear=False, upto=r.combined.upto)
+    return _bent(r)[-1].closed.response
+
+
+def _bent(r: CrackedResponse) -> tuple[Solved, ...]:
+    """What happens in a stage with the same cracks, rigid in shear; computed once."""
+    if not r._bent:
+        inherited = None if r.before is None else _bent(r.before)[-1].after
+        phases = Phases(r.analysis, r.combined.shares, r.combined.lifted, r.rule, False, r.stage, inherited)
+        starts: list[tuple[Forces, LawState | None]] = [(carried_over(r.analysis, s), s.closed.state) for s in r.phases]
+        r._bent.append(phases.solve(r.phases[-1].law.mask, starts))
+    return r._bent[0]
 
 
 def _built(analysis: Analysis, combination: Combination) -> None:
     """See that nothing is asked for that has to be followed through cracking and is not."""
-    if len(analysis.views) > 1:
-        raise CannotCompute("stages together with parts that crack are not built: leave out one of the two")
     if has_soft_joints(analysis.member):
         raise CannotCompute("joints that slip together with parts that crack are not built: leave out one of the two")
+    if any(v.hinges != analysis.views[0].hinges for v in analysis.views):
+        raise CannotCompute("hinges that come or go together with parts that crack are not built: leave out one")
     for atom in analysis.atoms:
         if atom.span is not None and combination.factors.get(atom.case, 0.0):
             raise CannotCompute("pattern loads together with parts that crack are not built: give every arrangement")
-
-
-@dataclass(eq=False)
-class _Run:
-    base: Analysis
-    combined: Combined
-    rule: str | None
-    held: Stretches
-    everywhere: bool
-
-    def go(self) -> CrackedResponse:
-        """Find cracks and forces that agree."""
-        phases, solved = self._start(self.base)
-        own, ends = self._own(self.base, solved)
-        cracked = joined([*own, *self.held], CLOSE * self.base.member.length)
-        if not cracked and not phases.never:
-            return self._finished(self.base, (), (), (), 0, 0, "closed")
-        search, extra, halved, rounds, status = Search(), list[float](), 0, 0, "closed"
-        borders = np.array(sorted([*ends, *openings(self.base.profile.panels, solved)]))
-        gap = 0.0 if not borders.size else np.inf
-        for count in range(1, MOST_SEARCHES + 1):
-            places = [*borders.tolist(), *(x for pair in cracked for x in pair), *extra]
-            analysis = split(self.base, [*places, *self._kinks(solved, cracked)])
-            # as long as cracks still move by much, forces need not close to the last digit
-            rough = max(CLOSED, min(1e-3 * gap / self.base.member.length, 1e-6))
-            solved = self._solve(analysis, cracked, solved, rough)
-            rounds += sum(s.closed.rounds for s in solved)
-            if count == 1 and all(s.closed.rounds == 1 for s in solved):
-                # forces follow from statics alone: what cannot be carried now cannot later
-                self._carried(solved)
-            own, ends = self._own(analysis, solved)
-            found = np.array(sorted([*ends, *openings(analysis.profile.panels, solved)]))
-            same = found.size == borders.size
-            gap = float(np.abs(found - borders).max(initial=0.0)) if same else np.inf
-            if gap <= SETTLED * self.base.member.length:
-                more = self._unresolved(analysis, solved) if halved < MOST_HALVINGS else []
-                if not more:
-                    return self._finished(analysis, solved, cracked, own, rounds, count, status)
-                halved += 1
-                extra += more
-            if count > MOST_SEARCHES // 2:
-                # no state agrees with itself: what has cracked on the way stays cracked
-                status = "cracks held"
-                cracked = joined([*cracked, *own], CLOSE * self.base.member.length)
-                borders = found
-            else:
-                borders = search.next(borders, found) if same and borders.size else found
-                cracked = self._moved(own, found, borders)
-        worst = max(solved, key=lambda s: s.closed.residual)
-        raise CannotCompute(
-            f"cracks of combination {self.combined.combination.name} did not settle in {MOST_SEARCHES} searches: "
-            f"they still move by {gap:.3g} m, forces by {worst.closed.residual:.1e} at x = {worst.closed.at:.6g} m"
-        )
-
-    def _moved(self, own: Stretches, found: Array, borders: Array) -> Stretches:
-        """Stretches with their ends where the search goes next, and those that are held."""
-        places = dict(zip(found.tolist(), borders.tolist(), strict=True)) if found.size == borders.size else {}
-        moved = [(places.get(a, a), places.get(b, b)) for a, b in own]
-        return joined([*moved, *self.held], CLOSE * self.base.member.length)
-
-    def _phases(self, analysis: Analysis) -> Phases:
-        return Phases(analysis, self.combined.shares, self.combined.lifted, self.rule)
-
-    def _start(self, analysis: Analysis) -> tuple[Phases, tuple[Solved, ...]]:
-        """The uncracked state under the forces of the uncracked member."""
-        phases = self._phases(analysis)
-        nowhere = np.zeros(analysis.profile.panels.x.shape, dtype=bool)
-        if phases.never:
-            return phases, self._guarded(phases, nowhere, [(f, None) for f in phases.uncracked()])
-        # without cracks every phase closes in one round
-        return phases, phases.solve(nowhere, [(f, None) for f in phases.uncracked()])
-
-    def _guarded(
-        self, phases: Phases, mask: Mask, starts: list[tuple[Forces, LawState | None]], closed: float = CLOSED
-    ) -> tuple[Solved, ...]:
-        with np.errstate(all="ignore"):
-            return phases.solve(mask, starts, self.everywhere, closed)
-
-    def _solve(
-        self, analysis: Analysis, cracked: Stretches, near: Sequence[Solved], closed: float
-    ) -> tuple[Solved, ...]:
-        phases = self._phases(analysis)
-        mask = inside(analysis.profile.panels, cracked)
-        starts: list[tuple[Forces, LawState | None]] = [(_carried_over(analysis, s), None) for s in near]
-        return self._guarded(phases, mask, starts, closed)
-
-    def _own(self, analysis: Analysis, solved: Sequence[Solved]) -> tuple[Stretches, list[float]]:
-        if self.everywhere:
-            return (), []
-        rule = solved[-1].law.stiffening
-        return own_stretches(analysis.profile.panels, solved, 1.0 if rule is None else rule.level)
-
-    def _kinks(self, solved: Sequence[Solved], cracked: Stretches) -> list[float]:
-        panels, rule = solved[-1].law.sections.frame.profile.panels, solved[-1].law.stiffening
-        # a panel that is cracked in part counts: its borders follow
-        mask = np.array([any(a < y and b > x for a, b in cracked) for x, y in zip(panels.a, panels.b, strict=True)])
-        where = np.broadcast_to(mask[:, None], panels.x.shape)
-        return kinks(panels, solved, where, None if rule is None or not self.held else rule.starts_at)
-
-    def _unresolved(self, analysis: Analysis, solved: Sequence[Solved]) -> list[float]:
-        """Middles, and quarters, of panels in which strains need more points."""
-        panels = analysis.profile.panels
-        found: list[float] = []
-        to = rule(POINTS).to_coefficients
-        reach = np.array([1.0, *(2 * [radius(analysis)])])[:, None, None]
-        wide = (panels.b - panels.a > 1e-4 * analysis.member.length) & (np.abs(panels.anchor) < 2)
-        for s in solved:
-            strains = s.closed.state.plane * reach
-            largest = float(np.abs(strains).max())
-            ends = np.abs(strains @ to.T)[:, :, -3:].max(axis=(0, 2))
-            if largest > 0.0 and np.all(np.isfinite(ends)):
-                bad = np.flatnonzero((ends > RESOLVED * largest) & wide)
-                # three digits and more away, a half would not be enough
-                far = bad[ends[bad] > 1e3 * RESOLVED * largest]
-                found += (0.5 * (panels.a + panels.b)[bad]).tolist()
-                found += [float(x) for t in (0.25, 0.75) for x in ((1.0 - t) * panels.a + t * panels.b)[far]]
-        return found
-
-    def _finished(
-        self,
-        analysis: Analysis,
-        solved: tuple[Solved, ...],
-        cracked: Stretches,
-        own: Stretches,
-        rounds: int,
-        count: int,
-        status: str,
-    ) -> CrackedResponse:
-        combination = self.combined.combination
-        linear = self.combined if analysis is self.base else analysis.combine(combination, self._band)
-        if not solved:
-            done = Convergence("closed", 0, 0, 0.0, 0.0)
-            return CrackedResponse(analysis, linear, linear.total, (), (), (), done)
-        self._judge(solved)
-        worst = max(solved, key=lambda s: s.closed.residual)
-        total = solved[-1].closed.response
-        self._bears(total)
-        done = Convergence(status, rounds, count, worst.closed.residual, worst.closed.at)
-        return CrackedResponse(analysis, replace(linear, total=total), linear.total, solved, cracked, own, done)
-
-    @property
-    def _band(self) -> str:
-        return self.combined.shares[0].key.band
-
-    def _judge(self, solved: Sequence[Solved]) -> None:
-        """See that every section carries its forces and that equilibrium has closed."""
-        self._carried(solved)
-        for s in solved:
-            state, panels = s.closed.state, s.law.sections.frame.profile.panels
-            if not state.converged.all():
-                k = int(np.argmin(state.converged))
-                raise CannotCompute(f"the cracked section at x = {panels.x.flat[k]:.6g} m did not close")
-            if s.closed.residual > 1e3 * CLOSED:
-                raise CannotCompute(
-                    f"the cracked member did not come into equilibrium in {s.closed.rounds} rounds in combination "
-                    f"{self.combined.combination.name}: forces still change by {s.closed.residual:.1e} of the largest "
-                    f"at x = {s.closed.at:.6g} m"
-                )
-
-    def _carried(self, solved: Sequence[Solved]) -> None:
-        for s in solved:
-            if not s.closed.state.carried.all():
-                raise _cannot_carry(s, self.combined.combination.name)
-
-    def _bears(self, total: Response) -> None:
-        """See that bearings that cannot pull bear or lift as they did without cracks."""
-        down = total.reactions[:, 0]
-        size = float(np.abs(down).max(initial=0.0))
-        for k, s in enumerate(self.base.member.supports):
-            if s.only_up and s.name not in self.combined.lifted and down[k] > 1e-9 * size:
-                raise CannotCompute(
-                    f"{s.name} would lift off once cracks have opened: bearings that lift off are not built "
-                    "together with parts that crack"
-                )
-
-
-def _carried_over(analysis: Analysis, solved: Solved) -> Forces:
-    """Forces of a solved phase on another grid."""
-    old, new = solved.law.sections.frame.profile.panels, analysis.profile.panels
-    r = solved.closed.response
-    if old is new:
-        return Forces(r.N, r.V, r.M)
-    x = new.x
-    fields = np.stack((r.N, *r.V, *r.M))
-    values = values_at(old, fields, x.ravel()).reshape(5, *x.shape)
-    return Forces(values[0], values[1:3], values[3:5])
-
-
-def _cannot_carry(solved: Solved, name: str) -> NoStiffness:
-    """Tell where a section cannot carry its forces, and what it can."""
-    state, sections = solved.closed.state, solved.law.sections
-    r, panels = solved.closed.response, sections.frame.profile.panels
-    forces = Forces(r.N, r.V, r.M)
-    moment = r.M[0] + r.N * sections.frame.centre[0]
-    shares = sections.shares_carried(~state.carried, forces)
-    k, j = (int(v) for v in np.unravel_index(int(np.argmin(shares)), shares.shape))
-    share = float(shares[k, j])
-    return NoStiffness(
-        float(panels.x[k, j]),
-        f"without tension the section cannot carry M = {moment[k, j]:.6g} N m with N = {r.N[k, j]:.6g} N in "
-        f"combination {name}; it can carry {share * moment[k, j]:.6g} N m at that axial force",
-    )

@@ -10,8 +10,9 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.cracked_code import OneValue, SpanValue, one_value
+from fishbelly.member.cracked_found import CrackedResponse
 from fishbelly.member.cracked_history import cracked_responses
-from fishbelly.member.cracked_response import CrackedResponse, bending_alone, cracked_response, may_crack
+from fishbelly.member.cracked_response import bending_alone, cracked_response, may_crack
 from fishbelly.member.cracked_sections import no_tension_parts
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
@@ -99,7 +100,7 @@ def _case(r: CrackedResponse, rule: str | None, band: str = "nominal") -> Cracke
     except CannotCompute:
         everywhere = None
     if rule in (None, EN):
-        return CrackedCase(r, rule, None, r.combined, bending_alone(r, rule), everywhere)
+        return CrackedCase(r, rule, None, r.combined, bending_alone(r), everywhere)
     assert rule is not None
     one = one_value(r.analysis, combination, rule, band)
     bent = one_value(r.analysis, combination, rule, band, shear=False).response

@@ -6,7 +6,7 @@ z' = z - line[0], y' = y + line[1], k_y = k0, k_z = -k1, M_y = M0, M_z = -M1.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field
 from functools import cached_property
 
@@ -16,7 +16,8 @@ from numpy.typing import NDArray
 from fishbelly.member.actions import Frame
 from fishbelly.member.description import Member
 from fishbelly.member.forces import Forces
-from fishbelly.sections.clipping import at_stations, moved
+from fishbelly.sections.area_moments import AreaMoments
+from fishbelly.sections.clipping import at_stations, clipped_moments, moved
 from fishbelly.sections.composition import Composition
 from fishbelly.sections.fibres import arc_data, fibres
 from fishbelly.sections.no_tension import FreePlanes, SectionState, largest_shares, solve_section
@@ -79,9 +80,24 @@ class CrackedSections:
 
     @cached_property
     def _local(self) -> list[Composition]:
-        """Sections of each group about the analysis line."""
+        """Sections of each group about the analysis line, inclined flanges by their share."""
         line = self.frame.line
-        return [moved(g.composition, float(line[1]), -float(line[0])) for g in self.frame.profile.groups]
+        found = []
+        for g in self.frame.profile.groups:
+            section = moved(g.composition, float(line[1]), -float(line[0]))
+            if g.placed.flanges:
+                m = g.moments
+                section.__dict__["moments"] = AreaMoments(m.area, m.y + line[1], m.z - line[0], m.zz, m.yy, m.yz)
+            found.append(section)
+        return found
+
+    def inclined(self, parts: Collection[int]) -> int | None:
+        """Return the first of some parts that has inclined flanges which count by their share; None without any."""
+        for g in self.frame.profile.groups:
+            for flange in g.placed.flanges:
+                if g.placed.index[flange.part] in parts:
+                    return g.placed.index[flange.part]
+        return None
 
     @cached_property
     def _home(self) -> tuple[NDArray[np.intp], NDArray[np.intp]]:
@@ -191,6 +207,28 @@ class CrackedSections:
         for index, found in rows:
             result[:, : found.shape[1], index] = found
         return result.reshape(3, count, *stress.shape[1:])
+
+    def pressed(self, part: int, stress: Array) -> Array:
+        """Moments of a part's region in compression about the analysis line, shape (6, K, n): A, S0, S1, I00, I01, I11.
+
+        Parameters
+        ----------
+        part : int
+            Number of the part.
+        stress : ndarray, shape (3, K, n)
+            Its stress as a plane about the analysis line.
+        """
+        everywhere = np.ones(stress.shape[1:], dtype=bool)
+        flat, result = stress.reshape(3, -1), np.zeros((6, everywhere.size))
+        for number, g in enumerate(self.frame.profile.groups):
+            index, stations = self.points(number, everywhere)
+            if part in g.placed.index and index.size:
+                v = flat[:, index]
+                line = np.stack((v[0], v[1], -v[2]))
+                found = clipped_moments(self.section(number, stations), g.placed.index.index(part), line)
+                A, y, z, zz, yy, yz = found
+                result[:, index] = (A, z, -y, zz, -yz, yy)
+        return result.reshape(6, *stress.shape[1:])
 
     def shares_carried(self, where: Mask, forces: Forces) -> Array:
         """How many times its moment a section without tension can carry at its axial force; inf elsewhere, (K, n)."""

@@ -340,6 +340,8 @@ class Member:
         Rule for concrete between cracks.
     cracks : {"history", "by combination"}
         Whether a place stays cracked once any combination for deflection has cracked it.
+    left_out : frozenset of str
+        Parts that never work and weigh nothing, though others keep their place against them; only with stages.
     """
 
     length: float
@@ -363,6 +365,7 @@ class Member:
     inclined: str = "along"
     tension_stiffening: str | None = None
     cracks: str = "history"
+    left_out: frozenset[str] = frozenset()
 
     def __post_init__(self) -> None:
         from fishbelly.member.checking import check

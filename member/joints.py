@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -25,8 +25,10 @@ Data = dict[str, Any]
 
 _WHOLE = 1e-9
 """A number of fasteners that is over a whole one by less than this is that one."""
-_STEADY = 1e-9
-"""A flow below this share of the part's largest force over the member's length is none."""
+_NOISE = 1e-9
+"""A value below this share of the largest of its kind is none; flows also against the largest force over the length."""
+_ROUND_OFF = 1e-12
+"""What round-off makes of nothing, of the forces that balance each other there."""
 _SAME = 1e-9
 """Flows of either sign that differ by less than this share are the same: the one on the left is given."""
 
@@ -61,7 +63,17 @@ def joints(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p
         return []
     shears = part_shears(loading, parts)
     ends = cut_offs(analysis, loading, list(fixed)) if strength_counts(analysis.member, combined.combination) else {}
-    return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i)) for i, to in sorted(fixed.items())]
+    noise = _noise(p, list(parts.values()), analysis.member.length)
+    return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i), noise) for i, to in sorted(fixed.items())]
+
+
+def _noise(p: Pieces, parts: Sequence[PartForce], length: float) -> dict[str, float]:
+    """Size below which each value of a joint is what round-off leaves of nothing."""
+    N, M, V = (float(np.abs(f).max(initial=0.0)) for f in (np.stack([f.N for f in parts]), p.M, p.V))
+    # forces that balance each other leave round-off of their own in the shear force and the moment
+    small = _ROUND_OFF * (N + M / length)
+    shear, moment = _NOISE * V + small, _NOISE * M + small * length
+    return {"M": moment, "V": shear, "force": _NOISE * N, "shear": shear, "couple": small, "flow": _NOISE * N / length}
 
 
 def strength_counts(member: Member, combination: Combination) -> bool:
@@ -70,7 +82,14 @@ def strength_counts(member: Member, combination: Combination) -> bool:
 
 
 def _joint(
-    analysis: Analysis, p: Pieces, index: int, to: int, force: PartForce, shear: Array, cut: CutOff | None
+    analysis: Analysis,
+    p: Pieces,
+    index: int,
+    to: int,
+    force: PartForce,
+    shear: Array,
+    cut: CutOff | None,
+    noise: Mapping[str, float],
 ) -> Data:
     member, panels = analysis.member, analysis.profile.panels
     part = member.parts[index]
@@ -79,11 +98,13 @@ def _joint(
     for name, x in (("start", part.start), ("end", part.end)):
         k = force.first if name == "start" else force.stop - 1
         fields = {"M": p.M, "V": p.V, "force": force.N, "shear": shear, "couple": force.M[0], "flow": force.flow}
-        entry: Data = {"x": x} | {key: worst(inside(panels, field, k, name)) for key, field in fields.items()}
-        entry["flow"] = _settled(entry["flow"], force, member.length)
+        entry: Data = {"x": x}
+        for key, field in fields.items():
+            own = _NOISE * float(np.abs(field[:, force.first : force.stop]).max(initial=0.0))
+            entry[key] = _settled(worst(inside(panels, field, k, name)), max(own, noise[key]))
         entry["per_fastener"] = _per_fastener(part, entry["flow"])
         data[name] = entry | _fastening(part, entry["force"]) | _cut_off(part, force, panels, cut, name, entry)
-    data["flow"] = {"max": _largest_flow(panels, force, part, member.length)}
+    data["flow"] = {"max": _largest_flow(panels, force, part, noise["flow"])}
     if joined is not None and joined.capacity is not None:
         most = abs(data["flow"]["max"]["value"])
         data["flow"]["largest_pitch"] = joined.capacity * side_by_side(part) / most if most > 0.0 else None
@@ -106,19 +127,18 @@ def worst(values: Array) -> float:
     return float(high if high >= -low else low) + 0.0
 
 
-def _settled(flow: float, force: PartForce, length: float) -> float:
-    """Flow without what differentiation makes of round-off: a force that does not vary has none."""
-    size = float(np.abs(force.N[:, force.first : force.stop]).max(initial=0.0))
-    return flow if abs(flow) > _STEADY * size / length else 0.0
+def _settled(value: float, noise: float) -> float:
+    """Return a value, and nothing where round-off made it: symmetry, and a force that does not vary, give none."""
+    return value if abs(value) > noise else 0.0
 
 
-def _largest_flow(panels: Panels, force: PartForce, part: Part, length: float) -> Data:
+def _largest_flow(panels: Panels, force: PartForce, part: Part, noise: float) -> Data:
     both = [(s, largest(panels, s * force.flow, force.first, force.stop)) for s in (1.0, -1.0)]
     # of equal ones the left
     sign, found = max(both, key=lambda b: b[1].value)
     if abs(both[0][1].value - both[1][1].value) <= _SAME * found.value:
         sign, found = min(both, key=lambda b: b[1].at)
-    value = _settled(sign * found.value, force, length) + 0.0
+    value = _settled(sign * found.value, noise) + 0.0
     return {"value": value, "at": found.at} | (
         {} if part.joined is None else {"per_fastener": _per_fastener(part, value)}
     )

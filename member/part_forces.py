@@ -6,7 +6,7 @@ plane, and the planes add. The shear flow into a part is q = dF/dx, right for ta
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -14,6 +14,8 @@ from numpy.typing import NDArray
 
 from fishbelly.member.actions import Frame
 from fishbelly.member.analysis import Analysis, Combined
+from fishbelly.member.forces import Forces
+from fishbelly.member.history_forces import resultant
 from fishbelly.member.moduli import Moduli
 from fishbelly.member.response import Response
 from fishbelly.member.staging import Step
@@ -37,6 +39,10 @@ class Loading:
         The step.
     end : Frame
         The grid in the stage at whose end results are asked for.
+    planes : mapping of int to ndarray, shape (J + 1, 3, K, n), optional
+        Stress of the parts as `stress_planes` has it, where a law that does not add has found it.
+    forces : mapping of int to Forces, optional
+        Forces of parts of which only a piece works, fields (J + 1, K, n).
     """
 
     response: Response
@@ -44,6 +50,8 @@ class Loading:
     factors: Array
     step: Step
     end: Frame
+    planes: Mapping[int, Array] | None = None
+    forces: Mapping[int, Forces] | None = None
 
     @property
     def parts(self) -> tuple[int, ...]:
@@ -65,7 +73,14 @@ def loadings(analysis: Analysis, combined: Combined) -> tuple[Loading, ...]:
             if step.stage <= last:
                 stacked = _pieces(step.response, factors)
                 found.append(Loading(stacked, step.moduli, factors, step, analysis.frames[last]))
-    return tuple(found)
+    return tuple(found) or (_nothing(analysis, combined, masks, last),)
+
+
+def _nothing(analysis: Analysis, combined: Combined, masks: Sequence[NDArray[np.bool_]], last: int) -> Loading:
+    """What stands for a stage up to which nothing has happened."""
+    factors = np.zeros((len(masks), len(analysis.atoms)))
+    step = analysis.history(combined.shares[0].key, combined.lifted)[0]
+    return Loading(_pieces(step.response, factors), step.moduli, factors, step, analysis.frames[last])
 
 
 def _pieces(response: Response, factors: Array) -> Response:
@@ -108,8 +123,25 @@ def stress_planes(loading: Sequence[Loading], index: int) -> Array | None:
     return total
 
 
+def resultants(loading: Sequence[Loading], index: int) -> Forces | None:
+    """Force and couples of a part about the analysis line, fields (J + 1, K, n); None where it is nowhere.
+
+    Parameters as in `stress_planes`.
+    """
+    given = [s.forces[index] for s in loading if s.forces is not None and index in s.forces]
+    if given:
+        return given[0]
+    planes = stress_planes(loading, index)
+    if planes is None:
+        return None
+    end = loading[0].end
+    return resultant(np.swapaxes(planes, 0, 1), end.profile.part_moments(index, end.line))
+
+
 def share_plane(share: Loading, index: int) -> Array | None:
     """Stress plane of a part from one share in one step, as `stress_planes` has it; None where it is not there."""
+    if share.planes is not None:
+        return share.planes.get(index)
     if index not in share.step.parts:
         return None
     r = share.response

@@ -17,9 +17,10 @@ from fishbelly.member.moduli import Moduli
 from fishbelly.member.places import default_places, two_sided
 from fishbelly.member.profile import Group, group_places
 from fishbelly.member.section_plastic import plastic_bending
-from fishbelly.member.section_shear import NO_SHEAR, shear_and_torsion
+from fishbelly.member.section_shear import NO_SHEAR, shear_and_torsion, shear_notes
 from fishbelly.member.section_table import rolled_table
 from fishbelly.member.shear_along import ShearAlong
+from fishbelly.member.slip_layers import slip_left_out
 from fishbelly.member.stage_section import StageSection, in_stage
 from fishbelly.sections.stiffness import SectionStiffness, principal_axes
 
@@ -83,7 +84,9 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
     data["principal"] = {"EI_1": _number(big[0]), "EI_2": _number(small[0]), "angle": _number(angle[0])}
     data["parts"] = _parts(member, group, s, short, side)
     data["transformed"] = _transformed(there, group, s, to)
-    return data | {"plastic": plastic_bending(member, group), "table": rolled_table(member, group)}
+    data |= {"plastic": plastic_bending(member, group), "table": rolled_table(member, group)}
+    said = [*shear_notes(data), *slip_left_out(member)]
+    return data | {"notes": said} if said else data
 
 
 def _number(value: float) -> float | None:
@@ -229,7 +232,9 @@ def stiffness(
         data["transformed"] = {"to": to, "E": E}
         for row in rows:
             row["transformed"] = _referred(row, E)
-    return data | {"stations": rows}
+    data |= {"stations": rows}
+    said = slip_left_out(member)
+    return data | {"notes": said} if said else data
 
 
 def _referred(row: Data, E: float) -> Data:

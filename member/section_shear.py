@@ -21,6 +21,10 @@ NO_SHEAR: Data = dict.fromkeys(("GA_y", "GA_z", "shear", "torsion"))
 """What `section` tells of shear and torsion where a shear modulus is not known."""
 
 
+DOUBTFUL = 1e-4
+"""Estimated relative error above which a note says so: printed digits are no longer all right."""
+
+
 def section_flexure(member: Member, group: Group, moduli: Moduli) -> Flexure:
     """Shear flexibility and shear centre of the sections of a group, every material with a shear modulus."""
     return flexure(
@@ -79,3 +83,15 @@ def _torsion(member: Member, group: Group, moduli: Moduli) -> Data:
         "upper": float(t.upper[0]),
         "error": float(t.error()[0]),
     }
+
+
+def shear_notes(data: Data) -> list[str]:
+    """Notes on `shear` and `torsion` of a section: estimates of their errors that show, and why one is missing."""
+    shear, torsion = data["shear"] or {}, data["torsion"] or {}
+    found = []
+    for what, error in (("shear stiffness and shear centre", shear.get("error")), ("GJ", torsion.get("error"))):
+        if error is not None and error > DOUBTFUL:
+            found.append(f"{what}: the estimated error is {100.0 * error:.2g} %; narrow gaps or slivers cause it")
+    if torsion.get("reason"):
+        found.append("no torsional stiffness: pieces of the cross-section touch at a point alone")
+    return found

@@ -30,10 +30,14 @@ from fishbelly.sections.section_mesh import MeshFoldError
 Array = NDArray[np.float64]
 Presence = tuple[tuple[int, ...], ...]
 
-POINTS = (7, 13, 25)
-"""Places at which the section is solved on a stretch in which its shape changes; more where fewer are not enough."""
-RESOLVED = 3e-8
-"""Last Chebyshev coefficients of the shear coefficient against its largest value: it is resolved."""
+POINTS = 7
+"""Places at which the section is solved on a stretch in which its shape changes; three times as many, these among
+them, where they are not enough."""
+RESOLVED = 1e-6
+"""Last Chebyshev coefficients of the shear coefficient against its largest value: it is as exact as the elements are.
+
+They promise 1e-6, and neighbouring places may have different meshes: a tighter bound would chase their difference.
+"""
 MOST_HALVINGS = 12
 ALIKE = 1e-10
 """Outlines that differ by less than this share of the section's size have one shape."""
@@ -136,16 +140,17 @@ class ShearAlong:
         self, panel: Panels, there: Presence, E: Array, G: Array, known: dict[bytes, Array], halved: int
     ) -> list[_Piece]:
         """Coefficients over a stretch, which is halved where they are not resolved."""
-        for n in POINTS:
-            x = panel.place(np.zeros(n, dtype=np.intp), rule(n).points)
-            values = self._at(x, there, E, G, known)
-            if values.shape[1] == 1:
-                return [_Piece(panel, there, values)]
-            size = np.abs(values[:2]).max()
-            if np.abs(values @ rule(n).to_coefficients[-2:].T).max() < RESOLVED * size:
-                return [_Piece(panel, there, values)]
-        if halved == MOST_HALVINGS:
+        values = self._at(_places(panel, POINTS), there, E, G, known)
+        if values.shape[1] == 1 or _resolved(values):
             return [_Piece(panel, there, values)]
+        x = _places(panel, 3 * POINTS)
+        new = np.ones(x.size, dtype=bool)
+        # every third place is one of the first ones
+        new[1::3] = False
+        more = np.empty((3, x.size))
+        more[:, ~new], more[:, new] = values, self._at(x[new], there, E, G, known)
+        if _resolved(more) or halved == MOST_HALVINGS:
+            return [_Piece(panel, there, more)]
         a, b, anchor = panel.a[0], panel.b[0], int(panel.anchor[0])
         middle = float(panel.place(np.zeros(1, dtype=np.intp), np.zeros(1))[0])
         left = Panels(np.array([a]), np.array([middle]), np.array([min(anchor, 0)]))
@@ -191,6 +196,15 @@ class ShearAlong:
             raise CannotCompute(f"shear at x = {x[error.station]:.6g} m: {error}") from None
         whole = (mine_G * some.moments.area).sum(axis=0)
         return np.stack((f.F_zz, f.F_yy, f.F_yz)) * whole
+
+
+def _places(panel: Panels, count: int) -> Array:
+    return panel.place(np.zeros(count, dtype=np.intp), rule(count).points)
+
+
+def _resolved(values: Array) -> bool:
+    last = values @ rule(values.shape[1]).to_coefficients[-2:].T
+    return bool(np.abs(last).max() < RESOLVED * np.abs(values[:2]).max())
 
 
 def _first(section: Composition) -> Composition:

@@ -97,6 +97,18 @@ def has_soft_joints(member: Member) -> bool:
     return any(_soft(p) for p in member.parts)
 
 
+def slip_left_out(member: Member) -> list[str]:
+    """Say, where a section is looked at by itself, that its parts act together there though they slip on each other."""
+    names = [p.name for p in member.parts if _soft(p)]
+    if not names:
+        return []
+    which = "the joint of" if len(names) == 1 else "the joints of"
+    return [
+        f"{which} {', '.join(names)} {'slips' if len(names) == 1 else 'slip'}: this is the section with rigid joints; "
+        "how stiff the member is with slip depends on its length and supports, see `deflect`"
+    ]
+
+
 def _soft(part: Part) -> bool:
     return part.material is not None and part.joined is not None and part.joined.soft
 

@@ -114,14 +114,17 @@ class _Report:
         analysis = self.analysis
         loading = loadings(analysis, combined)
         there = set(loading[0].parts)
-        lasting = analysis.creeps
+        long_term = any(v.stage is not None and v.stage.long_term for v in analysis.views)
+        lasting = long_term or any(s.key.long_term for s in combined.shares)
+        own = {s.key.own for s in combined.shares if s.key.own and np.any(s.factors)} if lasting else set()
         found = []
         for j, joint in enumerate(self.layers.joints):
             if joint.part in there and joint.host in there:
                 data = _joint(analysis, loading, joint, j, bool(self.single[j]))
                 data["stiffness"] = float(joint_stiffness(self.layers)[j])
                 data["creep"] = joint_creep(analysis.member, joint) if lasting else None
-                data["creep_in_stages"] = self._stage_creep(j) if lasting else []
+                data["creep_of_shrinkage"] = [joint_creep(analysis.member, joint, dict(v)) for v in sorted(own)]
+                data["creep_in_stages"] = self._stage_creep(j)
                 found.append(data)
         return found
 

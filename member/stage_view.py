@@ -58,7 +58,7 @@ def stage_views(member: Member) -> tuple[StageView, ...]:
         StageView(
             k,
             stage,
-            frozenset(i for i, p in enumerate(member.parts) if there(p, k)),
+            frozenset(i for i, p in enumerate(member.parts) if there(p, k) and p.name not in member.left_out),
             frozenset(s.name for s in member.supports if not there(s, k)),
             tuple(h.at for h in member.hinges if there(h, k)),
             frozenset(stage.cases),

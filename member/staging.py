@@ -282,7 +282,7 @@ def _released(
     held = s.held(each, shape)
     if np.any(law.slide):
         held = record.sheared_off(s, held, law.slide)
-    pushes = [_reversed(s, record.response.reactions[k], gone, _opened(before, s, record, k)) for k in which]
+    pushes = [reversed_reactions(s, record.response.reactions[k], gone, _opened(before, s, record, k)) for k in which]
     if not gone and not held.any and not any(np.any(a.opened) for a in pushes):
         return []
     free = _of_atoms(held, which)
@@ -329,7 +329,7 @@ def _opened(before: Setting, s: Setting, record: _Record, k: int) -> Array:
     return found
 
 
-def _reversed(s: Setting, reactions: Array, gone: frozenset[str], opened: Array | None = None) -> Actions:
+def reversed_reactions(s: Setting, reactions: Array, gone: frozenset[str], opened: Array | None = None) -> Actions:
     """Forces of supports that go, turned round, as loads on the member; reactions of one atom, shape (supports, 5)."""
     frame = s.frame
     panels = frame.profile.panels
@@ -380,7 +380,7 @@ def _crept(s: Setting, record: _Record, which: list[int], planes: int) -> list[S
         held = s.tie.crept(held, record.creeping_slip)
     if not held.any:
         return []
-    none = [_reversed(s, record.response.reactions[k], frozenset()) for k in which]
+    none = [reversed_reactions(s, record.response.reactions[k], frozenset()) for k in which]
     found, strains = responded(s.frame, s.layout, law, [Atom("")] * len(which), none, _of_atoms(held, which), planes)
     layered = _layered(s, strains, which, count)
     return [Step(s.view.index, "creep", spread(found, which, count), s.aged, s.frame, free, True, layered)]

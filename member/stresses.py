@@ -42,7 +42,9 @@ class PartStress:
     """Stress of one part over the member; None where the part has no stress of that sign to speak of.
 
     `highest`: largest stress, tension positive; `lowest`: smallest; `shear`: largest shear stress by level
-    cuts, without sign; its level is None where both planes have shear.
+    cuts, without sign; its level is None where both planes have shear. It is V Q / (I b) of the section at each
+    place, V less what inclined flanges carry, step by step with the section on which V arrived: what sloping faces of
+    other parts add or take, and what creep and releases move, is in `fibre_stress` alone.
     """
 
     part: str

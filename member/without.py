@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.description import Combination, Member, Stage
+from fishbelly.member.description import Combination, Member, Part, Stage
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.geometry import Geometry
 from fishbelly.member.loads import Load, Prestress, SelfWeight, Shrinkage, Temperature
@@ -29,7 +29,8 @@ def without(member: Member, names: Collection[str]) -> Member:
     """Describe a member without some of its parts.
 
     Cuts, notches, haunches and openings of those parts alone go with them, and loads that are theirs alone
-    (temperature, shrinkage, prestress, weight by name). Everything else stays as it is.
+    (temperature, shrinkage, prestress, weight by name). Everything else stays as it is: parts that lean on one of
+    them keep their place, `left_out` then holds it though it does not work.
 
     Parameters
     ----------
@@ -47,21 +48,14 @@ def without(member: Member, names: Collection[str]) -> Member:
     KeyError
         When there is no such part.
     CannotLeaveOut
-        When others lean on one of them, or nothing would be left.
+        When nothing would be left, or parts of what is left slip on one of them.
     """
     unknown = [name for name in names if all(p.name != name for p in member.parts)]
     if unknown:
         raise KeyError(f"no part is called {', '.join(unknown)}")
-    gone = set(names) | {p.name for p in member.parts if p.cuts and set(p.cuts) <= set(names)}
-    leaning = [p.name for p in member.parts if p.name not in gone and p.place.host in gone]
-    listed = ", ".join(names)
-    if leaning:
-        raise CannotLeaveOut(f"{', '.join(leaning)} would have nothing to stand against without {listed}")
-    parts = tuple(
-        replace(p, cuts=tuple(c for c in p.cuts if c not in gone)) for p in member.parts if p.name not in gone
-    )
-    if all(p.cuts for p in parts):
-        raise CannotLeaveOut(f"nothing is left of the member without {listed}")
+    gone = frozenset(names) | {p.name for p in member.parts if p.cuts and set(p.cuts) <= set(names)}
+    kept = _held(member, gone)
+    _see_left(member, gone, kept, ", ".join(names))
     levels = Geometry(member).opening_levels if member.openings else ()
     openings = tuple(
         replace(o, of=tuple(n for n in o.of if n not in gone), level=level)
@@ -70,16 +64,52 @@ def without(member: Member, names: Collection[str]) -> Member:
     )
     loads = left_of_loads(member.loads, gone)
     cases = {load.case for load in loads} | {s.case for s in member.supports if s.sinks}
+    stages = tuple(_stage(s, cases) for s in member.stages)
+    if kept and not stages:
+        # what does not work is a matter of stages
+        stages = (Stage("all", tuple(sorted(cases))),)
     return replace(
         member,
-        parts=parts,
+        parts=tuple(_part(p, gone) for p in member.parts if p.name not in gone - kept),
         notches=tuple(n for n in member.notches if n.of not in gone),
-        haunches=tuple(h for h in member.haunches if h.of not in gone),
+        haunches=tuple(h for h in member.haunches if h.of not in gone - kept),
         openings=openings,
         loads=loads,
         combinations=tuple(of_cases(c, cases) for c in member.combinations),
-        stages=tuple(_stage(s, cases) for s in member.stages),
+        stages=stages,
+        left_out=member.left_out | kept,
     )
+
+
+def _held(member: Member, gone: Collection[str]) -> frozenset[str]:
+    """Parts that go but hold the place of others that stay, by themselves or by one between them."""
+    hosts = {p.name: p.place.host for p in member.parts}
+    found: set[str] = set()
+    for p in member.parts:
+        name = hosts[p.name] if p.name not in gone else ""
+        while name in hosts:
+            if name in gone:
+                found.add(name)
+            name = hosts[name]
+    return frozenset(found)
+
+
+def _see_left(member: Member, gone: Collection[str], kept: Collection[str], listed: str) -> None:
+    """See that something is left, and that nothing of it slips on what goes."""
+    left = [p for p in member.parts if not p.cuts and p.name not in gone]
+    if not left:
+        raise CannotLeaveOut(f"nothing is left of the member without {listed}")
+    soft = [p.name for p in left if p.place.host in kept and p.joined is not None and p.joined.soft]
+    if soft and len(left) > 1:
+        raise CannotLeaveOut(f"{', '.join(soft)} would have nothing to slip on without {listed}")
+
+
+def _part(p: Part, gone: Collection[str]) -> Part:
+    """Return a part as it stays: it cuts nothing that is gone, and has no joint with it; one that goes has none."""
+    p = replace(p, cuts=tuple(c for c in p.cuts if c not in gone))
+    if p.name in gone:
+        return replace(p, joined=None, effective=None)
+    return replace(p, joined=None) if p.place.host in gone else p
 
 
 def left_of_loads(loads: Iterable[Load], gone: Collection[str]) -> tuple[Load, ...]:

@@ -24,7 +24,8 @@ from fishbelly.sections.stiffness import SectionStiffness
 Array = NDArray[np.float64]
 
 BARS_DEGREE, STRAIGHT_DEGREE, CURVED_DEGREE = 6, 7, 8
-"""Degree of the elements unless told otherwise: one straight material with bars in it, without arcs, with them.
+"""Degree of the elements unless told otherwise: one straight material with bars in it, without arcs or with bars
+and others, with arcs.
 
 Own trials: 1e-7 of F; up to 1e-6 with arcs, or where two materials end at a re-entrant corner.
 """
@@ -138,10 +139,11 @@ def _degree(section: Composition, E: Array, G: Array, size: float) -> int:
         return CURVED_DEGREE
     bars = [i for i, o in enumerate(section.outlines) if np.all(o.bulge) and np.ptp(o.z, axis=1).max() < _SLIM * size]
     rest = [i for i in range(len(section.outlines)) if i not in bars]
-    if not rest or any(np.any(section.outlines[i].bulge) for i in rest):
+    if not rest or (not bars and any(np.any(section.outlines[i].bulge) for i in rest)):
         return CURVED_DEGREE
     one = np.all(E[rest] == E[rest[0]]) and np.all(G[rest] == G[rest[0]])
-    return BARS_DEGREE if bars and one else STRAIGHT_DEGREE
+    straight = not any(np.any(section.outlines[i].bulge) for i in rest)
+    return BARS_DEGREE if bars and one and straight else STRAIGHT_DEGREE
 
 
 class _Sums:

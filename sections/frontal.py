@@ -159,7 +159,7 @@ def eliminate(order: list[Front], matrices: Array, loads: Array, keep: bool = Fa
         for other, at in front.merged:
             k[:, at[:, None], np.concatenate((at, np.arange(size, size + cases)))] += left.pop(id(other))
         if g:
-            x = np.linalg.solve(k[:, :g, :g], k[:, :g, g:])
+            x = np.asarray(np.linalg.solve(k[:, :g, :g], k[:, :g, g:]), dtype=float)
             total += np.swapaxes(k[:, :g, size:], 1, 2) @ x[:, :, size - g :]
             rest = k[:, g:, g:] - np.swapaxes(k[:, :g, g:size], 1, 2) @ x
             front.solved = x if keep else None
@@ -181,7 +181,8 @@ def _put_together(front: Front, rows: Array) -> Array:
     values = rows[front.elements]
     # what is held goes to a last row and a last column, which are left off
     summed = [np.bincount(place, values[:, t].ravel(), (size + 1) * wide) for t in range(values.shape[1])]
-    return np.stack(summed).reshape(-1, size + 1, wide)[:, :size, :-1]
+    together = np.asarray(np.stack(summed), dtype=float)
+    return together.reshape(-1, size + 1, wide)[:, :size, :-1]
 
 
 def solution(order: list[Front], count: int) -> Array:

@@ -14,10 +14,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.sections.mesh_lines import Block, Grid, Line, corner_angles
+from fishbelly.sections.mesh_necks import grade_necks
 
 Array = NDArray[np.float64]
 
 _DEGREE = np.pi / 180.0
+_CLOSED = 1e-7
+"""A gap of a smaller angle around a point is round-off [rad]."""
 
 
 class Rule(NamedTuple):
@@ -72,12 +75,14 @@ def _singular(angles: list[tuple[float, int]], G: Array) -> bool:
         by_material[float(G[part])] = by_material.get(float(G[part]), 0.0) + angle
     whole = sum(by_material.values())
     sharp = 3.0 * _DEGREE
+    # material all around, or a gap however narrow
+    closed = whole > 2.0 * np.pi - _CLOSED
     if len(by_material) == 1:
-        re_entrant = np.pi + 5.0 * _DEGREE < whole < 2.0 * np.pi - sharp
+        re_entrant = np.pi + 5.0 * _DEGREE < whole and not closed
         return bool(re_entrant or 98.0 * _DEGREE < whole < 170.0 * _DEGREE)
     if len(by_material) == 2:
         one = next(iter(by_material.values()))
-        straight = abs(whole - 2.0 * np.pi) < sharp and abs(one - np.pi) < sharp
+        straight = closed and abs(one - np.pi) < sharp
         square = abs(whole - np.pi) < sharp and abs(one - 0.5 * np.pi) < sharp
         # an interface along which one side runs out into nothing: a tangent point of an arc
         cusp = min(by_material.values()) < 1e-3 * _DEGREE and abs(whole - np.pi) < sharp
@@ -119,6 +124,7 @@ def grade(grid: Grid, corners: set[tuple[int, int]], twist: bool = False) -> Non
     Around the ends of arcs cells are about as large as the radius, and grow from there; for twist, around the corners
     of the outline as large as the section is thick.
     """
+    grade_necks(grid)
     # small radii first: their lines are the finer ones
     ends = {**(outer_corners(grid) if twist else {}), **arc_ends(grid)}
     ends = {point: radius for point, radius in ends.items() if point not in corners}

@@ -24,6 +24,8 @@ Array = NDArray[np.float64]
 Index = NDArray[np.intp]
 
 
+_APART = 1e-6
+"""Of the section's size: parts whose bounding boxes lie further from each other do not touch."""
 _AT_A_TIME = 400
 """Elements that are worked on together."""
 
@@ -168,14 +170,33 @@ def shared_meshes(
         Whether the mesh is for torsion, which disturbs the corners of the outline too.
     """
     c = cuts(section)
-    numbers = [0] * len(section.outlines) if clusters is None else list(clusters)
+    numbers = _apart(section, float(c.size.max()), [0] * len(section.outlines) if clusters is None else clusters)
     for rows in alike(c):
-        for cluster in sorted(set(numbers)):
+        for number in sorted(set(numbers)):
             waiting = rows
             while waiting.size:
-                made, waiting = _for_stations(c, waiting, E, G, [n == cluster for n in numbers], twist)
+                made, waiting = _for_stations(c, waiting, E, G, [n == number for n in numbers], twist)
                 if made is not None:
                     yield made
+
+
+def _apart(section: Composition, size: float, clusters: Sequence[int]) -> list[int]:
+    """Number the parts so that those of different clusters, and those that lie apart at all stations, differ.
+
+    Parts that lie apart need not know of each other's levels: each set has a mesh of its own.
+    """
+    boxes = np.stack([np.stack(o.bounds()) for o in section.outlines])
+    near = _APART * size
+    meet = np.ones((len(boxes), len(boxes)), dtype=bool)
+    for low, high in ((0, 2), (1, 3)):
+        meet &= np.any(boxes[:, None, low] <= boxes[None, :, high] + near, axis=2)
+    number = np.arange(len(boxes))
+    meet &= meet.T & (np.equal.outer(clusters, clusters))
+    while True:
+        least = np.where(meet, number, len(boxes)).min(axis=1)
+        if np.array_equal(least, number):
+            return [int(n) for n in number]
+        number = least
 
 
 def _for_stations(

@@ -6,6 +6,7 @@ from itertools import pairwise
 
 import numpy as np
 import pytest
+import skfem
 from common import check_close
 from flexure_shapes import CONCRETE, ONE, STEEL, Moduli, plate, solve
 
@@ -37,7 +38,6 @@ def reference(boxes: list[Box], moduli: Moduli) -> tuple[float, float]:
 
 
 def on_grid(boxes: list[Box], moduli: Moduli, cuts: int) -> tuple[float, float]:
-    skfem = pytest.importorskip("skfem")
     ys, zs = (graded(sorted({b[i] for b in boxes} | {b[i + 1] for b in boxes}), cuts) for i in (0, 2))
     mesh = skfem.MeshQuad.init_tensor(ys, zs)
     y, z = mesh.p[:, mesh.t].mean(axis=1)

@@ -21,8 +21,6 @@ from fishbelly.member.laws import straight
 from fishbelly.member.loads import Couple, Point
 from fishbelly.member.results import deflect
 
-pytest.importorskip("skfem")
-
 Array = NDArray[np.float64]
 E, NU = 210e9, 0.3
 STEEL = Material("steel", E, poisson=NU)

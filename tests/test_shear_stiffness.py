@@ -166,3 +166,28 @@ def test_no_shear_modulus_no_value() -> None:
         Member(L, (part("b", "rectangle", L, material="loose", width=0.1, depth=0.1),), (loose,), shear=False), 1.0
     )
     assert found["GA_z"] is None
+
+
+def askew(turn: float) -> dict:
+    """A beam into whose flange a plate runs at a small angle: slivers of both, and a gap that closes to a point."""
+    flanges = {"top_width": 0.15, "bottom_width": 0.15, "top_flange": 0.015, "bottom_flange": 0.015}
+    beam = part("beam", "I", L, depth=0.3, web=0.01, **flanges)
+    place = Placing("position", position=(constant(0.0), constant(-0.325)))
+    plate = part("plate", "rectangle", L, material="timber", width=0.2, depth=0.05, place=place)
+    return section(beam, replace(plate, turn=turn))
+
+
+def test_a_note_says_when_the_error_shows() -> None:
+    found = askew(0.01)
+    assert found["shear"]["error"] > 1e-4
+    assert any("estimated error" in n and "shear stiffness" in n for n in found["notes"]), found["notes"]
+    level = askew(0.0)
+    assert level["shear"]["error"] < 1e-6 and "notes" not in level
+
+
+def test_a_note_says_why_there_is_no_torsional_stiffness() -> None:
+    place = Placing("position", position=(constant(0.1), constant(0.05)))
+    one = part("one", "rectangle", L, width=0.1, depth=0.1)
+    found = section(one, part("two", "rectangle", L, width=0.1, depth=0.1, place=place))
+    assert found["torsion"]["GJ"] is None and len(found["shear"]["touching"]) == 1
+    assert found["notes"] == ["no torsional stiffness: pieces of the cross-section touch at a point alone"]

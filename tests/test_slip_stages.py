@@ -148,7 +148,7 @@ def test_every_step_acts_layer_by_layer() -> None:
     steps = analysis.history(analysis.shares(member.combinations[0])[0].key)
     assert [s.what for s in steps] == ["loads", "loads", "release", "creep", "loads", "loads"]
     assert all(s.layered is not None for s in steps)
-    setting = analysis._setting(2, analysis.shares(member.combinations[0])[0].key, frozenset(), False)
+    setting = analysis.setting(2, analysis.shares(member.combinations[0])[0].key, frozenset(), False)
     free = analysis._free(setting, range(len(analysis.atoms)))
     assert all(isinstance(f, LayeredForces) for f in free)
     assert isinstance(setting.held([], (2, *analysis.profile.panels.x.shape)), LayeredForces)

@@ -267,3 +267,73 @@ def test_the_status_is_that_of_the_stage(tmp_path: Path) -> None:
     job = tmp_path / "job.toml"
     job.write_text(PLATED, encoding="utf-8")
     assert (run(["deflect", str(job)]), run(["deflect", str(job), *_of("as found")])) == (1, DONE)
+
+
+HINGED = """
+length = "6 m"
+shear = false
+[material.steel]
+E = "210 GPa"
+[[part]]
+name = "beam"
+material = "steel"
+shape = "rectangle"
+width = "100 mm"
+depth = "200 mm"
+[[support]]
+at = "0 m"
+kind = "pin"
+[[support]]
+at = "2 m"
+kind = "roller"
+across = "free"
+[[support]]
+at = "6 m"
+kind = "roller"
+[[hinge]]
+at = "3 m"
+stage = "hinged"
+[[load]]
+kind = "uniform"
+value = "10 kN/m"
+case = "down"
+[[load]]
+kind = "point"
+value = "5 kN"
+at = "4 m"
+direction = "across"
+case = "wind"
+[[stage]]
+name = "whole"
+cases = ["down", "wind"]
+[[stage]]
+name = "hinged"
+"""
+
+
+def test_a_hinge_that_opens_moves_nothing_sideways() -> None:
+    """P at a on a simple span, b = L - a: P b (L2 - b2)^1.5 / (9 sqrt(3) L EI), free of the vertical plane's hinge."""
+    L, b, EI = 6.0, 2.0, 210e9 * 0.2 * 0.1**3 / 12
+    expected = 5e3 * b * (L**2 - b**2) ** 1.5 / (9 * 3**0.5 * L * EI)
+    for stage in deflect(HINGED)["stages"]:
+        found = stage["combinations"][0]["deflection"]
+        assert found["across"]["value"] == pytest.approx(expected, rel=1e-9)
+    # right of the middle support a cantilever of 1 m that holds the 3 m beyond the hinge up
+    down_at = deflect(HINGED, "3 m")["combinations"][0]["stations"]
+    assert all(s["M"] == pytest.approx(0.0, abs=1e-6) for s in down_at)
+
+
+def test_a_first_stage_in_which_nothing_arrives() -> None:
+    text = changed(
+        JACKED,
+        ('cases = ["permanent"]', "cases = []"),
+        ('cases = ["jacking"]', 'cases = ["jacking", "permanent"]'),
+        ("span_over = 300", 'span_over = 300\nafter = "jacked"'),
+    )
+    result = deflect(text)
+    first = result["stages"][0]["combinations"][0]
+    assert first["deflection"] == {"down": None, "up": None, "across": None}
+    assert first["own"]["deflection"] == 0.0 and first["carried"][0]["share"] is None
+    assert result["stages"][0]["cases"] == [] and first["stress"][1]["max"] is None
+    early = command("deflect", text, *_of("as found"))["combinations"][0]
+    assert early["supports"][0]["vertical"] == 0.0 and early["checks"] == []

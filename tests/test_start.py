@@ -328,7 +328,7 @@ def test_completion_knows_commands_jobs_and_options() -> None:
     assert completed("") == sorted(cli.list_commands(None))  # type: ignore[arg-type]
     assert completed("st") == ["start", "stiffness"]
     assert completed("start", "") == [job.name for job in worked_jobs()]
-    assert completed("start", "pl") == ["plated-beam", "plated-w-shape"]
+    assert completed("start", "pl") == ["plated-beam", "plated-under-load", "plated-w-shape"]
     assert completed("start", "--schema", "se") == ["section"]
     assert "--all-keys" in completed("start", "--a")
     assert completed("sheet", "") == completed("nonsense", "") == completed("")

@@ -7,7 +7,6 @@ Ratios hold on one machine in one run: both sides are timed one after the other,
 from __future__ import annotations
 
 import math
-import os
 import subprocess
 import sys
 import time
@@ -18,6 +17,7 @@ import numpy as np
 import pytest
 from common import INF, STEEL, fixed, part, simple, uniform
 from test_imports import JOB
+from timing import COMMAND, best_of, process
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.description import Haunch, Member
@@ -99,15 +99,6 @@ def by_boundary_values(
     return float(at[k, 0] * scale[0]), float(found.sol(0.0)[1] * scale[1]), spent
 
 
-def best_of(call: Callable[[], object], count: int) -> float:
-    times = []
-    for _ in range(count):
-        start = time.perf_counter()
-        call()
-        times.append(time.perf_counter() - start)
-    return min(times)
-
-
 @pytest.mark.parametrize("make", [tapered, haunched])
 @pytest.mark.parametrize("error, target", [(1e-6, 50.0), (1e-10, 100.0)])
 def test_solve_against_a_boundary_value_solver(benchmark: object, make: Callable, error: float, target: float) -> None:
@@ -143,17 +134,6 @@ def test_solve_against_a_boundary_value_solver(benchmark: object, make: Callable
     # the target is printed above; the reference solver, given one system a piece and arrays of sections, is a far
     # quicker opponent than one that asks for a section at a time, and what is asserted is only that it is beaten
     assert theirs / ours >= 3.0
-
-
-def process(arguments: list[str], folder: Path) -> float:
-    """Shortest of several runs of a whole process [s]."""
-    environment = os.environ | {"PYTHONDONTWRITEBYTECODE": "", "OMP_NUM_THREADS": "1"}
-    run = lambda: subprocess.run(arguments, cwd=folder, env=environment, capture_output=True, check=True)
-    run()
-    return best_of(run, 7)
-
-
-COMMAND = [sys.executable, "-c", "import sys; from fishbelly.__main__ import main; main()"]
 
 
 @pytest.mark.parametrize(
