@@ -102,7 +102,7 @@ def _key(t: JobTableKind, key: str, field: FieldInfo, written: Schema) -> Schema
 def _default(field: FieldInfo, reader: Reader | None) -> Any:
     """Return a default as a job would write it, None where there is none to write."""
     value = field.default
-    if field.is_required() or value is None or value == "" or value == {}:
+    if field.is_required() or value is None or value in ("", (), {}):
         return None
     if isinstance(reader, Quantity):
         return f"{value:g} {reader.kind.unit}"

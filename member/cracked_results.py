@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
+from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -12,10 +13,13 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.cracked_code import OneValue, SpanValue, one_value
 from fishbelly.member.cracked_found import CrackedResponse
 from fishbelly.member.cracked_history import cracked_responses
-from fishbelly.member.cracked_response import bending_alone, cracked_response, may_crack
+from fishbelly.member.cracked_loading import pieces_of, stress_at_crack
+from fishbelly.member.cracked_record import response_on
+from fishbelly.member.cracked_response import bending_alone, cracked_response, cracked_stage, may_crack
 from fishbelly.member.cracked_sections import no_tension_parts
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
+from fishbelly.member.inclined_stress import along_plates
 from fishbelly.member.pieces import Pieces
 from fishbelly.member.response import Response
 from fishbelly.member.slip_layers import has_soft_joints
@@ -30,7 +34,7 @@ NEGLIGIBLE = 1e-9
 
 @dataclass(frozen=True, eq=False)
 class CrackedCase:
-    """One combination that cracks the member.
+    """One combination that cracks the member, at the end of a stage.
 
     Parameters
     ----------
@@ -39,33 +43,74 @@ class CrackedCase:
     rule : str or None
         The rule.
     one : OneValue or None
-        By the code's one effective stiffness for each span, where the rule is one of ACI 318.
+        By the code's one effective stiffness for each span, where the rule is one of ACI 318 and there is one stage.
     chosen : Combined
         The combination with the response that results are of: the code's one value by ACI 318, else along x.
-    bent : Response
-        The same, rigid in shear.
-    everywhere : Response or None
-        Cracked everywhere, without tension stiffening; None where that cannot be carried.
+    band : str
+        Which end of the materials' bands of E.
     """
 
     along: CrackedResponse
     rule: str | None
     one: OneValue | None
     chosen: Combined
-    bent: Response
-    everywhere: CrackedResponse | None
+    band: str = "nominal"
+    _ends: dict[int, CrackedCase] = field(default_factory=dict, repr=False)
 
     @property
     def analysis(self) -> Analysis:
         """The grid, with borders where cracks begin."""
         return self.along.analysis
 
+    @cached_property
+    def bent(self) -> Response:
+        """The chosen response, rigid in shear."""
+        if self.one is None:
+            return bending_alone(self.along)
+        assert self.rule is not None
+        return one_value(self.analysis, self.chosen.combination, self.rule, self.band, shear=False).response
+
+    @cached_property
+    def everywhere(self) -> CrackedResponse | None:
+        """Cracked everywhere, without tension stiffening; None where that cannot be carried."""
+        try:
+            return cracked_response(self.analysis, self.chosen.combination, band=self.band, everywhere=True)
+        except CannotCompute:
+            return None
+
+    @property
+    def fields(self) -> Pieces:
+        """Fields of the chosen response; it has no pattern loads."""
+        return pieces_of(self.along, self.chosen.total)
+
+    def at(self, stage: int) -> CrackedCase:
+        """Return the same combination at the end of a stage, this or an earlier one."""
+        if stage >= self.along.stage:
+            return self
+        if stage not in self._ends:
+            self._ends[stage] = _case(self.along.at(stage), self.rule, self.band)
+        return self._ends[stage]
+
+    def since(self, stage: int, after: int | None) -> Pieces:
+        """Fields at the end of a stage, on this grid; with `after` only what happens from the start of that stage on.
+
+        All loads so far are solved as one: what stages add is the difference of totals.
+        """
+
+        def total(k: int) -> Response:
+            r = self.along.at(k)
+            return response_on(r.analysis.profile.panels, self.analysis.profile.panels, r.total)
+
+        there = total(stage)
+        return pieces_of(self.along, there + total(after - 1) * -1.0 if after else there)
+
 
 def cracked_cases(analysis: Analysis) -> tuple[CrackedCase | None, ...]:
-    """Every combination of a member that cracks it; None for those that do not.
+    """Every combination of a member that cracks it, at the end of the last stage; None for those that do not.
 
-    Stages, pattern loads and joints that slip are not followed through cracking: without a part that never carries
-    tension and without a rule of tension stiffening the member then counts as uncracked, and a note says so.
+    Pattern loads, joints that slip and hinges that come or go are not followed through cracking: without a part that
+    never carries tension and without a rule of tension stiffening the member then counts as uncracked, and a note
+    says so.
 
     Raises
     ------
@@ -78,7 +123,7 @@ def cracked_cases(analysis: Analysis) -> tuple[CrackedCase | None, ...]:
         return none
     rule = member.tension_stiffening
     found = cracked_responses(analysis, member.combinations, rule)
-    return tuple(_case(r, rule) if r.phases else None for r in found)
+    return tuple(_case(r, rule) if r.phases and r.cracks else None for r in found)
 
 
 def _asked(analysis: Analysis) -> bool:
@@ -87,49 +132,27 @@ def _asked(analysis: Analysis) -> bool:
 
 
 def _unbuilt(analysis: Analysis) -> bool:
-    return (
-        len(analysis.views) > 1 or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
-    )
+    hinged = any(v.hinges != analysis.views[0].hinges for v in analysis.views)
+    return hinged or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
 
 
 def _case(r: CrackedResponse, rule: str | None, band: str = "nominal") -> CrackedCase:
-    combination = r.combined.combination
-    everywhere: CrackedResponse | None
-    try:
-        everywhere = cracked_response(r.analysis, combination, band=band, everywhere=True)
-    except CannotCompute:
-        everywhere = None
-    if rule in (None, EN):
-        return CrackedCase(r, rule, None, r.combined, bending_alone(r), everywhere)
+    if rule in (None, EN) or len(r.analysis.views) > 1:
+        return CrackedCase(r, rule, None, r.combined, band)
     assert rule is not None
-    one = one_value(r.analysis, combination, rule, band)
-    bent = one_value(r.analysis, combination, rule, band, shear=False).response
-    chosen = Combined(
-        combination, r.combined.shares, r.combined.lifted, r.combined.patterns, one.response, r.combined.upto
-    )
-    return CrackedCase(r, rule, one, chosen, bent, everywhere)
+    one = one_value(r.analysis, r.combined.combination, rule, band)
+    return CrackedCase(r, rule, one, replace(r.combined, total=one.response), band)
 
 
 def in_band(case: CrackedCase, band: str) -> CrackedCase:
     """Return the same combination at the low or high end of the materials' bands, places cracked so far held."""
-    held = case.along.stretches if case.analysis.member.cracks == "history" else ()
-    return _case(cracked_response(case.analysis, case.chosen.combination, case.rule, held, band), case.rule, band)
-
-
-def pieces_of(case: CrackedCase) -> Pieces:
-    """Fields of the chosen response; it has no pattern loads."""
-    r, frame = case.chosen.total, case.analysis.frame
-    one = (slice(None), None)
-    return Pieces(
-        r.N[None],
-        r.V[0][None],
-        (r.M[0] + r.N * frame.centre[0])[None],
-        (r.M[0] - r.N * frame.line[0])[None],
-        r.rotation[one],
-        r.shear[one],
-        r.deflection[one],
-        r.reactions[None],
-    )
+    analysis, history = case.analysis, case.analysis.member.cracks == "history"
+    found: CrackedResponse | None = None
+    for r in case.along.life:
+        held = r.stretches if history else ()
+        found = cracked_stage(analysis, case.chosen.combination, found, case.rule, held, band)
+    assert found is not None
+    return _case(found, case.rule, band)
 
 
 def cracked_stresses(case: CrackedCase) -> tuple[PartStress, ...]:
@@ -137,16 +160,18 @@ def cracked_stresses(case: CrackedCase) -> tuple[PartStress, ...]:
     if not case.along.phases:
         return ()
     solved = case.along.phases[-1]
-    law, state = solved.law, solved.closed.state
+    law, frame = solved.law, case.along.frame
     analysis, mask = case.analysis, solved.law.mask
     brittle = law.never | frozenset(law.cracking)
+    there = {i for g in frame.profile.groups for i in g.placed.index}
     found = []
     for index, part in enumerate(analysis.member.parts):
         if part.cuts or part.material is None:
             continue
-        first = law.stress(index, state.uncracked.plane, 0)
-        second = np.where(np.isfinite(state.cracked.plane), state.cracked.plane, 0.0)
-        plane = np.where(mask, law.stress(index, second, 1), first)
+        if index not in there:
+            found.append(PartStress(part.name, None, None))
+            continue
+        plane = stress_at_crack(solved, index)
         none = (mask if index in brittle else np.zeros_like(mask)) | (index in law.never)
         high, low = (_peak(case, index, plane, none, sign) for sign in (1.0, -1.0))
         found.append(PartStress(part.name, high, low))
@@ -162,6 +187,8 @@ def _peak(case: CrackedCase, index: int, plane: Array, none: NDArray[np.bool_], 
     """Largest of sign times stress, no tension where there is `none`."""
     law, panels = case.along.phases[-1].law, case.analysis.profile.panels
     values, y, z = law.sections.fibres(index, sign * plane, law.planar)
+    along = along_plates(law.sections.frame.profile, index, y, z)
+    values = values if along is None else values * along
     stress = np.where(none, np.minimum(sign * values, 0.0), sign * values) * sign
     best: StressPeak | None = None
     for c in range(stress.shape[0]):

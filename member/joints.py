@@ -33,7 +33,9 @@ _SAME = 1e-9
 """Flows of either sign that differ by less than this share are the same: the one on the left is given."""
 
 
-def joints(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p: Pieces) -> list[Data]:
+def joints(
+    analysis: Analysis, combined: Combined, loading: Sequence[Loading], p: Pieces, cut: bool = True
+) -> list[Data]:
     """Joint of every part with what it is placed against or touches, under one combination.
 
     Parameters
@@ -46,6 +48,8 @@ def joints(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p
         Its shares and steps.
     p : Pieces
         Its fields.
+    cut : bool
+        Whether theoretical cut-offs are looked for: not where sections crack.
 
     Returns
     -------
@@ -62,7 +66,8 @@ def joints(analysis: Analysis, combined: Combined, loading: Sequence[Loading], p
     if not fixed:
         return []
     shears = part_shears(loading, parts)
-    ends = cut_offs(analysis, loading, list(fixed)) if strength_counts(analysis.member, combined.combination) else {}
+    strong = cut and strength_counts(analysis.member, combined.combination)
+    ends = cut_offs(analysis, loading, list(fixed)) if strong else {}
     noise = _noise(p, list(parts.values()), analysis.member.length)
     return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i), noise) for i, to in sorted(fixed.items())]
 

@@ -323,6 +323,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     joints_full,
     joints_slip,
     effective_widths,
+    shear_of_sections,
     _inclined,
     _deep,
     _thrust,

@@ -11,21 +11,16 @@ from numpy.typing import NDArray
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
-from fishbelly.member.checks import Check, Fields, applies, check_limit, check_strengths, relative
+from fishbelly.member.checks import Check, relative
 from fishbelly.member.cracked_check import cracked_check
-from fishbelly.member.cracked_results import (
-    CrackedCase,
-    cracked_cases,
-    cracked_data,
-    cracked_stresses,
-    in_band,
-    pieces_of,
-)
+from fishbelly.member.cracked_loading import cracked_loading
+from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_data, cracked_stresses, in_band
 from fishbelly.member.cross_check import cross_check
-from fishbelly.member.description import Limit, Member
+from fishbelly.member.description import Member
 from fishbelly.member.extremes import Extreme, largest, values_at
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.joints import joints
+from fishbelly.member.limits_met import Since, checks_of, spans_at
 from fishbelly.member.moduli import has_band
 from fishbelly.member.notes import notes
 from fishbelly.member.panels import Panels
@@ -35,8 +30,7 @@ from fishbelly.member.places import default_places
 from fishbelly.member.response import Response
 from fishbelly.member.result_rows import check_row, stress_row
 from fishbelly.member.slip_layers import has_soft_joints
-from fishbelly.member.spans import Span, spans
-from fishbelly.member.stage_results import since, stage_rows
+from fishbelly.member.stage_results import Ends, linear_ends, stage_rows
 from fishbelly.member.stage_view import stage_number
 from fishbelly.member.station_results import envelope_rows, station_rows
 from fishbelly.member.stresses import PartStress, part_stresses
@@ -77,9 +71,10 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
     upto = number if stage is not None and number < len(member.stages) - 1 else None
     analysis = Analysis.of(member, wanted or ())
     _in_range(analysis)
+    cases = cracked_cases(analysis)
     combinations = [
-        _combination(analysis, analysis.combine(c, upto=upto), wanted) if case is None else _cracked(case, wanted)
-        for c, case in zip(member.combinations, cracked_cases(analysis), strict=True)
+        _cracked(case.at(number), wanted) if case else _combination(analysis, analysis.combine(c, upto=upto), wanted)
+        for c, case in zip(member.combinations, cases, strict=True)
     ]
     if has_soft_joints(member):
         from fishbelly.member.slip_report import add_slip
@@ -91,8 +86,27 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
     return data | {
         "notes": notes(analysis, combinations),
         "combinations": combinations,
-        "stages": stage_rows(analysis, combinations, _deflection_and_stress)[: number + 1],
+        "stages": stage_rows(analysis, combinations, _stage_ends(analysis, cases), _quick(analysis, cases))[
+            : number + 1
+        ],
     }
+
+
+def _stage_ends(analysis: Analysis, cases: Sequence[CrackedCase | None]) -> Ends:
+    """Ends of stages, with cracks where there are any."""
+    linear = linear_ends(analysis, _deflection_and_stress)
+    if not any(cases):
+        return linear
+    from fishbelly.member.cracked_stages import cracked_ends
+
+    return cracked_ends(cases, linear, _cracked_deflection_and_stress)
+
+
+def _quick(analysis: Analysis, cases: Sequence[CrackedCase | None]) -> Ends:
+    """Ends of stages if nothing crept."""
+    quick = analysis.instantaneous
+    staged = analysis.creeps and bool(analysis.member.stages)
+    return _stage_ends(quick, cracked_cases(quick) if staged and any(cases) else [None] * len(cases))
 
 
 def _largest(analysis: Analysis, combined: Combined) -> Data:
@@ -129,6 +143,14 @@ def _deflection_and_stress(analysis: Analysis, combined: Combined, loading: Sequ
     }
 
 
+def _cracked_deflection_and_stress(case: CrackedCase) -> Data:
+    """What every stage tells of a combination that cracks the member."""
+    return {
+        "deflection": deflections(case.analysis, case.chosen, case.fields, case.bent),
+        "stress": [stress_row(s) for s in cracked_stresses(case)],
+    }
+
+
 def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, check: bool = True) -> Data:
     """Results of one combination or arrangement; `check` asks the second method too."""
     loading = loadings(analysis, combined)
@@ -143,16 +165,17 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
 
 
 def _cracked(case: CrackedCase, wanted: list[float] | None) -> Data:
-    """Results of one combination that cracks the member."""
-    p = pieces_of(case)
+    """Results of one combination that cracks the member, at the end of a stage."""
+    p = case.fields
     told = deflections(case.analysis, case.chosen, p, case.bent)
-    data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted)
+    data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted, case.since)
+    data["joints"] = joints(case.analysis, case.chosen, cracked_loading(case.along), p, cut=False)
     if has_band(case.analysis.member):
         bands = {}
         for band in ("low", "high"):
             other = in_band(case, band)
-            p = pieces_of(other)
-            checks = _checks(other.analysis, other.chosen, p, cracked_stresses(other))
+            p = other.fields
+            checks = checks_of(other.analysis, other.chosen, p, cracked_stresses(other), other.since)
             found = {c.limit: c.found for c in checks}
             bands[band] = (deflections(other.analysis, other.chosen, p, other.bent), found)
         _put_band(data, bands)
@@ -166,10 +189,11 @@ def _told(
     deflection: Data,
     stresses: Sequence[PartStress],
     wanted: list[float] | None,
+    since_stage: Since | None = None,
 ) -> Data:
     """What is told of every combination."""
     apexes = judge(analysis.profile.panels, combined.total)
-    checks = _checks(analysis, combined, p, stresses)
+    checks = checks_of(analysis, combined, p, stresses, since_stage)
     data: Data = {
         "name": combined.combination.name,
         "for": combined.combination.purpose,
@@ -285,7 +309,7 @@ def _spans(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
     panels = analysis.profile.panels
     rows = []
     nothing = 1e-12 * float(np.abs(p.deflection[0].sum(axis=0)).max()) + analysis.round_off(combined.total)
-    for span in _spans_at(analysis, combined):
+    for span in spans_at(analysis, combined):
         field = relative(analysis, p.deflection[0], span)
         first, stop = panels.border(span.start), panels.border(span.end)
         both = [(s, largest(panels, s * field, first, stop)) for s in (1.0, -1.0)]
@@ -304,51 +328,13 @@ def _spans(analysis: Analysis, combined: Combined, p: Pieces) -> list[Data]:
     return rows
 
 
-def _checks(analysis: Analysis, combined: Combined, p: Pieces, stresses: Sequence[PartStress]) -> list[Check]:
-    fields = Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined))
-    found = []
-    for limit in analysis.member.limits:
-        if applies(limit, combined.combination) and not _later(analysis, combined, limit):
-            check = check_limit(analysis, limit, _fields_of(analysis, combined, limit, fields))
-            if check is not None:
-                found.append(check)
-    strong = any(c.purpose == "strength" for c in analysis.member.combinations)
-    if not strong or combined.combination.purpose == "strength":
-        found += check_strengths(analysis, stresses)
-    return found
-
-
-def _later(analysis: Analysis, combined: Combined, limit: Limit) -> bool:
-    """Whether a limit looks at a stage after the one at whose end results are asked for."""
-    named = [stage_number(analysis.member, s) for s in (limit.stage, limit.after) if s is not None]
-    return combined.upto is not None and max(named, default=0) > combined.upto
-
-
-def _spans_at(analysis: Analysis, combined: Combined, stage: int | None = None) -> tuple[Span, ...]:
-    """Spans between the supports at work at the end of a stage."""
-    last = len(analysis.views) - 1 if combined.upto is None else combined.upto
-    view = analysis.views[last if stage is None else stage]
-    return spans(analysis.member, combined.lifted | view.gone)
-
-
-def _fields_of(analysis: Analysis, combined: Combined, limit: Limit, fields: Fields) -> Fields:
-    """Fields that a limit looks at: at the end of its stage, or what happens after another has begun."""
-    if limit.stage is None and limit.after is None:
-        return fields
-    last = combined.upto if combined.upto is not None else len(analysis.views) - 1
-    at = last if limit.stage is None else stage_number(analysis.member, limit.stage)
-    after = None if limit.after is None else stage_number(analysis.member, limit.after)
-    p = since(analysis, combined, at, after)
-    return Fields(p.deflection, p.rotation[0:2], _spans_at(analysis, combined, at))
-
-
 def _add_band(analysis: Analysis, combined: Combined, data: Data) -> None:
     """Add what the low and the high end of every material's band of E give, all low or all high together."""
     bands = {}
     for band in ("low", "high"):
         other = analysis.combine(combined.combination, band, combined.upto)
         cases = arrangements(analysis, other) if bearings_change(analysis, other) else [other]
-        found = [_deflections_and_checks(analysis, c) for c in cases]
+        found = [_deflections_andchecks_of(analysis, c) for c in cases]
         entries = {k: _widest([d[k] for d, _ in found]) for k in data["deflection"]}
         checks: dict[str, float] = {}
         for c in (c for _, each in found for c in each):
@@ -371,9 +357,9 @@ def _widest(entries: Sequence[Data | None]) -> Data | None:
     return max(known, key=lambda e: abs(e["value"])) if known else None
 
 
-def _deflections_and_checks(analysis: Analysis, combined: Combined) -> tuple[Data, list[Check]]:
+def _deflections_andchecks_of(analysis: Analysis, combined: Combined) -> tuple[Data, list[Check]]:
     loading = loadings(analysis, combined)
     p = pieces(analysis, loading)
     asked = any(m.strength is not None for m in analysis.member.materials)
     stresses = part_stresses(analysis, loading) if asked else ()
-    return deflections(analysis, combined, p), _checks(analysis, combined, p, stresses)
+    return deflections(analysis, combined, p), checks_of(analysis, combined, p, stresses)

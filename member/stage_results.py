@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from functools import partial
 from typing import Any
 
 import numpy as np
@@ -10,8 +12,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined, ModuliKey
 from fishbelly.member.extremes import largest, values_at
-from fishbelly.member.history_forces import resultant
-from fishbelly.member.part_forces import Loading, loadings, stress_planes
+from fishbelly.member.part_forces import Loading, loadings, resultants
 from fishbelly.member.pieces import Pieces, pieces
 from fishbelly.member.stage_changes import changes
 from fishbelly.member.stage_view import StageView
@@ -19,9 +20,57 @@ from fishbelly.member.stage_view import StageView
 Array = NDArray[np.float64]
 Data = dict[str, Any]
 Tell = Callable[[Analysis, Combined, Sequence[Loading], Pieces], Data]
+"""Gives deflection and stress of a combination at the end of a stage."""
 
 
-def stage_rows(analysis: Analysis, finals: Sequence[Data], tell: Tell) -> list[Data]:
+@dataclass(frozen=True, eq=False)
+class End:
+    """One combination at the end of a stage.
+
+    Parameters
+    ----------
+    analysis, combined : Analysis, Combined
+        The grid, and the combination with its response.
+    loading : sequence of Loading
+        What it does to the parts.
+    p : Pieces
+        Its fields.
+    told : dict
+        Deflection and stress.
+    stiffness : callable
+        EI at a place on the moduli that the stage's loads act on, and on short-term ones.
+    released : callable
+        Deflection at a place that what the stage releases causes by itself [m].
+    """
+
+    analysis: Analysis
+    combined: Combined
+    loading: Sequence[Loading]
+    p: Pieces
+    told: Data
+    stiffness: Callable[[float], tuple[float, float]]
+    released: Callable[[float], float]
+
+
+Ends = Callable[[int, int], End]
+"""Gives the end of a stage for a combination: its number and that of the stage."""
+
+
+def linear_ends(analysis: Analysis, tell: Tell) -> Ends:
+    """Ends of stages of a member whose results add."""
+
+    def end(number: int, stage: int) -> End:
+        combined = analysis.combine(analysis.member.combinations[number], upto=stage)
+        loading = loadings(analysis, combined)
+        p = pieces(analysis, loading)
+        told = tell(analysis, combined, loading, p)
+        stiffness = partial(_stiffness, analysis, stage)
+        return End(analysis, combined, loading, p, told, stiffness, partial(_release, analysis, combined, stage))
+
+    return end
+
+
+def stage_rows(analysis: Analysis, finals: Sequence[Data], ends: Ends, quick: Ends) -> list[Data]:
     """One entry a stage, cumulative to its end.
 
     Parameters
@@ -30,8 +79,8 @@ def stage_rows(analysis: Analysis, finals: Sequence[Data], tell: Tell) -> list[D
         The member.
     finals : sequence of dict
         Results of the combinations at the end of the last stage.
-    tell : callable
-        Gives deflection and stress of a combination at the end of a stage.
+    ends, quick : callable
+        Ends of stages, and what they would be if nothing crept.
 
     Returns
     -------
@@ -46,31 +95,32 @@ def stage_rows(analysis: Analysis, finals: Sequence[Data], tell: Tell) -> list[D
         rows = [{key: c[key] for key in ("name", "deflection", "stress")} for c in finals]
         return [{"name": "all", "cases": list(member.cases), "combinations": rows}]
     found = []
+    before: list[End | None] = [None] * len(member.combinations)
     for view in analysis.views:
         assert view.stage is not None
-        rows = [_row(analysis, analysis.combine(c, upto=view.index), view, tell) for c in member.combinations]
+        rows = []
+        for number in range(len(member.combinations)):
+            end = ends(number, view.index)
+            rows.append(_row(end, before[number], view, quick(number, view.index) if analysis.creeps else None))
+            before[number] = end
         entry: Data = {"name": view.name, "cases": list(view.stage.cases)} | changes(analysis, view)
         found.append(entry | {"combinations": rows})
     return found
 
 
-def _row(analysis: Analysis, combined: Combined, view: StageView, tell: Tell) -> Data:
+def _row(end: End, before: End | None, view: StageView, quick: End | None) -> Data:
     """One combination at the end of a stage."""
-    loading = loadings(analysis, combined)
-    p = pieces(analysis, loading)
-    at = _governing(analysis, p)
-    row: Data = {"name": combined.combination.name} | tell(analysis, combined, loading, p)
-    row["own"] = _own(analysis, combined, p, at)
-    row |= _stiffness(analysis, view, at) | {"at": at}
-    row["carried"] = _carried(analysis, loading, p, at)
-    row["supports"] = _supports(analysis, combined)
-    row["released"] = _gone(analysis, combined)
-    if analysis.creeps:
-        quick = analysis.instantaneous
-        same = quick.combine(combined.combination, upto=combined.upto)
-        there = loadings(quick, same)
-        of = pieces(quick, there)
-        row["instantaneous"] = tell(quick, same, there, of) | {"carried": _carried(quick, there, of, at)}
+    at = _governing(end.analysis, end.p)
+    row: Data = {"name": end.combined.combination.name} | end.told
+    row["own"] = _own(end, before, at)
+    here, short = end.stiffness(at)
+    gain = None if before is None else here / before.stiffness(at)[0]
+    row |= {"EI_y": here, "EI_y_short": short, "gain": gain, "at": at}
+    row["carried"] = _carried(end, at)
+    row["supports"] = _supports(end.analysis, end.combined)
+    row["released"] = [] if before is None else _gone(end, before, view)
+    if quick is not None:
+        row["instantaneous"] = quick.told | {"carried": _carried(quick, at)}
     return row
 
 
@@ -94,12 +144,11 @@ def _governing(analysis: Analysis, p: Pieces) -> float:
     return max((largest(analysis.profile.panels, s * down) for s in (1.0, -1.0)), key=lambda e: e.value).at
 
 
-def _own(analysis: Analysis, combined: Combined, p: Pieces, at: float) -> Data:
+def _own(end: End, before: End | None, at: float) -> Data:
     """What the stage itself adds to the deflection where that is largest."""
-    here = _deflection(analysis, p.deflection[0].sum(axis=0), at)
-    if combined.upto:
-        before = analysis.combine(combined.combination, upto=combined.upto - 1).total
-        here -= _deflection(analysis, before.deflection[0], at)
+    here = _deflection(end.analysis, end.p.deflection[0].sum(axis=0), at)
+    if before is not None:
+        here -= _deflection(before.analysis, before.combined.total.deflection[0], at)
     return {"deflection": here, "at": at}
 
 
@@ -108,32 +157,28 @@ def _deflection(analysis: Analysis, field: Array, x: float) -> float:
     return float(values_at(analysis.profile.panels, field, np.array([x]), side)[0])
 
 
-def _stiffness(analysis: Analysis, view: StageView, at: float) -> Data:
-    """EI at a place on the moduli that the stage's loads act on, and on short-term ones; gain over the stage before."""
+def _stiffness(analysis: Analysis, stage: int, at: float) -> tuple[float, float]:
+    """EI at a place on the moduli that a stage's loads act on, and on short-term ones."""
+    frame, view = analysis.frames[stage], analysis.views[stage].stage
 
-    def EI(k: int, lasting: bool) -> float:
-        frame = analysis.frames[k]
-        stage = analysis.views[k].stage
-        short = not (lasting and stage is not None and stage.long_term)
-        chosen = frame.short if short else analysis.moduli(ModuliKey(stage=k, long_term=True))
+    def EI(lasting: bool) -> float:
+        chosen = analysis.moduli(ModuliKey(stage=stage, long_term=True)) if lasting else frame.short
         return _deflection(analysis, frame.profile.stiffness(chosen).EI_y[frame.profile.row], at)
 
-    k = view.index
-    here, quick = EI(k, True), EI(k, False)
-    return {"EI_y": here, "EI_y_short": quick, "gain": here / EI(k - 1, True) if k else None}
+    return EI(view is not None and view.long_term), EI(False)
 
 
-def _carried(analysis: Analysis, loading: Sequence[Loading], p: Pieces, at: float) -> list[Data]:
+def _carried(end: End, at: float) -> list[Data]:
     """Force and moment that each part carries at a place, about the common centroid, and its share of the moment."""
-    end = loading[0].end
+    analysis, p, frame = end.analysis, end.p, end.loading[0].end
     M = float(_deflection(analysis, p.M.sum(axis=0), at))
     parts = []
-    for index in loading[0].parts:
-        planes = stress_planes(loading, index)
-        assert planes is not None
-        forces = resultant(planes.sum(axis=0)[:, None], end.profile.part_moments(index, end.line))
-        about = forces.M[0, 0] + forces.N[0] * end.centre[0]
-        force, moment = (_deflection(analysis, v, at) for v in (forces.N[0], about))
+    for index in end.loading[0].parts:
+        forces = resultants(end.loading, index)
+        assert forces is not None
+        axial = forces.N.sum(axis=0)
+        about = forces.M[0].sum(axis=0) + axial * frame.centre[0]
+        force, moment = (_deflection(analysis, v, at) for v in (axial, about))
         share = moment / M if abs(M) > 1e-9 * float(np.abs(p.M).max()) else None
         parts.append({"part": analysis.member.parts[index].name, "force": force, "moment": moment, "share": share})
     return parts
@@ -152,24 +197,21 @@ def _forces(combined: Combined, number: int) -> Data:
     return {"vertical": -down + 0.0, "along": along, "moment": couple}
 
 
-def _gone(analysis: Analysis, combined: Combined) -> list[Data]:
+def _gone(end: End, before: End, view: StageView) -> list[Data]:
     """Supports that go when the stage begins: their force before, the deflection there before and after."""
-    k = combined.upto or 0
-    if k == 0:
-        return []
-    before = analysis.combine(combined.combination, upto=k - 1)
+    analysis, combined = before.analysis, before.combined
     rows = []
     for number, support in enumerate(analysis.member.supports):
-        if support.name not in analysis.views[k].gone - analysis.views[k - 1].gone:
+        if support.name not in view.gone - analysis.views[view.index - 1].gone:
             continue
-        here = _deflection(analysis, before.total.deflection[0], support.at)
-        here = 0.0 if abs(here) <= analysis.round_off(before.total) else here
+        here = _deflection(analysis, combined.total.deflection[0], support.at)
+        here = 0.0 if abs(here) <= analysis.round_off(combined.total) else here
         rows.append(
             {"name": support.name, "at": support.at}
-            | _forces(before, number)
+            | _forces(combined, number)
             | {
                 "deflection_before": here,
-                "deflection_after": here + _release(analysis, combined, k, support.at),
+                "deflection_after": here + end.released(support.at),
             }
         )
     return rows

@@ -139,9 +139,73 @@ def test_loads_of_the_part_go_with_it():
     assert down(beside["pulled"]) == pytest.approx(1200 * 27 / (3 * EI), rel=1e-10)
 
 
+CAPPED = SIMPLE_BEAM.replace(
+    "[[support]]",
+    """[[part]]
+name = "cap"
+material = "steel"
+shape = "rectangle"
+width = "120 mm"
+depth = "30 mm"
+over = "beam"
+[[part]]
+name = "sole"
+material = "steel"
+shape = "rectangle"
+width = "80 mm"
+depth = "20 mm"
+under = "beam"
+[[support]]""",
+    1,
+)
+
+
+def test_parts_keep_their_place_without_what_they_lean_on():
+    """Cap and sole stay 200 mm apart, on a member without stages and on one with them."""
+    found = command("section", CAPPED, "--at", "2 m", "--without", "beam")["without"]
+    a, b = 0.12 * 0.03, 0.08 * 0.02
+    apart = 0.2 + 0.015 + 0.01
+    EI = 210e9 * (0.12 * 0.03**3 / 12 + 0.08 * 0.02**3 / 12 + a * b / (a + b) * apart**2)
+    assert found["EI_y"] == pytest.approx(EI, rel=1e-12)
+    assert found["z_c"] == pytest.approx((a * 0.015 - b * 0.21) / (a + b), rel=1e-12)
+    bent = 5 * 10e3 * 6**4 / (384 * EI)
+    assert down(command("deflect", CAPPED, "--without", "beam")["without"]["combinations"][0]) == pytest.approx(bent)
+    staged = changed(CAPPED, ('kind = "uniform"', 'kind = "uniform"\ncase = "all of it"'))
+    staged += '[[stage]]\nname = "bare"\n[[stage]]\nname = "loaded"\ncases = ["all of it"]\n'
+    staged = changed(staged, ('under = "beam"', 'under = "beam"\nstage = "loaded"'))
+    beside = command("deflect", staged, "--without", "beam")["without"]["combinations"][0]
+    assert down(beside) == pytest.approx(bent, rel=1e-9)
+    assert {s["part"] for s in beside["stress"] if s["max"] or s["min"]} == {"cap", "sole"}
+    rows = command("stiffness", CAPPED, "--without", "beam")["without"]["stations"]
+    assert {round(r["EI_y"] / EI, 12) for r in rows} == {1.0}
+
+
+def test_weight_and_notches_of_what_only_holds_a_place_go():
+    text = changed(CAPPED, ('E = "210 GPa"', 'E = "210 GPa"\ndensity = "7850 kg/m3"'))
+    text = text.replace('kind = "uniform"\nvalue = "10 kN/m"', 'kind = "self weight"', 1)
+    text = text.replace(
+        "[[support]]", '[[notch]]\nof = "beam"\ndepth = "20 mm"\nfrom = "1 m"\nto = "2 m"\n[[support]]', 1
+    )
+    found = command("section", text, "--at", "1.5 m", "--without", "beam")["without"]
+    assert found["mass"] == pytest.approx(7850 * (0.12 * 0.03 + 0.08 * 0.02), rel=1e-12)
+    q = 9.80665 * found["mass"]
+    bent = 5 * q * 6**4 / (384 * found["EI_y"])
+    assert down(command("deflect", text, "--without", "beam")["without"]["combinations"][0]) == pytest.approx(bent)
+
+
+def test_one_that_slips_stays_alone_or_is_refused():
+    fixing = 'joined = { pitch = "100 mm", stiffness = "5 kN/mm" }'
+    text = changed(CAPPED, ('over = "beam"', f'over = "beam"\n{fixing}'))
+    status, _, err = said("section", text, "--at", "1 m", "--without", "beam")
+    assert status == 2 and "cap would have nothing to slip on without beam" in err
+    found = command("section", text, "--at", "1 m", "--without", "beam", "--without", "sole")["without"]
+    assert found["EI_y"] == pytest.approx(210e9 * 0.12 * 0.03**3 / 12, rel=1e-12)
+
+
 def test_what_cannot_be_left_out_is_said():
+    # the plate is over a stretch alone: beside it nothing is left
     status, _, err = said("deflect", PLATED, "--without", "beam")
-    assert status == 2 and "plate would have nothing to stand against without beam" in err
+    assert status == 3 and "without beam" in err
     status, _, err = said("stiffness", PLATED, "--without", "plat")
     assert status == 2 and 'the job has no part "plat"; did you mean "plate"?' in err
     status, _, err = said("section", PLATED, "--at", "1 m", "--without", "beam", "--without", "plate")
@@ -149,7 +213,7 @@ def test_what_cannot_be_left_out_is_said():
     with pytest.raises(KeyError):
         without(read_job("-", PLATED).member, ["nobody"])
     with pytest.raises(CannotLeaveOut):
-        without(read_job("-", PLATED).member, ["beam"])
+        without(read_job("-", PLATED).member, ["beam", "plate"])
 
 
 def test_nothing_left_over_a_stretch_is_status_3():
