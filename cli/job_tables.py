@@ -91,12 +91,13 @@ def _unknown_key(model: type[BaseModel], key: str, path: Path, report: Report) -
         return None
     known = keys_of(model)
     other = _OTHER_WORDS.get(kind, {}).get(key.casefold())
-    meant = other[0] if other else nearest(key, known)
+    of_the_top = bool(path) and key in (*keys_of(JobTable), *NOT_BUILT[""])
+    meant = other[0] if other else (None if of_the_top else nearest(key, known))
     # the line is the key's, the place in words is the table's
     line, where = report.line((*path, key)), report.where((*path, key))
     hint = suggest(key, known) if meant and not other else ""
     text = f'unknown key "{key}"'
-    if meant is None and path and key in (*keys_of(JobTable), *NOT_BUILT[""]):
+    if meant is None and of_the_top:
         hint = "it belongs at the top of the file, before the first table"
     elif other:
         hint = f"did you mean {join_words(other)}?"

@@ -1,14 +1,16 @@
 """The governing deflection of a cracked member once more: curvatures by strips, deflection by virtual work.
 
-Forces, cracked places, shear angles and what history left in the parts are taken over; section law, cracking, tension
-stiffening along x and integration are its own. The unit load stands on a simple beam between two supports, or on an
-overhang of one, cut free of everything else: virtual work holds with any forces in balance with it.
+Forces, cracked places and shear angles are taken over; section law, cracking, tension stiffening along x and
+integration are its own, and in a member with stages what history leaves in the parts. The unit load stands on a simple
+beam between two supports, or on an overhang of one, cut free of everything else: virtual work holds with any forces in
+balance with it.
 """
 
 from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
 from itertools import pairwise
 from typing import Any
 
@@ -17,10 +19,11 @@ from numpy.typing import NDArray
 
 from fishbelly.member.breakpoints import breakpoints
 from fishbelly.member.cracked_found import CrackedResponse
+from fishbelly.member.cracked_strip_life import StripLife
 from fishbelly.member.cracked_strips import Plane, StripSection, strip_strain
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import CannotCompute
-from fishbelly.member.spans import spans
+from fishbelly.member.spans import Span, spans
 
 Array = NDArray[np.float64]
 Data = dict[str, Any]
@@ -42,8 +45,8 @@ def cracked_check(r: CrackedResponse) -> Data | None:
     Returns
     -------
     dict or None
-        As `cross_check` has it; None where the method does not reach: bending in two planes, hinges, no span or
-        overhang of two supports.
+        As `cross_check` has it; None where the method does not reach (`beyond`), or where the place lies in no span
+        between two supports that hold in every stage.
 
     Raises
     ------
@@ -51,13 +54,13 @@ def cracked_check(r: CrackedResponse) -> Data | None:
         When the two methods do not agree.
     """
     panels = r.analysis.profile.panels
-    if r.analysis.planes > 1 or r.analysis.member.hinges or not r.phases:
+    if not r.phases or beyond(r) is not None:
         return None
     both = [(s, largest(panels, s * r.total.deflection[0])) for s in (1.0, -1.0)]
     sign, top = max(both, key=lambda pair: pair[1].value)
     if not top.value > 0.0:
         return None
-    held = next((s for s in spans(r.analysis.member, r.combined.lifted) if s.start <= top.at <= s.end), None)
+    held = next((s for s in _always(r) if s.start <= top.at <= s.end), None)
     if held is None or held.overhang:
         return None
     value, size = _deflection(r, held.start, held.end, top.at), abs(top.value)
@@ -78,10 +81,28 @@ def cracked_check(r: CrackedResponse) -> Data | None:
     }
 
 
+def beyond(r: CrackedResponse) -> str | None:
+    """Why the second method does not reach a combination; None where it does."""
+    if r.analysis.planes > 1:
+        return "it bends sideways too"
+    if r.analysis.member.hinges:
+        return "it has hinges"
+    if any(s.law.held for end in r.life for s in end.phases):
+        return "what parts that go have carried is partly of loads that last"
+    return None
+
+
+def _always(r: CrackedResponse) -> tuple[Span, ...]:
+    """Spans between supports that hold in every stage so far."""
+    views = r.analysis.views[: r.stage + 1]
+    return spans(r.analysis.member, r.combined.lifted.union(*(v.gone for v in views)))
+
+
 def _residual(r: CrackedResponse) -> float:
     """Reactions plus loads, down, over the sum of their sizes."""
     panels = r.analysis.profile.panels
     factors = np.asarray(sum(s.factors for s in r.combined.shares))
+    factors = np.where([r.analysis.stage_of(a) <= r.stage for a in r.analysis.atoms], factors, 0.0)
     loads = np.array([panels.integrate(a.q[0])[1].sum() + a.P[0].sum() for a in r.analysis.loads])
     reactions = r.total.reactions[:, 0]
     size = float(np.abs(loads) @ np.abs(factors) + np.abs(reactions).sum())
@@ -92,11 +113,12 @@ def _deflection(r: CrackedResponse, start: float, end: float, at: float) -> floa
     """Deflection at a place between two supports, their own movements taken over."""
     panels, length = r.analysis.profile.panels, end - start
     borders = [x for x in breakpoints(r.analysis.member) if start < x < end]
-    borders += [x for pair in r.stretches for x in pair if start < x < end]
+    borders += [x for end_of in r.life for pair in end_of.stretches for x in pair if start < x < end]
     work = _Work(r)
     cuts = np.unique([start, *borders, at, end])
     cuts = np.unique((*cuts, *work.kinks(cuts)))
-    cuts = np.unique((*cuts, *(0.5 * (cuts[1:] + cuts[:-1]))))
+    if not r.before:
+        cuts = np.unique((*cuts, *(0.5 * (cuts[1:] + cuts[:-1]))))
     half, middle = 0.5 * np.diff(cuts)[:, None], 0.5 * (cuts[1:] + cuts[:-1])[:, None]
     x, dx = (middle + half * _GAUSS[0]).ravel(), (half * _GAUSS[1]).ravel()
     moment = np.where(x < at, (x - start) * (end - at), (end - x) * (at - start)) / length
@@ -151,19 +173,35 @@ class _Work:
 
     def over(self, x: float) -> float:
         """Largest tension over the stress at which a part cracks, uncracked."""
+        if self.r.before is not None:
+            state = self._life.at(x)
+            return self._over(state.section, state.strains[0], state.free[0])
         section = self._section(x)
         return self._over(section, self._strain(section, 0, x, *self.forces(x)), self._free(0, x))
 
+    @cached_property
+    def _life(self) -> StripLife:
+        return StripLife(self.r)
+
+    def _both(self, x: float) -> tuple[StripSection, Plane, Plane, Mapping[int, Plane]]:
+        """Section, strains in state I and II, and free strain of the parts in state I."""
+        if self.r.before is not None:
+            state = self._life.at(x)
+            return state.section, *state.strains, state.free[0]
+        section, forces = self._section(x), self.forces(x)
+        first = self._strain(section, 0, x, *forces)
+        cracked = any(a < x < b for a, b in self.r.stretches)
+        return section, first, self._strain(section, 1, x, *forces) if cracked else first, self._free(0, x)
+
     def curvature(self, x: float) -> float:
         """Curvature at a place, cracked or not, by strips."""
-        law, forces, section = self.r.phases[-1].law, self.forces(x), self._section(x)
-        first = self._strain(section, 0, x, *forces)
+        law = self.r.phases[-1].law
+        section, first, second, free = self._both(x)
         if not any(a < x < b for a, b in self.r.stretches):
             return first[1]
-        second = self._strain(section, 1, x, *forces)
         if law.stiffening is None:
             return second[1]
-        over = self._over(section, first, self._free(0, x))
+        over = self._over(section, first, free)
         growth = second[1] / first[1] if first[1] else 1.0
         zeta = float(law.stiffening.zeta(1.0 / over if over > 0.0 else np.inf, growth))
         return (1.0 - zeta) * first[1] + zeta * second[1]

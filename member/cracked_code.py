@@ -119,6 +119,15 @@ def one_value(
     raise CannotCompute(f"moments and effective stiffness of {rule} did not settle in {MOST_ROUNDS} rounds")
 
 
+def one_value_response(
+    analysis: Analysis, combination: Combination, rule: str, one: OneValue, band: str = "nominal"
+) -> Response:
+    """Response of other loads on the stiffness that a combination has given every span."""
+    combined = analysis.combine(combination, band)
+    work = _Work(analysis, combined.shares, combined.lifted, rule, analysis.member.shear)
+    return work.response(list(one.spans))
+
+
 @dataclass(eq=False)
 class _Work:
     analysis: Analysis

@@ -41,9 +41,8 @@ def cracked_loading(r: CrackedResponse) -> tuple[Loading, ...]:
 def stacked(r: Response) -> Response:
     """Response with an axis of one piece."""
     single = ("N", "axial", "reactions")
-    return Response(
-        *((v := getattr(r, f))[None] if f in single else v[:, None] for f in Response.__dataclass_fields__)
-    )
+    fields = {f: getattr(r, f) for f in Response.__dataclass_fields__}
+    return Response(**{f: v[None] if f in single else v[:, None] for f, v in fields.items()})
 
 
 def pieces_of(r: CrackedResponse, total: Response) -> Pieces:

@@ -34,6 +34,17 @@ def may_crack(member: Member) -> bool:
     return bool(no_tension_parts(member) or cracking_parts(member))
 
 
+def cracks_followed(analysis: Analysis) -> bool:
+    """Whether cracks of a member are followed: where they cannot be, only if that has been asked for."""
+    member = analysis.member
+    if not may_crack(member):
+        return False
+    hinged = any(v.hinges != analysis.views[0].hinges for v in analysis.views)
+    patterned = any(a.span is not None for a in analysis.atoms)
+    asked = bool(no_tension_parts(member)) or member.tension_stiffening is not None
+    return asked or not (hinged or patterned or has_soft_joints(member))
+
+
 def cracked_response(
     analysis: Analysis,
     combination: Combination,

@@ -10,19 +10,17 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined
-from fishbelly.member.cracked_code import OneValue, SpanValue, one_value
+from fishbelly.member.cracked_code import OneValue, one_value
 from fishbelly.member.cracked_found import CrackedResponse
 from fishbelly.member.cracked_history import cracked_responses
 from fishbelly.member.cracked_loading import pieces_of, stress_at_crack
 from fishbelly.member.cracked_record import response_on
-from fishbelly.member.cracked_response import bending_alone, cracked_response, cracked_stage, may_crack
-from fishbelly.member.cracked_sections import no_tension_parts
+from fishbelly.member.cracked_response import bending_alone, cracked_response, cracked_stage, cracks_followed
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.inclined_stress import along_plates
 from fishbelly.member.pieces import Pieces
 from fishbelly.member.response import Response
-from fishbelly.member.slip_layers import has_soft_joints
 from fishbelly.member.stresses import PartStress, StressPeak
 from fishbelly.sections.effective_inertia import EN
 
@@ -48,6 +46,8 @@ class CrackedCase:
         The combination with the response that results are of: the code's one value by ACI 318, else along x.
     band : str
         Which end of the materials' bands of E.
+    others : tuple of CrackedResponse
+        All combinations, at the end of the last stage, to tell which one has cracked what.
     """
 
     along: CrackedResponse
@@ -55,6 +55,7 @@ class CrackedCase:
     one: OneValue | None
     chosen: Combined
     band: str = "nominal"
+    others: tuple[CrackedResponse, ...] = ()
     _ends: dict[int, CrackedCase] = field(default_factory=dict, repr=False)
 
     @property
@@ -88,7 +89,7 @@ class CrackedCase:
         if stage >= self.along.stage:
             return self
         if stage not in self._ends:
-            self._ends[stage] = _case(self.along.at(stage), self.rule, self.band)
+            self._ends[stage] = _case(self.along.at(stage), self.rule, self.band, self.others)
         return self._ends[stage]
 
     def since(self, stage: int, after: int | None) -> Pieces:
@@ -119,29 +120,41 @@ def cracked_cases(analysis: Analysis) -> tuple[CrackedCase | None, ...]:
     """
     member = analysis.member
     none: tuple[CrackedCase | None, ...] = (None,) * len(member.combinations)
-    if not may_crack(member) or (_unbuilt(analysis) and not _asked(analysis)):
+    if not cracks_followed(analysis):
         return none
     rule = member.tension_stiffening
     found = cracked_responses(analysis, member.combinations, rule)
-    return tuple(_case(r, rule) if r.phases and r.cracks else None for r in found)
+    return tuple(_case(r, rule, others=found) if r.phases and r.cracks else None for r in found)
 
 
-def _asked(analysis: Analysis) -> bool:
-    member = analysis.member
-    return bool(no_tension_parts(member)) or member.tension_stiffening is not None
+def chosen_response(analysis: Analysis, combination: Combination, upto: int | None = None) -> tuple[Analysis, Response]:
+    """Response of one combination or case as results have it, and the grid on which it is.
+
+    Parameters
+    ----------
+    analysis : Analysis
+        A member whose cracks are followed.
+    combination : Combination
+        One of its own, or any other; where the member keeps a history its own crack places for it too.
+    upto : int, optional
+        Stage at whose end; default the last.
+    """
+    own = list(analysis.member.combinations)
+    asked = own if combination in own else [*own, replace(combination, purpose="strength")]
+    rule = analysis.member.tension_stiffening
+    found = cracked_responses(analysis, asked, rule)[asked.index(combination) if combination in own else -1]
+    case = _case(found if upto is None else found.at(upto), rule)
+    return case.analysis, case.chosen.total
 
 
-def _unbuilt(analysis: Analysis) -> bool:
-    hinged = any(v.hinges != analysis.views[0].hinges for v in analysis.views)
-    return hinged or has_soft_joints(analysis.member) or any(a.span is not None for a in analysis.atoms)
-
-
-def _case(r: CrackedResponse, rule: str | None, band: str = "nominal") -> CrackedCase:
+def _case(
+    r: CrackedResponse, rule: str | None, band: str = "nominal", others: tuple[CrackedResponse, ...] = ()
+) -> CrackedCase:
     if rule in (None, EN) or len(r.analysis.views) > 1:
-        return CrackedCase(r, rule, None, r.combined, band)
+        return CrackedCase(r, rule, None, r.combined, band, others)
     assert rule is not None
     one = one_value(r.analysis, r.combined.combination, rule, band)
-    return CrackedCase(r, rule, one, replace(r.combined, total=one.response), band)
+    return CrackedCase(r, rule, one, replace(r.combined, total=one.response), band, others)
 
 
 def in_band(case: CrackedCase, band: str) -> CrackedCase:
@@ -203,72 +216,3 @@ def _peak(case: CrackedCase, index: int, plane: Array, none: NDArray[np.bool_], 
     if best is None or sign * best.value <= 0.0:
         return None
     return best
-
-
-def cracked_data(case: CrackedCase) -> Data:
-    """What stands under ``cracked`` in the results of a combination."""
-    r, done = case.along, case.along.convergence
-    data: Data = {
-        "rule": case.rule,
-        "from_history": _more(r),
-        "stretches": [{"from": a, "to": b} for a, b in r.stretches],
-        "convergence": {
-            "status": done.status,
-            "rounds": done.rounds,
-            "residual": done.residual,
-            "at": done.at,
-        },
-        "uncracked": _deepest(r.uncracked, case.analysis),
-        "along": _deepest(r.total, case.analysis),
-        "everywhere": None if case.everywhere is None else _deepest(case.everywhere.total, case.everywhere.analysis),
-    }
-    if case.one is not None:
-        data["one_value"] = _deepest(case.one.response, case.analysis) | {"spans": [_span(s) for s in case.one.spans]}
-    elif case.rule == EN and case.everywhere is not None:
-        data["one_value"] = _between(case, case.everywhere)
-    return data
-
-
-def _more(r: CrackedResponse) -> bool:
-    """Whether other combinations have cracked places that this one does not crack by itself."""
-    close = 1e-6 * r.analysis.member.length
-    return not all(any(a <= x + close and b >= y - close for a, b in r.own) for x, y in r.stretches)
-
-
-def _deepest(response: Response, analysis: Analysis) -> Data:
-    """Largest deflection by size in the plane of the loads, with its sign, downwards positive."""
-    panels = analysis.profile.panels
-    both = [(s, largest(panels, s * response.deflection[0])) for s in (1.0, -1.0)]
-    sign, found = max(both, key=lambda pair: pair[1].value)
-    return {"value": sign * found.value, "at": found.at}
-
-
-def _span(value: SpanValue) -> Data:
-    return {
-        "span": value.span.label,
-        "I_effective": value.effective,
-        "sections": [
-            {
-                "at": s.at,
-                "M": s.moment,
-                "M_cracking": s.cracking,
-                "I_gross": s.gross,
-                "I_cracked": s.cracked,
-                "I_effective": s.effective,
-            }
-            for s in value.sections
-        ],
-    }
-
-
-def _between(case: CrackedCase, everywhere: CrackedResponse) -> Data:
-    """EN 1992-1-1, 7.4.3(7): between uncracked and cracked throughout, by zeta of the most cracked section."""
-    state = case.along.state
-    assert state is not None
-    rule = case.along.phases[-1].law.stiffening
-    assert rule is not None
-    most = largest(case.analysis.profile.panels, np.where(np.isfinite(state.over), state.over, 0.0))
-    zeta = float(rule.zeta(1.0 / most.value if most.value > 0.0 else np.inf, 1.0))
-    one, other = _deepest(case.along.uncracked, case.analysis), _deepest(everywhere.total, everywhere.analysis)
-    value = (1.0 - zeta) * one["value"] + zeta * other["value"]
-    return {"value": value, "at": other["at"], "zeta": zeta, "section": most.at}

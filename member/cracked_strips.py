@@ -49,9 +49,9 @@ class StripSection:
     levels: Array
 
     @classmethod
-    def at(cls, member: Member, x: float, side: str = "right") -> StripSection:
-        """Cut the member at x [m]."""
-        placed = Geometry(member).place(np.array([x]), side)
+    def at(cls, member: Member, x: float, side: str = "right", works: frozenset[int] | None = None) -> StripSection:
+        """Cut the member at x [m]; with `works` only some of its parts are there."""
+        placed = Geometry(member, works).place(np.array([x]), side)
         outlines = [*placed.outlines, *(c.outline for c in placed.cuts)]
         loops = tuple(_edges(o) for o in outlines)
         levels = np.unique(np.concatenate([_tops(e) for e in loops]))
@@ -77,8 +77,8 @@ class StripSection:
 
     def forces(
         self, strain: Plane, E: Array, tensionless: frozenset[int], free: Mapping[int, Plane]
-    ) -> tuple[float, float]:
-        """N and M about z = 0 of a strain e0 - k z.
+    ) -> tuple[Array, Array]:
+        """N and M about z = 0 of a strain e0 - k z, shape (2,), and their change by e0 and k, shape (2, 2).
 
         Parameters
         ----------
@@ -91,13 +91,19 @@ class StripSection:
         free : mapping
             Free strain of parts, e + a z.
         """
-        N = M = 0.0
+        total, change = np.zeros(2), np.zeros((2, 2))
         for k, i in enumerate(self.parts):
             e, a = strain[0] - free.get(i, (0.0, 0.0))[0], -strain[1] - free.get(i, (0.0, 0.0))[1]
-            A, S, second = self._compressed(k, e, a) if i in tensionless else self.slabs[:, k].sum(axis=1)
-            N += float(E[i]) * (e * A + a * S)
-            M -= float(E[i]) * (e * S + a * second)
-        return float(N), float(M)
+            A, S, second = self._compressed(k, e, a) if i in tensionless else self.whole[:, k]
+            total += E[i] * np.array([e * A + a * S, -e * S - a * second])
+            # stress is nothing where the part stops to work: that place moving changes nothing
+            change += E[i] * np.array([[A, -S], [-S, second]])
+        return total, change
+
+    @cached_property
+    def whole(self) -> Array:
+        """Area, first and second moment about z = 0 of each part, shape (3, P)."""
+        return np.asarray(self.slabs.sum(axis=2))
 
     @cached_property
     def slabs(self) -> Array:
@@ -136,7 +142,7 @@ def strip_strain(
     M: float,
     start: Plane = (0.0, 0.0),
 ) -> Plane:
-    """Strain e0 and curvature k under N and M about z = 0, by Newton's method with differences.
+    """Strain e0 and curvature k under N and M about z = 0, by Newton's method.
 
     Raises
     ------
@@ -146,33 +152,30 @@ def strip_strain(
     if start == (0.0, 0.0) and tensionless and (N or M):
         start = strip_strain(section, E, frozenset(), free, N, M, start)
     depth = float(section.levels[-1] - section.levels[0])
-    at = np.array(start)
-    size = max(abs(N) * depth, abs(M), 1e-300)
+    scale = np.array([1.0, 1.0 / depth])
+    at, wanted = np.array(start), np.array([N, M])
 
-    def gap(p: Array) -> Array:
-        n, m = section.forces((float(p[0]), float(p[1])), E, tensionless, free)
-        return np.array([(N - n) * depth, M - m]) / size
+    def gap(p: Array) -> tuple[Array, Array, float]:
+        found, change = section.forces((float(p[0]), float(p[1])), E, tensionless, free)
+        return (wanted - found) * scale, change, float(np.abs(found * scale).max())
 
-    here = gap(at)
+    out, change, carried = gap(at)
+    size = max(float(np.abs(wanted * scale).max()), carried, 1e-300)
     for _ in range(MOST_ROUNDS):
-        if np.abs(here).max() <= CLOSED:
+        if np.abs(out).max() <= CLOSED * size:
             break
-        reach = max(abs(at[0]), abs(at[1]) * depth, 1e-6)
-        columns = []
-        for step in (np.array([1e-6 * reach, 0.0]), np.array([0.0, 1e-6 * reach / depth])):
-            columns.append((gap(at + step) - gap(at - step)) / (2.0 * step.sum()))
-        move = -np.linalg.solve(np.stack(columns, axis=1), here)
+        move = np.linalg.solve(change * scale[:, None] * scale, out) * scale
         length = 1.0
         while length > 1e-4:
             there = gap(at + length * move)
-            if np.abs(there).max() < np.abs(here).max():
+            if np.abs(there[0]).max() < np.abs(out).max():
                 break
             length *= 0.5
         else:
             break
-        at, here = at + length * move, there
-    if np.abs(here).max() > 1e-9:
-        raise ArithmeticError(f"strips did not close: {np.abs(here).max():.1e} of the forces is out of balance")
+        at, (out, change, _) = at + length * move, there
+    if np.abs(out).max() > 1e-9 * size:
+        raise ArithmeticError(f"strips did not close: {np.abs(out).max() / size:.1e} of the forces is out of balance")
     return float(at[0]), float(at[1])
 
 
@@ -185,11 +188,11 @@ def _edges(outline: Outline) -> Array:
     return np.array(rows)
 
 
-def _circle(edge: Array) -> tuple[float, float, float]:
-    """Centre and radius of an arc by its chord and bulge."""
-    ya, za, yb, zb, bulge = edge
+def _circles(edges: Array) -> tuple[Array, Array, Array]:
+    """Centres and radii of arcs by their chords and bulges, each of shape (edges, 1)."""
+    ya, za, yb, zb, bulge = edges.T[:, :, None]
     chord = np.hypot(yb - ya, zb - za)
-    radius = chord * (1.0 + bulge**2) / (4.0 * abs(bulge))
+    radius = chord * (1.0 + bulge**2) / (4.0 * np.abs(bulge))
     sag = 0.5 * chord * bulge
     # the centre lies on the normal of the chord, a radius from the top of the bow
     ny, nz = (zb - za) / chord, -(yb - ya) / chord
@@ -200,28 +203,31 @@ def _circle(edge: Array) -> tuple[float, float, float]:
 
 def _tops(edges: Array) -> Array:
     levels = [edges[:, 1]]
-    for edge in edges[edges[:, 4] != 0.0]:
-        _, zc, r = _circle(edge)
-        for z in (zc - r, zc + r):
-            if _crossings(edge[None], np.array([z - 1e-9 * r * np.sign(z - zc)])).size:
-                levels.append(np.array([z]))
+    curved = edges[edges[:, 4] != 0.0]
+    if curved.size:
+        _, zc, r = _circles(curved)
+        for k, edge in enumerate(curved):
+            for z in (zc[k] - r[k], zc[k] + r[k]):
+                near = z - 1e-9 * r[k] * np.sign(z - zc[k])
+                if not np.isnan(_crossings(edge[None], near)).all():
+                    levels.append(z)
     return np.concatenate(levels)
 
 
 def _crossings(edges: Array, z: Array) -> Array:
     """Where edges meet level lines: y with NaN where they do not, two rows for an arc, shape (rows, len(z))."""
-    rows = []
-    for edge in edges:
-        ya, za, yb, zb, bulge = edge
-        if bulge == 0.0:
-            with np.errstate(divide="ignore", invalid="ignore"):
-                y = ya + (yb - ya) * (z - za) / (zb - za)
-            rows.append(np.where((z > min(za, zb)) & (z < max(za, zb)), y, np.nan))
-            continue
-        yc, zc, r = _circle(edge)
+    bent = edges[:, 4] != 0.0
+    ya, za, yb, zb, _ = edges[~bent].T[:, :, None]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        y = ya + (yb - ya) * (z - za) / (zb - za)
+    rows = [np.where((z > np.minimum(za, zb)) & (z < np.maximum(za, zb)), y, np.nan)]
+    if bent.any():
+        arcs = edges[bent]
+        ya, za, yb, zb, bulge = arcs.T[:, :, None]
+        yc, zc, r = _circles(arcs)
         root = np.sqrt(np.maximum(r * r - (z - zc) ** 2, 0.0))
         for y in (yc - root, yc + root):
             # a point of the circle is on the arc where it lies on the bow's side of the chord
             side = (yb - ya) * (z - za) - (zb - za) * (y - ya)
             rows.append(np.where((np.abs(z - zc) < r) & (side * bulge < 0.0), y, np.nan))
-    return np.array(rows)
+    return np.concatenate(rows)

@@ -7,6 +7,7 @@ from dataclasses import replace
 from typing import Any
 
 from fishbelly.member.analysis import Analysis
+from fishbelly.member.cracked_results import chosen_response
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
@@ -61,7 +62,10 @@ def one_stage(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
         if exact is None:
             continue
         try:
-            found = largest(one.panels, simple.combine(chosen).total.deflection[0]).value
+            grid, total = simple, simple.combine(chosen).total
+            if "cracked" in told:
+                grid, total = chosen_response(simple, chosen)
+            found = largest(grid.profile.panels, total.deflection[0]).value
         except CannotCompute:
             return
         gap = abs(found / exact["value"] - 1.0)

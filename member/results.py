@@ -13,8 +13,9 @@ from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, relative
 from fishbelly.member.cracked_check import cracked_check
+from fishbelly.member.cracked_data import cracked_data, stretches
 from fishbelly.member.cracked_loading import cracked_loading
-from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_data, cracked_stresses, in_band
+from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_stresses, in_band
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import Extreme, largest, values_at
@@ -80,6 +81,7 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
         from fishbelly.member.slip_report import add_slip
 
         add_slip(analysis, upto, combinations, _largest)
+    stages = stage_rows(analysis, combinations, _stage_ends(analysis, cases), _quick(analysis, cases))
     data: Data = {"title": member.title, "units": "SI: m, N, Pa, rad, kg", "length": member.length}
     if stage is not None:
         data["stage"] = stage
@@ -148,6 +150,7 @@ def _cracked_deflection_and_stress(case: CrackedCase) -> Data:
     return {
         "deflection": deflections(case.analysis, case.chosen, case.fields, case.bent),
         "stress": [stress_row(s) for s in cracked_stresses(case)],
+        "cracked": stretches(case),
     }
 
 

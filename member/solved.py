@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.apex import judge
+from fishbelly.member.cracked_response import cracks_followed, may_crack
 from fishbelly.member.description import Combination, Member
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import NotLinear
@@ -28,7 +29,8 @@ QUANTITIES = ("deflection", "across", "rotation", "slope", "moment", "shear", "a
 class Result:
     """Response of a member to one case or combination.
 
-    Results of a linear member add, subtract and scale; one in which bearings may lift off does not, and says so.
+    Results of a linear member add, subtract and scale; those of one that cracks, or in which bearings may lift off, do
+    not, and say so.
 
     Parameters
     ----------
@@ -74,7 +76,8 @@ class Result:
 
     def _must_be_linear(self) -> None:
         if not self.linear:
-            raise NotLinear("bearings that cannot pull may lift off: results do not add; solve them as one combination")
+            why = "parts crack" if may_crack(self.analysis.member) else "bearings that cannot pull may lift off"
+            raise NotLinear(f"{why}: results do not add; solve them as one combination")
 
     def field(self, quantity: str) -> Array:
         """Values at the grid points, shape (K, n), of one of `QUANTITIES`."""
@@ -179,10 +182,20 @@ class Solved:
         raise KeyError(f"expected one of the combinations {names}, got {name!r}")
 
     def _result(self, combination: Combination, stage: int = -1) -> Result:
+        if cracks_followed(self.analysis):
+            return self._cracked(combination, stage)
         total = self.analysis.combine(combination, upto=None if stage < 0 else stage).total
         judge(self.analysis.profile.panels, total)
         linear = not any(s.only_up for s in self.analysis.member.supports)
         return Result(self.analysis, total, linear, stage)
+
+    def _cracked(self, combination: Combination, stage: int) -> Result:
+        """Response with cracks: those of the member's own combinations count where it keeps a history."""
+        from fishbelly.member.cracked_results import chosen_response
+
+        analysis, total = chosen_response(self.analysis, combination, None if stage < 0 else stage)
+        judge(analysis.profile.panels, total)
+        return Result(analysis, total, False, stage)
 
 
 def solve(member: Member) -> Solved:

@@ -275,3 +275,27 @@ def test_rate_is_exact_on_polynomials():
     analysis, _ = solved(plated())
     panels = analysis.profile.panels
     assert np.abs(rate(panels, panels.x**5) - 5 * panels.x**4).max() < 1e-9
+
+
+def test_what_symmetry_makes_nothing_is_nothing():
+    """A part on the axis has no force; at free ends and at mid-span nothing is left of round-off."""
+    depth = straight((0.0, 3.0, 6.0), (0.24, 0.40, 0.24))
+    parts = (
+        part("beam", "rectangle", 6.0, material="timber", width=0.20, depth=depth),
+        part("cheek", "rectangle", 6.0, place=Placing("right_of", "beam"), width=0.01, depth=0.1),
+        part("sole", "rectangle", 6.0, place=Placing("under", "beam"), width=0.12, depth=0.012),
+        part("cap", "rectangle", 6.0, place=Placing("over", "beam"), width=0.12, depth=0.012),
+        part("half", "rectangle", 3.0, place=Placing("left_of", "beam"), width=0.01, depth=0.1),
+        part("rest", "rectangle", 6.0, start=3.0, place=Placing("left_of", "beam"), width=0.01, depth=0.1),
+    )
+    member = Member(6.0, parts, (TIMBER, STEEL), supports=simple(6.0), loads=(uniform(9e3, 6.0),), shear=False)
+    found = solve(member)["combinations"][0]
+    for name in ("cheek", "half", "rest"):
+        one = joint(found, name)
+        assert one["start"]["force"] == one["end"]["force"] == 0.0
+        assert one["flow"]["max"]["value"] == one["start"]["flow"] == one["end"]["flow"] == 0.0
+        assert abs(one["start"]["shear"]) + abs(one["end"]["shear"]) > 1.0
+    sole = joint(found, "sole")
+    assert sole["start"]["force"] == sole["end"]["force"] == 0.0 and sole["start"]["couple"] == 0.0
+    assert sole["start"]["flow"] == pytest.approx(-sole["end"]["flow"], rel=SMOOTH) and sole["start"]["flow"] > 1e3
+    assert joint(found, "half")["end"]["V"] == joint(found, "rest")["start"]["V"] == 0.0

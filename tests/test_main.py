@@ -55,7 +55,7 @@ def test_a_command_that_is_not_built_is_refused_by_name(name: str, capsys: pytes
     assert f'command "{name}"' in capsys.readouterr().err
 
 
-@pytest.mark.parametrize("option", [("--stage", "now"), ("--second-order",)])
+@pytest.mark.parametrize("option", [("--second-order",)])
 def test_an_option_that_is_not_built_is_refused_by_name(
     option: tuple[str, ...], job: Path, capsys: pytest.CaptureFixture[str]
 ) -> None:

@@ -87,7 +87,7 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
         Both directions in mm of paper.
     """
     with pens():
-        shapes = part_shapes(job.member, data["x"], data["side"], data["stage"])
+        shapes = part_shapes(job.member, data["x"], data["side"], data.get("stage"))
         if ax is None:
             ax = own_panel(sheet(shapes, WIDTH - MARGIN_LEFT - RIGHT).height, left=MARGIN_LEFT, foot=2.0)
         width, height = in_millimetres(ax)

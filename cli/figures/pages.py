@@ -122,7 +122,7 @@ class _SectionRow:
 
     def __init__(self, job: Any, data: Mapping[str, Any], tallest: float, column: _Column) -> None:
         self.job, self.data = job, data
-        shapes = part_shapes(job.member, data["x"], data["side"], data["stage"])
+        shapes = part_shapes(job.member, data["x"], data["side"], data.get("stage"))
         self.wide = WIDTH - _SECTION_LEFT - RIGHT - _STRESS - 3.0
         self.sheet = cross_section.sheet(shapes, self.wide, tallest)
         self.top = column.room(self.sheet.height)
@@ -151,7 +151,7 @@ def stiffness_page(job: Any, data: Mapping[str, Any]) -> Any:
     -------
     Figure
     """
-    fine = stiffness(job.member, section_places(job.member), stage=data["stage"])
+    fine = stiffness(job.member, section_places(job.member), stage=data.get("stage"))
     with pens():
         column = _Column(job.member.title, [])
         bands = elevation.layout(side_view(job.member), job.style, with_loads=False)

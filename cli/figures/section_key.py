@@ -87,7 +87,7 @@ def _columns(texts: Sequence[str], width: float, more: float) -> int:
 
 def height(job: Any, data: Mapping[str, Any], width: float) -> float:
     """Height that the words take in a width [mm]."""
-    shapes = part_shapes(job.member, data["x"], data["side"], data["stage"])
+    shapes = part_shapes(job.member, data["x"], data["side"], data.get("stage"))
     materials, parts = _materials(job.member, data, job.style), _parts(job.member, shapes, job.style)
     facts = lines_of(_facts(data, job.style), width, 5)
     rows = sum(
@@ -121,7 +121,7 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None) -> Any:
             ax.text(0.0, y - 0.5 * LINE, line, ha="left", va="center")
             y -= LINE
         y = _table(ax, _materials(job.member, data, job.style), y - _GAP, width, job.member)
-        shapes = part_shapes(job.member, data["x"], data["side"], data["stage"])
+        shapes = part_shapes(job.member, data["x"], data["side"], data.get("stage"))
         _table(ax, _parts(job.member, shapes, job.style), y - _GAP, width, job.member, [index for index, _ in shapes])
     return ax
 

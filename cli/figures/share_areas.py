@@ -39,7 +39,7 @@ def plot(job: Any, data: Mapping[str, Any], ax: Any = None, labelled: bool = Tru
         x = np.array([s["x"] for s in data["stations"]])
         sides = ["left" if k + 1 < x.size and x[k + 1] == x[k] else "right" for k in range(x.size)]
         sides[-1] = "left"
-        upper = np.cumsum(bending_shares(job.member, x, sides, data["stage"]), axis=0)
+        upper = np.cumsum(bending_shares(job.member, x, sides, data.get("stage")), axis=0)
         lower = np.vstack((np.zeros(x.size), upper[:-1]))
         lines.frame(ax, job.member, job.style, labelled)
         ax.set_ylim(0.0, 1.0)
