@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import io
 import math
+from collections.abc import Callable, Mapping
 from dataclasses import replace
 from datetime import datetime
 from textwrap import wrap
@@ -11,6 +12,7 @@ from typing import Any
 
 from fishbelly.cli import deflect_grids
 from fishbelly.cli.cautions import FULL
+from fishbelly.cli.cracked_grids import cracked_spans, cracked_stages, cracked_stretches, cracked_ways
 from fishbelly.cli.file_grids import answers, checks, joined, per_combination, section_details, stages, stations, stress
 from fishbelly.cli.files_csv import head
 from fishbelly.cli.format_quantity import format_position
@@ -18,6 +20,7 @@ from fishbelly.cli.grid import PERCENT, TEXT, Column, Grid, unit_of
 from fishbelly.cli.joint_grids import fastening, joint_flows, joints
 from fishbelly.cli.section_grids import ratios, section_lines, stiffness_grid
 from fishbelly.cli.slip_grids import slip_bounds, slip_gamma, slip_joints
+from fishbelly.cli.stage_grids import staged
 from fishbelly.cli.tables import SECTION_AXES, STIFFNESS_AXES
 from fishbelly.cli.tables_deflect import AXES
 from fishbelly.cli.without_grids import deflect_beside, section_beside, stiffness_beside
@@ -96,6 +99,7 @@ def _deflect(data: dict[str, Any], job: Any) -> list[Grid]:
         per_combination(data, "Spans", deflect_grids.spans),
         per_combination(data, "Ends", deflect_grids.ends),
         stress(data),
+        *_cracked(data),
         *stages(data),
         *_beside(data),
         stations(data),
@@ -114,6 +118,23 @@ def _beside(data: dict[str, Any]) -> list[Grid]:
         *_slips(data),
         *_titled(deflect_beside(data)),
     ]
+
+
+def _cracked(data: dict[str, Any]) -> list[Grid]:
+    """What is cracked, and ways of counting it, of those combinations that crack the member."""
+    some = data | {"combinations": [c for c in data["combinations"] if "cracked" in c]}
+    if not some["combinations"]:
+        return []
+    made: list[tuple[str, Callable[[Mapping[str, Any], deflect_grids.Noise], Grid]]]
+    made = [("Cracked", cracked_stretches), ("Cracked and uncracked", cracked_ways)]
+    if any("spans" in (c["cracked"].get("one_value") or {}) for c in some["combinations"]):
+        made.append(("Critical sections", cracked_spans))
+    found = [per_combination(some, title, make) for title, make in made]
+    if staged(data):
+        found.append(
+            joined("Cracked by stage", [(c["name"], cracked_stages(data, c["name"])) for c in some["combinations"]])
+        )
+    return found
 
 
 def _fastening(data: dict[str, Any]) -> list[Grid]:

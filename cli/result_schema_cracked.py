@@ -39,11 +39,35 @@ def cracked_schema() -> Schema:
         {
             "rule": {"type": ["string", "null"], "description": "rule of tension stiffening"},
             "from_history": {"type": "boolean", "description": "whether other combinations have cracked more places"},
-            "stretches": array("where it is cracked", record("a stretch", {"from": AT, "to": AT})),
+            "stretches": stretches_schema(),
             "convergence": record("how equilibrium closed", closed),
             "uncracked": record("uncracked throughout", deepest),
             "along": record("section by section along x", deepest),
             "everywhere": maybe(record("cracked throughout, no tension stiffening; null: cannot be carried", deepest)),
         },
-        {"one_value": one},
+        {"one_value": one, "long_term": _long_term()},
+    )
+
+
+def stretches_schema() -> Schema:
+    """Return the schema of the stretches that are cracked."""
+    by: dict[str, Schema] = {
+        "by": {"type": ["string", "null"], "description": "combination that cracks most of it by itself"}
+    }
+    return array("where it is cracked", record("a stretch", {"from": AT, "to": AT} | by))
+
+
+def _long_term() -> Schema:
+    """Return the schema of ACI 318's multiplier for loads that last."""
+    steel = number("steel in compression over width times depth of the bars in tension, rho'")
+    return record(
+        "by the multiplier of ACI 318 for loads that last five years and more: immediate + lambda times sustained",
+        {
+            "lambda": number("2 / (1 + 50 rho')"),
+            "compression_steel": steel,
+            "immediate": number("deflection there by all loads, on short-term moduli", "m"),
+            "sustained": number("the same by what lasts", "m"),
+            "value": number("largest deflection by size, downwards positive", "m"),
+            "at": AT,
+        },
     )

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from fishbelly.cli.result_schema_cracked import stretches_schema
 from fishbelly.cli.schema_words import Schema, array, maybe, number, record, text
 
 AT = number("place along the member", "m")
@@ -78,5 +79,8 @@ def _of_combination(told: dict[str, Schema]) -> dict[str, Schema]:
             "supports that go at the start of the stage, with their forces just before",
             record("a support", support | _FORCES | moved),
         ),
-        "instantaneous": record("the same if nothing crept", told | {"carried": carried}),
+        "cracked": stretches_schema(),
+        "instantaneous": record(
+            "the same if nothing crept", told | {"carried": carried}, {"cracked": stretches_schema()}
+        ),
     }

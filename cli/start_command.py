@@ -20,6 +20,7 @@ SITUATIONS: dict[str, tuple[str, ...]] = {
     "Made stronger": ("plated-beam", "plated-w-shape", "runway-beam", "inclined-rafter"),
     "Of two materials": ("flitch-beam", "gantry-arm", "footbridge", "concrete-beam"),
     "Stage by stage": ("plated-under-load", "flitch-in-two-stages", "jacked-and-plated"),
+    "Cracked concrete": ("cracked-beam", "bonded-plate"),
     "Cut, drilled or worn": ("notched-joist", "beam-with-openings", "corroded-lintel"),
     "Tapered, stepped or haunched": ("tapered-arm", "pump-shaft", "haunched-rafter", "cambered-girder"),
     "Held or bent in uncommon ways": ("continuous-beam", "propped-cantilever", "z-purlin"),

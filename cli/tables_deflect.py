@@ -8,6 +8,7 @@ from typing import Any
 
 from fishbelly.cli import deflect_grids as grids
 from fishbelly.cli.cautions import LINE
+from fishbelly.cli.cracked_grids import cracked_lines, cracked_stages
 from fishbelly.cli.format_quantity import format_number, format_position, format_value, unit_label
 from fishbelly.cli.grid import Grid
 from fishbelly.cli.joint_grids import fastening, joint_flows, joints
@@ -91,6 +92,7 @@ def _combination(c: Row, length: float, style: str, listed: bool, earlier: Seque
             if grid.title.startswith("Limits of deflection"):
                 lines += _sources(c, earlier)
     lines += slip_lines(c, noise, style, explained)
+    lines += cracked_lines(c, noise, style, explained)
     if c.get("cross_check") is not None:
         lines += [*_second_method(c["cross_check"], noise, style), ""]
     return [*lines, *_stations(c, noise, style, listed), ""]
@@ -108,7 +110,8 @@ def _stages(data: Row, style: str) -> list[str]:
     for k, c in enumerate(data["combinations"]):
         if several:
             lines += [*paragraph(f"Combination {c['name']}, stage by stage"), ""]
-        for grid in stage_tables(data, c["name"], grids.noise_of(c, data["length"]).deflection):
+        made = stage_tables(data, c["name"], grids.noise_of(c, data["length"]).deflection)
+        for grid in (*made, *(g for g in (cracked_stages(data, c["name"]),) if g.count)):
             lines += [*_headed(replace(grid, note="") if k else grid, style), ""]
     return lines
 

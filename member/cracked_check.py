@@ -136,7 +136,6 @@ def _deflection(r: CrackedResponse, start: float, end: float, at: float) -> floa
 @dataclass(eq=False)
 class _Work:
     r: CrackedResponse
-    _sections: dict[bytes, StripSection] = field(default_factory=dict)
     _known: dict[tuple[int, float, int], Plane] = field(default_factory=dict)
 
     def forces(self, x: float) -> tuple[float, float]:
@@ -160,7 +159,7 @@ class _Work:
             for _ in range(40):
                 x = low + (high - low) * ends[0] / (ends[0] - ends[1])
                 value = self.over(x) - level
-                if abs(value) < 1e-9 or high - low < inset:
+                if abs(value) < 1e-12 or abs(high - low) < inset:
                     break
                 # the end that stays counts half: both ends then close in
                 if value * ends[1] < 0.0:
@@ -207,9 +206,7 @@ class _Work:
         return (1.0 - zeta) * first[1] + zeta * second[1]
 
     def _section(self, x: float) -> StripSection:
-        made = StripSection.at(self.r.analysis.member, x)
-        key = b"".join(e.tobytes() for e in made.loops) + bytes(str(made.parts), "ascii")
-        return self._sections.setdefault(key, made)
+        return self._life.section(self.r, x)
 
     def _strain(self, section: StripSection, state: int, x: float, N: float, M: float) -> Plane:
         law = self.r.phases[-1].law

@@ -123,6 +123,9 @@ class Search:
         residual = found - x
         if self.x is None or self.found is None or self.x.size != x.size or self.inverse is None:
             self.inverse = np.eye(x.size)
+        elif np.abs(residual).max(initial=0.0) > 0.5 * np.abs(self.found - self.x).max(initial=0.0):
+            # what it has learned does not hold any more
+            self.inverse = np.eye(x.size)
         else:
             dx, dr = x - self.x, residual - (self.found - self.x)
             change = self.inverse @ dr

@@ -16,6 +16,7 @@ from fishbelly.member.cracked_history import cracked_responses
 from fishbelly.member.cracked_loading import pieces_of, stress_at_crack
 from fishbelly.member.cracked_record import response_on
 from fishbelly.member.cracked_response import bending_alone, cracked_response, cracked_stage, cracks_followed
+from fishbelly.member.description import Combination
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.inclined_stress import along_plates

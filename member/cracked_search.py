@@ -97,6 +97,8 @@ class Run:
                     return self._finished(analysis, solved, cracked, own, rounds, count, status)
                 halved += 1
                 extra += more
+                # on a finer grid places answer anew
+                search = Search()
             if count > MOST_SEARCHES // 2:
                 # no state agrees with itself: what has cracked on the way stays cracked
                 status = "cracks held"
@@ -173,7 +175,12 @@ class Run:
         # a panel that is cracked in part counts: its borders follow
         mask = np.array([any(a < y and b > x for a, b in cracked) for x, y in zip(panels.a, panels.b, strict=True)])
         where = np.broadcast_to(mask[:, None], panels.x.shape)
-        return kinks(panels, solved, where, None if rule is None or not self.held else rule.starts_at)
+        # other loads, or a later event, may have cracked what one event does not
+        fresh = not self.held and len(solved) == 1
+        found = kinks(panels, solved, where, None if fresh or rule is None else rule.starts_at)
+        if solved[-1].law.never:
+            return found
+        return [x for x in found if any(a < x < b for a, b in cracked)]
 
     def _unresolved(self, analysis: Analysis, solved: Sequence[Solved]) -> list[float]:
         """Middles, and quarters, of panels in which strains need more points."""

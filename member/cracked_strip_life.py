@@ -65,10 +65,13 @@ class StripLife:
     def _next(self, end: CrackedResponse, solved: Solved, x: float, before: StripState | None) -> StripState:
         """Take one event in."""
         event, law = solved.event, solved.law
-        section = self._section(end, x)
+        section = self.section(end, x)
         E = self._moduli(end, event, section, x)
         cracked = any(a < x < b for a, b in end.stretches)
-        strains, free, stress, gained = [], [], [], []
+        strains: list[Plane] = []
+        free: list[Planes] = []
+        stress: list[Planes] = []
+        gained: list[Planes] = []
         N, M = self._forces(end, solved, x)
         for state in range(2):
             mine = self._free(end, event, section, E, x, state, before)
@@ -141,13 +144,13 @@ class StripLife:
         N, M = (float(values_at(panels, v, at)[0]) for v in (response.N, response.M[0]))
         return N, M - N * float(end.frame.line[0])
 
-    def _section(self, end: CrackedResponse, x: float) -> StripSection:
+    def section(self, end: CrackedResponse, x: float) -> StripSection:
         """Section in a stage; where nothing varies along a stretch, the one for all of it."""
         panels, row = end.analysis.profile.panels, end.frame.profile.row
         k = int(panels.find(np.array([x]))[0])
         place = float(row[k, 0]) if np.ptp(row[k]) == 0 else -x
         if (end.stage, place) not in self._sections:
-            works = end.analysis.views[end.stage].parts
+            works = end.analysis.views[end.stage].parts if end.analysis.member.stages else None
             self._sections[end.stage, place] = StripSection.at(end.analysis.member, x, works=works)
         return self._sections[end.stage, place]
 

@@ -202,15 +202,16 @@ def _circles(edges: Array) -> tuple[Array, Array, Array]:
 
 
 def _tops(edges: Array) -> Array:
+    """Levels at which edges begin or end, or an arc turns back."""
     levels = [edges[:, 1]]
-    curved = edges[edges[:, 4] != 0.0]
-    if curved.size:
-        _, zc, r = _circles(curved)
-        for k, edge in enumerate(curved):
-            for z in (zc[k] - r[k], zc[k] + r[k]):
-                near = z - 1e-9 * r[k] * np.sign(z - zc[k])
-                if not np.isnan(_crossings(edge[None], near)).all():
-                    levels.append(z)
+    arcs = edges[edges[:, 4] != 0.0]
+    if arcs.size:
+        ya, za, yb, zb, bulge = arcs.T
+        yc, zc, r = (v[:, 0] for v in _circles(arcs))
+        for z in (zc - r, zc + r):
+            # the highest and the lowest point of the circle, where they are on the bow's side of the chord
+            side = (yb - ya) * (z - za) - (zb - za) * (yc - ya)
+            levels.append(z[side * bulge < 0.0])
     return np.concatenate(levels)
 
 

@@ -8,7 +8,7 @@ not, the section is as it stands.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
@@ -16,7 +16,8 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.description import Strength
-from fishbelly.member.panels import Panels
+from fishbelly.member.moduli import Moduli
+from fishbelly.member.panels import POINTS, Panels
 from fishbelly.member.part_forces import Loading
 from fishbelly.member.profile import Group, Profile
 from fishbelly.sections.area_moments import AreaMoments
@@ -30,6 +31,10 @@ Array = NDArray[np.float64]
 _MET = 1e-9
 """A strength passed by less than this share is met."""
 _HALVINGS = 60
+_ROUGH = slice(0, None, POINTS // 2)
+"""Points of a panel, its first, middle and last, at which fibres are judged before the full search."""
+_CLOSE = 0.1
+"""Fibres whose use stays farther from the largest, as a share of the largest anywhere, are left out."""
 
 
 @dataclass(frozen=True)
@@ -94,18 +99,18 @@ class _Use:
     def of(cls, loading: Sequence[Loading], index: int, others: dict[int, Strength], planar: bool) -> _Use | None:
         """Evaluate it; None where nothing would be left of the section somewhere."""
         profile = loading[0].end.profile
-        groups = [_without(g, index) for g in profile.groups]
-        if any(not g.index for g in groups):
+        left = _left(profile, index)
+        if any(not g.index for g in left.groups):
             return None
-        stress = _stress(loading, profile, groups, list(others), planar)
-        if stress is None:
+        points = {i: left.points(i, planar) for i in others}
+        rough = _fields(_stress(loading, profile, left, points, _ROUGH), others)
+        if rough is None:
             return None
-        fields = []
-        for i, values in stress.items():
-            for sign, allowed in ((1.0, others[i].tension), (-1.0, others[i].compression)):
-                if allowed is not None:
-                    fields.append(sign * values / allowed)
-        return cls(profile.panels, np.concatenate(fields))
+        # fibres that come nowhere near the largest use are left out of the full search
+        kept = {i: _near(points[i], rough, i) for i in others}
+        fields = _fields(_stress(loading, profile, left, kept, slice(None)), others)
+        assert fields is not None
+        return cls(profile.panels, np.concatenate([f for each in fields.values() for f in each]))
 
     def at(self, panel: int, s: Array) -> Array:
         """Largest use at local coordinates of a panel, over fibres and arrangements."""
@@ -148,40 +153,98 @@ def _without(group: Group, index: int) -> _Rest:
     return _Rest(group.rows, tuple(placed.index[k] for k in stays), rest, group, stays)
 
 
+@dataclass(frozen=True, eq=False)
+class _Left:
+    """Sections of a profile without a part, and fibres of the parts that stay; found once."""
+
+    profile: Profile
+    groups: tuple[_Rest, ...]
+    found: dict[tuple[int, bool], tuple[Array, Array]] = field(default_factory=dict)
+    stiff: dict[Moduli, Array] = field(default_factory=dict)
+
+    def stiffness(self, moduli: Moduli) -> Array:
+        """EA, y_c, z_c, EI_y, EI_z, EI_yz at the sampled places, shape (6, R)."""
+        if moduli not in self.stiff:
+            columns = np.full((6, self.profile.rows), np.nan)
+            for g in self.groups:
+                s = g.stiffness(moduli.E)
+                columns[:, g.rows] = (s.EA, s.y_c, s.z_c, s.EI_y, s.EI_z, s.EI_yz)
+            self.stiff[moduli] = columns
+        return self.stiff[moduli]
+
+    def points(self, index: int, planar: bool) -> tuple[Array, Array]:
+        """Fibres of a part, shape (C, K, n); NaN where there is none."""
+        if (index, planar) not in self.found:
+            self.found[index, planar] = _points(self.profile, self.groups, index, planar)
+        return self.found[index, planar]
+
+
+def _left(profile: Profile, index: int) -> _Left:
+    def build() -> _Left:
+        return _Left(profile, tuple(_without(g, index) for g in profile.groups))
+
+    left: _Left = profile.once(f"without {index}", profile.short, build)
+    return left
+
+
+def _fields(stress: dict[int, Array] | None, others: dict[int, Strength]) -> dict[int, list[Array]] | None:
+    """Stress over strength by part: fields (C, J + 1, K, n) for tension and compression."""
+    if stress is None:
+        return None
+    return {
+        i: [
+            sign * values / allowed
+            for sign, allowed in ((1.0, others[i].tension), (-1.0, others[i].compression))
+            if allowed is not None
+        ]
+        for i, values in stress.items()
+    }
+
+
+def _near(points: tuple[Array, Array], rough: dict[int, list[Array]], index: int) -> tuple[Array, Array]:
+    """Fibres of a part whose use comes near the largest of all fibres somewhere."""
+    every = {i: [f[:, 0] + np.maximum(f[:, 1:], 0.0).sum(axis=1) for f in fs] for i, fs in rough.items()}
+    flat = [f.max(axis=0) for fs in every.values() for f in fs]
+    top = np.max(flat, axis=0)
+    size = max(float(np.abs(top).max()), 1e-300)
+    keep = np.zeros(points[0].shape[0], dtype=bool)
+    for f in every[index]:
+        keep |= np.any(f >= top - _CLOSE * size, axis=(1, 2))
+    return points[0][keep], points[1][keep]
+
+
 def _stress(
-    loading: Sequence[Loading], profile: Profile, groups: list[_Rest], parts: list[int], planar: bool
+    loading: Sequence[Loading],
+    profile: Profile,
+    left: _Left,
+    points: dict[int, tuple[Array, Array]],
+    which: slice,
 ) -> dict[int, Array] | None:
-    """Stress of parts at their fibres (C, J + 1, K, n), nothing where they are not."""
-    row, line = profile.row, loading[0].end.line
+    """Stress of parts at fibres (C, J + 1, K, n), nothing where they are not, at some points of each panel."""
+    row, line = profile.row[:, which], loading[0].end.line
     total: dict[int, Array] = {}
-    points = {i: _points(profile, groups, i, planar) for i in parts}
     for share in loading:
-        columns = np.full((6, profile.rows), np.nan)
-        for g in groups:
-            s = g.stiffness(share.moduli.E)
-            columns[:, g.rows] = (s.EA, s.y_c, s.z_c, s.EI_y, s.EI_z, s.EI_yz)
+        columns = left.stiffness(share.moduli)
         if not np.all(columns[0] > 0.0):
             return None
         section = SectionStiffness(*columns[:, row])
-        N, M = share.response.N, share.response.M
+        N, M = share.response.N[..., which], share.response.M[..., which]
         # plane 1 counts -M_z; the analysis line has c0 = z, c1 = -y
-        strains = section.strains(N, M[0] - N * line[0], -(M[1] - N * line[1]))
-        for i in parts:
-            y, z = points[i]
-            e = strains[0] - strains[1] * z[:, None] - (0.0 if planar else strains[2] * y[:, None])
-            stress = np.where(np.isnan(z[:, None]), 0.0, profile.part_modulus(i, share.moduli.E) * e)
-            total[i] = total.get(i, 0.0) + stress
-    return total
+        e0, k_y, k_z = section.strains(N, M[0] - N * line[0], -(M[1] - N * line[1]))
+        for i, (y, z) in points.items():
+            e = e0 - k_y * z[:, None, :, which] - k_z * y[:, None, :, which]
+            total[i] = total.get(i, 0.0) + profile.part_modulus(i, share.moduli.E)[:, which] * e
+    return {i: np.nan_to_num(values, copy=False) for i, values in total.items()}
 
 
-def _points(profile: Profile, groups: list[_Rest], index: int, planar: bool) -> tuple[Array, Array]:
+def _points(profile: Profile, groups: Sequence[_Rest], index: int, planar: bool) -> tuple[Array, Array]:
     """Fibres of a part in the section without the other, shape (C, K, n); NaN where there is none."""
     found = [(g.rows, fibres(g.composition, g.index.index(index), planar)) for g in groups if index in g.index]
     count = max((p[0].shape[0] for _, p in found), default=0)
     y, z = np.full((2, count, profile.rows), np.nan)
     for rows, (py, pz) in found:
         y[: py.shape[0], rows], z[: pz.shape[0], rows] = py, pz
-    return y[:, profile.row], z[:, profile.row]
+    return (np.zeros_like(y) if planar else y)[:, profile.row], z[:, profile.row]
 
 
 def _walked(use: _Use, first: int, stop: int) -> CutOff:

@@ -67,7 +67,9 @@ def joints(
         return []
     shears = part_shears(loading, parts)
     strong = cut and strength_counts(analysis.member, combined.combination)
-    ends = cut_offs(analysis, loading, list(fixed)) if strong else {}
+    tiny, length = 1e-9 * analysis.member.length, analysis.member.length
+    stopping = [i for i in fixed if (p_ := analysis.member.parts[i]).start > tiny or p_.end < length - tiny]
+    ends = cut_offs(analysis, loading, stopping) if strong and stopping else {}
     noise = _noise(p, list(parts.values()), analysis.member.length)
     return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i), noise) for i, to in sorted(fixed.items())]
 

@@ -123,8 +123,12 @@ class LevelSite:
 
     @cached_property
     def edges(self) -> Array:
-        """Levels of corners at the sections of the group, rising, shape (S, K + 1) [m]."""
-        return self.group.composition.levels.edges
+        """Levels of corners at the sections of the group, those of one corner in one column, shape (S, K + 1) [m]."""
+        low, high = self.extent
+        every = [_apart(row, SAME * (high - low)) for row in self.group.composition.levels.edges]
+        if all(row.size == every[0].size for row in every):
+            return np.stack(every)
+        return _followed(every)
 
     def slabs(self, z: float) -> tuple[Slab | None, Slab | None]:
         """Return the level as it bounds what lies just below and just above; one and the same away from corners."""
@@ -139,6 +143,24 @@ class LevelSite:
         if first is not None and second is not None and first.number == second.number:
             second = first
         return first, second
+
+
+def _apart(levels: Array, near: float) -> Array:
+    """Levels in rising order of which none is a round-off beside another, shape (K + 1,)."""
+    kept = [float(levels[0])]
+    for level in levels[1:]:
+        if level - kept[-1] > near:
+            kept.append(float(level))
+    return np.array(kept)
+
+
+def _followed(every: list[Array]) -> Array:
+    """Levels of the first section followed through the others, where corners part or come together beside it."""
+    rows = [every[0]]
+    for there in every[1:]:
+        # no corner moves far between two sections: the nearest is the same
+        rows.append(there[np.abs(there[None, :] - rows[-1][:, None]).argmin(axis=1)])
+    return np.stack(rows)
 
 
 @dataclass(frozen=True, eq=False)

@@ -29,6 +29,6 @@ def shear_of_sections(analysis: Analysis, _: Sequence[Data]) -> Iterator[Note]:
     ]
     if names:
         yield Note(
-            f"shear stress of {', '.join(names)} is V Q / (I b) of the section at each place: what sloping faces add or "
-            "take is not in it; the stress at a fibre of a cross-section counts it"
+            f"shear stress of {', '.join(names)} is V Q / (I b) of the section at each place: what sloping faces add "
+            "or take is not in it; the stress at a fibre of a cross-section counts it"
         )

@@ -134,7 +134,7 @@ class Profile:
                 columns[:, g.rows] = (s.EA, s.y_c, s.z_c, s.EI_y, s.EI_z, s.EI_yz)
             return SectionStiffness(*columns)
 
-        stiffness: SectionStiffness = self._once("stiffness", moduli, build)
+        stiffness: SectionStiffness = self.once("stiffness", moduli, build)
         return stiffness
 
     def part_moments(self, part: int, line: Array) -> Array:
@@ -175,7 +175,7 @@ class Profile:
                 columns[:, g.rows] = self.shear_along.coefficients(x, x, moduli.E, moduli.G) / whole
             return columns
 
-        columns: Array = self._once("shear", moduli, build)
+        columns: Array = self.once("shear", moduli, build)
         return columns
 
     def mass(self, density: Array, parts: frozenset[str] = frozenset()) -> tuple[Array, Array, Array]:
@@ -202,7 +202,8 @@ class Profile:
             found += [replace(w, rows=g.rows[w.rows]) for w in group_places(geometry, places[:, None], places, 0)]
         return tuple(found)
 
-    def _once(self, what: str, moduli: Moduli, build: Callable[[], Any]) -> Any:
+    def once(self, what: str, moduli: Moduli, build: Callable[[], Any]) -> Any:
+        """Return what has been built for a set of moduli under a name, or build it."""
         key = (what, id(moduli))
         if key not in self._cache:
             self._cache[key] = build()

@@ -88,9 +88,7 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
     return data | {
         "notes": notes(analysis, combinations),
         "combinations": combinations,
-        "stages": stage_rows(analysis, combinations, _stage_ends(analysis, cases), _quick(analysis, cases))[
-            : number + 1
-        ],
+        "stages": stages[: number + 1],
     }
 
 
@@ -160,7 +158,7 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
     p = pieces(analysis, loading)
     told = deflections(analysis, combined, p)
     data = _told(analysis, combined, p, told, part_stresses(analysis, loading), wanted)
-    data["joints"] = joints(analysis, combined, loading, p)
+    data["joints"] = joints(analysis, combined, loading, p, cut=check)
     data["cross_check"] = cross_check(analysis, combined, told) if check else None
     if combined.patterns:
         data["envelope"] = envelope_rows(analysis, p, data["stations"])

@@ -38,7 +38,10 @@ RESOLVED = 1e-6
 
 They promise 1e-6, and neighbouring places may have different meshes: a tighter bound would chase their difference.
 """
-MOST_HALVINGS = 12
+MOST_PIECES = 10
+"""Pieces a stretch is divided into at most, those first that miss most over their length: where a section is hard to
+mesh its coefficient scatters, and no number of pieces would follow that.
+"""
 ALIKE = 1e-10
 """Outlines that differ by less than this share of the section's size have one shape."""
 
@@ -133,32 +136,33 @@ class ShearAlong:
             known: dict[bytes, Array] = {}
             for k in which:
                 panel = Panels(a[k : k + 1], b[k : k + 1], anchors[k : k + 1])
-                pieces += self._stretch(panel, there, E, G, known, 0)
+                pieces += self._stretch(panel, there, E, G, known)
         return tuple(sorted(pieces, key=lambda p: float(p.panel.a[0])))
 
-    def _stretch(
-        self, panel: Panels, there: Presence, E: Array, G: Array, known: dict[bytes, Array], halved: int
-    ) -> list[_Piece]:
-        """Coefficients over a stretch, which is halved where they are not resolved."""
+    def _stretch(self, panel: Panels, there: Presence, E: Array, G: Array, known: dict[bytes, Array]) -> list[_Piece]:
+        """Coefficients over a stretch, of which halves are halved where they are not resolved."""
+        whole = float(panel.b[0] - panel.a[0])
+        pieces = [self._piece(panel, there, E, G, known)]
+        while len(pieces) < MOST_PIECES:
+            missed = [_missed(p) * float(p.panel.b[0] - p.panel.a[0]) / whole for p in pieces]
+            worst = max(range(len(pieces)), key=missed.__getitem__)
+            if missed[worst] < RESOLVED:
+                break
+            pieces[worst : worst + 1] = [self._piece(h, there, E, G, known) for h in _halves(pieces[worst].panel)]
+        return pieces
+
+    def _piece(self, panel: Panels, there: Presence, E: Array, G: Array, known: dict[bytes, Array]) -> _Piece:
         values = self._at(_places(panel, POINTS), there, E, G, known)
-        if values.shape[1] == 1 or _resolved(values):
-            return [_Piece(panel, there, values)]
+        piece = _Piece(panel, there, values)
+        if _missed(piece) < RESOLVED:
+            return piece
         x = _places(panel, 3 * POINTS)
         new = np.ones(x.size, dtype=bool)
         # every third place is one of the first ones
         new[1::3] = False
         more = np.empty((3, x.size))
         more[:, ~new], more[:, new] = values, self._at(x[new], there, E, G, known)
-        if _resolved(more) or halved == MOST_HALVINGS:
-            return [_Piece(panel, there, more)]
-        a, b, anchor = panel.a[0], panel.b[0], int(panel.anchor[0])
-        middle = float(panel.place(np.zeros(1, dtype=np.intp), np.zeros(1))[0])
-        left = Panels(np.array([a]), np.array([middle]), np.array([min(anchor, 0)]))
-        right = Panels(np.array([middle]), np.array([b]), np.array([max(anchor, 0)]))
-        return [
-            *self._stretch(left, there, E, G, known, halved + 1),
-            *self._stretch(right, there, E, G, known, halved + 1),
-        ]
+        return _Piece(panel, there, more)
 
     def _at(self, x: Array, there: Presence, E: Array, G: Array, known: dict[bytes, Array]) -> Array:
         """Coefficients at places of one stretch, (3, n); (3, 1) where the shape stays or only scales."""
@@ -202,9 +206,20 @@ def _places(panel: Panels, count: int) -> Array:
     return panel.place(np.zeros(count, dtype=np.intp), rule(count).points)
 
 
-def _resolved(values: Array) -> bool:
-    last = values @ rule(values.shape[1]).to_coefficients[-2:].T
-    return bool(np.abs(last).max() < RESOLVED * np.abs(values[:2]).max())
+def _missed(piece: _Piece) -> float:
+    """Last Chebyshev coefficients of a piece against its largest value."""
+    n = piece.values.shape[1]
+    if n == 1:
+        return 0.0
+    last = piece.values @ rule(n).to_coefficients[-2:].T
+    return float(np.abs(last).max() / np.abs(piece.values[:2]).max())
+
+
+def _halves(panel: Panels) -> tuple[Panels, Panels]:
+    a, b, anchor = panel.a[0], panel.b[0], int(panel.anchor[0])
+    middle = float(panel.place(np.zeros(1, dtype=np.intp), np.zeros(1))[0])
+    left = Panels(np.array([a]), np.array([middle]), np.array([min(anchor, 0)]))
+    return left, Panels(np.array([middle]), np.array([b]), np.array([max(anchor, 0)]))
 
 
 def _first(section: Composition) -> Composition:

@@ -288,7 +288,9 @@ def test_what_symmetry_makes_nothing_is_nothing():
         part("half", "rectangle", 3.0, place=Placing("left_of", "beam"), width=0.01, depth=0.1),
         part("rest", "rectangle", 6.0, start=3.0, place=Placing("left_of", "beam"), width=0.01, depth=0.1),
     )
-    member = Member(6.0, parts, (TIMBER, STEEL), supports=simple(6.0), loads=(uniform(9e3, 6.0),), shear=False)
+    loads = (uniform(9e3, 6.0),)
+    # the sole slopes and the cap does not: as they are cut they are alike
+    member = Member(6.0, parts, (TIMBER, STEEL), supports=simple(6.0), loads=loads, shear=False, inclined="cut")
     found = solve(member)["combinations"][0]
     for name in ("cheek", "half", "rest"):
         one = joint(found, name)

@@ -7,6 +7,7 @@ than 1e-8 of it, the function fails.
 
 from collections.abc import Callable
 
+from worked_cracked import bonded_plate, cracked_beam
 from worked_members import (
     cambered_girder,
     continuous_beam,
@@ -23,10 +24,12 @@ from worked_stages import flitch_in_two_stages, jacked_and_plated, plated_under_
 
 ANSWERS: dict[str, Callable[[str], Values]] = {
     "beam-with-openings": beam_with_openings,
+    "bonded-plate": bonded_plate,
     "cambered-girder": cambered_girder,
     "concrete-beam": concrete_beam,
     "continuous-beam": continuous_beam,
     "corroded-lintel": corroded_lintel,
+    "cracked-beam": cracked_beam,
     "flitch-beam": flitch_beam,
     "flitch-in-two-stages": flitch_in_two_stages,
     "footbridge": footbridge,

@@ -6,7 +6,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from common import ROUND_OFF
+from common import ROUND_OFF, part, simple
 from hypothesis import given
 from hypothesis import strategies as st
 from members import MATERIALS, SPAN, loads, part_lists, support_lists
@@ -14,11 +14,12 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.carried import part_force
-from fishbelly.member.description import Member
+from fishbelly.member.description import Member, Placing
 from fishbelly.member.extremes import values_at
+from fishbelly.member.laws import straight
 from fishbelly.member.level_flow import Flows
 from fishbelly.member.level_geometry import LevelSite, Slab, on_level
-from fishbelly.member.loads import Axial, Temperature
+from fishbelly.member.loads import Axial, Point, Temperature
 from fishbelly.member.part_forces import Loading, loadings, stress_planes
 from fishbelly.member.profile import group_places
 from fishbelly.member.questions import Stage
@@ -131,3 +132,16 @@ def test_flow_over_the_whole_depth_is_the_shear_force(member: Member, where: flo
     M = sum(v.response.M[0].sum(axis=0) for v in loading)
     size = np.abs(V).max() + np.abs(M).max() / SPAN + 5e4
     assert over_the_depth(flows) == pytest.approx(float(flows.site.value(V)), abs=LEVELS * size)
+
+
+def test_corners_that_round_off_parts_are_one() -> None:
+    """Tapered discs flush with a square: where their arcs begin, levels differ by round-off, elsewhere not."""
+    square = part("square", "rectangle", SPAN, width=0.1, depth=0.1)
+    taper = straight([0.0, 0.25, SPAN], [0.1, 0.05, 0.1])
+    disc = part("disc", "circle", SPAN, place=Placing("left_of", "square", flush="top"), diameter=taper)
+    held = (square, replace(disc, pair=True))
+    member = Member(SPAN, held, MATERIALS, supports=simple(SPAN), loads=(Point(0.25, 400.0),), shear=False)
+    analysis, loading = solved(member)
+    flows = Flows(LevelSite.at(analysis.profile, 3.0, "right"), loading)
+    # beyond the load V is the far reaction
+    assert over_the_depth(flows) == pytest.approx(-400.0 * 0.25 / SPAN, rel=LEVELS)

@@ -36,6 +36,16 @@ from fishbelly.member.laws import constant
 from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
 
 
+MESHED = 1e-6
+"""With shear: what elements promise of GA. Seen from the other end, scaled or cut in two along x a section has other
+round-off in its needles, another mesh or other places at which it is solved."""
+
+
+def same_mesh_or_not(member: Member) -> float:
+    """Tolerance where the same member, differently written, need not have the same mesh."""
+    return MESHED if member.shear else ROUND_OFF
+
+
 def resultants(load: Load) -> tuple[float, float, float, float]:
     """Down, across, along, and clockwise moment about the datum line's left end of a load on a level member."""
     sign = -1.0 if getattr(load, "direction", "") == "up" else 1.0
@@ -127,7 +137,7 @@ def test_seen_from_the_other_end(member: Member) -> None:
     one, back = table(member), table(from_the_other_end(member))
     side = {"left": "right", "right": "left"}
     other = {(x, s): back[min(GRID, key=lambda g: abs(g - (SPAN - x))), side[s]] for x, s in one}
-    check_same(one, other, ROUND_OFF, lambda key, v: -v if key in ("V", "rotation", "slope") else v)
+    check_same(one, other, same_mesh_or_not(member), lambda key, v: -v if key in ("V", "rotation", "slope") else v)
 
 
 FAR = 1e-8
@@ -146,7 +156,8 @@ def test_moving_the_section_off_the_datum(member: Member, shift: tuple[float, fl
     # an axial force bends by jumps of the centroid line alone, and of those a far datum costs 1e-13 m: what it
     # bends is weighed against an everyday load beside it
     loaded = replace(member, loads=(*member.loads, Distributed(((0.0, 1e3), (SPAN, 1e3)))))
-    check_same(table(at(0.0, 0.0)), table(at(*shift)), FAR, weighed_with=[table(loaded)])
+    tolerance = max(FAR, same_mesh_or_not(member))
+    check_same(table(at(0.0, 0.0)), table(at(*shift)), tolerance, weighed_with=[table(loaded)])
 
 
 @given(members(most=3), places)
@@ -155,7 +166,8 @@ def test_cutting_the_last_part_in_two_along_x(member: Member, x: float) -> None:
     if not last.start < x < last.end or len(member.parts) == 1:
         return
     first, second = replace(last, end=x), replace(last, name="rest", start=x)
-    check_same(table(member), table(replace(member, parts=(*member.parts[:-1], first, second))), ROUND_OFF)
+    cut = replace(member, parts=(*member.parts[:-1], first, second))
+    check_same(table(member), table(cut), same_mesh_or_not(member))
 
 
 @given(members(most=1), sizes, laws(0.4), st.sampled_from([0.3, 0.5, 0.9]))
@@ -223,7 +235,7 @@ def test_scaling_every_modulus(member: Member, factor: float) -> None:
     stiff = tuple(replace(m, E=m.E * factor, G=None if m.G is None else m.G * factor) for m in member.materials)
     moved = ("rotation", "slope", "deflection", "across")
     other = table(replace(member, materials=stiff))
-    check_same(table(member), other, ROUND_OFF, lambda key, v: v * factor if key in moved else v)
+    check_same(table(member), other, same_mesh_or_not(member), lambda key, v: v * factor if key in moved else v)
 
 
 @given(part_lists(3), loads(across=False, along=False))
