@@ -229,7 +229,7 @@ def merged_joints(results: Sequence[Sequence[Data]]) -> list[Data]:
 
 
 def _most(end: str, key: str, entries: Sequence[Data]) -> Any:
-    known = [e[key] for e in entries if e[key] is not None]
+    known = [e[key] for e in entries if e.get(key) is not None]
     if not known:
         return None
     if key in ("cut_off", "run_to"):
