@@ -7,6 +7,7 @@ from typing import Any
 import numpy as np
 
 from fishbelly.member.analysis import Analysis
+from fishbelly.member.cracked_check import beyond
 from fishbelly.member.cracked_code import SpanValue
 from fishbelly.member.cracked_found import CrackedResponse
 from fishbelly.member.cracked_places import joined
@@ -35,6 +36,9 @@ def cracked_data(case: CrackedCase) -> Data:
         "along": _deepest(r.total, case.analysis),
         "everywhere": None if case.everywhere is None else _deepest(case.everywhere.total, case.everywhere.analysis),
     }
+    why = beyond(r)
+    if why is not None:
+        data["beyond_check"] = why
     if case.one is not None:
         data["one_value"] = _deepest(case.one.response, case.analysis) | {"spans": [_span(s) for s in case.one.spans]}
         data |= _long_term(case)

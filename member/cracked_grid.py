@@ -8,6 +8,7 @@ from dataclasses import replace
 import numpy as np
 from numpy.typing import NDArray
 
+from fishbelly.member.actions import Frame
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.panels import POINTS, Panels
 from fishbelly.member.profile import Profile, group_places
@@ -42,7 +43,7 @@ def split(analysis: Analysis, places: Iterable[float]) -> Analysis:
     panels, parent = _split_panels(old, np.array(wanted))
     profiles = [_resampled(p, panels, parent) for p in (*analysis.earlier, analysis.profile)]
     # moduli stay the same objects, so that what is kept by their identity stays known
-    return replace(
+    made = replace(
         analysis,
         profile=profiles[-1],
         earlier=tuple(profiles[:-1]),
@@ -50,6 +51,10 @@ def split(analysis: Analysis, places: Iterable[float]) -> Analysis:
         _histories={},
         _combined={},
     )
+    # the analysis line stays where it is, wherever the finer grid looks: what is kept about it stays right
+    was = analysis.frame
+    made.__dict__["frame"] = Frame.of(made.profile, was.short, was.line, was.view)
+    return made
 
 
 def _split_panels(old: Panels, places: Array) -> tuple[Panels, NDArray[np.intp]]:

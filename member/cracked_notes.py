@@ -20,6 +20,9 @@ def cracked_notes(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[
             yield Note(f"in {c['name']} places count as cracked that another combination for deflection has cracked")
         if c["cracked"]["convergence"]["status"] == "cracks held":
             yield Note(f"in {c['name']} cracks that opened while forces were found are kept")
+        if c["cross_check"] is None:
+            why = c["cracked"].get("beyond_check")
+            yield Note(f"the second method does not reach {c['name']}" + (f": {why}" if why else ""))
     if not found:
         return
     rule = found[0]["cracked"]["rule"]

@@ -48,7 +48,7 @@ def own_stretches(panels: Panels, phases: Sequence[Solved], level: float = 1.0) 
     found: list[tuple[float, float]] = []
     ends: list[float] = []
     for solved in phases:
-        fields = [np.where(np.isfinite(f), f / level, -1e300) for v in solved.fibres().values() for f in v]
+        fields = [np.where(np.isfinite(f), f / level, -1.0) for v in solved.fibres().values() for f in v]
         if not fields:
             continue
         places = [x for f in fields for x in roots(panels, f - 1.0)]

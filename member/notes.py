@@ -34,7 +34,9 @@ def notes(analysis: Analysis, combinations: Sequence[Data]) -> list[Note]:
     """All notes of a solved member, in the order of `NOTES`."""
     found: list[Note] = []
     for make in NOTES:
-        found += [n for n in make(analysis, combinations) if n not in found]
+        for note in make(analysis, combinations):
+            if note not in found:
+                found.append(note)
     return found
 
 

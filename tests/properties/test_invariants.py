@@ -35,7 +35,6 @@ from fishbelly.member.description import Member, Part, Placing, Shape, Station, 
 from fishbelly.member.laws import constant
 from fishbelly.member.loads import Axial, Couple, Distributed, Load, Point
 
-
 MESHED = 1e-6
 """With shear: what elements promise of GA. Seen from the other end, scaled or cut in two along x a section has other
 round-off in its needles, another mesh or other places at which it is solved."""
