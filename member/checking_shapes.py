@@ -7,6 +7,7 @@ from collections.abc import Callable, Iterator, Mapping
 import numpy as np
 from numpy.typing import NDArray
 
+from fishbelly.member.breakpoints import distinct
 from fishbelly.member.description import Part, Shape
 from fishbelly.member.draft import Draft, Path, Problem, one_of
 from fishbelly.member.laws import Law
@@ -228,7 +229,7 @@ def samples(laws: Mapping[str, Law], start: float, end: float) -> tuple[dict[str
     Both one-sided values at a step are among them.
     """
     knots = np.concatenate([[start, end], *(law.knots for law in laws.values())])
-    knots = np.unique(knots[(knots >= start) & (knots <= end)])
+    knots = distinct(knots[(knots >= start) & (knots <= end)])
     inner = (knots[:-1, None] + np.diff(knots)[:, None] * np.array([0.25, 0.5, 0.75])).ravel()
     right = np.concatenate((knots[:-1], inner))
     values = {k: np.concatenate((law(right), law(knots[1:], "left"))) for k, law in laws.items()}

@@ -134,10 +134,16 @@ class Intervals:
         return Intervals(*(np.concatenate([getattr(i, f) for i in several]) for f in ("a", "b", "root", "home")))
 
 
+def typical(values: Array) -> float:
+    """Return the value in the middle of the order; `numpy.median` would cost a start-up 20 ms."""
+    x = np.sort(np.ravel(values))
+    return float(x[x.size // 2])
+
+
 def own_breaks(member: Member) -> Array:
     """Every place at which the raw description says that something begins, ends or changes its law [m]."""
     tiny = 1e-11 * member.length
-    x = np.unique(np.clip(np.array([0.0, member.length, *_named(member)]), 0.0, member.length))
+    x = np.array(sorted(set(np.clip(np.array([0.0, member.length, *_named(member)]), 0.0, member.length).tolist())))
     x = x[np.concatenate(([True], np.diff(x) > tiny))]
     x[-1] = member.length
     return x

@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from fishbelly.member.description import Member
-from fishbelly.member.second_grid import RULE
+from fishbelly.member.second_grid import RULE, typical
 from fishbelly.member.second_loads import Ground, LoadShare
 from fishbelly.member.second_sections import Flexibility, Sampled, Slide, sample
 from fishbelly.member.second_step import (
@@ -147,7 +147,7 @@ def _work_check(s: Solved) -> Mapping[str, float] | None:
         for p in range(2):
             both[p, p] = edge(bend[p, p])
             moved[p] = edge(slide[p])
-        if not np.all(both < 1e9 * np.median(bend[0, 0])):
+        if not np.all(both < 1e9 * typical(bend[0, 0])):
             return None
         still = np.broadcast_to(s.ground.line[:, None, None], s.law.c.shape)
         law = Flexibility(s.law.EA, still, both, moved)

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fishbelly.member.second_grid import POINTS, RULE
+from fishbelly.member.second_grid import POINTS, RULE, typical
 from fishbelly.member.second_loads import Ground, LoadShare, Pushes, pushes
 from fishbelly.member.second_sections import Flexibility, Sampled, Slide, flexibility
 from fishbelly.member.second_segments import (
@@ -105,7 +105,7 @@ def solve_law(
     units = unit_fields(f.cut)
     left, right = end_movements(f.cut, strains(law, ground.line, units))
     by_loads = sum(end_movements(f.cut, _slid(strains(law, ground.line, free), loads)))
-    bend = float(np.median(law.bend[0, 0]))
+    bend = typical(law.bend[0, 0])
     system = System(f, loads.jumps, down, opened or {})
     found = solve_parameters(system, over, left, right, np.asarray(by_loads), bend, refine)
     ends = np.where(f.cut.from_left[:, None], found.left[f.cut.segment], found.right[f.cut.segment])

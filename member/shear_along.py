@@ -112,7 +112,7 @@ class ShearAlong:
         ends = np.array([p.panel.b[0] for p in pieces])
         which = np.minimum(np.searchsorted(ends, middle, side="left"), ends.size - 1)
         found = np.empty((3, x.size))
-        for k in np.unique(which):
+        for k in sorted(set(which.tolist())):
             mine = which == k
             found[:, mine] = pieces[k].at(x[mine])
         return found

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.apex import Apexes
-from fishbelly.member.breakpoints import breakpoints
+from fishbelly.member.breakpoints import breakpoints, distinct
 from fishbelly.member.extremes import values_at
 from fishbelly.member.panels import Panels
 from fishbelly.member.pieces import Pieces
@@ -42,7 +42,7 @@ def station_rows(analysis: Analysis, p: Pieces, apexes: Apexes, wanted: list[flo
     member, panels = analysis.member, analysis.profile.panels
     named = {s.at: s.name for s in member.stations}
     base = default_places(member) if wanted is None else np.array([*wanted, *(s.at for s in member.stations)])
-    x, sides = two_sided(np.unique(base), [*force_jumps(member), *_jumps(analysis, p)], member.length)
+    x, sides = two_sided(distinct(base), [*force_jumps(member), *_jumps(analysis, p)], member.length)
     columns = _columns(analysis, p, x, sides)
     tiny = 1e-9 * member.length
     breaks = breakpoints(member)
