@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import replace
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,11 +19,12 @@ from fishbelly.member.profile import Profile
 from fishbelly.member.second_loads import LoadShare
 from fishbelly.member.second_method import SecondResult, second_method
 from fishbelly.member.second_sections import Slide
-from fishbelly.member.second_shares import ModuliOf, StagedShare
-from fishbelly.member.second_stages import staged_method
 from fishbelly.member.section_law import SLIDE_SIGNS
 from fishbelly.member.shear_sets import shear_of_parts
 from fishbelly.member.slip_layers import has_soft_joints, layers_of
+
+if TYPE_CHECKING:
+    from fishbelly.member.second_shares import ModuliOf, StagedShare
 
 Array = NDArray[np.float64]
 
@@ -110,6 +111,8 @@ def second_of(analysis: Analysis, combined: Combined, x: Array) -> SecondResult:
             layers = layers_of(analysis.member)
             single = [one_by_one(frame, layers) for frame in analysis.frames]
             return slip_method(analysis.member, x, shares, single, combined.lifted, combined.upto)
+        from fishbelly.member.second_stages import staged_method
+
         return staged_method(analysis.member, x, shares, combined.lifted, combined.upto)
     return second_method(
         analysis.member,
@@ -134,6 +137,9 @@ def _share(analysis: Analysis, combined: Combined, share: Share) -> LoadShare:
 
 
 def _staged(analysis: Analysis, combined: Combined, share: Share) -> StagedShare:
+    # stages are met seldom, and what knows of them is not loaded for others
+    from fishbelly.member.second_shares import StagedShare
+
     key = share.key
 
     def slide(which: ModuliOf) -> Slide:
