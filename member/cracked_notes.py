@@ -7,6 +7,7 @@ from typing import Any
 
 from fishbelly.member.analysis import Analysis
 from fishbelly.member.note import Note
+from fishbelly.sections.effective_inertia import EN
 
 Data = dict[str, Any]
 
@@ -31,6 +32,8 @@ def cracked_notes(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[
         if rule is None
         else f"tension stiffening by {rule}; stresses are those at a crack"
     )
+    if rule is not None and rule != EN and len(analysis.views) > 1:
+        yield Note(f"the one value of {rule} is not built for members with stages: the result is section by section")
     if analysis.member.shear:
         yield Note("where the member is cracked its shear stiffness counts as that of the uncracked section")
 

@@ -64,6 +64,14 @@ def test_code_s_one_value_and_its_multiplier() -> None:
     assert "ACI 318 multiplier" not in said[: said.index("Combination final")]
 
 
+def test_one_value_is_told_to_be_missing_where_there_are_stages() -> None:
+    found = deflect(changed(JOBS["bonded-plate"], (EN, ACI)))
+    cracked = found["by_name"]["all"]["cracked"]
+    assert "one_value" not in cracked
+    assert found["by_name"]["all"]["deflection"]["down"]["value"] == cracked["along"]["value"]
+    assert any("one value of ACI 318-19 is not built for members with stages" in note for note in found["notes"])
+
+
 @pytest.mark.parametrize("name", ["cracked-beam", "bonded-plate"])
 def test_results_are_as_the_schema_says(name: str) -> None:
     result = deflect(JOBS[name])
