@@ -50,7 +50,7 @@ def fastening(combination: Row, noise: Noise) -> Grid | None:
         What is noise in it.
     """
     rows = [r for r in _ends(combination) if r["per_fastener"] is not None or "zone" in r or "cut_off" in r]
-    if not rows:
+    if not any(r["per_fastener"] or "zone" in r or "cut_off" in r for r in rows):
         return None
     return Grid(
         "Fastening at the ends",

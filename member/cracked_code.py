@@ -14,7 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, ModuliKey, Share
-from fishbelly.member.cracked_sections import cracking_parts
+from fishbelly.member.cracking import cracking_parts
 from fishbelly.member.description import Combination
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import CannotCompute

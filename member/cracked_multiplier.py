@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from fishbelly.catalog.concrete_rules import aci_long_term
 from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.cracked_code import OneValue, one_value, one_value_response
-from fishbelly.member.cracked_sections import cracking_parts
+from fishbelly.member.cracking import cracking_parts
 from fishbelly.member.description import Combination
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.profile import Group, group_places

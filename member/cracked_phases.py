@@ -20,8 +20,9 @@ from fishbelly.member.analysis import Analysis, Share
 from fishbelly.member.cracked_events import Event, Solved
 from fishbelly.member.cracked_law import CrackedLaw, LawState
 from fishbelly.member.cracked_record import NOTHING, Both, Kept, Planes, Record, added
-from fishbelly.member.cracked_sections import CrackedSections, cracking_parts, no_tension_parts
+from fishbelly.member.cracked_sections import CrackedSections
 from fishbelly.member.cracked_solve import CLOSED, Closed, Phase, close, radius, total_actions
+from fishbelly.member.cracking import cracking_parts, no_tension_parts
 from fishbelly.member.forces import Forces
 from fishbelly.member.history_forces import resultant, sheared
 from fishbelly.member.response import Response

@@ -18,8 +18,8 @@ from fishbelly.member.cracked_law import LawState
 from fishbelly.member.cracked_phases import Phases, Solved
 from fishbelly.member.cracked_places import Stretches, joined
 from fishbelly.member.cracked_search import Run, carried_over
-from fishbelly.member.cracked_sections import cracking_parts, no_tension_parts
-from fishbelly.member.description import Combination, Member
+from fishbelly.member.cracking import may_crack, no_tension_parts
+from fishbelly.member.description import Combination
 from fishbelly.member.faults import CannotCompute
 from fishbelly.member.forces import Forces
 from fishbelly.member.response import Response
@@ -27,11 +27,6 @@ from fishbelly.member.slip_layers import has_soft_joints
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
-
-
-def may_crack(member: Member) -> bool:
-    """Whether a member has parts that carry no tension or that crack."""
-    return bool(no_tension_parts(member) or cracking_parts(member))
 
 
 def cracks_followed(analysis: Analysis) -> bool:

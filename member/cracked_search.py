@@ -34,6 +34,8 @@ SETTLED = 1e-10
 RESOLVED = 1e-10
 """Last Chebyshev coefficients of strains against the largest strain of the member."""
 MOST_HALVINGS = 5
+STUCK = 6
+"""After so many searches the grid gets finer though cracks still move: on a coarse one they may never settle."""
 
 
 @dataclass(eq=False)
@@ -91,14 +93,15 @@ class Run:
             found = np.array(sorted([*ends, *openings(analysis.profile.panels, solved)]))
             same = found.size == borders.size
             gap = float(np.abs(found - borders).max(initial=0.0)) if same else np.inf
-            if gap <= SETTLED * self.base.member.length:
+            settled = gap <= SETTLED * self.base.member.length
+            if settled or count % STUCK == 0:
                 more = self._unresolved(analysis, solved) if halved < MOST_HALVINGS else []
-                if not more:
+                if settled and not more:
                     return self._finished(analysis, solved, cracked, own, rounds, count, status)
-                halved += 1
+                halved += settled
                 extra += more
                 # on a finer grid places answer anew
-                search = Search()
+                search = Search() if more else search
             if count > MOST_SEARCHES // 2:
                 # no state agrees with itself: what has cracked on the way stays cracked
                 status = "cracks held"

@@ -14,7 +14,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fishbelly.member.actions import Frame
-from fishbelly.member.description import Member
 from fishbelly.member.forces import Forces
 from fishbelly.sections.area_moments import AreaMoments
 from fishbelly.sections.clipping import at_stations, clipped_moments, moved
@@ -29,23 +28,6 @@ Planes = Mapping[int, Array]
 
 SIGNS = np.array([1.0, 1.0, -1.0])
 """From (e0, k_y, k_z) to (axial, k0, k1), and from (N, M_y, M_z) to (N, M0, M1)."""
-
-
-def no_tension_parts(member: Member) -> frozenset[int]:
-    """Numbers of the parts that never carry tension."""
-    return frozenset(k for k, p in enumerate(member.parts) if p.material and member.material(p.material).no_tension)
-
-
-def cracking_parts(member: Member) -> dict[int, float]:
-    """Numbers of the parts that crack, with the tensile stress at which they do [Pa]."""
-    return {
-        k: stress
-        for k, p in enumerate(member.parts)
-        if p.material
-        and member.material(p.material).cracks
-        and not member.material(p.material).no_tension
-        and (stress := member.material(p.material).cracking) is not None
-    }
 
 
 @dataclass(frozen=True, eq=False)

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.carried import PartForce, part_force
+from fishbelly.member.clusters import BESIDE
 from fishbelly.member.contacts import contacts
 from fishbelly.member.cut_offs import CutOff, cut_offs
 from fishbelly.member.description import Combination, Member, Part
@@ -157,6 +158,11 @@ def side_by_side(part: Part) -> int:
     return part.joined.rows * (2 if part.pair else 1)
 
 
+def beside(part: Part) -> bool:
+    """Whether a part stands beside another: fasteners then pass shear and couple too, not force along x alone."""
+    return part.place.relation in BESIDE
+
+
 def _per_fastener(part: Part, flow: float) -> float | None:
     if part.joined is None or part.joined.pitch is None:
         return None
@@ -166,7 +172,7 @@ def _per_fastener(part: Part, flow: float) -> float | None:
 def _fastening(part: Part, force: float) -> Data:
     """Fasteners needed to bring a force in, and the length they, or the weld, take for it at the given pitch."""
     joined = part.joined
-    if joined is None or (joined.capacity is None and joined.weld is None):
+    if joined is None or beside(part) or (joined.capacity is None and joined.weld is None):
         return {}
     data: Data = {}
     if joined.capacity is not None:
@@ -192,7 +198,7 @@ def _cut_off(part: Part, force: PartForce, panels: Panels, cut: CutOff | None, e
         return {}
     x = cut.start if end == "start" else cut.end
     data: Data = {"cut_off": x, "used_without": cut.used[0 if end == "start" else 1]}
-    if joined is not None and (joined.capacity is not None or joined.weld is not None):
+    if joined is not None and not beside(part) and (joined.capacity is not None or joined.weld is not None):
         data["run_to"] = None
         if x is not None:
             carried = _force_at(force, panels, x, entry["force"])

@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 
 Quantity = tuple[float, str]
 """A value in SI units and what it is, such as (0.012, "deflection")."""
+
+_PLACE = re.compile(r"\{(\w+)\}")
 
 
 @dataclass(frozen=True)
@@ -18,7 +21,8 @@ class Note:
 
     def say(self, show: Callable[[float, str], str]) -> str:
         """Return the sentence with its quantities shown by a function of value and kind."""
-        return self.text.format(**{k: show(*v) for k, v in self.values.items()})
+        # names of parts stand in the text too, and may have braces of their own
+        return _PLACE.sub(lambda m: show(*self.values[m[1]]) if m[1] in self.values else m[0], self.text)
 
     def __str__(self) -> str:
         return self.say(lambda value, what: f"{value:.4g}")

@@ -14,7 +14,7 @@ from fishbelly.member.cracked_notes import cracked_notes
 from fishbelly.member.inclination import steepest_faces
 from fishbelly.member.note import Note
 from fishbelly.member.notes_effective import effective_widths
-from fishbelly.member.notes_joints import joints_full, joints_short
+from fishbelly.member.notes_joints import joints_beside, joints_full, joints_short
 from fishbelly.member.notes_shear import shear_of_sections
 from fishbelly.member.notes_slip import joints_slip
 from fishbelly.member.notes_stages import creep_in_one_step, idle_parts, one_stage
@@ -323,6 +323,7 @@ NOTES: tuple[Callable[[Analysis, Sequence[Data]], Iterator[Note]], ...] = (
     cracked_notes,
     joints_short,
     joints_full,
+    joints_beside,
     joints_slip,
     effective_widths,
     shear_of_sections,

@@ -6,10 +6,12 @@ from collections.abc import Iterator, Sequence
 from typing import Any
 
 from fishbelly.member.analysis import Analysis
+from fishbelly.member.joints import beside
 from fishbelly.member.note import Note
 
 Data = dict[str, Any]
 
+ENDS = ("start", "end")
 _MET = 1e-9
 """A strength passed by less than this share is met."""
 
@@ -18,7 +20,7 @@ def joints_short(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[N
     """Tell of every part that ends inside the member where the section without it is over its strength."""
     length = analysis.member.length
     for name in _parts(combinations):
-        for end in ("start", "end"):
+        for end in ENDS:
             rows = [
                 (j[end], c["name"])
                 for c in combinations
@@ -27,10 +29,10 @@ def joints_short(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[N
             ]
             over = [r for r in rows if r[0].get("used_without", 0.0) > 1.0 + _MET]
             if over:
-                yield _short(name, *max(over, key=lambda r: r[0]["used_without"]), end == "start")
+                yield _short(name, *max(over, key=lambda r: r[0]["used_without"]), end == "start", length)
 
 
-def _short(name: str, entry: Data, combination: str, start: bool) -> Note:
+def _short(name: str, entry: Data, combination: str, start: bool, length: float) -> Note:
     values = {
         "at": (entry["x"], "position"),
         "moment": (entry["M"], "moment"),
@@ -42,9 +44,11 @@ def _short(name: str, entry: Data, combination: str, start: bool) -> Note:
         how = "it would have to run {further} further, to x = {cut_off}"
         further = entry["x"] - entry["cut_off"] if start else entry["cut_off"] - entry["x"]
         values |= {"further": (further, "length"), "cut_off": (entry["cut_off"], "position")}
-        if entry.get("run_to") is not None:
+        if (to := entry.get("run_to")) is not None and not 0.0 <= to <= length:
+            how += ", and its fastening cannot bring its force in before the end of the member"
+        elif to is not None:
             how += ", and on to {run_to} for its force to be brought in"
-            values["run_to"] = (entry["run_to"], "position")
+            values["run_to"] = (to, "position")
     return Note(
         f"{name} ends at x = {{at}}, where the moment {{moment}} in {combination} exceeds what the section without "
         f"it can carry ({100.0 * entry['used_without']:.0f} % of its strength): {{force}} has to be passed into it "
@@ -81,6 +85,29 @@ def joints_full(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[No
                 | {
                     "found": (abs(most["value"]), "shear flow"),
                     "weld": (joined.weld, "shear flow"),
+                },
+            )
+
+
+def joints_beside(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note]:
+    """Tell of every part fastened beside another what its capacity is not compared with: shear and couple."""
+    for name in _parts(combinations):
+        part = analysis.member.part(name)
+        if part.joined is None or not beside(part) or (part.joined.capacity is None and part.joined.weld is None):
+            continue
+        rows = [(j[e], c["name"]) for c in combinations for j in c["joints"] if j["part"] == name for e in ENDS]
+        # of ends alike but for round-off the left
+        entry, combination = max(rows, key=lambda r: [float(f"{abs(r[0][k]):.9e}") for k in ("shear", "couple")])
+        if entry["shear"] or entry["couple"]:
+            yield Note(
+                f"{name} stands beside {part.place.host}: in {combination} a shear of {{shear}} and a couple of "
+                "{couple} have to enter it at x = {at}, which its `"
+                f"{'capacity' if part.joined.weld is None else 'weld'}` is not compared with; what its ends need is "
+                "not stated",
+                {
+                    "shear": (abs(entry["shear"]), "force"),
+                    "couple": (abs(entry["couple"]), "moment"),
+                    "at": (entry["x"], "position"),
                 },
             )
 

@@ -7,7 +7,6 @@ from dataclasses import replace
 from typing import Any
 
 from fishbelly.member.analysis import Analysis
-from fishbelly.member.cracked_results import chosen_response
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import largest
 from fishbelly.member.faults import CannotCompute
@@ -64,6 +63,8 @@ def one_stage(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[Note
         try:
             grid, total = simple, simple.combine(chosen).total
             if "cracked" in told:
+                from fishbelly.member.cracked_results import chosen_response
+
                 grid, total = chosen_response(simple, chosen)
             found = largest(grid.profile.panels, total.deflection[0]).value
         except CannotCompute:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,10 +12,7 @@ from fishbelly.member.analysis import Analysis, Combined
 from fishbelly.member.apex import Apexes, judge
 from fishbelly.member.arrangements import arrangements, bearings_change, merged
 from fishbelly.member.checks import Check, relative
-from fishbelly.member.cracked_check import cracked_check
-from fishbelly.member.cracked_data import cracked_data, stretches
-from fishbelly.member.cracked_loading import cracked_loading
-from fishbelly.member.cracked_results import CrackedCase, cracked_cases, cracked_stresses, in_band
+from fishbelly.member.cracking import may_crack
 from fishbelly.member.cross_check import cross_check
 from fishbelly.member.description import Member
 from fishbelly.member.extremes import Extreme, largest, values_at
@@ -35,6 +32,9 @@ from fishbelly.member.stage_results import Ends, linear_ends, stage_rows
 from fishbelly.member.stage_view import stage_number
 from fishbelly.member.station_results import envelope_rows, station_rows
 from fishbelly.member.stresses import PartStress, part_stresses
+
+if TYPE_CHECKING:
+    from fishbelly.member.cracked_results import CrackedCase
 
 Array = NDArray[np.float64]
 Data = dict[str, Any]
@@ -72,7 +72,7 @@ def deflect(member: Member, at: Iterable[float] | None = None, stage: str | None
     upto = number if stage is not None and number < len(member.stages) - 1 else None
     analysis = Analysis.of(member, wanted or ())
     _in_range(analysis)
-    cases = cracked_cases(analysis)
+    cases = _cases(analysis)
     combinations = [
         _cracked(case.at(number), wanted) if case else _combination(analysis, analysis.combine(c, upto=upto), wanted)
         for c, case in zip(member.combinations, cases, strict=True)
@@ -106,7 +106,7 @@ def _quick(analysis: Analysis, cases: Sequence[CrackedCase | None]) -> Ends:
     """Ends of stages if nothing crept."""
     quick = analysis.instantaneous
     staged = analysis.creeps and bool(analysis.member.stages)
-    return _stage_ends(quick, cracked_cases(quick) if staged and any(cases) else [None] * len(cases))
+    return _stage_ends(quick, _cases(quick) if staged and any(cases) else [None] * len(cases))
 
 
 def _largest(analysis: Analysis, combined: Combined) -> Data:
@@ -143,8 +143,20 @@ def _deflection_and_stress(analysis: Analysis, combined: Combined, loading: Sequ
     }
 
 
+def _cases(analysis: Analysis) -> tuple[CrackedCase | None, ...]:
+    """Combinations that crack the member; what knows of cracks is loaded for members that have any."""
+    if not may_crack(analysis.member):
+        return (None,) * len(analysis.member.combinations)
+    from fishbelly.member.cracked_results import cracked_cases
+
+    return cracked_cases(analysis)
+
+
 def _cracked_deflection_and_stress(case: CrackedCase) -> Data:
     """What every stage tells of a combination that cracks the member."""
+    from fishbelly.member.cracked_data import stretches
+    from fishbelly.member.cracked_results import cracked_stresses
+
     return {
         "deflection": deflections(case.analysis, case.chosen, case.fields, case.bent),
         "stress": [stress_row(s) for s in cracked_stresses(case)],
@@ -167,6 +179,11 @@ def _one(analysis: Analysis, combined: Combined, wanted: list[float] | None, che
 
 def _cracked(case: CrackedCase, wanted: list[float] | None) -> Data:
     """Results of one combination that cracks the member, at the end of a stage."""
+    from fishbelly.member.cracked_check import cracked_check
+    from fishbelly.member.cracked_data import cracked_data
+    from fishbelly.member.cracked_loading import cracked_loading
+    from fishbelly.member.cracked_results import cracked_stresses, in_band
+
     p = case.fields
     told = deflections(case.analysis, case.chosen, p, case.bent)
     data = _told(case.analysis, case.chosen, p, told, cracked_stresses(case), wanted, case.since)

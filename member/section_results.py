@@ -23,6 +23,7 @@ from fishbelly.member.shear_along import ShearAlong
 from fishbelly.member.slip_layers import slip_left_out
 from fishbelly.member.stage_section import StageSection, in_stage
 from fishbelly.sections.stiffness import SectionStiffness, principal_axes
+from fishbelly.sections.touching import touching_groups
 
 Array = NDArray[np.float64]
 Data = dict[str, Any]
@@ -85,8 +86,17 @@ def section_at(member: Member, x: float, side: str = "right", to: str | None = N
     data["parts"] = _parts(member, group, s, short, side)
     data["transformed"] = _transformed(there, group, s, to)
     data |= {"plastic": plastic_bending(member, group), "table": rolled_table(member, group)}
-    said = [*shear_notes(data), *slip_left_out(member)]
+    said = [*_apart(member, group), *shear_notes(data), *slip_left_out(member)]
     return data | {"notes": said} if said else data
+
+
+def _apart(member: Member, group: Group) -> list[str]:
+    """Say that parts act together though they do not touch."""
+    outlines = group.composition.outlines
+    if len(outlines) < 2 or len(touching_groups(outlines, 0)) == 1:
+        return []
+    names = [member.parts[i].name for i in group.placed.index]
+    return [f"{', '.join(names[:-1])} and {names[-1]} do not all touch, yet are taken to act together"]
 
 
 def _number(value: float) -> float | None:

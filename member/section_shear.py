@@ -91,7 +91,10 @@ def shear_notes(data: Data) -> list[str]:
     found = []
     for what, error in (("shear stiffness and shear centre", shear.get("error")), ("GJ", torsion.get("error"))):
         if error is not None and error > DOUBTFUL:
-            found.append(f"{what}: the estimated error is {100.0 * error:.2g} %; narrow gaps or slivers cause it")
+            found.append(
+                f"{what}: the estimated error is {100.0 * error:.2g} %; narrow gaps, slivers or materials unlike each "
+                "other cause it"
+            )
     if torsion.get("reason"):
         found.append("no torsional stiffness: pieces of the cross-section touch at a point alone")
     return found

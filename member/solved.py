@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from fishbelly.member.analysis import Analysis, ModuliKey
 from fishbelly.member.apex import judge
-from fishbelly.member.cracked_response import cracks_followed, may_crack
+from fishbelly.member.cracking import may_crack
 from fishbelly.member.description import Combination, Member
 from fishbelly.member.extremes import largest, values_at
 from fishbelly.member.faults import NotLinear
@@ -182,8 +182,11 @@ class Solved:
         raise KeyError(f"expected one of the combinations {names}, got {name!r}")
 
     def _result(self, combination: Combination, stage: int = -1) -> Result:
-        if cracks_followed(self.analysis):
-            return self._cracked(combination, stage)
+        if may_crack(self.analysis.member):
+            from fishbelly.member.cracked_response import cracks_followed
+
+            if cracks_followed(self.analysis):
+                return self._cracked(combination, stage)
         total = self.analysis.combine(combination, upto=None if stage < 0 else stage).total
         judge(self.analysis.profile.panels, total)
         linear = not any(s.only_up for s in self.analysis.member.supports)

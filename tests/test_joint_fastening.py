@@ -107,6 +107,51 @@ def test_weld_and_overload_notes():
     assert not any(n.startswith("a fastener") for n in strong["notes"])
 
 
+@pytest.mark.parametrize(
+    ("asked", "key"), [('pitch = "120 mm", rows = 2, capacity = "9 kN"', "capacity"), ('weld = "60 N/mm"', "weld")]
+)
+def test_capacity_along_x_says_nothing_of_a_plate_at_the_side(asked, key):
+    """A centred side plate has no force along x but shear and couple as its share of EI: not "0 fasteners needed"."""
+    text = changed(
+        CUT, ('under = "beam"', 'right_of = "beam"'), ('pitch = "120 mm", rows = 2, capacity = "9 kN"', asked)
+    )
+    found = deflect(text)
+    j = joint(found["combinations"][0], "plate")
+    share = 0.02**3 / (0.02**3 + 0.2**3)
+    for end, x in (("start", 2.5), ("end", 5.0)):
+        assert j[end]["couple"] == pytest.approx(share * moment(x), rel=1e-9)
+        assert j[end]["force"] == 0.0
+        assert not {"needed", "zone", "run_to"} & set(j[end])
+    told = [n for n in found["notes"] if n.startswith("plate stands beside beam")]
+    assert len(told) == 1 and f"`{key}` is not compared with" in told[0]
+    assert not any("stands beside" in n for n in deflect(CUT)["notes"])
+
+
+def test_fastening_for_which_the_member_is_too_short():
+    short = deflect(changed(CUT, ('"9 kN"', '"2 kN"')))
+    j = joint(short["combinations"][0], "plate")
+    assert j["start"]["run_to"] < 0.0
+    told = next(n for n in short["notes"] if n.startswith("plate ends at x = 2.500 m"))
+    assert told.endswith("and its fastening cannot bring its force in before the end of the member")
+
+
+def test_names_with_braces_are_told_as_they_are():
+    for name in ("pl{a}te", "{", "}"):
+        found = deflect(changed(CUT, ('name = "plate"', f'name = "{name}"')))
+        assert any(n.startswith(f"{name} ends at x = 2.500 m") for n in found["notes"])
+
+
+def test_a_section_tells_of_parts_that_do_not_touch():
+    def notes(text):
+        return command("section", text, "--at", "3 m").get("notes", [])
+
+    text = changed(CUT, ('joined = { pitch = "120 mm", rows = 2, capacity = "9 kN" }\n', ""), ("shear = false\n", ""))
+    text = changed(text, ('E = "210 GPa"', 'E = "210 GPa"\nG = "81 GPa"'))
+    assert notes(text) == []
+    apart = notes(changed(text, ('under = "beam"', 'under = "beam"\ngap = "20 mm"')))
+    assert apart == ["beam and plate do not all touch, yet are taken to act together"]
+
+
 def test_a_part_that_is_not_needed_has_no_cut_off():
     j = joint(deflect(changed(CUT, ('"15 kN/m"', '"5 kN/m"')))["combinations"][0], "plate")
     assert j["start"]["cut_off"] is None and j["end"]["cut_off"] is None
