@@ -39,7 +39,8 @@ KEYS: dict[str, dict[str, str]] = {
         "band": "lowest and highest E; results are given for both as well",
         "strength": "allowable stress, or { tension, compression, shear }: each part's worst fibre is a check",
         "yield": "stress above which an elastic result no longer holds; a note says where",
-        "cracking": "tensile stress at which it cracks; written here, or with a key for cracks, it does; else a note alone",
+        "cracking": "tensile stress at which it cracks; written here, or with a key for cracks, it does; "
+        "else a note alone",
         "no_tension": "true: it carries compression only, as masonry does",
     },
     "part": {
@@ -67,7 +68,8 @@ KEYS: dict[str, dict[str, str]] = {
         "shift": f"extra offset [y, z], each {LAW}",
         "stage": "first stage in which it works; default the first",
         "until": "stage at whose start it goes",
-        "joined": "how it is fixed to the part it stands against: fasteners, with a stiffness where they slip, or a weld; default rigidly",
+        "joined": "how it is fixed to the part it stands against: fasteners, with a stiffness where "
+        "they slip, or a weld; default rigidly",
         "effective": "published rule by which only part of a slab's width counts in stiffness; its weight stays whole",
     },
     "dimension": {

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from fishbelly.member.description import Part
+from fishbelly.member.description import Part, Support
 from fishbelly.member.draft import Draft, Path, Problem
 from fishbelly.member.loads import Prestress, Shrinkage, Temperature
 
@@ -78,14 +78,14 @@ def _leaning(draft: Draft, number: dict[str, int]) -> Iterator[Problem]:
             yield Problem(path, "a part that stays as long as this one", f'"{host.name}", which goes in "{host.until}"')
 
 
-def _there(part: Part, stage: int, number: dict[str, int]) -> bool:
+def _there(part: Part | Support, stage: int, number: dict[str, int]) -> bool:
     first = 0 if part.stage is None else number.get(part.stage, 0)
     last = len(number) if part.until is None else number.get(part.until, len(number))
     return first <= stage < last
 
 
 def _loaded(draft: Draft, number: dict[str, int]) -> Iterator[Problem]:
-    """Free strain needs its part in the stage in which it arrives."""
+    """Free strain needs its part, and settlement its support, in the stage in which it arrives."""
     home = {case: s.name for s in draft.stages if s is not None for case in s.cases}
     for i, load in enumerate(draft.loads):
         if load is None or load.case not in home:
@@ -102,6 +102,12 @@ def _loaded(draft: Draft, number: dict[str, int]) -> Iterator[Problem]:
             if part is not None and not _there(part, stage, number):
                 found = f'"{name}", not there in stage "{home[load.case]}"'
                 yield Problem(("load", i, key), "a part that is there when it arrives", found)
+    for i, support in enumerate(draft.supports):
+        if support is None or not support.sinks or support.case not in home:
+            continue
+        if not _there(support, number[home[support.case]], number):
+            found = f'"{support.name}", not there in stage "{home[support.case]}"'
+            yield Problem(("support", i, "sinks"), "a support that is there when it settles", found)
 
 
 def _moduli(draft: Draft) -> Iterator[Problem]:

@@ -284,7 +284,9 @@ def _cannot_carry(solved: Solved, name: str) -> NoStiffness:
     forces = Forces(r.N, r.V, r.M)
     moment = r.M[0] + r.N * sections.frame.centre[0]
     shares = sections.shares_carried(~state.carried, forces)
-    k, j = (int(v) for v in np.unravel_index(int(np.argmin(shares)), shares.shape))
+    # of places that carry alike the one with the largest moment
+    most = np.where(shares <= shares.min() + 1e-9, np.abs(moment), -1.0)
+    k, j = (int(v) for v in np.unravel_index(int(np.argmax(most)), shares.shape))
     share = float(shares[k, j])
     return NoStiffness(
         float(panels.x[k, j]),
