@@ -9,7 +9,7 @@ AT = number("place along the member", "m")
 
 def joints_schema() -> Schema:
     """Return the schema of the joints of one combination."""
-    per_fastener = maybe(number("flow that one fastener gets; null without fasteners", "N"))
+    per_fastener = maybe(number("flow through the joint that one fastener gets; null without fasteners", "N"))
     end = {
         "x": AT,
         "M": number("moment of the member", "N m"),
@@ -28,13 +28,15 @@ def joints_schema() -> Schema:
         "run_to": maybe(number("place to which the part has to run with its end fastening", "m")),
     }
     most = record("largest by size, with its sign", {"value": end["flow"], "at": AT}, {"per_fastener": per_fastener})
-    pitch = {"largest_pitch": maybe(number("largest pitch along the part, with `capacity`", "m"))}
+    pitch = {
+        "largest_pitch": maybe(number("largest pitch along the part, with `capacity`; null where fasteners slip", "m"))
+    }
     return array(
         "joints of parts with what they are placed against or touch; values just inside the part's ends",
         record(
             "a joint",
             {"part": text("the part"), "to": text("what it is joined to")}
             | {k: record(f"{k} of the part", end, asked) for k in ("start", "end")}
-            | {"flow": record("flow along the part", {"max": most}, pitch)},
+            | {"flow": record("flow through the joint: into the part and all that stands on it", {"max": most}, pitch)},
         ),
     )

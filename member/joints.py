@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -72,7 +73,20 @@ def joints(
     stopping = [i for i in fixed if (p_ := analysis.member.parts[i]).start > tiny or p_.end < length - tiny]
     ends = cut_offs(analysis, loading, stopping) if strong and stopping else {}
     noise = _noise(p, list(parts.values()), analysis.member.length)
-    return [_joint(analysis, p, i, to, parts[i], shears[i], ends.get(i), noise) for i, to in sorted(fixed.items())]
+    return [
+        _joint(analysis, p, i, to, parts[i], _through(analysis.member, i, parts), shears[i], ends.get(i), noise)
+        for i, to in sorted(fixed.items())
+    ]
+
+
+def _through(member: Member, index: int, parts: Mapping[int, PartForce]) -> PartForce:
+    """What goes through the joint of a part: force and flow of it and of all that stands on it."""
+    on = {member.parts[index].name: parts[index]}
+    for i, part in enumerate(member.parts):
+        if part.place.host in on and i in parts:
+            on[part.name] = parts[i]
+    N, flow = (np.asarray(sum(fs[1:], fs[0])) for fs in ([f.N for f in on.values()], [f.flow for f in on.values()]))
+    return replace(parts[index], N=N, flow=flow)
 
 
 def _noise(p: Pieces, parts: Sequence[PartForce], length: float) -> dict[str, float]:
@@ -95,6 +109,7 @@ def _joint(
     index: int,
     to: int,
     force: PartForce,
+    through: PartForce,
     shear: Array,
     cut: CutOff | None,
     noise: Mapping[str, float],
@@ -106,13 +121,16 @@ def _joint(
     for name, x in (("start", part.start), ("end", part.end)):
         k = force.first if name == "start" else force.stop - 1
         fields = {"M": p.M, "V": p.V, "force": force.N, "shear": shear, "couple": force.M[0], "flow": force.flow}
-        entry: Data = {"x": x}
-        for key, field in fields.items():
+
+        def just_inside(key: str, field: Array, k: int = k, name: str = name) -> float:
             own = _NOISE * float(np.abs(field[:, force.first : force.stop]).max(initial=0.0))
-            entry[key] = _settled(worst(inside(panels, field, k, name)), max(own, noise[key]))
-        entry["per_fastener"] = _per_fastener(part, entry["flow"])
-        data[name] = entry | _fastening(part, entry["force"]) | _cut_off(part, force, panels, cut, name, entry)
-    data["flow"] = {"max": _largest_flow(panels, force, part, noise["flow"])}
+            return _settled(worst(inside(panels, field, k, name)), max(own, noise[key]))
+
+        entry: Data = {"x": x} | {key: just_inside(key, field) for key, field in fields.items()}
+        entry["per_fastener"] = _per_fastener(part, just_inside("flow", through.flow))
+        passed = just_inside("force", through.N)
+        data[name] = entry | _fastening(part, passed) | _cut_off(part, through, panels, cut, name, passed)
+    data["flow"] = {"max": _largest_flow(panels, through, part, noise["flow"])}
     if joined is not None and joined.capacity is not None:
         most = abs(data["flow"]["max"]["value"])
         data["flow"]["largest_pitch"] = joined.capacity * side_by_side(part) / most if most > 0.0 else None
@@ -191,7 +209,7 @@ def anchorage(part: Part, force: float) -> float:
     return math.ceil(abs(force) / (joined.capacity * side_by_side(part)) - _WHOLE) * joined.pitch
 
 
-def _cut_off(part: Part, force: PartForce, panels: Panels, cut: CutOff | None, end: str, entry: Data) -> Data:
+def _cut_off(part: Part, force: PartForce, panels: Panels, cut: CutOff | None, end: str, passed: float) -> Data:
     """Theoretical cut-off of one end, and where the part then has to run to."""
     joined = part.joined
     if cut is None:
@@ -201,7 +219,7 @@ def _cut_off(part: Part, force: PartForce, panels: Panels, cut: CutOff | None, e
     if joined is not None and not beside(part) and (joined.capacity is not None or joined.weld is not None):
         data["run_to"] = None
         if x is not None:
-            carried = _force_at(force, panels, x, entry["force"])
+            carried = _force_at(force, panels, x, passed)
             length = anchorage(part, carried)
             data["run_to"] = x - length if end == "start" else x + length
     return data

@@ -63,20 +63,25 @@ def joints_full(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[No
         joined = analysis.member.part(name).joined
         if joined is None or (joined.capacity is None and joined.weld is None):
             continue
-        rows = [(j["flow"], c["name"]) for c in combinations for j in c["joints"] if j["part"] == name]
-        flow, combination = max(rows, key=lambda r: abs(r[0]["max"]["value"]))
-        most = flow["max"]
+        rows = [(j["flow"], c) for c in combinations for j in c["joints"] if j["part"] == name]
+        of = "value" if joined.pitch is None else "per_fastener"
+        flow, data = max(rows, key=lambda r: abs(r[0]["max"][of]))
+        combination, most, pitch = data["name"], flow["max"], flow.get("largest_pitch")
+        for slip in data.get("slip") or ():
+            # the fastener that carries most stands where the slip is largest, not the flow
+            if slip["part"] == name and slip["per_fastener"] is not None:
+                most = most | {"at": slip["per_fastener"]["max"]["at"]}
         where = {"at": (most["at"], "position")}
         if joined.capacity is not None and abs(most["per_fastener"]) > joined.capacity * (1.0 + _MET):
             yield Note(
-                f"a fastener of {name} carries {{found}} at x = {{at}} in {combination}, more than its {{capacity}}: "
-                "the pitch may be {pitch} there at most",
+                f"a fastener of {name} carries {{found}} at x = {{at}} in {combination}, more than its {{capacity}}"
+                + (": the pitch may be {pitch} there at most" if pitch is not None else ""),
                 where
                 | {
                     "found": (abs(most["per_fastener"]), "force"),
                     "capacity": (joined.capacity, "force"),
-                    "pitch": (flow["largest_pitch"], "length"),
-                },
+                }
+                | ({"pitch": (pitch, "length")} if pitch is not None else {}),
             )
         if joined.weld is not None and abs(most["value"]) > joined.weld * (1.0 + _MET):
             yield Note(

@@ -69,6 +69,9 @@ def _single_fasteners(data: Data) -> None:
         joint["start"]["per_fastener"] = found["single"][0]["force"]
         joint["end"]["per_fastener"] = found["single"][-1]["force"]
         joint["flow"]["max"]["per_fastener"] = found["per_fastener"]["max"]["value"]
+        if "largest_pitch" in joint["flow"]:
+            # another pitch is another stiffness: no proportion gives it
+            joint["flow"]["largest_pitch"] = None
 
 
 @dataclass(frozen=True, eq=False)

@@ -127,6 +127,31 @@ def test_capacity_along_x_says_nothing_of_a_plate_at_the_side(asked, key):
     assert not any("stands beside" in n for n in deflect(CUT)["notes"])
 
 
+def test_the_joint_of_a_plate_passes_what_a_second_plate_on_it_carries():
+    """One plate of 20 mm or two of 10 mm on top of each other: the fasteners to the beam carry the same."""
+    more = '[[part]]\nname = "outer"\nmaterial = "steel"\nshape = "rectangle"\nwidth = "60 mm"\ndepth = "10 mm"\n'
+    more += 'under = "plate"\nfrom = "2.5 m"\nto = "5 m"\n[[support]]\nat = "0 m"'
+    text = changed(CUT, ('depth = "20 mm"', 'depth = "10 mm"'), ('[[support]]\nat = "0 m"', more))
+    one, two = (joint(deflect(t)["combinations"][0], "plate") for t in (CUT, text))
+    for end in ("start", "end"):
+        assert two[end]["force"] < 0.51 * one[end]["force"]
+        assert two[end]["per_fastener"] == pytest.approx(one[end]["per_fastener"], rel=1e-9)
+        assert two[end]["zone"] == pytest.approx(one[end]["zone"])
+        assert two[end]["needed"] == one[end]["needed"]
+    assert two["flow"]["largest_pitch"] == pytest.approx(one["flow"]["largest_pitch"], rel=1e-9)
+    assert two["flow"]["max"]["value"] == pytest.approx(one["flow"]["max"]["value"], rel=1e-9)
+
+
+def test_overloaded_fasteners_that_slip_are_named_at_their_place():
+    text = changed(CUT, ('capacity = "9 kN"', 'capacity = "1 kN", stiffness = "100 kN/mm"'))
+    found = deflect(text)
+    told = [n for n in found["notes"] if n.startswith("a fastener of plate carries")]
+    assert joint(found["combinations"][0], "plate")["flow"]["largest_pitch"] is None
+    assert len(told) == 1 and told[0].endswith("more than its 1.000 kN")
+    most = found["combinations"][0]["slip"][0]["per_fastener"]["max"]
+    assert f"at x = {most['at']:.3f} m" in told[0]
+
+
 def test_fastening_for_which_the_member_is_too_short():
     short = deflect(changed(CUT, ('"9 kN"', '"2 kN"')))
     j = joint(short["combinations"][0], "plate")
