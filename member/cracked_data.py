@@ -42,7 +42,8 @@ def cracked_data(case: CrackedCase) -> Data:
     if case.one is not None:
         data["one_value"] = _deepest(case.one.response, case.analysis) | {"spans": [_span(s) for s in case.one.spans]}
         data |= _long_term(case)
-    elif case.rule == EN and case.everywhere is not None:
+    elif case.rule == EN and case.everywhere is not None and r.phases[-1].law.cracking:
+        # a part that never carries tension has no moment at which it cracks, and so no share of the code's
         data["one_value"] = _between(case, case.everywhere)
     return data
 

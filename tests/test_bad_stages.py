@@ -40,6 +40,14 @@ BAD = {
         good(('kind = "roller"', 'kind = "roller"\nsinks = "1 mm"')),
         ':22: support 2, case: expected a case that a stage has under `cases`, got "settlement", in no stage',
     ),
+    "a settlement before its support is there": (
+        good(('kind = "roller"', 'kind = "roller"\nsinks = "1 mm"\ncase = "old"\nstage = "later"')),
+        ':25: support 2, sinks: expected a support that is there when it settles, got "support 2", not there in stage "now"',
+    ),
+    "a settlement after its support has gone": (
+        good(('kind = "roller"', 'kind = "roller"\nsinks = "1 mm"\ncase = "new"\nuntil = "later"')),
+        ':25: support 2, sinks: expected a support that is there when it settles, got "support 2", not there in stage "later"',
+    ),
     "a case in two stages": (
         good(('cases = ["new"]', 'cases = ["new", "old"]')),
         ':38: stage "later", cases, item 2: expected a case that no other stage has, got "old", which "now" has',

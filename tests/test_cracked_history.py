@@ -132,19 +132,21 @@ def test_masonry_column_opens_and_its_limit() -> None:
         )
 
     N, b, h, E = -3e5, 1.0, 0.6, 5e9
-    r = solved(pier(15e3))
-    # opens where M = N h / 6; beyond, k = -2 N / (9 b E c^2), c from the force to the edge
-    x0 = 4.0 - 3e5 * h / 6 / 15e3
+    # at 20.25 kN the foot stands at 0.9 of what it carries, and strains there grow fast
+    for push in (15e3, 20.25e3):
+        r = solved(pier(push))
+        # opens where M = N h / 6; beyond, k = -2 N / (9 b E c^2), c from the force to the edge
+        x0 = 4.0 - 3e5 * h / 6 / push
 
-    def curvature(x: Any) -> Any:
-        M = -15e3 * (4 - x)
-        if abs(M) <= 3e5 * h / 6:
-            return M / (E * b * h**3 / 12)
-        return -2 * mp.mpf(3e5) / (9 * b * E * (h / 2 + M / mp.mpf(3e5)) ** 2)
+        def curvature(x: Any, push: float = push) -> Any:
+            M = -push * (4 - x)
+            if abs(M) <= 3e5 * h / 6:
+                return M / (E * b * h**3 / 12)
+            return -2 * mp.mpf(3e5) / (9 * b * E * (h / 2 + M / mp.mpf(3e5)) ** 2)
 
-    expected = mp.quad(lambda x: -curvature(x) * (4 - x), [0, x0, 4])
-    check_close(field(r, "deflection", 4.0, side="left"), expected, ALONG)
-    assert min(abs(r.analysis.profile.panels.a - x0)) < 1e-8
+        expected = mp.quad(lambda x, k=curvature: -k(x) * (4 - x), [0, 0.2 * x0, x0, 4])
+        check_close(field(r, "deflection", 4.0, side="left"), expected, ALONG)
+        assert min(abs(r.analysis.profile.panels.a - x0)) < 1e-8
     assert N < 0.0
     with pytest.raises(NoStiffness, match=r"x = .*cannot carry M = -1.*it can carry -9") as caught:
         solved(pier(30e3))

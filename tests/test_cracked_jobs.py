@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+from pathlib import Path
 from typing import Any
 
 import pytest
 from commands import deflect
 
+from fishbelly.cli.figures.stage_stresses import rows_of
+from fishbelly.cli.job_file import read_job
 from fishbelly.cli.main import run
+from fishbelly.member.analysis import Analysis
+from fishbelly.member.stress_depth import stress_over_depth
 
 JOB = """
 length = "6.5 m"
@@ -94,6 +99,11 @@ def test_no_tension_is_cracked_from_the_start() -> None:
     c = combinations(job(concrete="no_tension = true"))["rare"]
     plain = combinations(job())["rare"]
     assert c["deflection"]["down"]["value"] == pytest.approx(plain["cracked"]["everywhere"]["value"], rel=1e-9)
+    # and EN's value between uncracked and cracked means nothing there
+    assert (
+        "one_value"
+        not in combinations(job('tension_stiffening = "EN 1992-1-1"', "no_tension = true"))["rare"]["cracked"]
+    )
 
 
 def test_by_combination() -> None:
@@ -131,3 +141,53 @@ def test_band_of_the_concrete() -> None:
     for c in combinations(text).values():
         down = c["deflection"]["down"]
         assert down["band"]["low"] > down["value"] > down["band"]["high"]
+
+
+PULL = '[[load]]\nkind = "axial"\nvalue = "250 kN"\nat = "6.5 m"\ncase = "g"\n'
+TOP_BARS = BARS.replace("bottom bars", "top bars").replace("-370 mm", "-50 mm")
+
+
+def test_second_method_under_tension_and_bending() -> None:
+    """Where the edge comes into compression strains have a kink along x; the second method finds the same."""
+    text = job('tension_stiffening = "EN 1992-1-1"', bars=BARS + TOP_BARS) + PULL
+    for c in combinations(text).values():
+        assert c["cross_check"]["difference"] < 1e-6
+
+
+def test_second_method_where_nothing_deflects() -> None:
+    """Pulled along its axis alone a cracked beam does not bend: two round-offs need not agree."""
+    both = BARS.replace("-370 mm", "-310 mm") + TOP_BARS.replace("-50 mm", "-110 mm")
+    text = job('tension_stiffening = "EN 1992-1-1"', bars=both) + PULL.replace("250 kN", "500 kN")
+    c = combinations(text.replace("14 kN/m", "0 kN/m").replace("13 kN/m", "0 kN/m"))["rare"]
+    assert c["cracked"]["stretches"] and abs(c["cracked"]["along"]["value"]) < 1e-10
+
+
+def test_no_second_method_says_why() -> None:
+    """A cantilever's tip lies in no span: the note names that."""
+    text = (
+        job().replace('kind = "pin"', 'kind = "fixed"', 1).replace('[[support]]\nat = "6.5 m"\nkind = "roller"\n', "")
+    )
+    text = text.replace("14 kN/m", "-4 kN/m").replace("13 kN/m", "-1 kN/m")
+    assert any("does not reach rare: its largest deflection lies in no span" in n for n in deflect(text)["notes"])
+
+
+def test_cannot_carry_names_the_worst_place(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """Without axial force no place carries anything: the one with the largest moment is named."""
+    path = tmp_path / "job.toml"
+    path.write_text(job(concrete="no_tension = true", bars=""), encoding="utf-8")
+    assert run(["deflect", str(path)]) == 3
+    assert "x = 3.25 m: without tension the section cannot carry M = 142594 N m" in capsys.readouterr().err
+
+
+def test_stress_over_the_depth_is_that_at_a_crack() -> None:
+    """A figure's section shows what the table says: bars at a crack, of the concrete what is pressed."""
+    text = job('tension_stiffening = "EN 1992-1-1"')
+    analysis = Analysis.of(read_job("-", text).member)
+    peaks = {s["part"]: s for s in combinations(text)["rare"]["stress"]}
+    beam, bars = stress_over_depth(analysis, "rare", 3.25)
+    assert bars.stress.max() == pytest.approx(peaks["bottom bars"]["max"]["value"], rel=1e-9)
+    assert beam.stress.min() == pytest.approx(peaks["beam"]["min"]["value"], rel=1e-9)
+    assert beam.stress.max() == 0.0 and -0.37 < beam.z[0] < beam.z[1] == 0.0
+    alone = {"part": "bottom bars", "max": {"value": 2e8}, "min": None}
+    told = [{"name": "now", "combinations": [{"name": "rare", "stress": [alone]}]}]
+    assert rows_of(read_job("-", text), told, "rare") == [(1, "bottom bars", "now", 0.0, 2e8)]

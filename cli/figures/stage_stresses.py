@@ -41,8 +41,10 @@ def rows_of(job: Any, stages: Sequence[Mapping[str, Any]], combination: str) -> 
     for stage in stages:
         told = next(c for c in stage["combinations"] if c["name"] == combination)
         for s in told["stress"]:
-            if s["max"] is not None and s["min"] is not None:
-                row = (number[s["part"]], s["part"], stage["name"], s["min"]["value"], s["max"]["value"])
+            # a part may be in tension, or pressed, throughout
+            ends = [0.0 if s[e] is None else s[e]["value"] for e in ("min", "max")]
+            if s["max"] is not None or s["min"] is not None:
+                row = (number[s["part"]], s["part"], stage["name"], ends[0], ends[1])
                 found.setdefault(s["part"], []).append(row)
     sizes = {name: max(max(abs(r[3]), abs(r[4])) for r in rows) for name, rows in found.items()}
     kept: list[str] = []
