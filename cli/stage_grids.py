@@ -138,7 +138,7 @@ def _deflections(rows: Sequence[Row], noise: float, across: bool) -> Grid:
             *_alike(stiff),
             column(rows, "gain", "factor"),
         ),
-        note + "; gain: EI over that of the stage before",
+        note + "; gain: EI over that of the stage before, at the same place",
     )
 
 

@@ -28,7 +28,7 @@ def cracked_notes(analysis: Analysis, combinations: Sequence[Data]) -> Iterator[
         return
     rule = found[0]["cracked"]["rule"]
     yield Note(
-        "no tension stiffening: cracked sections count with their bars alone"
+        "no tension stiffening: where a section is cracked, parts that crack carry compression alone"
         if rule is None
         else f"tension stiffening by {rule}; stresses are those at a crack"
     )

@@ -115,7 +115,7 @@ def test_by_combination() -> None:
 def test_notes_say_what_was_done() -> None:
     notes = " | ".join(deflect(job())["notes"])
     assert "rare: cracked from" in notes and "cracked throughout" in notes
-    assert "no tension stiffening: cracked sections count with their bars alone" in notes
+    assert "no tension stiffening: where a section is cracked, parts that crack carry compression alone" in notes
     assert "counted as uncracked" not in notes
 
 

@@ -4,11 +4,12 @@ how the same member is written down."""
 # ruff: noqa: E731 - formulas stand as formulas
 from __future__ import annotations
 
+import os
 from dataclasses import replace
 
 import pytest
 from common import INF, ROUND_OFF, case, fixed, part, reaction, run
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from members import (
     GRID,
@@ -227,6 +228,7 @@ def test_order_of_parts_that_lie_apart(data: st.DataObject) -> None:
     check_same(table(make(parts)), table(make([parts[k] for k in order])), ROUND_OFF)
 
 
+@settings(max_examples=200 if os.environ.get("FISHBELLY_FULL") == "1" else 5)
 @given(members(most=3), st.sampled_from([0.01, 3.0, 1e4]))
 def test_scaling_every_modulus(member: Member, factor: float) -> None:
     if any(0.0 < v < float("inf") for s in member.supports for v in (s.down, s.rotation, s.along, s.across)):
