@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from fishbelly.catalog.materials import CatalogMaterial, UnknownMaterial
 from fishbelly.cli.faults import as_written
+from fishbelly.cli.job_creep import RULE
 from fishbelly.cli.job_models import MaterialTable
 from fishbelly.cli.job_report import Report
 from fishbelly.cli.job_tables import read_table
@@ -126,6 +127,8 @@ def own_material(name: str, report: Report, model: type[MaterialTable] = Materia
         band = base.band
     if band is not None and not band[0] <= E <= band[1]:
         report.warnings.append(f'material "{name}": its E lies outside its band')
+    if isinstance(raw.get("creep"), dict):
+        report.warnings.append(f'material "{name}": creep factor {table.creep:.3g} by {RULE}, Annex B')
     cracks = table.cracking is not None or _asks_for_cracks(report)
     strength = None if table.strength is None else Strength(**table.strength)
     if strength is None and base is not None:

@@ -8,6 +8,7 @@ from typing import Annotated, Any
 
 from pydantic import BaseModel, ConfigDict, Field
 
+from fishbelly.cli.job_creep import CreepReader
 from fishbelly.cli.job_laws import (
     LawOf,
     Size,
@@ -131,7 +132,7 @@ class MaterialTable(Table):
     poisson: Annotated[float | None, Factor("Poisson's ratio", above=-1.0, at_most=0.5)] = None
     density: Annotated[float | None, Quantity(Kind.DENSITY, "zero or more")] = None
     expansion: Annotated[float | None, Quantity(Kind.EXPANSION)] = None
-    creep: MaybeCreep = None
+    creep: Annotated[float | None, CreepReader()] = None
     band: Annotated[
         tuple[float, ...] | None,
         Many(Quantity(Kind.MODULUS, "above zero"), "a pair [low, high] of moduli", count=2),

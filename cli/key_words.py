@@ -35,7 +35,8 @@ KEYS: dict[str, dict[str, str]] = {
         "poisson": "Poisson's ratio, gives G = E / (2 (1 + poisson)); not beside `G`",
         "density": "mass per volume, needed under self weight",
         "expansion": "coefficient of thermal expansion; a bare number is per K",
-        "creep": "creep factor of loads of long duration, for timber k_def",
+        "creep": "creep factor of loads of long duration, for timber k_def; or { rule, f_ck, humidity, size, "
+        "loaded_at } for that of EN 1992-1-1, ages in days",
         "band": "lowest and highest E; results are given for both as well",
         "strength": "allowable stress, or { tension, compression, shear }: each part's worst fibre is a check",
         "yield": "stress above which an elastic result no longer holds; a note says where",

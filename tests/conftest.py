@@ -11,7 +11,7 @@ from hypothesis import HealthCheck, Phase, settings
 _COMMON = {"deadline": None, "suppress_health_check": [HealthCheck.too_slow, HealthCheck.data_too_large]}
 # a failure of the short profile is shown as found; the long one looks for the smallest member that fails
 _SHORT = (Phase.explicit, Phase.reuse, Phase.generate)
-settings.register_profile("fast", max_examples=10, derandomize=True, phases=_SHORT, **_COMMON)
+settings.register_profile("fast", max_examples=7, derandomize=True, phases=_SHORT, **_COMMON)
 settings.register_profile("full", max_examples=200, **_COMMON)
 FULL = os.environ.get("FISHBELLY_FULL") == "1"
 settings.load_profile("full" if FULL else "fast")
