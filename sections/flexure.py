@@ -18,7 +18,7 @@ from fishbelly.sections.composition import Composition
 from fishbelly.sections.flexure_warping import TWIST, Warping, warping
 from fishbelly.sections.mesh_direction import main_direction, turned_section
 from fishbelly.sections.mesh_slabs import cuts
-from fishbelly.sections.section_mesh import SharedMesh, shared_meshes
+from fishbelly.sections.section_mesh import MeshFoldError, SharedMesh, shared_meshes
 from fishbelly.sections.stiffness import SectionStiffness
 
 Array = NDArray[np.float64]
@@ -33,6 +33,9 @@ _SLIM = 0.2
 """Circles smaller than this share of the section are bars: what they disturb is small."""
 _FINER = 3
 """By how much the degree is raised for an estimate of the error."""
+
+_TURNS = (0.0, 0.5 * np.pi, 0.4, 1.1)
+"""Angles, besides that of most edges, at which a section is cut into slabs until its cells do not fold [rad]."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -116,8 +119,23 @@ def flexure(
     MeshFoldError
         The section cannot be divided into cells.
     """
-    angle = main_direction(section)
     asked = (section, E, G, clusters, share_angle)
+    main = main_direction(section)
+    for more in _TURNS:
+        try:
+            return _along(asked, main + more, degree)
+        except MeshFoldError:
+            # other slabs may divide the section where these could not
+            if more == _TURNS[-1]:
+                raise
+    raise AssertionError("unreachable")
+
+
+def _along(
+    asked: tuple[Composition, Array, Array, Sequence[int] | None, bool], angle: float, degree: int | None
+) -> Flexure:
+    """Solve a section on slabs cut at an angle."""
+    section, E, G, clusters, share_angle = asked
     section = turned_section(section, -angle)
     c = cuts(section)
     p = _degree(section, E, G, float(c.size.min())) if degree is None else degree
